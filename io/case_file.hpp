@@ -1,0 +1,50 @@
+#pragma once
+
+#include <optional>
+#include <stdexcept>
+#include <string>
+#include <vector>
+
+#include "physics/scales.hpp"
+#include "solver/settings.hpp"
+
+/// A case as one TOML file. io/case_keys.cpp is the one place that knows the keys.
+namespace lidwright {
+
+struct OutputSettings {
+  long history_every = 1;         ///< steps, >= 1
+  double snapshot_every = 0;      ///< time; 0: only the first and the last
+  long checkpoint_every = 200;    ///< steps; 0: only at the end
+  int checkpoints_kept = 2;       ///< >= 1
+  bool normal_stress = true;      ///< pressure and wall normal stress in snapshots
+};
+
+struct Case {
+  std::string title;
+  Model model;
+  InitialSettings initial;
+  FlowSettings flow;
+  HeatSettings heat;
+  MarchSettings march;
+  OutputSettings output;
+  std::optional<Body> body;  ///< present: the file was in SI and everything above was made dimensionless with it
+};
+
+/// Bad input: `what()` is the whole message, with file, line, key, value, what is allowed and the remedy.
+struct InputError : std::runtime_error {
+  using std::runtime_error::runtime_error;
+};
+
+/// Reads a case, then applies `settings` ("table.key=value", as on the command line) before any check.
+/// Throws InputError. Not collective: every rank may call it, or one.
+Case read_case(const std::string& path, const std::vector<std::string>& settings = {});
+Case parse_case(const std::string& text, const std::string& name, const std::vector<std::string>& settings = {});
+
+/// The case with every default filled in, as TOML that `parse_case` reads back to the same case.
+std::string write_case(const Case&);
+
+/// Reference of all keys, for `lidwright keys` (plain, 80 columns) and docs/case.md (Markdown).
+std::string keys_as_text();
+std::string keys_as_markdown();
+
+}  // namespace lidwright

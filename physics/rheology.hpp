@@ -1,0 +1,82 @@
+#pragma once
+
+#include <algorithm>
+#include <cmath>
+#include <limits>
+#include <optional>
+#include <vector>
+
+/// Viscosity laws, dimensionless: a law is a product of the factors that are present, cut off below and above.
+/// Temperature T in units of the temperature drop above the surface temperature, depth in shell thicknesses.
+namespace lidwright {
+
+/// Where and in what state a law is asked.
+struct Point {
+  double temperature;
+  double depth;
+};
+
+/// Exponential in temperature and depth (Frank-Kamenetskii 1969):
+///     eta = exp(-ln(thermal_contrast) (T - unity_at) + ln(depth_contrast) depth).
+struct ExponentialViscosity {
+  double thermal_contrast = 1;  ///< eta at T = 0 over eta at T = 1, > 0
+  double depth_contrast = 1;    ///< eta at depth 1 over eta at depth 0, > 0
+  double unity_at = 0;          ///< T at which the thermal factor is 1
+  double operator()(const Point& p) const {
+    return std::exp(-std::log(thermal_contrast) * (p.temperature - unity_at) +
+                    std::log(depth_contrast) * p.depth);
+  }
+};
+
+/// Arrhenius: eta = exp[(E + V depth)/(T + T0) - (E + V depth_1)/(T_1 + T0)].
+/// In SI terms E = activation energy/(R DeltaT), V = rho g d activation volume/(R DeltaT),
+/// T0 = surface temperature/DeltaT; physics/scales.hpp converts.
+struct ArrheniusViscosity {
+  double energy = 0;            ///< E >= 0
+  double volume = 0;            ///< V >= 0
+  double offset = 1;            ///< T0 > 0
+  double unity_at = 1;          ///< T_1, temperature at which eta = 1
+  double unity_at_depth = 0;    ///< depth_1
+  double operator()(const Point& p) const {
+    return std::exp((energy + volume * p.depth) / (p.temperature + offset) -
+                    (energy + volume * unity_at_depth) / (unity_at + offset));
+  }
+};
+
+/// A layer reaches from its `below` down to the next layer's (the last one to the inner wall); above the
+/// first, the factor is 1. Sorted by `below`.
+struct ViscosityLayer {
+  double below = 0;  ///< depth of the layer's top, in [0, 1)
+  double factor = 1; ///< > 0
+};
+
+struct LayeredViscosity {
+  std::vector<ViscosityLayer> layers;
+  double operator()(const Point& p) const {
+    double factor = 1;
+    for (const ViscosityLayer& layer : layers)
+      if (p.depth >= layer.below) factor = layer.factor;
+    return factor;
+  }
+};
+
+/// The product of what is present, with cut-offs applied last.
+struct ViscosityLaw {
+  double constant = 1;  ///< > 0
+  std::optional<ExponentialViscosity> exponential;
+  std::optional<ArrheniusViscosity> arrhenius;
+  LayeredViscosity layered;
+  double lowest = 0;
+  double highest = std::numeric_limits<double>::infinity();
+
+  double operator()(const Point& p) const {
+    double eta = constant * layered(p);
+    if (exponential) eta *= (*exponential)(p);
+    if (arrhenius) eta *= (*arrhenius)(p);
+    return std::clamp(eta, lowest, highest);
+  }
+  /// Whether eta stays as it is while the temperature changes (then one factorisation serves a whole run).
+  bool steady() const { return !exponential && !arrhenius; }
+};
+
+}  // namespace lidwright
