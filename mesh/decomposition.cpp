@@ -32,14 +32,16 @@ Decomposition::Decomposition(std::shared_ptr<const Geometry> geometry, MPI_Comm 
   MPI_Comm_size(comm, &ranks_);
   const int columns = geometry_->lateral_cells();
   if (columns / ranks_ < least_columns)
-    throw std::invalid_argument(std::to_string(columns) + " lateral cells on " + std::to_string(ranks_) +
-                                " ranks: each rank needs " + std::to_string(least_columns) +
+    throw std::invalid_argument(std::to_string(columns) + " lateral cells on " +
+                                std::to_string(ranks_) + " ranks: each rank needs " +
+                                std::to_string(least_columns) +
                                 " or more; use fewer ranks or more lateral cells");
   std::vector<PetscInt> share = columns_of_ranks(columns, ranks_);
-  cells_ = Handle<DM, DMDestroy>(create_dm(comm, geometry_->periodic(), geometry_->radial_cells(), share));
+  cells_ = Handle<DM, DMDestroy>(
+      create_dm(comm, geometry_->periodic(), geometry_->radial_cells(), share));
   if (!geometry_->periodic()) ++share.back();
-  corners_ =
-      Handle<DM, DMDestroy>(create_dm(comm, geometry_->periodic(), geometry_->radial_cells() + 1, share));
+  corners_ = Handle<DM, DMDestroy>(
+      create_dm(comm, geometry_->periodic(), geometry_->radial_cells() + 1, share));
 }
 
 DM Decomposition::dm(At at) const {

@@ -9,15 +9,16 @@
 #include "mesh/geometry.hpp"
 #include "mesh/petsc.hpp"
 
-/// The mesh shared out among the ranks: every rank owns whole radial columns, a contiguous range of them.
-/// A column never crosses ranks, so radial profiles, pressure and radial recurrences need no communication,
-/// and PETSc's global numbering is the natural one (radial index fastest) on any number of ranks.
+/// The mesh shared out among the ranks: every rank owns whole radial columns, a contiguous range of
+/// them. A column never crosses ranks, so radial profiles, pressure and radial recurrences need no
+/// communication, and PETSc's global numbering is the natural one (radial index fastest) on any
+/// number of ranks.
 namespace lidwright {
 
 class Decomposition {
  public:
-  static constexpr int ghosts = 2;            ///< columns of neighbours held on either side
-  static constexpr int least_columns = 4;     ///< per rank
+  static constexpr int ghosts = 2;         ///< columns of neighbours held on either side
+  static constexpr int least_columns = 4;  ///< per rank
 
   /// Collective. Throws std::invalid_argument on all ranks when a rank would get too few columns.
   Decomposition(std::shared_ptr<const Geometry>, MPI_Comm);
@@ -30,7 +31,8 @@ class Decomposition {
 
   /// Owned columns at a location (lateral faces as corners, radial faces as cells).
   Range owned(At) const;
-  /// Owned columns and those of the neighbours that are held (indices run past [0, n) when periodic).
+  /// Owned columns and those of the neighbours that are held (indices run past [0, n) when
+  /// periodic).
   Range held(At) const;
   int rows(At at) const {
     return geometry_->radial_cells() + (at == At::Corner || at == At::RadialFace ? 1 : 0);

@@ -8,12 +8,14 @@
 
 #include "mesh/decomposition.hpp"
 
-/// Numbers at one location of the mesh: a rank's own columns and two of its neighbours' on either side.
+/// Numbers at one location of the mesh: a rank's own columns and two of its neighbours' on either
+/// side.
 namespace lidwright {
 
 template <At at>
 class Field {
-  static_assert(at == At::Cell || at == At::Corner, "faces are derived from corners: see mesh/operators.hpp");
+  static_assert(at == At::Cell || at == At::Corner,
+                "faces are derived from corners: see mesh/operators.hpp");
 
  public:
   Field() = default;
@@ -37,21 +39,27 @@ class Field {
   const std::vector<double>& values() const { return values_; }
   std::vector<double>& values() { return values_; }
   /// First owned number and how many there are: contiguous.
-  double* owned_data() { return values_.data() + static_cast<std::size_t>(owned_.begin - held_.begin) * rows_; }
+  double* owned_data() {
+    return values_.data() + static_cast<std::size_t>(owned_.begin - held_.begin) * rows_;
+  }
   const double* owned_data() const {
     return values_.data() + static_cast<std::size_t>(owned_.begin - held_.begin) * rows_;
   }
-  std::size_t owned_size() const { return static_cast<std::size_t>(rows_) * static_cast<std::size_t>(owned_.size()); }
+  std::size_t owned_size() const {
+    return static_cast<std::size_t>(rows_) * static_cast<std::size_t>(owned_.size());
+  }
 
   /// Brings the neighbours' columns up to date. Collective.
   void exchange() {
     Handle<Vec, VecDestroy> local;
-    check(VecCreateSeqWithArray(PETSC_COMM_SELF, 1, static_cast<PetscInt>(values_.size()), values_.data(), local.put()));
+    check(VecCreateSeqWithArray(PETSC_COMM_SELF, 1, static_cast<PetscInt>(values_.size()),
+                                values_.data(), local.put()));
     check(DMLocalToLocalBegin(decomposition_->dm(at), local, INSERT_VALUES, local));
     check(DMLocalToLocalEnd(decomposition_->dm(at), local, INSERT_VALUES, local));
   }
 
-  /// Copies owned numbers to and from one of PETSc's global vectors; `from_global` also exchanges. Collective.
+  /// Copies owned numbers to and from one of PETSc's global vectors; `from_global` also exchanges.
+  /// Collective.
   void to_global(Vec global) const {
     double* raw = nullptr;
     check(VecGetArrayWrite(global, &raw));

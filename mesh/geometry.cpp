@@ -69,7 +69,8 @@ Geometry::Geometry(const Shell& shell, const Grid& grid) : shell_(shell), grid_(
 void Geometry::set_radial_metric() {
   const int n = grid_.radial;
   const int p = radial_power(shell_.shape);
-  face_radius_ = graded_faces(shell_.inner_radius, shell_.inner_radius + 1, n, grid_.radial_grading);
+  face_radius_ =
+      graded_faces(shell_.inner_radius, shell_.inner_radius + 1, n, grid_.radial_grading);
   for (int i = 0; i < n; ++i) {
     const double a = face_radius_[i], b = face_radius_[i + 1], middle = (a + b) / 2;
     cell_radius_.push_back(middle);
@@ -146,7 +147,8 @@ std::array<double, 2> Geometry::cartesian(double radius, double lateral) const {
   return {radius * std::cos(lateral), radius * std::sin(lateral)};
 }
 
-std::array<double, 2> Geometry::cartesian_vector(double radial, double along, double lateral) const {
+std::array<double, 2> Geometry::cartesian_vector(double radial, double along,
+                                                 double lateral) const {
   if (box()) return {along, radial};
   const double c = std::cos(lateral), s = std::sin(lateral);
   if (shell_.shape == Shape::AxisymmetricShell)

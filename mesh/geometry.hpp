@@ -9,10 +9,11 @@
 /// curvature. No operator asks which shell it is.
 ///
 /// All are orthogonal and separable, with volume element w dr dtheta:
-///     box w = 1;  annulus w = r;  spherical annulus w = r^2;  axisymmetric shell w = 2 pi r^2 sin(theta).
+///     box w = 1;  annulus w = r;  spherical annulus w = r^2;  axisymmetric shell w = 2 pi r^2
+///     sin(theta).
 /// Lengths are in units of the thickness of the shell, so the walls lie at r_inner and r_inner + 1
-/// (box: at heights 0 and 1). The lateral coordinate is x in the box (a length), the longitude in the
-/// two annuli and the colatitude in the axisymmetric shell (radians).
+/// (box: at heights 0 and 1). The lateral coordinate is x in the box (a length), the longitude in
+/// the two annuli and the colatitude in the axisymmetric shell (radians).
 namespace lidwright {
 
 enum class Shape { Box, Annulus, SphericalAnnulus, AxisymmetricShell };
@@ -28,7 +29,8 @@ struct Shell {
   Sides sides = Sides::Reflecting;
 };
 
-/// Width of the cells in the middle over the width of the cell at the first and at the last wall, >= 1.
+/// Width of the cells in the middle over the width of the cell at the first and at the last wall,
+/// >= 1.
 struct Grading {
   double first = 1;
   double last = 1;
@@ -41,9 +43,10 @@ struct Grid {
   Grading lateral_grading;  ///< box with reflecting sides only
 };
 
-/// n + 1 face positions from begin to end. Cell widths vary smoothly with the cell's number s in (0, 1):
-/// width(s) ~ first^-cos^2(pi s) for s < 1/2 and last^-cos^2(pi s) beyond, so that refinement by two keeps
-/// the map (to second order) and the cells next to the walls are almost uniform.
+/// n + 1 face positions from begin to end. Cell widths vary smoothly with the cell's number s in
+/// (0, 1): width(s) ~ first^-cos^2(pi s) for s < 1/2 and last^-cos^2(pi s) beyond, so that
+/// refinement by two keeps the map (to second order) and the cells next to the walls are almost
+/// uniform.
 std::vector<double> graded_faces(double begin, double end, int n, Grading);
 
 /// 1-D list that may also be read up to `pad` places outside [0, n).
@@ -69,7 +72,8 @@ class Geometry {
   int lateral_cells() const { return grid_.lateral; }
   bool periodic() const { return shell_.sides == Sides::Periodic; }
   bool box() const { return shell_.shape == Shape::Box; }
-  /// Columns of corners (and of lateral faces) that carry numbers: one more than cells unless periodic.
+  /// Columns of corners (and of lateral faces) that carry numbers: one more than cells unless
+  /// periodic.
   int corner_columns() const { return periodic() ? grid_.lateral : grid_.lateral + 1; }
 
   // Places. Radius (height in the box) and lateral coordinate of faces and of cell middles.
@@ -91,13 +95,19 @@ class Geometry {
   double area(RadialFace f) const { return face_measure_[f.i] * lateral_measure_[f.j]; }
   double area(LateralFace f) const { return side_measure_[f.i] * side_lateral_[f.j]; }
   double volume(Cell c) const { return cell_measure_[c.i] * lateral_measure_[c.j]; }
-  double inverse_area(RadialFace f) const { return inv_face_measure_[f.i] * inv_lateral_measure_[f.j]; }
+  double inverse_area(RadialFace f) const {
+    return inv_face_measure_[f.i] * inv_lateral_measure_[f.j];
+  }
   /// 0 on the axis of the axisymmetric shell, where no flow crosses a face without area.
-  double inverse_area(LateralFace f) const { return inv_side_measure_[f.i] * inv_side_lateral_[f.j]; }
+  double inverse_area(LateralFace f) const {
+    return inv_side_measure_[f.i] * inv_side_lateral_[f.j];
+  }
   double inverse_volume(Cell c) const { return inv_cell_measure_[c.i] * inv_lateral_measure_[c.j]; }
-  /// Share of the cell's volume in its corner: above (outer) or below its middle, right or left of it.
+  /// Share of the cell's volume in its corner: above (outer) or below its middle, right or left of
+  /// it.
   double quarter_volume(Cell c, bool upper, bool right) const {
-    return (upper ? upper_measure_ : lower_measure_)[c.i] * (right ? right_measure_ : left_measure_)[c.j];
+    return (upper ? upper_measure_ : lower_measure_)[c.i] *
+           (right ? right_measure_ : left_measure_)[c.j];
   }
   /// Volume of the staggered cell around a face, cut off at walls and reflecting sides.
   double dual_volume(RadialFace) const;
@@ -114,8 +124,8 @@ class Geometry {
   double radial_distance(int i) const { return radial_distance_[i]; }
   /// The same across a lateral face, in the lateral coordinate.
   double lateral_distance(int j) const { return lateral_distance_[j]; }
-  /// Length per unit of the lateral coordinate: 1 in the box, else the radius. In cells it is volume over
-  /// side area, so that rigid rotation is free of strain to round-off.
+  /// Length per unit of the lateral coordinate: 1 in the box, else the radius. In cells it is
+  /// volume over side area, so that rigid rotation is free of strain to round-off.
   double stretch(int cell_row) const { return stretch_[cell_row]; }
   double face_stretch(int face_row) const { return box() ? 1.0 : face_radius_[face_row]; }
   /// d(ln stretch)/dr in a cell: 0 in the box, else 1/stretch.
@@ -135,15 +145,15 @@ class Geometry {
   Shell shell_;
   Grid grid_;
   std::vector<double> face_radius_, cell_radius_, width_, inv_width_, radial_distance_;
-  std::vector<double> face_measure_, inv_face_measure_;              // r^p at faces
-  std::vector<double> cell_measure_, inv_cell_measure_;              // integral of r^p over the cell
-  std::vector<double> upper_measure_, lower_measure_;                // its parts above and below the middle
-  std::vector<double> side_measure_, inv_side_measure_;              // integral of r^(p-1), box: of 1
+  std::vector<double> face_measure_, inv_face_measure_;  // r^p at faces
+  std::vector<double> cell_measure_, inv_cell_measure_;  // integral of r^p over the cell
+  std::vector<double> upper_measure_, lower_measure_;    // its parts above and below the middle
+  std::vector<double> side_measure_, inv_side_measure_;  // integral of r^(p-1), box: of 1
   std::vector<double> stretch_, curvature_;
   PaddedList face_lateral_, cell_lateral_, lateral_width_, inv_lateral_width_, lateral_distance_;
-  PaddedList lateral_measure_, inv_lateral_measure_;                 // integral of sin(theta), or the width
-  PaddedList left_measure_, right_measure_;                          // its parts left and right of the middle
-  PaddedList side_lateral_, inv_side_lateral_;                       // sin(theta) at faces, or 1
+  PaddedList lateral_measure_, inv_lateral_measure_;  // integral of sin(theta), or the width
+  PaddedList left_measure_, right_measure_;           // its parts left and right of the middle
+  PaddedList side_lateral_, inv_side_lateral_;        // sin(theta) at faces, or 1
   double total_volume_ = 0, total_lateral_measure_ = 0;
 };
 

@@ -2,7 +2,8 @@
 
 /// Where a number lives on the staggered mesh, as a type: a wrong place does not compile.
 ///
-///     corner(i+1,j) --- radial face(i+1,j) --- corner(i+1,j+1)        i counts outwards (up in the box),
+///     corner(i+1,j) --- radial face(i+1,j) --- corner(i+1,j+1)        i counts outwards (up in the
+///     box),
 ///          |                                        |                 j counts along the lateral
 ///   lateral face(i,j)        cell(i,j)       lateral face(i,j+1)      coordinate
 ///          |                                        |

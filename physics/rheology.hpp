@@ -6,8 +6,9 @@
 #include <optional>
 #include <vector>
 
-/// Viscosity laws, dimensionless: a law is a product of the factors that are present, cut off below and above.
-/// Temperature T in units of the temperature drop above the surface temperature, depth in shell thicknesses.
+/// Viscosity laws, dimensionless: a law is a product of the factors that are present, cut off below
+/// and above. Temperature T in units of the temperature drop above the surface temperature, depth
+/// in shell thicknesses.
 namespace lidwright {
 
 /// Where and in what state a law is asked.
@@ -32,22 +33,22 @@ struct ExponentialViscosity {
 /// In SI terms E = activation energy/(R DeltaT), V = rho g d activation volume/(R DeltaT),
 /// T0 = surface temperature/DeltaT; physics/scales.hpp converts.
 struct ArrheniusViscosity {
-  double energy = 0;            ///< E >= 0
-  double volume = 0;            ///< V >= 0
-  double offset = 1;            ///< T0 > 0
-  double unity_at = 1;          ///< T_1, temperature at which eta = 1
-  double unity_at_depth = 0;    ///< depth_1
+  double energy = 0;          ///< E >= 0
+  double volume = 0;          ///< V >= 0
+  double offset = 1;          ///< T0 > 0
+  double unity_at = 1;        ///< T_1, temperature at which eta = 1
+  double unity_at_depth = 0;  ///< depth_1
   double operator()(const Point& p) const {
     return std::exp((energy + volume * p.depth) / (p.temperature + offset) -
                     (energy + volume * unity_at_depth) / (unity_at + offset));
   }
 };
 
-/// A layer reaches from its `below` down to the next layer's (the last one to the inner wall); above the
-/// first, the factor is 1. Sorted by `below`.
+/// A layer reaches from its `below` down to the next layer's (the last one to the inner wall);
+/// above the first, the factor is 1. Sorted by `below`.
 struct ViscosityLayer {
-  double below = 0;  ///< depth of the layer's top, in [0, 1)
-  double factor = 1; ///< > 0
+  double below = 0;   ///< depth of the layer's top, in [0, 1)
+  double factor = 1;  ///< > 0
 };
 
 struct LayeredViscosity {
@@ -75,7 +76,8 @@ struct ViscosityLaw {
     if (arrhenius) eta *= (*arrhenius)(p);
     return std::clamp(eta, lowest, highest);
   }
-  /// Whether eta stays as it is while the temperature changes (then one factorisation serves a whole run).
+  /// Whether eta stays as it is while the temperature changes (then one factorisation serves a
+  /// whole run).
   bool steady() const { return !exponential && !arrhenius; }
 };
 

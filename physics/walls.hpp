@@ -2,13 +2,15 @@
 
 #include <variant>
 
-/// Conditions at the inner (lower) and outer (upper) wall, each a value whose member states the sign.
+/// Conditions at the inner (lower) and outer (upper) wall, each a value whose member states the
+/// sign.
 namespace lidwright {
 
 struct FixedTemperature {
   double value = 0;  ///< in units of the temperature drop, above the surface temperature
 };
-/// Heat flux along +r: at the outer wall > 0 leaves the shell, at the inner wall > 0 enters it. 0 insulates.
+/// Heat flux along +r: at the outer wall > 0 leaves the shell, at the inner wall > 0 enters it. 0
+/// insulates.
 struct FixedHeatFlux {
   double outward = 0;  ///< in units of k DeltaT / d
 };

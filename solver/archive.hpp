@@ -5,8 +5,8 @@
 
 #include "mesh/field.hpp"
 
-/// Everything a march needs to go on bit for bit: named numbers and fields. io/checkpoint stores it without
-/// knowing what it means.
+/// Everything a march needs to go on bit for bit: named numbers and fields. io/checkpoint stores it
+/// without knowing what it means.
 namespace lidwright {
 
 struct Archive {

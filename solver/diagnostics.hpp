@@ -2,8 +2,8 @@
 
 #include <vector>
 
-/// What a run reports. Dimensionless units of solver/settings.hpp; heat flows are integrals over the wall
-/// (per unit depth in box and annulus) in units of k DeltaT d^(n-2), > 0 along +r.
+/// What a run reports. Dimensionless units of solver/settings.hpp; heat flows are integrals over
+/// the wall (per unit depth in box and annulus) in units of k DeltaT d^(n-2), > 0 along +r.
 namespace lidwright {
 
 /// One row of the history.
@@ -11,37 +11,38 @@ struct HistoryRow {
   long step = 0;
   double time = 0;
   double time_step = 0;
-  double heat_flow_inner = 0;       ///< through the inner wall, > 0 enters the shell
-  double heat_flow_outer = 0;       ///< through the outer wall, > 0 leaves it
-  double nusselt_inner = 0;         ///< heat flow over the conductive one at the same wall temperatures
+  double heat_flow_inner = 0;  ///< through the inner wall, > 0 enters the shell
+  double heat_flow_outer = 0;  ///< through the outer wall, > 0 leaves it
+  double nusselt_inner = 0;    ///< heat flow over the conductive one at the same wall temperatures
   double nusselt_outer = 0;
-  double temperature_mean = 0;      ///< over the volume
+  double temperature_mean = 0;  ///< over the volume
   double temperature_min = 0;
   double temperature_max = 0;
-  double temperature_inner = 0;     ///< mean over the wall
+  double temperature_inner = 0;  ///< mean over the wall
   double temperature_outer = 0;
-  double velocity_rms = 0;          ///< over the volume
-  double velocity_rms_inner = 0;    ///< along the wall, over its area
+  double velocity_rms = 0;        ///< over the volume
+  double velocity_rms_inner = 0;  ///< along the wall, over its area
   double velocity_rms_outer = 0;
-  double dissipation = 0;           ///< integral of tau : e, units eta kappa^2 d^(n-4)
-  double buoyancy_work = 0;         ///< integral of Ra g T u_r, same units
-  double work_mismatch = 0;         ///< (dissipation - work) / work
-  double heat_source = 0;           ///< integral of H
-  double heat_budget_residual = 0;  ///< of the last step: (change of content - flows - sources) / largest of them
+  double dissipation = 0;    ///< integral of tau : e, units eta kappa^2 d^(n-4)
+  double buoyancy_work = 0;  ///< integral of Ra g T u_r, same units
+  double work_mismatch = 0;  ///< (dissipation - work) / work
+  double heat_source = 0;    ///< integral of H
+  double heat_budget_residual =
+      0;  ///< of the last step: (change of content - flows - sources) / largest of them
   double temperature_change_rate = 0;  ///< volume rms of dT/dt over the last step
-  long applications = 0;            ///< of the factor, since the start
-  long factorisations = 0;          ///< since the start
-  double wall_time = 0;             ///< s, since the start, over all sessions
+  long applications = 0;               ///< of the factor, since the start
+  long factorisations = 0;             ///< since the start
+  double wall_time = 0;                ///< s, since the start, over all sessions
 };
 
 /// Means over spherical (cylindrical, horizontal) surfaces; cells, from the inner wall outwards.
 struct RadialProfiles {
-  std::vector<double> radius;              ///< height in the box
+  std::vector<double> radius;  ///< height in the box
   std::vector<double> temperature;
   std::vector<double> velocity_radial_rms;
   std::vector<double> velocity_lateral_rms;
-  std::vector<double> viscosity;           ///< geometric mean (of the volume's logarithm)
-  std::vector<double> heat_conducted;      ///< heat flow at cell middles, mean of the two faces
+  std::vector<double> viscosity;       ///< geometric mean (of the volume's logarithm)
+  std::vector<double> heat_conducted;  ///< heat flow at cell middles, mean of the two faces
   std::vector<double> heat_advected;
 };
 

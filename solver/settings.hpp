@@ -10,8 +10,9 @@
 #include "physics/rheology.hpp"
 #include "physics/walls.hpp"
 
-/// What the solver is told, dimensionless: one plain struct a module; default, unit and range beside each member.
-/// Units: length d (shell thickness), time d^2/kappa, temperature DeltaT above the surface temperature.
+/// What the solver is told, dimensionless: one plain struct a module; default, unit and range
+/// beside each member. Units: length d (shell thickness), time d^2/kappa, temperature DeltaT above
+/// the surface temperature.
 namespace lidwright {
 
 /// The physical problem.
@@ -19,50 +20,54 @@ struct Model {
   Shell shell;
   Grid grid;
   Walls walls;
-  double rayleigh = 1e4;  ///< rho alpha g DeltaT d^3/(kappa eta), eta where the viscosity law gives 1; >= 0
+  double rayleigh =
+      1e4;  ///< rho alpha g DeltaT d^3/(kappa eta), eta where the viscosity law gives 1; >= 0
   ViscosityLaw viscosity;
   HeatSources heat;
 };
 
 /// T = base + modes + noise, clipped nowhere.
 struct TemperatureMode {
-  double lateral = 1;     ///< number of half waves between reflecting sides, of whole waves when periodic; >= 0
-  double radial = 1;      ///< number of half waves between the walls, >= 1
+  double lateral =
+      1;  ///< number of half waves between reflecting sides, of whole waves when periodic; >= 0
+  double radial = 1;  ///< number of half waves between the walls, >= 1
   double amplitude = 0.01;
 };
 enum class InitialBase { Conductive, BoundaryLayers };
 struct InitialSettings {
   InitialBase base = InitialBase::Conductive;
-  double interior = 0.5;          ///< boundary layers: temperature between them
-  double layer_thickness = 0.1;   ///< boundary layers: scale of the error function, in (0, 0.5]
+  double interior = 0.5;         ///< boundary layers: temperature between them
+  double layer_thickness = 0.1;  ///< boundary layers: scale of the error function, in (0, 0.5]
   std::vector<TemperatureMode> modes;  ///< amplitude sin(radial pi (r - r_i)) cos(lateral ...)
-  double noise = 0;               ///< amplitude of white noise in each cell, uniform in [-noise, noise]
-  std::uint64_t seed = 1;         ///< same field on any number of ranks
-  std::string from;               ///< a checkpoint or run folder whose temperature replaces the base; empty: none
+  double noise = 0;        ///< amplitude of white noise in each cell, uniform in [-noise, noise]
+  std::uint64_t seed = 1;  ///< same field on any number of ranks
+  std::string
+      from;  ///< a checkpoint or run folder whose temperature replaces the base; empty: none
 };
 
 struct FlowSettings {
-  double tolerance = 1e-6;      ///< relative velocity error in the dissipation norm, in (0, 0.1]
-  int most_iterations = 200;    ///< of CG with a fresh factor, >= 1
-  int memory = 4;               ///< former flows from which a solve starts, 1 to 8
-  double refactor_cost = 0;     ///< cost of a factorisation in applications; 0: estimated from the factor
+  double tolerance = 1e-6;    ///< relative velocity error in the dissipation norm, in (0, 0.1]
+  int most_iterations = 200;  ///< of CG with a fresh factor, >= 1
+  int memory = 4;             ///< former flows from which a solve starts, 1 to 8
+  double refactor_cost =
+      0;  ///< cost of a factorisation in applications; 0: estimated from the factor
 };
 
 enum class HeatFlux { Central, Limited };
 struct HeatSettings {
   HeatFlux flux = HeatFlux::Limited;  ///< advective flux
-  double courant = 0.5;               ///< largest share of a cell's heat carried out in a step, in (0, 1]
-  double accuracy = 1e-4;             ///< local error of a step, rms temperature, > 0
-  double first_step = 1e-6;           ///< > 0
-  double largest_step = 0.01;         ///< > 0
-  double growth = 1.3;                ///< largest ratio of a step to the one before, in (1, 2]
+  double courant = 0.5;        ///< largest share of a cell's heat carried out in a step, in (0, 1]
+  double accuracy = 1e-4;      ///< local error of a step, rms temperature, > 0
+  double first_step = 1e-6;    ///< > 0
+  double largest_step = 0.01;  ///< > 0
+  double growth = 1.3;         ///< largest ratio of a step to the one before, in (1, 2]
 };
 
 struct MarchSettings {
-  double end_time = 0.1;      ///< > 0
-  long most_steps = 0;        ///< 0: no limit
-  double wall_clock = 0;      ///< s; 0: no limit
-  double steady = 0;          ///< rms of dT/dt below which the run is steady; 0: never
+  double end_time = 0.1;  ///< > 0
+  long most_steps = 0;    ///< 0: no limit
+  double wall_clock = 0;  ///< s; 0: no limit
+  double steady = 0;      ///< rms of dT/dt below which the run is steady; 0: never
 };
 
 }  // namespace lidwright

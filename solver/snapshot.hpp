@@ -13,7 +13,8 @@ struct WallTrace {
   std::vector<double> lateral;        ///< lateral coordinate of the column's middle
   std::vector<double> heat_flux;      ///< along +r, k DeltaT / d
   std::vector<double> velocity;       ///< along the wall, kappa / d
-  std::vector<double> normal_stress;  ///< sigma_rr less its mean, > 0 is tension, eta kappa / d^2; empty: not asked for
+  std::vector<double> normal_stress;  ///< sigma_rr less its mean, > 0 is tension, eta kappa / d^2;
+                                      ///< empty: not asked for
 };
 
 struct Snapshot {
@@ -21,13 +22,13 @@ struct Snapshot {
   double time = 0;
   CellField temperature;
   CellField viscosity;
-  CellField strain_rate;       ///< second invariant sqrt(e : e / 2)
-  CellField velocity_radial;   ///< at cell middles
+  CellField strain_rate;      ///< second invariant sqrt(e : e / 2)
+  CellField velocity_radial;  ///< at cell middles
   CellField velocity_lateral;
-  CellField pressure;          ///< volume mean 0; empty: not asked for
-  CornerField stream_function; ///< mass flux from the inner wall's zero, through-flow included
+  CellField pressure;           ///< volume mean 0; empty: not asked for
+  CornerField stream_function;  ///< mass flux from the inner wall's zero, through-flow included
   WallTrace inner, outer;
-  RadialProfiles profiles;     ///< the same on all ranks
+  RadialProfiles profiles;  ///< the same on all ranks
 };
 
 }  // namespace lidwright

@@ -1,0 +1,147 @@
+#pragma once
+
+#include "mesh/geometry.hpp"
+
+/// The rows of the strain-rate operator, pure functions of one index that read like their formulas,
+/// and their transposes. Velocities follow from the stream function psi at the corners:
+///     u = [psi(i, j+1) - psi(i, j)] / area of the radial face       > 0 outwards
+///     v = [psi(i, j) - psi(i+1, j)] / area of the lateral face      > 0 along the lateral
+///     coordinate
+/// so that the net outflow of every cell is zero to round-off.
+namespace lidwright {
+
+template <class Psi>
+double velocity(const Geometry& g, const Psi& psi, RadialFace f) {
+  return (psi[right(f)] - psi[left(f)]) * g.inverse_area(f);
+}
+template <class Psi>
+double velocity(const Geometry& g, const Psi& psi, LateralFace f) {
+  return (psi[inner(f)] - psi[outer(f)]) * g.inverse_area(f);
+}
+
+/// Volume (mass) that passes a face in unit time.
+template <class Psi>
+double flow_through(const Psi& psi, RadialFace f) {
+  return psi[right(f)] - psi[left(f)];
+}
+template <class Psi>
+double flow_through(const Psi& psi, LateralFace f) {
+  return psi[inner(f)] - psi[outer(f)];
+}
+
+/// Numbers on the four faces of a cell: velocities, or the forces conjugate to them.
+struct OnFaces {
+  double inner, outer, left, right;
+};
+
+template <class Psi>
+OnFaces face_velocities(const Geometry& g, const Psi& psi, Cell c) {
+  return {velocity(g, psi, inner(c)), velocity(g, psi, outer(c)), velocity(g, psi, left(c)),
+          velocity(g, psi, right(c))};
+}
+
+/// Normal strain rates (or stresses) of a cell: radial, lateral, and the hoop rate out of the
+/// plane.
+struct Normal {
+  double rr, tt, pp;
+};
+
+/// e_rr = du/dr,  e_tt = (1/h) dv/dtheta + u/h,  e_pp = div u - e_rr - e_tt (h: stretch).
+/// With h = volume / side area, e_pp is zero to round-off in box and annulus for any velocity.
+inline Normal strain(const Geometry& g, const OnFaces& w, Cell c) {
+  const double rr = (w.outer - w.inner) * g.inv_width(c.i);
+  const double tt = (w.right - w.left) * g.inv_lateral_width(c.j) / g.stretch(c.i) +
+                    g.curvature(c.i) * (w.inner + w.outer) / 2;
+  const double divergence = (g.area(outer(c)) * w.outer - g.area(inner(c)) * w.inner +
+                             g.area(right(c)) * w.right - g.area(left(c)) * w.left) *
+                            g.inverse_volume(c);
+  return {rr, tt, divergence - rr - tt};
+}
+
+/// The same for the divergence-free velocities of a stream function, where div u vanishes exactly.
+inline Normal strain_without_divergence(const Geometry& g, const OnFaces& w, Cell c) {
+  const double rr = (w.outer - w.inner) * g.inv_width(c.i);
+  const double tt = (w.right - w.left) * g.inv_lateral_width(c.j) / g.stretch(c.i) +
+                    g.curvature(c.i) * (w.inner + w.outer) / 2;
+  return {rr, tt, -rr - tt};
+}
+
+/// Transpose of `strain`: forces on the faces from stresses times volume.
+inline OnFaces forces(const Geometry& g, const Normal& s, Cell c) {
+  const double rr = (s.rr - s.pp) * g.inv_width(c.i);
+  const double tt = (s.tt - s.pp) * g.inv_lateral_width(c.j) / g.stretch(c.i);
+  const double hoop = g.curvature(c.i) * (s.tt - s.pp) / 2;
+  const double spread = s.pp * g.inverse_volume(c);
+  return {-rr + hoop - spread * g.area(inner(c)), rr + hoop + spread * g.area(outer(c)),
+          -tt - spread * g.area(left(c)), tt + spread * g.area(right(c))};
+}
+
+/// Transpose of `strain_without_divergence`.
+inline OnFaces forces_without_divergence(const Geometry& g, const Normal& s, Cell c) {
+  const double rr = (s.rr - s.pp) * g.inv_width(c.i);
+  const double tt = (s.tt - s.pp) * g.inv_lateral_width(c.j) / g.stretch(c.i);
+  const double hoop = g.curvature(c.i) * (s.tt - s.pp) / 2;
+  return {-rr + hoop, rr + hoop, -tt, tt};
+}
+
+/// Shear strain rate at a corner, e_rt = (1/2) [h d(v/h)/dr + (1/h) du/dtheta], as weights on two
+/// radial and two lateral faces. Inside they are the four faces that meet in the corner. At a wall
+/// u = 0 on both sides; where the wall grips, v/h is a parabola through 0 at the wall and the two
+/// nearest lateral faces; where it slips freely all weights are 0, as they are on reflecting sides.
+struct ShearRow {
+  RadialFace before, behind;
+  LateralFace near, far;
+  double before_weight, behind_weight, near_weight, far_weight;
+};
+
+inline ShearRow shear_row_inside(const Geometry& g, Corner k) {
+  const double lateral = 0.5 / (g.face_stretch(k.i) * g.lateral_distance(k.j));
+  const double radial = 0.5 * g.face_stretch(k.i) / g.radial_distance(k.i);
+  return {{k.i, k.j - 1},
+          {k.i, k.j},
+          {k.i - 1, k.j},
+          {k.i, k.j},
+          -lateral,
+          lateral,
+          -radial / g.stretch(k.i - 1),
+          radial / g.stretch(k.i)};
+}
+
+inline ShearRow shear_row_gripping(const Geometry& g, Corner k) {
+  const bool at_inner = k.i == 0;
+  const int near = at_inner ? 0 : k.i - 1, far = at_inner ? 1 : k.i - 2;
+  const double wall = g.face_radius(k.i);
+  const double near_at = g.cell_radius(near) - wall, far_at = g.cell_radius(far) - wall;
+  const double scale = 0.5 * g.face_stretch(k.i) / (near_at * far_at * (far_at - near_at));
+  return {{k.i, k.j - 1},
+          {k.i, k.j},
+          {near, k.j},
+          {far, k.j},
+          0,
+          0,
+          scale * far_at * far_at / g.stretch(near),
+          -scale * near_at * near_at / g.stretch(far)};
+}
+
+template <class Psi>
+double shear(const Geometry& g, const Psi& psi, const ShearRow& row) {
+  return row.before_weight * velocity(g, psi, row.before) +
+         row.behind_weight * velocity(g, psi, row.behind) +
+         row.near_weight * velocity(g, psi, row.near) + row.far_weight * velocity(g, psi, row.far);
+}
+
+/// Adds the forces on four faces, as forces on the stream function, to the corners.
+template <class Force>
+void add_to_corners(const Geometry& g, Force& force, RadialFace f, double face_force) {
+  const double push = face_force * g.inverse_area(f);
+  force[right(f)] += push;
+  force[left(f)] -= push;
+}
+template <class Force>
+void add_to_corners(const Geometry& g, Force& force, LateralFace f, double face_force) {
+  const double push = face_force * g.inverse_area(f);
+  force[inner(f)] += push;
+  force[outer(f)] -= push;
+}
+
+}  // namespace lidwright

@@ -1,0 +1,147 @@
+#include "solver/factor.hpp"
+
+#include <cholmod.h>
+
+#include <algorithm>
+#include <stdexcept>
+
+#include "mesh/gather.hpp"
+#include "solver/stencil_matrix.hpp"
+
+namespace lidwright {
+namespace {
+
+/// A dense kernel's speed over the speed of streaming the factor, in operations per number
+/// streamed: turns operation counts into applications (measured, docs/performance.md).
+constexpr double operations_per_streamed_number = 12;
+
+}  // namespace
+
+struct Factor::Impl {
+  explicit Impl(const Power& power)
+      : mesh(std::make_shared<Decomposition>(power.decomposition().geometry_pointer(),
+                                             MPI_COMM_SELF)),
+        serial(mesh, walls_of(power)),
+        stencil(serial) {
+    cholmod_l_start(&common);
+    common.supernodal = CHOLMOD_SUPERNODAL;
+    common.nmethods = 1;
+    common.method[0].ordering = CHOLMOD_AMD;
+    common.print = 0;
+    view_matrix();
+    factor = cholmod_l_analyze(&matrix, &common);
+    if (!factor)
+      throw std::runtime_error("the flow's factorisation cannot be planned: not enough memory");
+  }
+  ~Impl() {
+    cholmod_l_free_dense(&solution, &common);
+    cholmod_l_free_dense(&work_y, &common);
+    cholmod_l_free_dense(&work_e, &common);
+    cholmod_l_free_factor(&factor, &common);
+    cholmod_l_finish(&common);
+  }
+  Impl(const Impl&) = delete;
+  Impl& operator=(const Impl&) = delete;
+
+  static Walls walls_of(const Power& power) {
+    Walls walls;
+    walls.inner.slip = power.inner_slip();
+    walls.outer.slip = power.outer_slip();
+    return walls;
+  }
+
+  void view_matrix() {
+    SparseLower& a = const_cast<SparseLower&>(stencil.matrix());  // CHOLMOD's views are not const
+    matrix.nrow = matrix.ncol = static_cast<std::size_t>(a.size);
+    matrix.nzmax = a.value.size();
+    matrix.p = a.column_start.data();
+    matrix.i = a.row.data();
+    matrix.x = a.value.data();
+    matrix.stype = -1;
+    matrix.itype = CHOLMOD_LONG;
+    matrix.xtype = CHOLMOD_REAL;
+    matrix.dtype = CHOLMOD_DOUBLE;
+    matrix.sorted = matrix.packed = 1;
+  }
+
+  bool factorise(const std::vector<double>& viscosity) {
+    CellField eta(mesh);
+    scatter_from_first(viscosity, eta);
+    serial.set_viscosity(eta);
+    stencil.assemble(serial);
+    const bool done = cholmod_l_factorize(&matrix, factor, &common) && common.status == CHOLMOD_OK;
+    return done && factor->minor == factor->n;
+  }
+
+  void solve(const std::vector<double>& r, std::vector<double>& z) {
+    const std::vector<long>& unknown = stencil.unknown_of_place();
+    right.resize(static_cast<std::size_t>(stencil.unknowns()));
+    for (std::size_t place = 0; place < unknown.size(); ++place)
+      if (unknown[place] >= 0) right[static_cast<std::size_t>(unknown[place])] = r[place];
+    cholmod_dense b{};
+    b.nrow = b.nzmax = b.d = right.size();
+    b.ncol = 1;
+    b.x = right.data();
+    b.xtype = CHOLMOD_REAL;
+    b.dtype = CHOLMOD_DOUBLE;
+    cholmod_l_solve2(CHOLMOD_A, factor, &b, nullptr, &solution, nullptr, &work_y, &work_e, &common);
+    const double* x = static_cast<const double*>(solution->x);
+    z.assign(unknown.size(), 0.0);
+    for (std::size_t place = 0; place < unknown.size(); ++place)
+      if (unknown[place] >= 0) z[place] = x[unknown[place]];
+  }
+
+  std::shared_ptr<const Decomposition> mesh;
+  Power serial;
+  StencilMatrix stencil;
+  cholmod_common common{};
+  cholmod_sparse matrix{};
+  cholmod_factor* factor = nullptr;
+  cholmod_dense *solution = nullptr, *work_y = nullptr, *work_e = nullptr;
+  std::vector<double> right, whole_z;
+};
+
+Factor::Factor(const Power& shape) : decomposition_(shape.decomposition_pointer()) {
+  double facts[2] = {0, 0};
+  if (decomposition_->rank() == 0) {
+    impl_ = std::make_unique<Impl>(shape);
+    facts[0] = impl_->common.lnz;
+    facts[1] = impl_->common.fl;
+  }
+  MPI_Bcast(facts, 2, MPI_DOUBLE, 0, decomposition_->comm());
+  nonzeros_ = facts[0];
+  cost_ = std::max(1.0, facts[1] / (2 * facts[0] * operations_per_streamed_number));
+}
+
+Factor::~Factor() = default;
+
+void Factor::factorise(const Power& power) {
+  const std::vector<double> viscosity = gather_to_first(power.viscosity());
+  int done = 1;
+  if (impl_) done = impl_->factorise(viscosity) ? 1 : 0;
+  MPI_Bcast(&done, 1, MPI_INT, 0, decomposition_->comm());
+  if (!done)
+    throw std::runtime_error(
+        "the flow's matrix is not positive definite to working precision: the viscosity varies too "
+        "much for this "
+        "mesh. Raise viscosity.lowest or lower viscosity.highest, or refine the mesh");
+  viscosity_ = power.viscosity();
+}
+
+void Factor::apply(Vec r, Vec z) {
+  const double* from = nullptr;
+  double* to = nullptr;
+  PetscInt size = 0;
+  check(VecGetLocalSize(r, &size));
+  check(VecGetArrayRead(r, &from));
+  const std::vector<double> whole =
+      gather_to_first(*decomposition_, from, static_cast<std::size_t>(size));
+  check(VecRestoreArrayRead(r, &from));
+  std::vector<double> solved;
+  if (impl_) impl_->solve(whole, solved);
+  check(VecGetArrayWrite(z, &to));
+  scatter_from_first(*decomposition_, solved, to, static_cast<std::size_t>(size));
+  check(VecRestoreArrayWrite(z, &to));
+}
+
+}  // namespace lidwright

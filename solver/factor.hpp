@@ -1,0 +1,46 @@
+#pragma once
+
+#include <memory>
+#include <vector>
+
+#include "solver/power.hpp"
+
+/// Sparse Cholesky factor of K = G^T W G at one viscosity, the lagged preconditioner of the flow.
+///
+/// It lives on rank 0 whatever the number of ranks: residuals are gathered, solved and scattered.
+/// One CHOLMOD solve is several times faster than a distributed one at the sizes that fit a node,
+/// and the preconditioner, so the number of iterations, is the same on any number of ranks
+/// (docs/decisions/factor-on-one-rank.md).
+namespace lidwright {
+
+class Factor {
+ public:
+  /// Collective. Analyses the pattern once (on rank 0).
+  explicit Factor(const Power& shape);
+  ~Factor();
+  Factor(const Factor&) = delete;
+  Factor& operator=(const Factor&) = delete;
+
+  /// Collective. Factorises K for the viscosity of `power`. Throws std::runtime_error on all ranks
+  /// when K is not positive definite to working precision.
+  void factorise(const Power& power);
+  /// z = M^-1 r on global corner vectors. Collective.
+  void apply(Vec r, Vec z);
+
+  /// Viscosity at the last factorisation.
+  const CellField& viscosity() const { return viscosity_; }
+  bool ready() const { return !viscosity_.empty(); }
+  /// Estimated cost of a factorisation in applications, from operation counts, so that it is the
+  /// same in every run (a measured one would make a restart differ). Same on all ranks.
+  double cost_in_applications() const { return cost_; }
+  double nonzeros() const { return nonzeros_; }
+
+ private:
+  struct Impl;
+  std::shared_ptr<const Decomposition> decomposition_;
+  std::unique_ptr<Impl> impl_;  ///< rank 0 only
+  CellField viscosity_;
+  double cost_ = 1, nonzeros_ = 0;
+};
+
+}  // namespace lidwright

@@ -1,0 +1,344 @@
+#include "solver/heat.hpp"
+
+#include <algorithm>
+#include <cmath>
+#include <stdexcept>
+
+#include "mesh/operators.hpp"
+
+namespace lidwright {
+namespace {
+
+const ThermalWall& thermal(const Walls& walls, bool at_inner) {
+  return at_inner ? walls.inner.thermal : walls.outer.thermal;
+}
+
+/// Walls with the same kind of condition and all values zero: the linear part of conduction.
+Walls homogeneous(Walls walls) {
+  for (Wall* wall : {&walls.inner, &walls.outer}) {
+    if (std::holds_alternative<FixedTemperature>(wall->thermal))
+      wall->thermal = FixedTemperature{0};
+    else
+      wall->thermal = FixedHeatFlux{0};
+  }
+  return walls;
+}
+
+/// Limiter of Koren 1993 (in Numerical Methods for Advection-Diffusion Problems, Vieweg, 117):
+/// third-order upwind-biased where the field is smooth. r: downwind over upwind difference.
+double koren(double r) { return std::max(0.0, std::min({2 * r, (1 + 2 * r) / 3, 2.0})); }
+
+}  // namespace
+
+HeatOperator::HeatOperator(std::shared_ptr<const Decomposition> d, const Walls& walls,
+                           const HeatSources& sources, HeatFlux flux)
+    : decomposition_(std::move(d)), walls_(walls), flux_(flux) {
+  const Geometry& g = geometry();
+  for (int i = 0; i < g.radial_cells(); ++i) {
+    source_.push_back(sources(g.depth(i)));
+    for (int j = 0; j < g.lateral_cells(); ++j) total_source_ += g.volume({i, j}) * source_.back();
+  }
+}
+
+double HeatOperator::wall_flux(const CellField& temperature, RadialFace wall) const {
+  const bool at_inner = wall.i == 0;
+  const ThermalWall& condition = thermal(walls_, at_inner);
+  if (const auto* flux = std::get_if<FixedHeatFlux>(&condition))
+    return geometry().area(wall) * flux->outward;
+  const double at_wall = std::get<FixedTemperature>(condition).value;
+  const double inside_t = temperature[at_inner ? outside(wall) : inside(wall)];
+  const double drop = at_inner ? at_wall - inside_t : inside_t - at_wall;
+  return geometry().area(wall) * drop / geometry().radial_distance(wall.i);
+}
+
+double HeatOperator::wall_temperature(const CellField& temperature, RadialFace wall) const {
+  const bool at_inner = wall.i == 0;
+  const ThermalWall& condition = thermal(walls_, at_inner);
+  if (const auto* fixed = std::get_if<FixedTemperature>(&condition)) return fixed->value;
+  const double fall =
+      std::get<FixedHeatFlux>(condition).outward * geometry().radial_distance(wall.i);
+  return at_inner ? temperature[outside(wall)] + fall : temperature[inside(wall)] - fall;
+}
+
+double HeatOperator::conducted(const CellField& t, RadialFace f) const {
+  if (geometry().on_wall(f.i)) return wall_flux(t, f);
+  return geometry().area(f) * (t[inside(f)] - t[outside(f)]) / geometry().radial_distance(f.i);
+}
+
+double HeatOperator::conducted(const CellField& t, LateralFace f) const {
+  if (geometry().on_side(f.j)) return 0;
+  return geometry().area(f) * (t[left(f)] - t[right(f)]) /
+         (geometry().stretch(f.i) * geometry().lateral_distance(f.j));
+}
+
+/// Temperature of a row of cells that may lie one beyond a wall: continued on a straight line
+/// through the wall.
+double HeatOperator::radial_neighbour(const CellField& t, int i, int j) const {
+  if (i < 0) return 2 * wall_temperature(t, {0, j}) - t[{0, j}];
+  const int last = geometry().radial_cells() - 1;
+  if (i > last) return 2 * wall_temperature(t, {last + 1, j}) - t[{last, j}];
+  return t[{i, j}];
+}
+
+/// The same for columns, mirrored at reflecting sides.
+double HeatOperator::lateral_neighbour(const CellField& t, int i, int j) const {
+  if (!geometry().periodic())
+    j = j < 0 ? -1 - j
+              : (j >= geometry().lateral_cells() ? 2 * geometry().lateral_cells() - 1 - j : j);
+  return t[{i, j}];
+}
+
+double HeatOperator::face_temperature(double far_upwind, double upwind, double downwind) const {
+  const double behind = upwind - far_upwind, ahead = downwind - upwind;
+  if (behind * ahead <= 0) return upwind;
+  return upwind + 0.5 * koren(ahead / behind) * behind;
+}
+
+double HeatOperator::advected(const CellField& t, const CornerField& psi, RadialFace f) const {
+  if (geometry().on_wall(f.i)) return 0;
+  const double flow = flow_through(psi, f);
+  if (flux_ == HeatFlux::Central) return flow * (t[inside(f)] + t[outside(f)]) / 2;
+  return flow *
+         (flow > 0
+              ? face_temperature(radial_neighbour(t, f.i - 2, f.j), t[inside(f)], t[outside(f)])
+              : face_temperature(radial_neighbour(t, f.i + 1, f.j), t[outside(f)], t[inside(f)]));
+}
+
+double HeatOperator::advected(const CellField& t, const CornerField& psi, LateralFace f) const {
+  if (geometry().on_side(f.j)) return 0;
+  const double flow = flow_through(psi, f);
+  if (flux_ == HeatFlux::Central) return flow * (t[left(f)] + t[right(f)]) / 2;
+  return flow *
+         (flow > 0 ? face_temperature(lateral_neighbour(t, f.i, f.j - 2), t[left(f)], t[right(f)])
+                   : face_temperature(lateral_neighbour(t, f.i, f.j + 1), t[right(f)], t[left(f)]));
+}
+
+void HeatOperator::add_advection(const CellField& t, const CornerField& psi,
+                                 CellField& rate) const {
+  const int rows = rate.rows();
+  for (int j = rate.owned().begin; j < rate.owned().end; ++j) {
+    for (int i = 1; i < rows; ++i) {
+      const double heat = advected(t, psi, RadialFace{i, j});
+      rate[{i - 1, j}] -= heat;
+      rate[{i, j}] += heat;
+    }
+    for (int i = 0; i < rows; ++i)
+      rate[{i, j}] += advected(t, psi, LateralFace{i, j}) - advected(t, psi, LateralFace{i, j + 1});
+  }
+}
+
+WallHeat HeatOperator::add_conduction(const CellField& t, CellField& rate) const {
+  const int rows = rate.rows();
+  WallHeat through;
+  for (int j = rate.owned().begin; j < rate.owned().end; ++j) {
+    double below = conducted(t, RadialFace{0, j});
+    through.inner += below;
+    for (int i = 0; i < rows; ++i) {
+      const double above = conducted(t, RadialFace{i + 1, j});
+      rate[{i, j}] +=
+          below - above + conducted(t, LateralFace{i, j}) - conducted(t, LateralFace{i, j + 1});
+      below = above;
+    }
+    through.outer += below;
+  }
+  return through;
+}
+
+void HeatOperator::add_sources(CellField& rate) const {
+  for (int j = rate.owned().begin; j < rate.owned().end; ++j)
+    for (int i = 0; i < rate.rows(); ++i) rate[{i, j}] += geometry().volume({i, j}) * source(i);
+}
+
+double HeatOperator::outflow_rate(const CornerField& psi) const {
+  const Range columns = decomposition_->owned(At::Cell);
+  double most = 0;
+  const auto positive = [](double x) { return x > 0 ? x : 0; };
+  for (int j = columns.begin; j < columns.end; ++j)
+    for (int i = 0; i < geometry().radial_cells(); ++i) {
+      const Cell c{i, j};
+      const double out =
+          positive(flow_through(psi, outer(c))) + positive(-flow_through(psi, inner(c))) +
+          positive(flow_through(psi, right(c))) + positive(-flow_through(psi, left(c)));
+      most = std::max(most, out * geometry().inverse_volume(c));
+    }
+  return decomposition_->max(most);
+}
+
+ImplicitConduction::ImplicitConduction(const HeatOperator& heat)
+    : heat_(heat),
+      homogeneous_(heat.decomposition_pointer(), homogeneous(heat.walls()), HeatSources{},
+                   HeatFlux::Central),
+      direction_(heat.decomposition_pointer()) {}
+
+/// y = (V - tau * linear conduction) x at owned cells.
+void ImplicitConduction::apply(double tau, CellField& x, std::vector<double>& y) const {
+  x.exchange();
+  CellField rate(x.decomposition_pointer());
+  (void)homogeneous_.add_conduction(x, rate);
+  const Geometry& g = heat_.geometry();
+  std::size_t n = 0;
+  for (int j = x.owned().begin; j < x.owned().end; ++j)
+    for (int i = 0; i < x.rows(); ++i, ++n)
+      y[n] = g.volume({i, j}) * x[{i, j}] - tau * rate[{i, j}];
+}
+
+/// Cholesky factors of the tridiagonal radial lines of V - tau * conduction.
+void ImplicitConduction::set_lines(double tau) {
+  if (lines_for_ == tau) return;
+  lines_for_ = tau;
+  const Geometry& g = heat_.geometry();
+  const Range columns = heat_.decomposition().owned(At::Cell);
+  const int rows = g.radial_cells();
+  const auto radial = [&](RadialFace f, ThermalWall condition) {
+    if (g.on_wall(f.i) && std::holds_alternative<FixedHeatFlux>(condition)) return 0.0;
+    return tau * g.area(f) / g.radial_distance(f.i);
+  };
+  const auto lateral = [&](LateralFace f) {
+    return g.on_side(f.j) ? 0.0 : tau * g.area(f) / (g.stretch(f.i) * g.lateral_distance(f.j));
+  };
+  inverse_pivot_.clear();
+  above_.clear();
+  for (int j = columns.begin; j < columns.end; ++j)
+    for (int i = 0; i < rows; ++i) {
+      const double below = radial({i, j}, heat_.walls().inner.thermal);
+      const double above = radial({i + 1, j}, heat_.walls().outer.thermal);
+      double pivot = g.volume({i, j}) + below + above + lateral({i, j}) + lateral({i, j + 1});
+      if (i > 0) pivot -= below * below * inverse_pivot_.back();
+      inverse_pivot_.push_back(1 / pivot);
+      above_.push_back(i + 1 < rows ? above : 0);
+    }
+}
+
+void ImplicitConduction::solve_lines(const std::vector<double>& r, std::vector<double>& z) const {
+  const auto rows = static_cast<std::size_t>(heat_.geometry().radial_cells());
+  for (std::size_t line = 0; line < r.size(); line += rows) {
+    z[line] = r[line] * inverse_pivot_[line];
+    for (std::size_t n = line + 1; n < line + rows; ++n)
+      z[n] = (r[n] + above_[n - 1] * z[n - 1]) * inverse_pivot_[n];
+    for (std::size_t n = line + rows - 1; n-- > line;)
+      z[n] += above_[n] * inverse_pivot_[n] * z[n + 1];
+  }
+}
+
+void ImplicitConduction::solve(double tau, const CellField& right, CellField& temperature) {
+  constexpr double tolerance = 1e-13;
+  constexpr int most_iterations = 2000;
+  set_lines(tau);
+  const Decomposition& d = heat_.decomposition();
+  const std::size_t n = right.owned_size();
+  std::vector<double> r(n), z(n), ap(n);
+  // r = right + tau * (conduction of the start, walls included) - V * start.
+  temperature.exchange();
+  CellField rate(temperature.decomposition_pointer());
+  (void)heat_.add_conduction(temperature, rate);
+  std::size_t k = 0;
+  for (int j = right.owned().begin; j < right.owned().end; ++j)
+    for (int i = 0; i < right.rows(); ++i, ++k)
+      r[k] = right[{i, j}] + tau * rate[{i, j}] - d.geometry().volume({i, j}) * temperature[{i, j}];
+  const auto dot = [&](const double* a, const double* b) {
+    double s = 0;
+    for (std::size_t m = 0; m < n; ++m) s += a[m] * b[m];
+    return d.sum(s);
+  };
+  solve_lines(r, z);
+  // Natural norm against the size of the temperature itself, V T . T.
+  std::vector<double> volume_t(n);
+  k = 0;
+  for (int j = right.owned().begin; j < right.owned().end; ++j)
+    for (int i = 0; i < right.rows(); ++i, ++k)
+      volume_t[k] = d.geometry().volume({i, j}) * temperature[{i, j}];
+  const double floor = d.geometry().total_volume() * 1e-12;
+  const double stop =
+      tolerance * tolerance * std::max(floor, dot(volume_t.data(), temperature.owned_data()));
+  std::copy(z.begin(), z.end(), direction_.owned_data());
+  double rz = dot(r.data(), z.data());
+  for (int iteration = 0; rz > stop; ++iteration) {
+    if (iteration == most_iterations || !std::isfinite(rz))
+      throw std::runtime_error(
+          "implicit conduction did not converge: the time step is too long for this mesh; lower "
+          "march.largest_step");
+    apply(tau, direction_, ap);
+    const double alpha = rz / dot(direction_.owned_data(), ap.data());
+    double* t = temperature.owned_data();
+    for (std::size_t m = 0; m < n; ++m) {
+      t[m] += alpha * direction_.owned_data()[m];
+      r[m] -= alpha * ap[m];
+    }
+    solve_lines(r, z);
+    const double next = dot(r.data(), z.data());
+    for (std::size_t m = 0; m < n; ++m)
+      direction_.owned_data()[m] = z[m] + next / rz * direction_.owned_data()[m];
+    rz = next;
+  }
+  temperature.exchange();
+}
+
+HeatStepper::HeatStepper(std::shared_ptr<const Decomposition> d, const Walls& walls,
+                         const HeatSources& sources, HeatFlux flux)
+    : heat_(std::move(d), walls, sources, flux), implicit_(heat_) {}
+
+/// Rates of one stage: A by advection and sources, D by conduction, each times the cell's volume.
+struct HeatStepper::Stage {
+  CellField advection, conduction;
+  WallHeat through;  ///< on this rank
+};
+
+HeatStepper::Stage HeatStepper::stage(const CellField& temperature, const CornerField& psi) const {
+  Stage s{CellField(temperature.decomposition_pointer()),
+          CellField(temperature.decomposition_pointer()),
+          {}};
+  heat_.add_sources(s.advection);
+  heat_.add_advection(temperature, psi, s.advection);
+  s.through = heat_.add_conduction(temperature, s.conduction);
+  return s;
+}
+
+/// With g = 1 - 1/sqrt(2) and b = 1/(2 sqrt(2)):
+///     T2 = T + dt [2g A1 + g D1 + g D2]                         at t + 2g dt
+///     T3 = T + dt [A1/2 + A2/2 + b D1 + b D2 + g D3]            at t + dt
+///     T(t + dt) = T + dt [b (A1 + D1) + b (A2 + D2) + g (A3 + D3)]
+/// The last line is in flux form, so heat is conserved whatever the implicit solves leave.
+WallHeat HeatStepper::step(const CellField& temperature, const CornerField& psi_now,
+                           const CornerField& psi_then, double dt, CellField& next) {
+  const double g = 1 - 1 / std::sqrt(2.0), b = 1 / (2 * std::sqrt(2.0));
+  const Geometry& geometry = heat_.geometry();
+  const auto each = [&](auto&& body) {
+    for (int j = temperature.owned().begin; j < temperature.owned().end; ++j)
+      for (int i = 0; i < temperature.rows(); ++i) body(Cell{i, j});
+  };
+  CornerField psi_between = psi_now;
+  for (std::size_t k = 0; k < psi_between.values().size(); ++k)
+    psi_between.values()[k] += 2 * g * (psi_then.values()[k] - psi_now.values()[k]);
+  CellField right(temperature.decomposition_pointer()), middle = temperature;
+
+  const Stage one = stage(temperature, psi_now);
+  each([&](Cell c) {
+    right[c] = geometry.volume(c) * temperature[c] +
+               dt * (2 * g * one.advection[c] + g * one.conduction[c]);
+  });
+  implicit_.solve(g * dt, right, middle);
+  const Stage two = stage(middle, psi_between);
+  each([&](Cell c) {
+    right[c] =
+        geometry.volume(c) * temperature[c] + dt * ((one.advection[c] + two.advection[c]) / 2 +
+                                                    b * (one.conduction[c] + two.conduction[c]));
+  });
+  CellField last = middle;
+  implicit_.solve(g * dt, right, last);
+  const Stage three = stage(last, psi_then);
+  next = temperature;
+  each([&](Cell c) {
+    const double gain =
+        b * (one.advection[c] + one.conduction[c] + two.advection[c] + two.conduction[c]) +
+        g * (three.advection[c] + three.conduction[c]);
+    next[c] += dt * gain * geometry.inverse_volume(c);
+  });
+  next.exchange();
+  const auto mean = [&](double q1, double q2, double q3) {
+    return heat_.decomposition().sum(b * (q1 + q2) + g * q3);
+  };
+  return {mean(one.through.inner, two.through.inner, three.through.inner),
+          mean(one.through.outer, two.through.outer, three.through.outer)};
+}
+
+}  // namespace lidwright

@@ -1,0 +1,26 @@
+#pragma once
+
+#include "solver/heat.hpp"
+#include "solver/settings.hpp"
+
+/// The temperature a run starts from.
+namespace lidwright {
+
+/// A temperature field on a mesh of its own: cells by columns, radial index fastest. Empty: none.
+struct StoredTemperature {
+  std::vector<double> face_radius;   ///< thickness 1; box: heights
+  std::vector<double> face_lateral;  ///< one more than columns, also when periodic
+  std::vector<double> value;
+};
+
+/// Base, modes and noise of the settings; a stored temperature, interpolated when its mesh is
+/// another, replaces the base. With ghosts; the same field on any number of ranks. Throws
+/// std::invalid_argument when the stored field covers another region. Collective.
+CellField initial_temperature(const HeatOperator&, const InitialSettings&,
+                              const StoredTemperature&);
+
+/// The discrete conductive profile of the rows of cells: walls and sources of the operator, no
+/// flow. Where both walls give the heat flux it is determined up to a constant, and its mean is 0.
+std::vector<double> conductive_profile(const HeatOperator&);
+
+}  // namespace lidwright

@@ -1,0 +1,81 @@
+#pragma once
+
+#include <functional>
+#include <memory>
+#include <string>
+
+#include "solver/diagnostics.hpp"
+#include "solver/flow.hpp"
+#include "solver/heat.hpp"
+#include "solver/initial.hpp"
+#include "solver/settings.hpp"
+#include "solver/snapshot.hpp"
+
+/// Convection in time: temperature and flow step by step, with one flow solve a step.
+namespace lidwright {
+
+/// Numerics that failed, with place and remedy. `what()` is the whole message; thrown on all ranks.
+struct SolveError : std::runtime_error {
+  using std::runtime_error::runtime_error;
+};
+
+class March {
+ public:
+  /// Starts from the initial temperature and solves its flow. Collective; throws SolveError.
+  March(const Model&, const InitialSettings&, const StoredTemperature&, const FlowSettings&,
+        const HeatSettings&, MPI_Comm);
+  /// Goes on from an archive, bit for bit. Collective.
+  March(const Model&, const FlowSettings&, const HeatSettings&, const Archive&, MPI_Comm);
+
+  /// One step that does not pass `until` (and hits it exactly when near). The step's length obeys
+  /// the flow (settings.courant), the local error (settings.accuracy) and the settings' bounds.
+  /// Throws SolveError.
+  void step(double until);
+
+  double time() const { return time_; }
+  long steps() const { return steps_; }
+  double last_step() const { return last_step_; }
+  /// Volume rms of dT/dt over the last step; infinity before the first.
+  double temperature_change_rate() const { return change_rate_; }
+
+  /// The row of the history for the present state; wall_time is left 0. Collective.
+  HistoryRow row() const;
+  /// Collective.
+  RadialProfiles profiles() const;
+  Snapshot snapshot(bool with_stress) const;
+  Archive archive() const;
+
+  const CellField& temperature() const { return temperature_; }
+  const CornerField& stream_function() const { return psi_; }
+  const Power& power() const { return flow_.power(); }
+  const HeatOperator& heat() const { return stepper_.heat(); }
+  std::shared_ptr<const Decomposition> decomposition() const { return decomposition_; }
+  double factor_nonzeros() const { return flow_.factor_nonzeros(); }
+
+ private:
+  struct Former {
+    double time;
+    CellField temperature;
+  };
+  March(const Model&, const FlowSettings&, const HeatSettings&, MPI_Comm);
+  void solve_flow();
+  std::function<double(RadialFace)> buoyancy() const;
+  CornerField foreseen_flow(double dt) const;
+  double proposed_step(double until) const;
+  double local_error(const CellField& next, double dt) const;
+  void accept(CellField next, double dt, const WallHeat& through, double error);
+
+  Model model_;
+  HeatSettings heat_settings_;
+  std::shared_ptr<const Decomposition> decomposition_;
+  FlowSolver flow_;
+  HeatStepper stepper_;
+  CellField temperature_, viscosity_;
+  CornerField psi_, former_psi_;
+  std::vector<Former> former_;  ///< newest first, at most 2
+  double time_ = 0, last_step_ = 0, error_limited_step_;
+  long steps_ = 0;
+  double change_rate_, budget_residual_ = 0;
+};
+
+}  // namespace lidwright

@@ -1,0 +1,80 @@
+#pragma once
+
+#include <functional>
+
+#include "mesh/field.hpp"
+#include "mesh/operators.hpp"
+#include "physics/walls.hpp"
+
+/// The discrete power functional of a linear viscous shell,
+///     J(psi) = sum_cells V eta (e_rr^2 + e_tt^2 + e_pp^2) + sum_corners V eta_k 2 e_rt^2 -
+///     sum_faces V b u,
+/// whose minimum is the flow: K psi = f with K = G^T W G, symmetric positive definite. K is applied
+/// in factored form (forming it first loses digits like h^-4).
+///
+/// A corner's viscosity is the harmonic mean over the quarter cells that meet there, weighted by
+/// volume: shear stress is continuous across a jump of viscosity while shear rate is not, so the
+/// corner's power is the least that any split of the shear among the quarters can have
+/// (docs/decisions/corner-viscosity.md).
+namespace lidwright {
+
+class Power {
+ public:
+  Power(std::shared_ptr<const Decomposition>, const Walls&);
+
+  /// Viscosity at cells, ghosts up to date; > 0.
+  void set_viscosity(const CellField& eta);
+  const CellField& viscosity() const { return eta_; }
+  Slip inner_slip() const { return inner_slip_; }
+  Slip outer_slip() const { return outer_slip_; }
+
+  /// Net flow round a full circle is an unknown when a wall grips: psi is then one number on the
+  /// outer wall.
+  bool through_flow() const { return through_flow_; }
+  /// Is psi 0 by the boundary conditions (walls and reflecting sides)? The outer wall's common
+  /// value is not.
+  bool fixed(Corner) const;
+  bool common(Corner k) const { return through_flow_ && k.i == geometry().radial_cells(); }
+
+  /// force = G^T W G psi at owned corners; psi with ghosts; no boundary condition is applied.
+  void apply(const CornerField& psi, CornerField& force) const;
+  /// 0 at fixed corners, and the sum over the outer wall in the place (radial_cells, 0) for the
+  /// common value.
+  void to_unknowns(CornerField& force, Vec) const;
+  /// psi with ghosts, walls set.
+  void from_unknowns(Vec, CornerField& psi) const;
+
+  /// psi-force of the buoyancy b at radial faces: f(corner) = d (b left - b right), d the radial
+  /// distance.
+  void add_buoyancy(const std::function<double(RadialFace)>& b, CornerField& force) const;
+
+  /// Normal stress weights 2 V eta of a cell and shear weight 4 V eta_k of a corner: dissipation is
+  /// the sum of weight * (strain rate)^2 (for shear the factor counts e_rt and e_tr).
+  double cell_weight(Cell c) const { return cell_weight_[c]; }
+  double corner_weight(Corner k) const { return corner_weight_[k]; }
+  bool has_shear(Corner k) const;
+  ShearRow shear_row(Corner k) const;
+  /// Corners whose shear the held columns determine.
+  Range shear_columns() const;
+
+  const Geometry& geometry() const { return decomposition_->geometry(); }
+  const Decomposition& decomposition() const { return *decomposition_; }
+  std::shared_ptr<const Decomposition> decomposition_pointer() const { return decomposition_; }
+
+ private:
+  void set_corner_weights();
+  double corner_viscosity_volume(Corner) const;
+
+  std::shared_ptr<const Decomposition> decomposition_;
+  Slip inner_slip_, outer_slip_;
+  bool through_flow_;
+  CellField eta_, cell_weight_;
+  CornerField corner_weight_;
+};
+
+/// Integral of tau : e over the shell. Collective.
+double dissipation(const Power&, const CornerField& psi);
+/// Second invariant sqrt(e : e / 2) at owned cells, shear averaged over the cell's corners.
+CellField strain_rate(const Power&, const CornerField& psi);
+
+}  // namespace lidwright
