@@ -12,11 +12,11 @@
 namespace lidwright {
 
 struct OutputSettings {
-  long history_every = 1;         ///< steps, >= 1
-  double snapshot_every = 0;      ///< time; 0: only the first and the last
-  long checkpoint_every = 200;    ///< steps; 0: only at the end
-  int checkpoints_kept = 2;       ///< >= 1
-  bool normal_stress = true;      ///< pressure and wall normal stress in snapshots
+  long history_every = 1;       ///< steps, >= 1
+  double snapshot_every = 0;    ///< time; 0: only the first and the last
+  long checkpoint_every = 200;  ///< steps; 0: only at the end
+  int checkpoints_kept = 2;     ///< >= 1
+  bool normal_stress = true;    ///< pressure and wall normal stress in snapshots
 };
 
 struct Case {
@@ -27,20 +27,27 @@ struct Case {
   HeatSettings heat;
   MarchSettings march;
   OutputSettings output;
-  std::optional<Body> body;  ///< present: the file was in SI and everything above was made dimensionless with it
+  /// Present: the file was in SI and everything above was made dimensionless with it.
+  std::optional<Body> body;
 };
 
-/// Bad input: `what()` is the whole message, with file, line, key, value, what is allowed and the remedy.
+/// Bad input: `what()` is the whole message, with file, line, key, value, what is allowed and the
+/// remedy.
 struct InputError : std::runtime_error {
   using std::runtime_error::runtime_error;
 };
 
-/// Reads a case, then applies `settings` ("table.key=value", as on the command line) before any check.
-/// Throws InputError. Not collective: every rank may call it, or one.
+/// A relative initial.from is made absolute, starting at the folder of the case file.
+/// Reads a case, then applies `settings` ("table.key=value", as on the command line) before any
+/// value is checked. Throws InputError. Not collective: every rank may call it, or one.
 Case read_case(const std::string& path, const std::vector<std::string>& settings = {});
-Case parse_case(const std::string& text, const std::string& name, const std::vector<std::string>& settings = {});
+Case parse_case(const std::string& text, const std::string& name,
+                const std::vector<std::string>& settings = {});
 
-/// The case with every default filled in, as TOML that `parse_case` reads back to the same case.
+/// The case with every default filled in, as TOML that `parse_case` reads back to the same case,
+/// bit for bit if it was once read. Always dimensionless; a body goes into [body_used], so that
+/// rereading converts nothing. Values that do not apply (initial.interior of a conductive start)
+/// are left out.
 std::string write_case(const Case&);
 
 /// Reference of all keys, for `lidwright keys` (plain, 80 columns) and docs/case.md (Markdown).

@@ -1,0 +1,53 @@
+#pragma once
+
+#include <optional>
+
+#include "io/case_file.hpp"
+
+/// A case as its file says it: a Case, and beside it what the file words otherwise than the
+/// program.
+namespace lidwright::case_text {
+
+enum class Extent { FullCircle, Sector, PoleToPole, Hemisphere };
+
+struct WallDraft {
+  std::optional<double> temperature;
+  std::optional<double> heat_flux;
+  std::optional<bool> insulating;
+  Slip flow = Slip::Free;
+};
+
+struct Draft {
+  Case made;
+  std::optional<double> radius_ratio;
+  std::optional<Extent> extent;   ///< absent: the whole circle or from pole to pole
+  double from = 0;                ///< degrees
+  std::optional<double> opening;  ///< degrees
+  double width = 1;
+  WallDraft inner, outer;
+  bool has_exponential = false, has_arrhenius = false;
+  ExponentialViscosity exponential;
+  ArrheniusViscosity arrhenius;
+  std::optional<double> highest_viscosity;
+  Body body;
+  bool si = false;         ///< [body]: values are in SI
+  bool body_used = false;  ///< [body_used]: values are dimensionless, the body is kept beside them
+
+  bool box() const { return made.model.shell.shape == Shape::Box; }
+  bool axisymmetric() const { return made.model.shell.shape == Shape::AxisymmetricShell; }
+  Extent extent_or_default() const;
+  /// The body by which numbers in the file are converted.
+  std::optional<Body> units() const { return si ? std::optional(body) : std::nullopt; }
+};
+
+/// inner_radius in thicknesses, from inner over outer radius.
+double inner_radius_of(double radius_ratio);
+
+/// The case, its derived parts (shell, walls, Rayleigh number) filled in. The draft has passed all
+/// checks.
+Case assemble(Draft);
+/// The reverse; `assemble` of it gives the same case to the last bit, provided the case was once
+/// read. Always dimensionless.
+Draft take_apart(const Case&);
+
+}  // namespace lidwright::case_text
