@@ -1,0 +1,163 @@
+#include "io/history.hpp"
+
+#include <fcntl.h>
+#include <fmt/format.h>
+#include <unistd.h>
+
+#include <algorithm>
+#include <array>
+#include <cerrno>
+#include <charconv>
+#include <string_view>
+
+#include "io/case_file.hpp"
+#include "io/collective.hpp"
+#include "io/csv.hpp"
+
+namespace lidwright {
+namespace {
+
+constexpr std::string_view title = "lidwright history";
+
+constexpr std::array<Column, 24> columns{{
+    {"step", "1", "number of the time step; 0 is the start"},
+    {"time", "d^2/kappa", "time at the end of the step"},
+    {"time_step", "d^2/kappa", "length of the step"},
+    {"heat_flow_inner", "k DeltaT d^(n-2)", "heat through the inner wall, > 0 enters the shell"},
+    {"heat_flow_outer", "k DeltaT d^(n-2)", "heat through the outer wall, > 0 leaves the shell"},
+    {"nusselt_inner", "1",
+     "heat_flow_inner over the conductive flow without sources at the same wall temperatures"},
+    {"nusselt_outer", "1",
+     "heat_flow_outer over the conductive flow without sources at the same wall temperatures"},
+    {"temperature_mean", "DeltaT", "mean over the volume"},
+    {"temperature_min", "DeltaT", "least of all cells"},
+    {"temperature_max", "DeltaT", "largest of all cells"},
+    {"temperature_inner", "DeltaT", "mean over the inner wall"},
+    {"temperature_outer", "DeltaT", "mean over the outer wall"},
+    {"velocity_rms", "kappa/d", "root mean square over the volume"},
+    {"velocity_rms_inner", "kappa/d", "root mean square along the inner wall, over its area"},
+    {"velocity_rms_outer", "kappa/d", "root mean square along the outer wall, over its area"},
+    {"dissipation", "eta kappa^2 d^(n-4)", "integral of stress : strain rate over the volume"},
+    {"buoyancy_work", "eta kappa^2 d^(n-4)",
+     "integral of Ra g T u_r over the volume, > 0 drives the flow"},
+    {"work_mismatch", "1", "(dissipation - buoyancy_work) / buoyancy_work"},
+    {"heat_source", "k DeltaT d^(n-2)", "integral of the internal heating over the volume"},
+    {"heat_budget_residual", "1",
+     "of the last step: change of heat content less wall flows and sources, over the largest of "
+     "them"},
+    {"temperature_change_rate", "DeltaT kappa/d^2",
+     "root mean square over the volume of the rate of change of temperature"},
+    {"applications", "1", "applications of the factor since the start"},
+    {"factorisations", "1", "factorisations since the start"},
+    {"wall_time", "s",
+     "time by the clock since the start, over all sessions; the one column that differs between "
+     "equal runs"},
+}};
+
+/// Step of a whole row, -1 for anything else.
+long step_of(std::string_view line) {
+  if (std::count(line.begin(), line.end(), ',') + 1 != static_cast<long>(columns.size())) return -1;
+  long step = -1;
+  const auto [end, error] = std::from_chars(line.data(), line.data() + line.size(), step);
+  return error == std::errc() && *end == ',' && line.back() != ',' ? step : -1;
+}
+
+}  // namespace
+
+std::string history_head() { return table_head(title, columns); }
+
+std::string history_row(const HistoryRow& r) {
+  const std::array<double, columns.size()> numbers{static_cast<double>(r.step),
+                                                   r.time,
+                                                   r.time_step,
+                                                   r.heat_flow_inner,
+                                                   r.heat_flow_outer,
+                                                   r.nusselt_inner,
+                                                   r.nusselt_outer,
+                                                   r.temperature_mean,
+                                                   r.temperature_min,
+                                                   r.temperature_max,
+                                                   r.temperature_inner,
+                                                   r.temperature_outer,
+                                                   r.velocity_rms,
+                                                   r.velocity_rms_inner,
+                                                   r.velocity_rms_outer,
+                                                   r.dissipation,
+                                                   r.buoyancy_work,
+                                                   r.work_mismatch,
+                                                   r.heat_source,
+                                                   r.heat_budget_residual,
+                                                   r.temperature_change_rate,
+                                                   static_cast<double>(r.applications),
+                                                   static_cast<double>(r.factorisations),
+                                                   r.wall_time};
+  return table_row(numbers);
+}
+
+std::string history_until(const std::string& text, long step, const std::string& path) {
+  const std::string head = history_head();
+  if (!text.starts_with(head))
+    throw InputError(fmt::format(
+        "{}: not a history this version can go on with (its head is another one); resume with "
+        "the version that wrote it, or start a new run in another folder",
+        path));
+  std::size_t kept = head.size();
+  while (true) {
+    const std::size_t end = text.find('\n', kept);
+    if (end == std::string::npos) break;
+    const long row = step_of(std::string_view(text).substr(kept, end - kept));
+    if (row < 0 || row > step) break;
+    kept = end + 1;
+  }
+  return text.substr(0, kept);
+}
+
+History::History(MPI_Comm comm, std::string path) : comm_(comm), path_(std::move(path)) {}
+
+void History::open_for_appending() {
+  file_ = Descriptor(::open(path_.c_str(), O_WRONLY | O_APPEND | O_CLOEXEC));
+  if (file_ < 0) throw OutputError(output_failure(path_, errno));
+}
+
+History History::start(MPI_Comm comm, const std::string& path) {
+  History history(comm, path);
+  on_first_rank<OutputError>(comm, [&] {
+    write_atomically(path, history_head());
+    history.open_for_appending();
+  });
+  return history;
+}
+
+History History::resume(MPI_Comm comm, const std::string& path, long step) {
+  History history(comm, path);
+  std::string before, kept;
+  on_first_rank<InputError>(comm, [&] {
+    before = read_whole_file(path);
+    kept = history_until(before, step, path);
+  });
+  on_first_rank<OutputError>(comm, [&] {
+    if (kept != before) write_atomically(path, kept);
+    history.open_for_appending();
+  });
+  return history;
+}
+
+void History::append(const HistoryRow& row) {
+  on_first_rank<OutputError>(comm_, [&] {
+    const off_t before = ::lseek(file_, 0, SEEK_END);
+    const int error = write_all(file_, history_row(row));
+    if (error == 0) return;
+    // Half a row is worse than none; if even this fails, `resume` drops it.
+    if (before < 0 || ::ftruncate(file_, before) != 0)
+      throw OutputError(output_failure(path_, error));
+    throw OutputError(output_failure(path_, error));
+  });
+}
+
+void History::sync() {
+  on_first_rank<OutputError>(comm_, [&] {
+    if (::fsync(file_) != 0) throw OutputError(output_failure(path_, errno));
+  });
+}
+
+}  // namespace lidwright

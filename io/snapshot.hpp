@@ -1,0 +1,55 @@
+#pragma once
+
+#include <mpi.h>
+
+#include <optional>
+#include <string>
+#include <vector>
+
+#include "io/run_folder.hpp"
+#include "solver/snapshot.hpp"
+
+/// Snapshots for general viewers: fields as VTK, the walls as VTK and CSV, radial profiles as CSV;
+/// each listed by time in fields.pvd and walls.pvd. Names, arrays and units: docs/run_folder.md.
+namespace lidwright {
+
+/// One line of a time collection.
+struct CollectionEntry {
+  double time = 0;
+  std::string file;  ///< relative to the collection
+};
+
+/// The text of a .pvd file, and what can be read back from one.
+std::string write_collection(const std::vector<CollectionEntry>&);
+std::vector<CollectionEntry> read_collection(const std::string& text);
+
+/// Writes the snapshots of one run, numbered from 0. Both members are collective and throw
+/// OutputError on all ranks; after a failure the collections list complete snapshots only.
+class SnapshotWriter {
+ public:
+  /// A new run, or one resumed at a time: later snapshots are dropped from the collections and
+  /// removed.
+  SnapshotWriter(MPI_Comm, RunPaths, std::optional<double> resumed_time = std::nullopt);
+
+  /// A second snapshot of the same time replaces the first (a run resumed at the time of a
+  /// snapshot).
+  void write(const Snapshot&);
+
+  /// Snapshots listed.
+  std::size_t count() const { return times_.size(); }
+
+ private:
+  std::size_t number_for(double time) const;
+  void drop_from(std::size_t first) const;
+  void write_collections(const std::vector<double>& times) const;
+
+  MPI_Comm comm_;
+  RunPaths paths_;
+  std::vector<double> times_;
+};
+
+/// Radial profiles and wall traces as the CSV text of their files.
+std::string profiles_table(const RadialProfiles&, double time, long step);
+std::string walls_table(const WallTrace& inner, const WallTrace& outer, double time, long step);
+
+}  // namespace lidwright
