@@ -3,9 +3,9 @@
 #include <cholmod.h>
 
 #include <algorithm>
-#include <stdexcept>
 
 #include "mesh/gather.hpp"
+#include "solver/solve_error.hpp"
 #include "solver/stencil_matrix.hpp"
 
 namespace lidwright {
@@ -30,8 +30,7 @@ struct Factor::Impl {
     common.print = 0;
     view_matrix();
     factor = cholmod_l_analyze(&matrix, &common);
-    if (!factor)
-      throw std::runtime_error("the flow's factorisation cannot be planned: not enough memory");
+    if (!factor) throw SolveError("the flow's factorisation cannot be planned: not enough memory");
   }
   ~Impl() {
     cholmod_l_free_dense(&solution, &common);
@@ -121,7 +120,7 @@ void Factor::factorise(const Power& power) {
   if (impl_) done = impl_->factorise(viscosity) ? 1 : 0;
   MPI_Bcast(&done, 1, MPI_INT, 0, decomposition_->comm());
   if (!done)
-    throw std::runtime_error(
+    throw SolveError(
         "the flow's matrix is not positive definite to working precision: the viscosity varies too "
         "much for this "
         "mesh. Raise viscosity.lowest or lower viscosity.highest, or refine the mesh");

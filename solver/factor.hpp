@@ -21,7 +21,7 @@ class Factor {
   Factor(const Factor&) = delete;
   Factor& operator=(const Factor&) = delete;
 
-  /// Collective. Factorises K for the viscosity of `power`. Throws std::runtime_error on all ranks
+  /// Collective. Factorises K for the viscosity of `power`. Throws SolveError on all ranks
   /// when K is not positive definite to working precision.
   void factorise(const Power& power);
   /// z = M^-1 r on global corner vectors. Collective.

@@ -2,9 +2,9 @@
 
 #include <algorithm>
 #include <cmath>
-#include <stdexcept>
 
 #include "mesh/operators.hpp"
+#include "solver/solve_error.hpp"
 
 namespace lidwright {
 namespace {
@@ -254,9 +254,9 @@ void ImplicitConduction::solve(double tau, const CellField& right, CellField& te
   double rz = dot(r.data(), z.data());
   for (int iteration = 0; rz > stop; ++iteration) {
     if (iteration == most_iterations || !std::isfinite(rz))
-      throw std::runtime_error(
+      throw SolveError(
           "implicit conduction did not converge: the time step is too long for this mesh; lower "
-          "march.largest_step");
+          "transport.largest_step");
     apply(tau, direction_, ap);
     const double alpha = rz / dot(direction_.owned_data(), ap.data());
     double* t = temperature.owned_data();

@@ -69,7 +69,7 @@ class ImplicitConduction {
  public:
   ImplicitConduction(const HeatOperator&);
   /// `right` at owned cells holds V * (what T would be without implicit conduction); walls included
-  /// here. T: start in, solution out, with ghosts. Throws std::runtime_error when it does not
+  /// here. T: start in, solution out, with ghosts. Throws SolveError when it does not
   /// converge. Collective.
   void solve(double tau, const CellField& right, CellField& temperature);
 

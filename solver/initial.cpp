@@ -80,7 +80,7 @@ class Interpolation {
     const auto n = static_cast<std::size_t>(after - places.begin()) - 1;
     return {n, std::clamp((x - places[n]) / (places[n + 1] - places[n]), 0.0, 1.0)};
   }
-  double at(std::size_t i, std::size_t j) const { return stored_.value[j * radius_.size() + i]; }
+  double at(std::size_t i, std::size_t j) const { return stored_.values[j * radius_.size() + i]; }
 
   const StoredTemperature& stored_;
   std::vector<double> radius_, lateral_;
@@ -114,8 +114,8 @@ void fill_from_stored(const StoredTemperature& s, CellField& t) {
   const Interpolation interpolate(s);
   for (int j = t.owned().begin; j < t.owned().end; ++j)
     for (int i = 0; i < t.rows(); ++i)
-      t[{i, j}] = copy ? s.value[static_cast<std::size_t>(j) * static_cast<std::size_t>(t.rows()) +
-                                 static_cast<std::size_t>(i)]
+      t[{i, j}] = copy ? s.values[static_cast<std::size_t>(j) * static_cast<std::size_t>(t.rows()) +
+                                  static_cast<std::size_t>(i)]
                        : interpolate(g.cell_radius(i), g.cell_lateral(j), g.periodic());
 }
 
@@ -158,7 +158,7 @@ CellField initial_temperature(const HeatOperator& heat, const InitialSettings& s
                               const StoredTemperature& stored) {
   CellField t(heat.decomposition_pointer());
   const Geometry& g = heat.geometry();
-  if (!stored.value.empty()) {
+  if (!stored.values.empty()) {
     fill_from_stored(stored, t);
   } else {
     const std::vector<double> conductive =

@@ -2,16 +2,10 @@
 
 #include "solver/heat.hpp"
 #include "solver/settings.hpp"
+#include "solver/stored_temperature.hpp"
 
 /// The temperature a run starts from.
 namespace lidwright {
-
-/// A temperature field on a mesh of its own: cells by columns, radial index fastest. Empty: none.
-struct StoredTemperature {
-  std::vector<double> face_radius;   ///< thickness 1; box: heights
-  std::vector<double> face_lateral;  ///< one more than columns, also when periodic
-  std::vector<double> value;
-};
 
 /// Base, modes and noise of the settings; a stored temperature, interpolated when its mesh is
 /// another, replaces the base. With ghosts; the same field on any number of ranks. Throws

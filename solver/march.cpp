@@ -123,7 +123,7 @@ void March::step(double until) {
       throw SolveError(
           fmt::format("the temperature cannot be advanced at step {} (time {:.6g}): local error "
                       "{:.2e} with a step of {:.2e}. Lower "
-                      "march.first_step or march.courant, or loosen march.accuracy",
+                      "transport.first_step or transport.courant, or loosen transport.accuracy",
                       steps_, time_, error, dt));
     if (error <= 2 * heat_settings_.accuracy) return accept(std::move(next), dt, through, error);
     dt *= std::max(0.3, 0.9 * std::cbrt(heat_settings_.accuracy / error));

@@ -10,14 +10,10 @@
 #include "solver/initial.hpp"
 #include "solver/settings.hpp"
 #include "solver/snapshot.hpp"
+#include "solver/solve_error.hpp"
 
 /// Convection in time: temperature and flow step by step, with one flow solve a step.
 namespace lidwright {
-
-/// Numerics that failed, with place and remedy. `what()` is the whole message; thrown on all ranks.
-struct SolveError : std::runtime_error {
-  using std::runtime_error::runtime_error;
-};
 
 class March {
  public:

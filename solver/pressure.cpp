@@ -62,8 +62,11 @@ class FaceResidual {
         if (!power.has_shear({i, j})) continue;
         const ShearRow row = power.shear_row({i, j});
         const double stress = power.corner_weight({i, j}) * shear(power.geometry(), psi, row);
-        add(row.before, row.before_weight * stress);
-        add(row.behind, row.behind_weight * stress);
+        // Not the row's own weights: those leave out what a gripping wall bears of the half cell's
+        // shear.
+        const double lateral = lateral_shear_weight(power.geometry(), {i, j});
+        add(row.before, -lateral * stress);
+        add(row.behind, lateral * stress);
         add(row.near, row.near_weight * stress);
         add(row.far, row.far_weight * stress);
       }

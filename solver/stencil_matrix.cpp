@@ -20,12 +20,11 @@ std::array<Corner, 4> corners_of(Cell c) {
   return {{{c.i, c.j}, {c.i + 1, c.j}, {c.i, c.j + 1}, {c.i + 1, c.j + 1}}};
 }
 
-/// Corners on which the shear of a corner depends: its star, or at a wall the column below or above
-/// it.
+/// Corners on which the shear of a corner depends: its star, or at a wall itself and the one next
+/// to it.
 std::array<Corner, 5> star_of(Corner k, int last_row) {
-  if (k.i == 0) return {{{0, k.j}, {1, k.j}, {2, k.j}, {0, k.j}, {0, k.j}}};
-  if (k.i == last_row)
-    return {{{k.i, k.j}, {k.i - 1, k.j}, {k.i - 2, k.j}, {k.i, k.j}, {k.i, k.j}}};
+  if (k.i == 0) return {{{0, k.j}, {1, k.j}, {0, k.j}, {0, k.j}, {0, k.j}}};
+  if (k.i == last_row) return {{{k.i, k.j}, {k.i - 1, k.j}, {k.i, k.j}, {k.i, k.j}, {k.i, k.j}}};
   return {{{k.i, k.j}, {k.i - 1, k.j}, {k.i + 1, k.j}, {k.i, k.j - 1}, {k.i, k.j + 1}}};
 }
 
@@ -151,7 +150,7 @@ void StencilMatrix::assemble(const Power& serial) {
       if (!serial.has_shear(k)) continue;
       const ShearRow row = serial.shear_row(k);
       const std::array<Corner, 5> corners = star_of(k, rows_ - 1);
-      const int count = g.on_wall(i) ? 3 : 5;
+      const int count = g.on_wall(i) ? 2 : 5;
       std::array<Entry, 5> entries;
       for (int n = 0; n < count; ++n)
         entries[static_cast<std::size_t>(n)] = {

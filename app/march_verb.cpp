@@ -1,0 +1,282 @@
+#include "app/march_verb.hpp"
+
+#include <fmt/format.h>
+
+#include <algorithm>
+#include <cmath>
+#include <filesystem>
+#include <optional>
+
+#include "app/run_summary.hpp"
+#include "io/case_file.hpp"
+#include "io/checkpoint.hpp"
+#include "io/collective.hpp"
+#include "io/history.hpp"
+#include "io/provenance.hpp"
+#include "io/run_folder.hpp"
+#include "io/snapshot.hpp"
+#include "solver/march.hpp"
+
+namespace lidwright {
+namespace {
+
+using Clock = std::chrono::steady_clock;
+
+double seconds_since(Clock::time_point t) {
+  return std::chrono::duration<double>(Clock::now() - t).count();
+}
+
+/// What two sessions of one run must share: everything but how long it goes and what it writes.
+std::string fingerprint(Case c) {
+  c.title.clear();
+  c.march = MarchSettings{};
+  c.output = OutputSettings{};
+  return write_case(c);
+}
+
+/// A case read on the first rank, so that all ranks see the same file; errors on all ranks.
+Case shared_case(MPI_Comm comm, const std::string& path, const std::vector<std::string>& settings) {
+  std::string text;
+  on_first_rank<InputError>(comm, [&] { text = write_case(read_case(path, settings)); });
+  broadcast(comm, text);
+  return parse_case(text, path);
+}
+
+/// A run that is going on: the march, its files, and when which is written.
+class Run {
+ public:
+  Run(const Session& session, const MarchRequest& request, Case c, RunFolder folder,
+      std::unique_ptr<March> march, double wall_time_before)
+      : session_(session),
+        case_(std::move(c)),
+        folder_(std::move(folder)),
+        march_(std::move(march)),
+        wall_time_before_(wall_time_before),
+        resumed_(!request.resume.empty()),
+        provenance_(session.comm(), folder_.paths().provenance(), march_->steps()),
+        history_(resumed_
+                     ? History::resume(session.comm(), folder_.paths().history(), march_->steps())
+                     : History::start(session.comm(), folder_.paths().history())),
+        snapshots_(session.comm(), folder_.paths(),
+                   resumed_ ? std::optional(march_->time()) : std::nullopt),
+        progress_(request.progress, session.first()) {}
+
+  ExitCode go();
+
+ private:
+  enum class End { None, Time, Steps, Steady, WallClock, Signal };
+
+  HistoryRow row() const;
+  End end_reached() const;
+  double share_done() const;
+  double next_snapshot_time() const;
+  void record_step();
+  void write_checkpoint_now();
+  void finish(End);
+  static std::string reason(End);
+
+  const Session& session_;
+  Case case_;
+  RunFolder folder_;
+  std::unique_ptr<March> march_;
+  double wall_time_before_;
+  Clock::time_point start_ = Clock::now();
+  bool resumed_;
+  Provenance provenance_;
+  History history_;
+  SnapshotWriter snapshots_;
+  Progress progress_;
+  long last_checkpoint_ = -1, last_row_ = -1;
+};
+
+HistoryRow Run::row() const {
+  HistoryRow r = march_->row();
+  r.wall_time = wall_time_before_ + seconds_since(start_);
+  return r;
+}
+
+std::string Run::reason(End end) {
+  switch (end) {
+    case End::None:
+      return "";
+    case End::Time:
+      return "end time reached";
+    case End::Steps:
+      return "number of steps reached";
+    case End::Steady:
+      return "steady";
+    case End::WallClock:
+      return "wall-clock limit reached";
+    case End::Signal:
+      return "interrupted";
+  }
+  return "";
+}
+
+Run::End Run::end_reached() const {
+  const MarchSettings& m = case_.march;
+  if (march_->time() >= m.end_time) return End::Time;
+  if (m.most_steps > 0 && march_->steps() >= m.most_steps) return End::Steps;
+  if (m.steady > 0 && march_->temperature_change_rate() < m.steady) return End::Steady;
+  if (stop_requested(session_.comm())) return End::Signal;
+  // The ranks' clocks differ: the first one's counts.
+  double elapsed = seconds_since(start_);
+  MPI_Bcast(&elapsed, 1, MPI_DOUBLE, 0, session_.comm());
+  if (m.wall_clock > 0 && elapsed >= m.wall_clock) return End::WallClock;
+  return End::None;
+}
+
+double Run::share_done() const {
+  const double by_time = march_->time() / case_.march.end_time;
+  const double by_steps =
+      case_.march.most_steps > 0
+          ? static_cast<double>(march_->steps()) / static_cast<double>(case_.march.most_steps)
+          : 0;
+  return std::clamp(std::max(by_time, by_steps), 0.0, 1.0);
+}
+
+/// The first multiple of the interval after now, or the end.
+double Run::next_snapshot_time() const {
+  const double every = case_.output.snapshot_every;
+  if (every <= 0) return case_.march.end_time;
+  const double next = (std::floor(march_->time() / every * (1 + 1e-12)) + 1) * every;
+  return std::min(next, case_.march.end_time);
+}
+
+void Run::write_checkpoint_now() {
+  if (last_checkpoint_ == march_->steps()) return;
+  history_.sync();
+  Archive archive = march_->archive();
+  archive.numbers["wall_time"] = wall_time_before_ + seconds_since(start_);
+  const RunPaths& paths = folder_.paths();
+  write_checkpoint(checkpoint_path(paths.checkpoints(), march_->steps()), archive,
+                   *march_->decomposition(), fingerprint(case_));
+  remove_old_checkpoints(session_.comm(), paths.checkpoints(), case_.output.checkpoints_kept);
+  last_checkpoint_ = march_->steps();
+}
+
+void Run::record_step() {
+  const long step = march_->steps();
+  if (step % case_.output.history_every == 0) {
+    const HistoryRow r = row();
+    history_.append(r);
+    last_row_ = step;
+    progress_.show(r, share_done());
+  }
+  if (case_.output.checkpoint_every > 0 && step % case_.output.checkpoint_every == 0)
+    write_checkpoint_now();
+}
+
+void Run::finish(End end) {
+  progress_.finish();
+  const HistoryRow last = row();
+  if (last_row_ != march_->steps() && end != End::Signal && end != End::WallClock)
+    history_.append(last);
+  const bool complete = end != End::Signal && end != End::WallClock;
+  if (complete) snapshots_.write(march_->snapshot(case_.output.normal_stress));
+  write_checkpoint_now();
+  provenance_.end_session(march_->steps(), reason(end));
+  const std::vector<SummaryEntry> entries = summary_entries(case_, last, reason(end));
+  write_summary(session_.comm(), folder_.paths().summary(), entries);
+  if (session_.first())
+    fmt::print("{}\n", summary_for_people(case_, last, reason(end), folder_.paths().folder));
+}
+
+ExitCode Run::go() {
+  if (!resumed_) {
+    record_step();
+    snapshots_.write(march_->snapshot(case_.output.normal_stress));
+    write_checkpoint_now();
+  }
+  End end = end_reached();
+  while (end == End::None) {
+    const double until = next_snapshot_time();
+    march_->step(until);
+    record_step();
+    end = end_reached();
+    if (march_->time() >= until && end == End::None)
+      snapshots_.write(march_->snapshot(case_.output.normal_stress));
+  }
+  finish(end);
+  return end == End::Signal || end == End::WallClock ? ExitCode::Interrupted : ExitCode::Done;
+}
+
+std::string folder_for(const MarchRequest& request) {
+  if (!request.into.empty()) return request.into;
+  return "runs/" + std::filesystem::path(request.case_file).stem().string();
+}
+
+std::string stored_path(const MarchRequest& request, const Case& c) {
+  const std::filesystem::path from(c.initial.from);
+  return (from.is_absolute() ? from : std::filesystem::path(request.case_file).parent_path() / from)
+      .string();
+}
+
+/// Runs `make`; what only shows when the mesh is made or the ranks share it is bad input.
+template <class Make>
+auto or_bad_input(Make&& make) {
+  try {
+    return make();
+  } catch (const std::invalid_argument& e) {
+    throw InputError(e.what());
+  }
+}
+
+ExitCode start_new(const Session& session, const MarchRequest& request) {
+  const Case c = shared_case(session.comm(), request.case_file, request.settings);
+  StoredTemperature stored;
+  if (!c.initial.from.empty()) stored = read_temperature(session.comm(), stored_path(request, c));
+  // Everything that bad input can spoil comes before the folder is made.
+  auto march = or_bad_input([&] {
+    return std::make_unique<March>(c.model, c.initial, stored, c.flow, c.heat, session.comm());
+  });
+  RunFolder folder =
+      RunFolder::create(session.comm(), folder_for(request),
+                        request.overwrite ? ExistingRun::Overwrite : ExistingRun::Refuse);
+  on_first_rank<OutputError>(session.comm(),
+                             [&] { write_atomically(folder.paths().case_file(), write_case(c)); });
+  return Run(session, request, c, std::move(folder), std::move(march), 0).go();
+}
+
+CheckpointFile chosen_checkpoint(const Session& session, const MarchRequest& request,
+                                 const std::string& folder) {
+  const std::vector<CheckpointFile> found = list_checkpoints(session.comm(), folder);
+  const std::size_t wanted = request.from_previous ? 1 : 0;
+  if (found.size() > wanted) return found[wanted];
+  throw InputError(fmt::format(
+      "{}: holds {} checkpoint{}, none to resume from{}; start the run anew", folder, found.size(),
+      found.size() == 1 ? "" : "s", request.from_previous ? " before the newest" : ""));
+}
+
+ExitCode resume(const Session& session, const MarchRequest& request) {
+  RunFolder folder = RunFolder::resume(session.comm(), request.resume);
+  const RunPaths& paths = folder.paths();
+  const Case before = shared_case(session.comm(), paths.case_file(), {});
+  const Case c = shared_case(session.comm(), paths.case_file(), request.settings);
+  if (fingerprint(c) != fingerprint(before))
+    throw InputError(
+        "--set: a resumed run may change keys of [march] and [output] only; start a new run, from "
+        "this "
+        "one's state if you like (initial.from)");
+  const CheckpointFile checkpoint = chosen_checkpoint(session, request, paths.checkpoints());
+  const auto decomposition = or_bad_input([&] {
+    return std::make_shared<Decomposition>(std::make_shared<Geometry>(c.model.shell, c.model.grid),
+                                           session.comm());
+  });
+  const Archive archive = read_checkpoint(checkpoint.path, decomposition, fingerprint(c));
+  auto march = std::make_unique<March>(c.model, c.flow, c.heat, archive, session.comm());
+  remove_checkpoints_after(session.comm(), paths.checkpoints(), checkpoint.step);
+  on_first_rank<OutputError>(session.comm(),
+                             [&] { write_atomically(paths.case_file(), write_case(c)); });
+  const double wall_time = archive.numbers.at("wall_time");
+  return Run(session, request, c, std::move(folder), std::move(march), wall_time).go();
+}
+
+}  // namespace
+
+ExitCode march(const Session& session, const MarchRequest& request) {
+  catch_stop_signals();
+  return request.resume.empty() ? start_new(session, request) : resume(session, request);
+}
+
+}  // namespace lidwright

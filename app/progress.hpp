@@ -1,0 +1,34 @@
+#pragma once
+
+#include <chrono>
+#include <string>
+
+#include "solver/diagnostics.hpp"
+
+/// Progress of a run on standard error: one line that is rewritten at a terminal, a line now and
+/// then elsewhere.
+namespace lidwright {
+
+enum class ProgressMode { Automatic, Always, Never };
+
+class Progress {
+ public:
+  Progress(ProgressMode, bool first_rank);
+
+  /// `share` of the run that is done, in [0, 1], by which the end is foreseen.
+  void show(const HistoryRow&, double share);
+  /// Ends the rewritten line.
+  void finish();
+
+ private:
+  using Clock = std::chrono::steady_clock;
+  bool on_, terminal_;
+  Clock::time_point start_, shown_;
+  double first_share_ = -1;
+  bool open_line_ = false;
+};
+
+/// "1 h 05 min", "2 min 13 s", "42 s".
+std::string duration_text(double seconds);
+
+}  // namespace lidwright

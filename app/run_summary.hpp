@@ -1,0 +1,19 @@
+#pragma once
+
+#include <string>
+#include <vector>
+
+#include "io/case_file.hpp"
+#include "io/provenance.hpp"
+#include "solver/diagnostics.hpp"
+
+/// The end of a run in a few numbers, for programs (summary.toml) and for people (standard output).
+namespace lidwright {
+
+/// `end`: why the run stopped.
+std::vector<SummaryEntry> summary_entries(const Case&, const HistoryRow& last,
+                                          const std::string& end);
+std::string summary_for_people(const Case&, const HistoryRow& last, const std::string& end,
+                               const std::string& folder);
+
+}  // namespace lidwright
