@@ -85,17 +85,24 @@ inline OnFaces forces_without_divergence(const Geometry& g, const Normal& s, Cel
 }
 
 /// Shear strain rate at a corner, e_rt = (1/2) [h d(v/h)/dr + (1/h) du/dtheta], as weights on two
-/// radial and two lateral faces. Inside they are the four faces that meet in the corner. At a wall
-/// u = 0 on both sides; where the wall grips, v/h is a parabola through 0 at the wall and the two
-/// nearest lateral faces; where it slips freely all weights are 0, as they are on reflecting sides.
+/// radial and two lateral faces. Inside they are the four faces that meet in the corner. Where a
+/// wall grips, the row is that of the half cell next to it, v/h rising from 0 at the wall to the
+/// nearest lateral face, taken midway (docs/decisions/gripping-walls.md); u = 0 on both sides.
+/// Where a wall slips freely all weights are 0, as they are on reflecting sides.
 struct ShearRow {
   RadialFace before, behind;
   LateralFace near, far;
   double before_weight, behind_weight, near_weight, far_weight;
 };
 
+/// Weight of the radial velocity behind a corner, less that of the one before it. At a wall it
+/// serves the wall's reaction only.
+inline double lateral_shear_weight(const Geometry& g, Corner k) {
+  return 0.5 / (g.face_stretch(k.i) * g.lateral_distance(k.j));
+}
+
 inline ShearRow shear_row_inside(const Geometry& g, Corner k) {
-  const double lateral = 0.5 / (g.face_stretch(k.i) * g.lateral_distance(k.j));
+  const double lateral = lateral_shear_weight(g, k);
   const double radial = 0.5 * g.face_stretch(k.i) / g.radial_distance(k.i);
   return {{k.i, k.j - 1},
           {k.i, k.j},
@@ -108,19 +115,12 @@ inline ShearRow shear_row_inside(const Geometry& g, Corner k) {
 }
 
 inline ShearRow shear_row_gripping(const Geometry& g, Corner k) {
-  const bool at_inner = k.i == 0;
-  const int near = at_inner ? 0 : k.i - 1, far = at_inner ? 1 : k.i - 2;
-  const double wall = g.face_radius(k.i);
-  const double near_at = g.cell_radius(near) - wall, far_at = g.cell_radius(far) - wall;
-  const double scale = 0.5 * g.face_stretch(k.i) / (near_at * far_at * (far_at - near_at));
-  return {{k.i, k.j - 1},
-          {k.i, k.j},
-          {near, k.j},
-          {far, k.j},
-          0,
-          0,
-          scale * far_at * far_at / g.stretch(near),
-          -scale * near_at * near_at / g.stretch(far)};
+  const int near = k.i == 0 ? 0 : k.i - 1;
+  const double wall = g.face_radius(k.i), rise = g.cell_radius(near) - wall;
+  const double stretch = g.box() ? 1 : wall + rise / 2;
+  const LateralFace face{near, k.j};
+  return {
+      {k.i, k.j - 1}, {k.i, k.j}, face, face, 0, 0, 0.5 * stretch / (rise * g.stretch(near)), 0};
 }
 
 template <class Psi>

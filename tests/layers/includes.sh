@@ -1,0 +1,47 @@
+#!/usr/bin/env bash
+# The directions in which folders may know each other, and the foreign libraries each may know.
+set -euo pipefail
+cd "${LIDWRIGHT_SOURCE_DIR:-$(dirname "$0")/../..}"
+
+broken=0
+
+# includes FOLDER: every include line of its sources, as file:line:#include ...
+includes() { grep -rnE --include='*.[ch]pp' '^ *# *include' "$1" 2>/dev/null || true; }
+
+# report RULE LINES: counts and shows the lines that break a rule
+report() {
+  if [[ -z "$2" ]]; then return 0; fi
+  printf 'Broken: %s\n%s\n' "$1" "$2"
+  broken=$((broken + 1))
+}
+
+# only FOLDER ALLOWED...: our own headers are included with their folder, which is one of ALLOWED
+only() {
+  local folder=$1 rest
+  shift
+  rest=$(includes "$folder" | grep '"' | grep -vE "\"($(IFS='|'; echo "$*"))/" || true)
+  report "$folder may include only from: $*" "$rest"
+}
+
+# never FOLDER PATTERN: no include line of FOLDER matches PATTERN
+never() { report "$1 must not include <$2>" "$(includes "$1" | grep -E "[<\"]($2)" || true)"; }
+
+only mesh mesh
+only physics physics
+only solver mesh physics solver
+only study mesh physics solver study
+only io mesh physics solver study io
+only app mesh physics solver study io app
+
+never physics 'petsc|slepc|mpi|hdf5|vtk|toml|CLI'
+never mesh 'hdf5|H5|vtk|toml|CLI'
+never solver 'hdf5|H5|vtk|toml|CLI'
+never io 'CLI'
+never app 'vtk|toml|hdf5|H5'
+
+# The cases live in an invented planetary system.
+bodies='Mercury|Venus|Earth|Moon|Mars|Ceres|Vesta|Europa|Ganymede|Callisto|Titan|Enceladus|Triton|Pluto'
+report 'no real body in cases/ and README.md' "$(grep -rnwE "$bodies" cases README.md 2>/dev/null || true)"
+
+if [[ $broken -gt 0 ]]; then echo "$broken rules broken"; exit 1; fi
+echo "All layers are in order."

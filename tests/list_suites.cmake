@@ -1,0 +1,33 @@
+# Writes LIST, a file for ctest with one test for each suite of a GoogleTest PROGRAM; see CMakeLists.txt here.
+cmake_policy(VERSION 3.25)
+execute_process(COMMAND ${PROGRAM} --gtest_list_tests OUTPUT_VARIABLE listing COMMAND_ERROR_IS_FATAL ANY)
+string(REPLACE ";" "," listing "${listing}")
+string(REPLACE "\n" ";" lines "${listing}")
+
+set(text "")
+function(add_suite_test name command processors)
+  set(properties "ENVIRONMENT [==[${ENVIRONMENT}]==] PROCESSORS ${processors}")
+  if(name MATCHES "[./]Long")
+    string(APPEND properties " LABELS long TIMEOUT ${LONG_SECONDS}")
+  else()
+    string(APPEND properties " TIMEOUT ${SECONDS}")
+  endif()
+  string(APPEND text "add_test([==[${name}]==] ${command})\n"
+                     "set_tests_properties([==[${name}]==] PROPERTIES ${properties})\n")
+  set(text "${text}" PARENT_SCOPE)
+endfunction()
+
+foreach(line ${lines})
+  if(NOT line MATCHES "^([A-Za-z_][^ ]*)\\.( |$)")   # tests are indented, suites end in a dot
+    continue()
+  endif()
+  set(suite ${CMAKE_MATCH_1})
+  set(run "[==[${PROGRAM}]==] [==[--gtest_filter=${suite}.*]==]")
+  add_suite_test("${FOLDER}.${suite}" "${run}" 1)
+  if(suite MATCHES "(^|/)(Long)?Parallel")
+    foreach(ranks 2 3)
+      add_suite_test("${FOLDER}.${suite}@${ranks}" "[==[${MPIEXEC}]==] -n ${ranks} ${run}" ${ranks})
+    endforeach()
+  endif()
+endforeach()
+file(WRITE ${LIST} "${text}")
