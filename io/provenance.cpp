@@ -44,7 +44,9 @@ namespace {
 std::string petsc_version() {
   std::array<char, 256> text{};
   PetscGetVersion(text.data(), text.size());
-  return text.data();
+  std::string version(text.data());
+  while (version.ends_with(' ')) version.pop_back();
+  return version;
 }
 
 std::string mpi_version() {

@@ -89,14 +89,14 @@ void add_time(vtkDataObject* data, const Snapshot& s) {
   data->GetFieldData()->AddArray(time);
 }
 
-/// Inline, never appended: a widely used viewer cannot read appended pieces. zlib rather than LZ4:
-/// more readers know it.
+/// Inline, never appended: a widely used viewer cannot read appended pieces. LZ4 takes a third of
+/// zlib's time for a quarter more bytes.
 template <class Writer>
 std::string as_text(vtkDataObject* data) {
   vtkNew<Writer> writer;
   writer->SetInputData(data);
   writer->SetDataModeToBinary();
-  writer->SetCompressorTypeToZLib();
+  writer->SetCompressorTypeToLZ4();
   writer->SetCompressionLevel(1);
   writer->WriteToOutputStringOn();
   writer->Write();
@@ -192,7 +192,7 @@ std::string structured_index(const Snapshot& s, const std::vector<PieceExtent>& 
   std::string text = fmt::format(
       "<?xml version=\"1.0\"?>\n<VTKFile type=\"PStructuredGrid\" version=\"0.1\" "
       "byte_order=\"LittleEndian\" "
-      "header_type=\"UInt32\" compressor=\"vtkZLibDataCompressor\">\n"
+      "header_type=\"UInt32\" compressor=\"vtkLZ4DataCompressor\">\n"
       "  <PStructuredGrid WholeExtent=\"0 {} 0 {} 0 0\" GhostLevel=\"0\">\n"
       "    <FieldData>\n      <DataArray type=\"Float64\" Name=\"TimeValue\" NumberOfTuples=\"1\" "
       "format=\"ascii\">{}"

@@ -5,7 +5,7 @@
 #include "solver/snapshot.hpp"
 
 /// The one place that includes VTK: a snapshot's grids as the text of XML files (inline binary,
-/// zlib, Float32).
+/// LZ4, Float32).
 namespace lidwright {
 
 /// Points, in whole columns, of a rank's piece: its cells' columns and the boundary column shared

@@ -38,6 +38,9 @@ class Field {
   /// All numbers held, column by column, radial index fastest.
   const std::vector<double>& values() const { return values_; }
   std::vector<double>& values() { return values_; }
+  /// One held column, radial index fastest.
+  const double* column(int j) const { return values_.data() + place({0, j}); }
+  double* column(int j) { return values_.data() + place({0, j}); }
   /// First owned number and how many there are: contiguous.
   double* owned_data() {
     return values_.data() + static_cast<std::size_t>(owned_.begin - held_.begin) * rows_;

@@ -103,6 +103,16 @@ class Geometry {
     return inv_side_measure_[f.i] * inv_side_lateral_[f.j];
   }
   double inverse_volume(Cell c) const { return inv_cell_measure_[c.i] * inv_lateral_measure_[c.j]; }
+  // Their radial and lateral factors, and the inverse ones: what loops down a column take out of
+  // the loop.
+  double face_measure(int i) const { return face_measure_[i]; }
+  double side_measure(int i) const { return side_measure_[i]; }
+  double lateral_measure(int j) const { return lateral_measure_[j]; }
+  double side_lateral(int j) const { return side_lateral_[j]; }
+  double inverse_face_measure(int i) const { return inv_face_measure_[i]; }
+  double inverse_side_measure(int i) const { return inv_side_measure_[i]; }
+  double inverse_lateral_measure(int j) const { return inv_lateral_measure_[j]; }
+  double inverse_side_lateral(int j) const { return inv_side_lateral_[j]; }
   /// Share of the cell's volume in its corner: above (outer) or below its middle, right or left of
   /// it.
   double quarter_volume(Cell c, bool upper, bool right) const {

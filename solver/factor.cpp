@@ -1,5 +1,6 @@
 #include "solver/factor.hpp"
 
+#include <cblas.h>
 #include <cholmod.h>
 
 #include <algorithm>
@@ -15,6 +16,29 @@ namespace {
 /// streamed: turns operation counts into applications (measured, docs/performance.md).
 constexpr double operations_per_streamed_number = 12;
 
+/// Adds the wall time of its life to a sum.
+class Stopwatch {
+ public:
+  explicit Stopwatch(double& sum) : sum_(sum), start_(MPI_Wtime()) {}
+  ~Stopwatch() { sum_ += MPI_Wtime() - start_; }
+  Stopwatch(const Stopwatch&) = delete;
+  Stopwatch& operator=(const Stopwatch&) = delete;
+
+ private:
+  double& sum_;
+  double start_;
+};
+
+/// One BLAS thread but for factorisations of a run on one rank: a solve's blocks are too small to
+/// share out.
+class BlasThreads {
+ public:
+  explicit BlasThreads(int threads) { openblas_set_num_threads(threads); }
+  ~BlasThreads() { openblas_set_num_threads(1); }
+  BlasThreads(const BlasThreads&) = delete;
+  BlasThreads& operator=(const BlasThreads&) = delete;
+};
+
 }  // namespace
 
 struct Factor::Impl {
@@ -23,6 +47,8 @@ struct Factor::Impl {
                                              MPI_COMM_SELF)),
         serial(mesh, walls_of(power)),
         stencil(serial) {
+    threads = power.decomposition().ranks() == 1 ? openblas_get_num_threads() : 1;
+    openblas_set_num_threads(1);
     cholmod_l_start(&common);
     common.supernodal = CHOLMOD_SUPERNODAL;
     common.nmethods = 1;
@@ -68,6 +94,7 @@ struct Factor::Impl {
     scatter_from_first(viscosity, eta);
     serial.set_viscosity(eta);
     stencil.assemble(serial);
+    const BlasThreads all(threads);
     const bool done = cholmod_l_factorize(&matrix, factor, &common) && common.status == CHOLMOD_OK;
     return done && factor->minor == factor->n;
   }
@@ -93,6 +120,7 @@ struct Factor::Impl {
   std::shared_ptr<const Decomposition> mesh;
   Power serial;
   StencilMatrix stencil;
+  int threads = 1;
   cholmod_common common{};
   cholmod_sparse matrix{};
   cholmod_factor* factor = nullptr;
@@ -114,7 +142,12 @@ Factor::Factor(const Power& shape) : decomposition_(shape.decomposition_pointer(
 
 Factor::~Factor() = default;
 
+double Factor::stored_bytes() const {
+  return impl_ ? 8.0 * static_cast<double>(impl_->factor->xsize) : 0;
+}
+
 void Factor::factorise(const Power& power) {
+  const Stopwatch watch(seconds_factorising_);
   const std::vector<double> viscosity = gather_to_first(power.viscosity());
   int done = 1;
   if (impl_) done = impl_->factorise(viscosity) ? 1 : 0;
@@ -128,6 +161,7 @@ void Factor::factorise(const Power& power) {
 }
 
 void Factor::apply(Vec r, Vec z) {
+  const Stopwatch watch(seconds_applying_);
   const double* from = nullptr;
   double* to = nullptr;
   PetscInt size = 0;

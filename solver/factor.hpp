@@ -34,6 +34,13 @@ class Factor {
   /// same in every run (a measured one would make a restart differ). Same on all ranks.
   double cost_in_applications() const { return cost_; }
   double nonzeros() const { return nonzeros_; }
+  /// Bytes of the factor as stored (with the zeros that make its columns into dense blocks), on
+  /// rank 0.
+  double stored_bytes() const;
+  /// Wall time spent so far in `factorise` and in `apply`, s. For measurements; nothing depends on
+  /// it.
+  double seconds_factorising() const { return seconds_factorising_; }
+  double seconds_applying() const { return seconds_applying_; }
 
  private:
   struct Impl;
@@ -41,6 +48,7 @@ class Factor {
   std::unique_ptr<Impl> impl_;  ///< rank 0 only
   CellField viscosity_;
   double cost_ = 1, nonzeros_ = 0;
+  double seconds_factorising_ = 0, seconds_applying_ = 0;
 };
 
 }  // namespace lidwright

@@ -35,7 +35,7 @@ class FlowSolver {
   const Power& power() const { return power_; }
   long applications() const { return applications_; }
   long factorisations() const { return factorisations_; }
-  double factor_nonzeros() const { return factor_.nonzeros(); }
+  const Factor& factor() const { return factor_; }
   /// Forgets former flows (after a jump in the state); the factor stays.
   void forget();
 

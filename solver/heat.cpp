@@ -4,6 +4,7 @@
 #include <cmath>
 
 #include "mesh/operators.hpp"
+#include "solver/advection.hpp"
 #include "solver/solve_error.hpp"
 
 namespace lidwright {
@@ -24,9 +25,11 @@ Walls homogeneous(Walls walls) {
   return walls;
 }
 
-/// Limiter of Koren 1993 (in Numerical Methods for Advection-Diffusion Problems, Vieweg, 117):
-/// third-order upwind-biased where the field is smooth. r: downwind over upwind difference.
-double koren(double r) { return std::max(0.0, std::min({2 * r, (1 + 2 * r) / 3, 2.0})); }
+/// Runs `with` on the carrying function of a scheme: dispatched once per field, never per face.
+template <class With>
+auto with_scheme(HeatFlux scheme, With&& with) {
+  return scheme == HeatFlux::Central ? with(carried_central) : with(carried_limited);
+}
 
 }  // namespace
 
@@ -37,6 +40,8 @@ HeatOperator::HeatOperator(std::shared_ptr<const Decomposition> d, const Walls& 
   for (int i = 0; i < g.radial_cells(); ++i) {
     source_.push_back(sources(g.depth(i)));
     for (int j = 0; j < g.lateral_cells(); ++j) total_source_ += g.volume({i, j}) * source_.back();
+    radial_conductance_.push_back(i > 0 ? g.face_measure(i) / g.radial_distance(i) : 0);
+    lateral_conductance_.push_back(g.side_measure(i) / g.stretch(i));
   }
 }
 
@@ -80,66 +85,97 @@ double HeatOperator::radial_neighbour(const CellField& t, int i, int j) const {
   return t[{i, j}];
 }
 
-/// The same for columns, mirrored at reflecting sides.
-double HeatOperator::lateral_neighbour(const CellField& t, int i, int j) const {
-  if (!geometry().periodic())
-    j = j < 0 ? -1 - j
-              : (j >= geometry().lateral_cells() ? 2 * geometry().lateral_cells() - 1 - j : j);
-  return t[{i, j}];
-}
-
-double HeatOperator::face_temperature(double far_upwind, double upwind, double downwind) const {
-  const double behind = upwind - far_upwind, ahead = downwind - upwind;
-  if (behind * ahead <= 0) return upwind;
-  return upwind + 0.5 * koren(ahead / behind) * behind;
-}
-
 double HeatOperator::advected(const CellField& t, const CornerField& psi, RadialFace f) const {
   if (geometry().on_wall(f.i)) return 0;
-  const double flow = flow_through(psi, f);
-  if (flux_ == HeatFlux::Central) return flow * (t[inside(f)] + t[outside(f)]) / 2;
-  return flow *
-         (flow > 0
-              ? face_temperature(radial_neighbour(t, f.i - 2, f.j), t[inside(f)], t[outside(f)])
-              : face_temperature(radial_neighbour(t, f.i + 1, f.j), t[outside(f)], t[inside(f)]));
+  return with_scheme(flux_, [&](auto carried) {
+    return carried(flow_through(psi, f), radial_neighbour(t, f.i - 2, f.j), t[inside(f)],
+                   t[outside(f)], radial_neighbour(t, f.i + 1, f.j));
+  });
 }
 
-double HeatOperator::advected(const CellField& t, const CornerField& psi, LateralFace f) const {
-  if (geometry().on_side(f.j)) return 0;
-  const double flow = flow_through(psi, f);
-  if (flux_ == HeatFlux::Central) return flow * (t[left(f)] + t[right(f)]) / 2;
-  return flow *
-         (flow > 0 ? face_temperature(lateral_neighbour(t, f.i, f.j - 2), t[left(f)], t[right(f)])
-                   : face_temperature(lateral_neighbour(t, f.i, f.j + 1), t[right(f)], t[left(f)]));
+/// Heat carried outwards through the radial faces of a column (walls: 0), for cells 0 to n - 1 held
+/// with one more beyond each wall.
+template <class Carried>
+void HeatOperator::carry_radially(const CellField& t, const CornerField& psi, int j,
+                                  Carried carried, std::vector<double>& heat) const {
+  const int n = geometry().radial_cells();
+  std::vector<double> with_walls(static_cast<std::size_t>(n) + 2);
+  double* __restrict cell = with_walls.data() + 1;
+  std::copy_n(t.column(j), n, cell);
+  cell[-1] = radial_neighbour(t, -1, j);
+  cell[n] = radial_neighbour(t, n, j);
+  const double* __restrict left = psi.column(j);
+  const double* __restrict right = psi.column(j + 1);
+  double* __restrict out = heat.data();
+  for (int i = 1; i < n; ++i)
+    out[i] = carried(right[i] - left[i], cell[i - 2], cell[i - 1], cell[i], cell[i + 1]);
+}
+
+/// Heat carried through the lateral faces on the left of column j.
+template <class Carried>
+void HeatOperator::carry_laterally(const CellField& t, const CornerField& psi, int j,
+                                   Carried carried, std::vector<double>& heat) const {
+  const Geometry& g = geometry();
+  if (g.on_side(j)) return std::fill(heat.begin(), heat.end(), 0.0);
+  const auto mirrored = [&](int k) {
+    if (g.periodic()) return k;
+    return k < 0 ? -1 - k : (k >= g.lateral_cells() ? 2 * g.lateral_cells() - 1 - k : k);
+  };
+  const double* __restrict far_left = t.column(mirrored(j - 2));
+  const double* __restrict left = t.column(j - 1);
+  const double* __restrict right = t.column(j);
+  const double* __restrict far_right = t.column(mirrored(j + 1));
+  const double* __restrict corner = psi.column(j);
+  double* __restrict out = heat.data();
+  for (int i = 0; i < g.radial_cells(); ++i)
+    out[i] = carried(corner[i] - corner[i + 1], far_left[i], left[i], right[i], far_right[i]);
 }
 
 void HeatOperator::add_advection(const CellField& t, const CornerField& psi,
                                  CellField& rate) const {
-  const int rows = rate.rows();
-  for (int j = rate.owned().begin; j < rate.owned().end; ++j) {
-    for (int i = 1; i < rows; ++i) {
-      const double heat = advected(t, psi, RadialFace{i, j});
-      rate[{i - 1, j}] -= heat;
-      rate[{i, j}] += heat;
+  const auto n = static_cast<std::size_t>(geometry().radial_cells());
+  std::vector<double> up(n + 1, 0.0), from_left(n), to_right(n);
+  with_scheme(flux_, [&](auto carried) {
+    carry_laterally(t, psi, rate.owned().begin, carried, from_left);
+    for (int j = rate.owned().begin; j < rate.owned().end; ++j) {
+      carry_radially(t, psi, j, carried, up);
+      carry_laterally(t, psi, j + 1, carried, to_right);
+      double* gain = rate.column(j);
+      for (std::size_t i = 0; i < n; ++i) gain[i] += up[i] - up[i + 1] + from_left[i] - to_right[i];
+      std::swap(from_left, to_right);
     }
-    for (int i = 0; i < rows; ++i)
-      rate[{i, j}] += advected(t, psi, LateralFace{i, j}) - advected(t, psi, LateralFace{i, j + 1});
-  }
+  });
+}
+
+/// Heat conducted through the lateral faces on the left of column j.
+void HeatOperator::conduct_laterally(const CellField& t, int j, std::vector<double>& heat) const {
+  const Geometry& g = geometry();
+  if (g.on_side(j)) return std::fill(heat.begin(), heat.end(), 0.0);
+  const double scale = g.side_lateral(j) / g.lateral_distance(j);
+  const double* left = t.column(j - 1);
+  const double* right = t.column(j);
+  for (std::size_t i = 0; i < heat.size(); ++i)
+    heat[i] = lateral_conductance_[i] * scale * (left[i] - right[i]);
 }
 
 WallHeat HeatOperator::add_conduction(const CellField& t, CellField& rate) const {
-  const int rows = rate.rows();
+  const auto n = static_cast<std::size_t>(geometry().radial_cells());
+  std::vector<double> up(n + 1), from_left(n), to_right(n);
   WallHeat through;
+  conduct_laterally(t, rate.owned().begin, from_left);
   for (int j = rate.owned().begin; j < rate.owned().end; ++j) {
-    double below = conducted(t, RadialFace{0, j});
-    through.inner += below;
-    for (int i = 0; i < rows; ++i) {
-      const double above = conducted(t, RadialFace{i + 1, j});
-      rate[{i, j}] +=
-          below - above + conducted(t, LateralFace{i, j}) - conducted(t, LateralFace{i, j + 1});
-      below = above;
-    }
-    through.outer += below;
+    const double* cell = t.column(j);
+    double* gain = rate.column(j);
+    const double scale = geometry().lateral_measure(j);
+    up[0] = wall_flux(t, {0, j});
+    for (std::size_t i = 1; i < n; ++i)
+      up[i] = radial_conductance_[i] * scale * (cell[i - 1] - cell[i]);
+    up[n] = wall_flux(t, {static_cast<int>(n), j});
+    conduct_laterally(t, j + 1, to_right);
+    for (std::size_t i = 0; i < n; ++i) gain[i] += up[i] - up[i + 1] + from_left[i] - to_right[i];
+    std::swap(from_left, to_right);
+    through.inner += up[0];
+    through.outer += up[n];
   }
   return through;
 }

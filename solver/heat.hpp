@@ -38,7 +38,6 @@ class HeatOperator {
   double conducted(const CellField&, RadialFace) const;
   double advected(const CellField&, const CornerField& psi, RadialFace) const;
   double conducted(const CellField&, LateralFace) const;
-  double advected(const CellField&, const CornerField& psi, LateralFace) const;
 
   /// Integral of H over the shell.
   double total_source() const { return total_source_; }
@@ -53,13 +52,21 @@ class HeatOperator {
 
  private:
   double radial_neighbour(const CellField&, int i, int j) const;
-  double lateral_neighbour(const CellField&, int i, int j) const;
-  double face_temperature(double far_upwind, double upwind, double downwind) const;
+  template <class Carried>
+  void carry_radially(const CellField&, const CornerField& psi, int j, Carried,
+                      std::vector<double>& heat) const;
+  template <class Carried>
+  void carry_laterally(const CellField&, const CornerField& psi, int j, Carried,
+                       std::vector<double>& heat) const;
+  void conduct_laterally(const CellField&, int j, std::vector<double>& heat) const;
 
   std::shared_ptr<const Decomposition> decomposition_;
   Walls walls_;
   HeatFlux flux_;
-  std::vector<double> source_;  ///< of each row of cells
+  std::vector<double> source_;               ///< of each row of cells
+  std::vector<double> radial_conductance_;   ///< of the face below each row, without its lateral
+                                             ///< factor; 0 at the wall
+  std::vector<double> lateral_conductance_;  ///< of each row, without its lateral factor
   double total_source_ = 0;
 };
 

@@ -13,15 +13,20 @@ std::shared_ptr<const Decomposition> decompose(const Model& model, MPI_Comm comm
   return std::make_shared<Decomposition>(std::make_shared<Geometry>(model.shell, model.grid), comm);
 }
 
-double volume_rms(const CellField& shape, const std::function<double(Cell)>& value) {
+template <class Value>
+double volume_rms(const CellField& shape, Value&& value) {
   const Geometry& g = shape.decomposition().geometry();
   double sum = 0;
   for (int j = shape.owned().begin; j < shape.owned().end; ++j)
-    for (int i = 0; i < shape.rows(); ++i) sum += g.volume({i, j}) * std::pow(value({i, j}), 2);
+    for (int i = 0; i < shape.rows(); ++i) {
+      const double x = value(Cell{i, j});
+      sum += g.volume({i, j}) * x * x;
+    }
   return std::sqrt(shape.decomposition().sum(sum) / g.total_volume());
 }
 
-double volume_sum(const CellField& shape, const std::function<double(Cell)>& value) {
+template <class Value>
+double volume_sum(const CellField& shape, Value&& value) {
   const Geometry& g = shape.decomposition().geometry();
   double sum = 0;
   for (int j = shape.owned().begin; j < shape.owned().end; ++j)

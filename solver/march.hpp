@@ -46,7 +46,7 @@ class March {
   const Power& power() const { return flow_.power(); }
   const HeatOperator& heat() const { return stepper_.heat(); }
   std::shared_ptr<const Decomposition> decomposition() const { return decomposition_; }
-  double factor_nonzeros() const { return flow_.factor_nonzeros(); }
+  const FlowSolver& flow() const { return flow_; }
 
  private:
   struct Former {

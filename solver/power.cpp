@@ -25,7 +25,8 @@ Power::Power(std::shared_ptr<const Decomposition> d, const Walls& walls)
                     (inner_slip_ == Slip::None || outer_slip_ == Slip::None)),
       eta_(decomposition_, 1.0),
       cell_weight_(decomposition_),
-      corner_weight_(decomposition_) {
+      corner_weight_(decomposition_),
+      table_(geometry()) {
   set_viscosity(CellField(decomposition_, 1.0));
 }
 
@@ -88,31 +89,132 @@ void Power::set_corner_weights() {
       if (has_shear({i, j})) corner_weight_[{i, j}] = 4 * corner_viscosity_volume({i, j});
 }
 
+RadialTable::RadialTable(const Geometry& g) {
+  const int n = g.radial_cells();
+  for (int i = 0; i < n; ++i) {
+    per_width.push_back(g.inv_width(i));
+    per_stretch.push_back(1 / g.stretch(i));
+    half_curvature.push_back(g.curvature(i) / 2);
+    per_side.push_back(g.inverse_side_measure(i));
+  }
+  for (int i = 0; i <= n; ++i) {
+    const bool inside = i > 0 && i < n;
+    per_area.push_back(g.inverse_face_measure(i));
+    lateral_shear.push_back(inside ? 0.5 / g.face_stretch(i) : 0);
+    outer_shear.push_back(inside ? 0.5 * g.face_stretch(i) / (g.radial_distance(i) * g.stretch(i))
+                                 : 0);
+    inner_shear.push_back(
+        inside ? 0.5 * g.face_stretch(i) / (g.radial_distance(i) * g.stretch(i - 1)) : 0);
+  }
+}
+
+/// The rows of G and their transposes are those of mesh/operators.hpp (a test holds the two
+/// together); here they run down columns of cells and corners, so that the compiler can vectorise
+/// them.
 void Power::apply(const CornerField& psi, CornerField& force) const {
-  const Geometry& g = geometry();
   std::fill(force.values().begin(), force.values().end(), 0.0);
+  apply_normal(psi, force);
+  apply_shear_inside(psi, force);
+  apply_shear_at_walls(psi, force);
+}
+
+void Power::apply_normal(const CornerField& psi, CornerField& force) const {
+  const Geometry& g = geometry();
   const Range cells = cells_touching(force, eta_.held());
-  for (int j = cells.begin; j < cells.end; ++j)
-    for (int i = 0; i < g.radial_cells(); ++i) {
-      const Cell c{i, j};
-      const double w = cell_weight_[c];
-      const Normal e = strain_without_divergence(g, face_velocities(g, psi, c), c);
-      const OnFaces f = forces_without_divergence(g, {w * e.rr, w * e.tt, w * e.pp}, c);
-      add_to_corners(g, force, inner(c), f.inner);
-      add_to_corners(g, force, outer(c), f.outer);
-      add_to_corners(g, force, left(c), f.left);
-      add_to_corners(g, force, right(c), f.right);
+  const int n = g.radial_cells();
+  // Of one column: u on its radial faces; forces of each cell on its inner and outer face and on
+  // its sides, at places 1 to n, with zeros around, so that every loop gathers.
+  const auto places = static_cast<std::size_t>(n) + 2;
+  std::vector<double> u_column(places), inner_force(places, 0.0), outer_force(places, 0.0),
+      side_force(places, 0.0);
+  double* __restrict u = u_column.data();
+  double* __restrict inner = inner_force.data();
+  double* __restrict outer = outer_force.data();
+  double* __restrict side = side_force.data();
+  for (int j = cells.begin; j < cells.end; ++j) {
+    const double* __restrict left = psi.column(j);
+    const double* __restrict right = psi.column(j + 1);
+    const double* __restrict weight = cell_weight_.column(j);
+    double* __restrict force_left = force.column(j);
+    double* __restrict force_right = force.column(j + 1);
+    const double per_lateral = g.inverse_lateral_measure(j), per_angle = g.inv_lateral_width(j);
+    const double per_left = g.inverse_side_lateral(j), per_right = g.inverse_side_lateral(j + 1);
+    for (int i = 0; i <= n; ++i) u[i] = (right[i] - left[i]) * table_.per_area[i] * per_lateral;
+    for (int i = 0; i < n; ++i) {
+      const double to_angle = per_angle * table_.per_stretch[i];
+      const double lateral =
+          ((right[i] - right[i + 1]) * per_right - (left[i] - left[i + 1]) * per_left) *
+          table_.per_side[i];
+      const double rr = (u[i + 1] - u[i]) * table_.per_width[i];
+      const double tt = lateral * to_angle + table_.half_curvature[i] * (u[i] + u[i + 1]);
+      // Stress differences tau_rr - tau_pp and tau_tt - tau_pp, times volume: e_pp = - e_rr - e_tt.
+      const double along_r = weight[i] * (2 * rr + tt) * table_.per_width[i];
+      const double along_t = weight[i] * (2 * tt + rr);
+      const double hoop = along_t * table_.half_curvature[i];
+      inner[i + 1] = hoop - along_r;
+      outer[i + 1] = hoop + along_r;
+      side[i + 1] = along_t * to_angle * table_.per_side[i];
     }
+    for (int i = 0; i <= n; ++i) {
+      const double push = (outer[i] + inner[i + 1]) * table_.per_area[i] * per_lateral;
+      const double turn = side[i] - side[i + 1];
+      force_left[i] += turn * per_left - push;
+      force_right[i] += push - turn * per_right;
+    }
+  }
+}
+
+void Power::apply_shear_inside(const CornerField& psi, CornerField& force) const {
+  const Geometry& g = geometry();
   const Range columns =
       intersection(shear_columns(), {force.owned().begin - 1, force.owned().end + 1});
-  for (int j = columns.begin; j < columns.end; ++j)
-    for (int i = 0; i < force.rows(); ++i) {
-      const Corner k{i, j};
-      if (!has_shear(k)) continue;
-      const ShearRow row = shear_row(k);
-      const double stress = corner_weight_[k] * shear(g, psi, row);
-      add_to_corners(g, force, row.before, row.before_weight * stress);
-      add_to_corners(g, force, row.behind, row.behind_weight * stress);
+  const int n = g.radial_cells();
+  // Of one column: forces of each corner on its neighbours above and below, at places 1 to n - 1.
+  const auto places = static_cast<std::size_t>(n) + 2;
+  std::vector<double> up_force(places, 0.0), down_force(places, 0.0);
+  double* __restrict up = up_force.data();
+  double* __restrict down = down_force.data();
+  for (int j = columns.begin; j < columns.end; ++j) {
+    if (g.on_side(j)) continue;
+    const double* __restrict before = psi.column(j - 1);
+    const double* __restrict here = psi.column(j);
+    const double* __restrict behind = psi.column(j + 1);
+    const double* __restrict weight = corner_weight_.column(j);
+    double* __restrict force_before = force.column(j - 1);
+    double* __restrict force_here = force.column(j);
+    double* __restrict force_behind = force.column(j + 1);
+    const double to_before = g.inverse_lateral_measure(j - 1) / g.lateral_distance(j);
+    const double to_behind = g.inverse_lateral_measure(j) / g.lateral_distance(j);
+    const double per_lateral = g.inverse_side_lateral(j);
+    for (int i = 1; i < n; ++i) {
+      const double lateral = table_.lateral_shear[i] * table_.per_area[i];
+      const double outer = table_.outer_shear[i] * table_.per_side[i] * per_lateral;
+      const double inner = table_.inner_shear[i] * table_.per_side[i - 1] * per_lateral;
+      const double shear_rate =
+          lateral * (to_behind * (behind[i] - here[i]) - to_before * (here[i] - before[i])) +
+          outer * (here[i] - here[i + 1]) - inner * (here[i - 1] - here[i]);
+      const double stress = weight[i] * shear_rate;
+      const double across = stress * lateral;
+      force_behind[i] += across * to_behind;
+      force_before[i] += across * to_before;
+      force_here[i] -= across * (to_behind + to_before);
+      up[i] = stress * outer;
+      down[i] = stress * inner;
+    }
+    // A corner pushes itself outwards by what it pushes its neighbours back.
+    for (int i = 1; i < n; ++i) force_here[i] += up[i] + down[i] - up[i - 1] - down[i + 1];
+    force_here[0] -= down[1];
+    force_here[n] -= up[n - 1];
+  }
+}
+
+void Power::apply_shear_at_walls(const CornerField& psi, CornerField& force) const {
+  const Geometry& g = geometry();
+  for (int j = force.owned().begin; j < force.owned().end; ++j)
+    for (const int i : {0, g.radial_cells()}) {
+      if (!has_shear({i, j})) continue;
+      const ShearRow row = shear_row({i, j});
+      const double stress = corner_weight_[{i, j}] * shear(g, psi, row);
       add_to_corners(g, force, row.near, row.near_weight * stress);
       add_to_corners(g, force, row.far, row.far_weight * stress);
     }

@@ -1,6 +1,7 @@
 #pragma once
 
 #include <functional>
+#include <vector>
 
 #include "mesh/field.hpp"
 #include "mesh/operators.hpp"
@@ -17,6 +18,22 @@
 /// corner's power is the least that any split of the shear among the quarters can have
 /// (docs/decisions/corner-viscosity.md).
 namespace lidwright {
+
+/// The radial parts of the rows of G (mesh/operators.hpp), tabulated so that a product with K runs
+/// down columns.
+struct RadialTable {
+  explicit RadialTable(const Geometry&);
+  // Cells.
+  std::vector<double> per_width;    ///< 1 / width
+  std::vector<double> per_stretch;  ///< 1 / stretch
+  std::vector<double> half_curvature;
+  std::vector<double> per_side;  ///< 1 / (radial part of the side area)
+  // Faces; the last two 0 at walls.
+  std::vector<double> per_area;       ///< 1 / (radial part of the area)
+  std::vector<double> lateral_shear;  ///< weight of du across a corner, times the lateral distance
+  std::vector<double> outer_shear;    ///< weight of v above a corner
+  std::vector<double> inner_shear;    ///< weight of v below a corner, > 0 and to be subtracted
+};
 
 class Power {
  public:
@@ -64,12 +81,16 @@ class Power {
  private:
   void set_corner_weights();
   double corner_viscosity_volume(Corner) const;
+  void apply_normal(const CornerField& psi, CornerField& force) const;
+  void apply_shear_inside(const CornerField& psi, CornerField& force) const;
+  void apply_shear_at_walls(const CornerField& psi, CornerField& force) const;
 
   std::shared_ptr<const Decomposition> decomposition_;
   Slip inner_slip_, outer_slip_;
   bool through_flow_;
   CellField eta_, cell_weight_;
   CornerField corner_weight_;
+  RadialTable table_;
 };
 
 /// Integral of tau : e over the shell. Collective.
