@@ -15,7 +15,7 @@
 #include <numbers>
 #include <vector>
 
-#include "app/session.hpp"
+#include "mesh/session.hpp"
 #include "io/provenance.hpp"
 #include "mesh/gather.hpp"
 #include "solver/march.hpp"

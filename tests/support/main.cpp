@@ -1,51 +1,11 @@
 #include <gtest/gtest.h>
-#include <petscsys.h>
 
 #include <cstdio>
-#include <stdexcept>
 
-#ifdef __SANITIZE_ADDRESS__
-#include <sanitizer/lsan_interface.h>
-#endif
+#include "mesh/session.hpp"
 
 /// The main function of every test program: MPI and PETSc live as long as the tests run.
 namespace {
-
-/// Leaks of the MPI library's start are not ours; those of the tests are, and are looked for before
-/// its end.
-void watch_leaks([[maybe_unused]] bool on) {
-#ifdef __SANITIZE_ADDRESS__
-  on ? __lsan_enable() : __lsan_disable();
-#endif
-}
-
-void report_leaks() {
-#ifdef __SANITIZE_ADDRESS__
-  __lsan_do_leak_check();
-#endif
-}
-
-class Session {
- public:
-  Session(int& argc, char**& argv) {
-    watch_leaks(false);
-    const PetscErrorCode code = PetscInitialize(&argc, &argv, nullptr, nullptr);
-    watch_leaks(true);
-    if (code != 0) throw std::runtime_error("PETSc did not start");
-    PetscPopSignalHandler();  // a crash belongs to the debugger and to ctest
-    MPI_Comm_rank(PETSC_COMM_WORLD, &rank_);
-  }
-  Session(const Session&) = delete;
-  Session& operator=(const Session&) = delete;
-  ~Session() {
-    report_leaks();
-    PetscFinalize();
-  }
-  int rank() const { return rank_; }
-
- private:
-  int rank_ = 0;
-};
 
 /// Says what failed on a rank other than 0, and nothing else.
 class FailuresOfRank : public testing::EmptyTestEventListener {
@@ -77,6 +37,6 @@ int run_tests(int rank) {
 int main(int argc, char** argv) {
   testing::InitGoogleTest(&argc, argv);
   if (GTEST_FLAG_GET(list_tests)) return RUN_ALL_TESTS();
-  const Session session(argc, argv);
+  const lidwright::Session session(argc, argv);
   return run_tests(session.rank());
 }
