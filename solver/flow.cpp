@@ -134,7 +134,6 @@ FlowReport FlowSolver::solve(const CellField& eta, const std::function<double(Ra
 
 FlowReport FlowSolver::conjugate_gradients(Vec f, CornerField& psi) {
   const Handle<Vec, VecDestroy> x = unknown_vector(power_.decomposition());
-  work_psi_ = psi;
   CornerField start = psi;
   // `to_unknowns` sums the outer wall: leave the common value in one place only.
   for (int j = start.owned().begin; j < start.owned().end; ++j)
@@ -147,9 +146,19 @@ FlowReport FlowSolver::conjugate_gradients(Vec f, CornerField& psi) {
   PetscInt iterations = 0;
   check(KSPGetConvergedReason(ksp_, &reason));
   check(KSPGetIterationNumber(ksp_, &iterations));
+  scale_to_least_power(f, x);
   power_.from_unknowns(x, psi);
   return {reason > 0, static_cast<int>(iterations), static_cast<int>(applications_ - before), false,
           error_};
+}
+
+/// The multiple of a flow with the least power: for it, dissipation equals the work of buoyancy to
+/// round-off. Conjugate gradients alone reach that only from a start at rest.
+void FlowSolver::scale_to_least_power(Vec f, Vec x) {
+  const Handle<Vec, VecDestroy> kx = unknown_vector(power_.decomposition());
+  apply_operator(x, kx);
+  const double twice_power = dot(x, kx);
+  if (twice_power > 0) check(VecScale(x, dot(f, x) / twice_power));
 }
 
 /// The combination of former flows with the least power: a Galerkin projection on their span (after

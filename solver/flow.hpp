@@ -50,6 +50,7 @@ class FlowSolver {
   void remember(const CornerField& psi);
   FlowReport conjugate_gradients(Vec f, CornerField& psi);
   void apply_operator(Vec x, Vec y);
+  void scale_to_least_power(Vec f, Vec x);
   static PetscErrorCode operator_callback(Mat, Vec, Vec);
   static PetscErrorCode factor_callback(PC, Vec, Vec);
   static PetscErrorCode convergence_callback(KSP, PetscInt, PetscReal, KSPConvergedReason*, void*);
