@@ -98,13 +98,15 @@ TEST(ExactExponentialFlow, AgreesWithTheTable) {
   for (const ReferenceRow& row : reference_table("stokes_box.csv")) {
     if (row.text("family") != "exp_z") continue;
     const std::string& c = row.text("case");
-    const double vertical = c.find("sin(2 z)") != c.npos ? 2 : (c.find("sin(2 pi z)") != c.npos ? 2 * pi : pi);
+    const double vertical =
+        c.find("sin(2 z)") != c.npos ? 2 : (c.find("sin(2 pi z)") != c.npos ? 2 * pi : pi);
     const double horizontal = c.find("cos(3 pi x)") != c.npos ? 3 * pi : pi;
     const ExactExponentialFlow exact(vertical, horizontal, named(c, "eta(1)/eta(0)"));
     const double x = row.number("x"), z = row.number("z");
     const double up = std::cos(horizontal * x), side = std::sin(horizontal * x);
     const FlowProfile y = exact(z);
-    EXPECT_NEAR(y.tangential_velocity * side, row.number("u_x"), 1e-14) << c << " " << x << " " << z;
+    EXPECT_NEAR(y.tangential_velocity * side, row.number("u_x"), 1e-14)
+        << c << " " << x << " " << z;
     EXPECT_NEAR(y.normal_velocity * up, row.number("u_z"), 1e-14) << c;
     EXPECT_NEAR(y.normal_stress * up, row.number("szz"), 1e-13) << c;
     EXPECT_NEAR(y.shear_stress * side, row.number("sxz"), 1e-13) << c;

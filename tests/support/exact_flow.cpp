@@ -34,9 +34,7 @@ Matrix4 shell_system(Shape shape, Real n, Real eta) {
   return a;
 }
 
-std::array<int, 2> zero_at_wall(Slip slip) {
-  return {0, slip == Slip::Free ? 3 : 1};
-}
+std::array<int, 2> zero_at_wall(Slip slip) { return {0, slip == Slip::Free ? 3 : 1}; }
 
 TwoPointProfile shell_profile(const ShellForcing& f) {
   const Real begin = std::log(static_cast<Real>(ExactShellFlow::inner_radius));
@@ -56,9 +54,9 @@ TwoPointProfile shell_profile(const ShellForcing& f) {
 /// d/dx of (U, W, sigma_xx, sigma_xz).
 Matrix4 step_system(Real k, Real eta) {
   Matrix4 a;
-  a << 0, -k, 0, 0,               //
-      k, 0, 0, 1 / eta,           //
-      0, 0, 0, -k,                //
+  a << 0, -k, 0, 0,              //
+      k, 0, 0, 1 / eta,          //
+      0, 0, 0, -k,               //
       0, 4 * eta * k * k, k, 0;  //
   return a;
 }
@@ -86,10 +84,10 @@ TwoPointProfile step_profile(Real wave, Real x_step, Real right_viscosity) {
 TwoPointProfile exponential_profile(Real vertical, Real k, Real contrast) {
   const Real b = std::log(contrast) / 2;
   Matrix4 a;
-  a << 0, -k, 0, 0,                //
-      k, 0, 0, 1,                  //
-      0, 0, -2 * b, -k,            //
-      0, 4 * k * k, k, -2 * b;     //
+  a << 0, -k, 0, 0,             //
+      k, 0, 0, 1,               //
+      0, 0, -2 * b, -k,         //
+      0, 4 * k * k, k, -2 * b;  //
   TwoPointProfile::Forcing forcing{Matrix::Zero(4, 2), wave_system(vertical, -2 * b),
                                    Vector::Zero(2)};
   forcing.c(2, 1) = -1;

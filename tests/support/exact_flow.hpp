@@ -8,7 +8,8 @@
 #include "tests/support/two_point_profile.hpp"
 
 /// Analytic Stokes flows, separated as profile times harmonic. Derivations: REFERENCE 4.1 and 4.3
-/// (Euler systems in ln r; 6 x 6 systems in the box); checked against the tables in tests/reference.
+/// (Euler systems in ln r; 6 x 6 systems in the box); checked against the tables in
+/// tests/reference.
 namespace lidwright {
 
 struct FlowProfile {
@@ -23,7 +24,7 @@ struct ShellForcing {
   int n = 2;
   int k = 2;
   Slip inner = Slip::Free, outer = Slip::Free;
-  double jump_at = 0;      ///< radius of the viscosity jump; 0: none
+  double jump_at = 0;          ///< radius of the viscosity jump; 0: none
   double outer_viscosity = 1;  ///< above it; 1 below
 };
 
@@ -43,8 +44,8 @@ class ExactShellFlow {
 };
 
 /// Unit box, free slip on all sides, vertical force f_z.
-/// Step: f_z = sin(n pi z) cos(pi x); eta = 1 for x < x_step, `right_viscosity` beyond. Normal is x:
-/// u_x and sigma_xx go with cos(n pi z), u_z and sigma_xz with sin(n pi z).
+/// Step: f_z = sin(n pi z) cos(pi x); eta = 1 for x < x_step, `right_viscosity` beyond. Normal is
+/// x: u_x and sigma_xx go with cos(n pi z), u_z and sigma_xz with sin(n pi z).
 class ExactStepFlow {
  public:
   ExactStepFlow(int n, double x_step, double right_viscosity);
