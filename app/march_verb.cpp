@@ -8,10 +8,12 @@
 #include <optional>
 
 #include "app/run_summary.hpp"
+#include "app/stop_signals.hpp"
 #include "io/case_file.hpp"
 #include "io/checkpoint.hpp"
 #include "io/collective.hpp"
 #include "io/history.hpp"
+#include "io/picture.hpp"
 #include "io/provenance.hpp"
 #include "io/run_folder.hpp"
 #include "io/snapshot.hpp"
@@ -71,9 +73,14 @@ class Run {
   double share_done() const;
   double next_snapshot_time() const;
   void record_step();
+  void write_snapshot();
   void write_checkpoint_now();
+  void checkpoint_if_due();
   void finish(End);
   static std::string reason(End);
+  static bool complete(End end) {
+    return end == End::Time || end == End::Steps || end == End::Steady;
+  }
 
   const Session& session_;
   Case case_;
@@ -86,7 +93,7 @@ class Run {
   History history_;
   SnapshotWriter snapshots_;
   Progress progress_;
-  long last_checkpoint_ = -1, last_row_ = -1;
+  long last_checkpoint_ = -1;
 };
 
 HistoryRow Run::row() const {
@@ -143,6 +150,15 @@ double Run::next_snapshot_time() const {
   return std::min(next, case_.march.end_time);
 }
 
+void Run::write_snapshot() {
+  const Snapshot snapshot = march_->snapshot(case_.output.normal_stress);
+  const RunPaths& paths = folder_.paths();
+  snapshots_.write(snapshot);
+  if (case_.output.pictures)
+    draw_run(paths.folder + "/" + picture_name(snapshots_.count() - 1), snapshot, paths.history(),
+             case_.title, picture_units(case_.body));
+}
+
 void Run::write_checkpoint_now() {
   if (last_checkpoint_ == march_->steps()) return;
   history_.sync();
@@ -155,37 +171,40 @@ void Run::write_checkpoint_now() {
   last_checkpoint_ = march_->steps();
 }
 
+/// A checkpoint comes after everything that belongs to its step: a resumed run never lacks it.
+void Run::checkpoint_if_due() {
+  const long every = case_.output.checkpoint_every;
+  if (every > 0 && march_->steps() % every == 0) write_checkpoint_now();
+}
+
 void Run::record_step() {
   const long step = march_->steps();
   if (step % case_.output.history_every == 0) {
     const HistoryRow r = row();
     history_.append(r);
-    last_row_ = step;
     progress_.show(r, share_done());
   }
-  if (case_.output.checkpoint_every > 0 && step % case_.output.checkpoint_every == 0)
-    write_checkpoint_now();
 }
 
 void Run::finish(End end) {
   progress_.finish();
   const HistoryRow last = row();
-  if (last_row_ != march_->steps() && end != End::Signal && end != End::WallClock)
-    history_.append(last);
-  const bool complete = end != End::Signal && end != End::WallClock;
-  if (complete) snapshots_.write(march_->snapshot(case_.output.normal_stress));
+  if (complete(end) && history_.last_step() != march_->steps()) history_.append(last);
+  if (complete(end)) write_snapshot();
   write_checkpoint_now();
   provenance_.end_session(march_->steps(), reason(end));
   const std::vector<SummaryEntry> entries = summary_entries(case_, last, reason(end));
   write_summary(session_.comm(), folder_.paths().summary(), entries);
-  if (session_.first())
-    fmt::print("{}\n", summary_for_people(case_, last, reason(end), folder_.paths().folder));
+  if (!session_.first()) return;
+  const std::string& folder = folder_.paths().folder;
+  fmt::print("{}\n", summary_for_people(case_, last, reason(end), folder));
+  if (!complete(end)) fmt::print("  to go on              lidwright march --resume {}\n", folder);
 }
 
 ExitCode Run::go() {
   if (!resumed_) {
     record_step();
-    snapshots_.write(march_->snapshot(case_.output.normal_stress));
+    write_snapshot();
     write_checkpoint_now();
   }
   End end = end_reached();
@@ -194,11 +213,11 @@ ExitCode Run::go() {
     march_->step(until);
     record_step();
     end = end_reached();
-    if (march_->time() >= until && end == End::None)
-      snapshots_.write(march_->snapshot(case_.output.normal_stress));
+    if (march_->time() >= until && !complete(end)) write_snapshot();
+    checkpoint_if_due();
   }
   finish(end);
-  return end == End::Signal || end == End::WallClock ? ExitCode::Interrupted : ExitCode::Done;
+  return complete(end) ? ExitCode::Done : ExitCode::Interrupted;
 }
 
 std::string folder_for(const MarchRequest& request) {
@@ -239,18 +258,31 @@ ExitCode start_new(const Session& session, const MarchRequest& request) {
 }
 
 CheckpointFile chosen_checkpoint(const Session& session, const MarchRequest& request,
-                                 const std::string& folder) {
-  const std::vector<CheckpointFile> found = list_checkpoints(session.comm(), folder);
-  const std::size_t wanted = request.from_previous ? 1 : 0;
-  if (found.size() > wanted) return found[wanted];
-  throw InputError(fmt::format(
-      "{}: holds {} checkpoint{}, none to resume from{}; start the run anew", folder, found.size(),
-      found.size() == 1 ? "" : "s", request.from_previous ? " before the newest" : ""));
+                                 const RunPaths& paths) {
+  const std::vector<CheckpointFile> found = list_checkpoints(session.comm(), paths.checkpoints());
+  if (found.empty())
+    throw InputError(
+        fmt::format("{0}: holds no checkpoint, the run ended before its first one; start it anew "
+                    "with --into {0} --overwrite",
+                    paths.folder));
+  if (request.from_previous && found.size() < 2)
+    throw InputError(
+        fmt::format("{0}: holds one checkpoint only, none before it; resume without "
+                    "--resume-from-previous, or start the run anew with --into {0} --overwrite",
+                    paths.folder));
+  return found[request.from_previous ? 1 : 0];
+}
+
+/// Before anything of the run is changed.
+void refuse_unfit_history(const Session& session, const std::string& path, long step) {
+  on_first_rank<InputError>(session.comm(),
+                            [&] { history_until(read_whole_file(path), step, path); });
 }
 
 ExitCode resume(const Session& session, const MarchRequest& request) {
   RunFolder folder = RunFolder::resume(session.comm(), request.resume);
   const RunPaths& paths = folder.paths();
+  const CheckpointFile checkpoint = chosen_checkpoint(session, request, paths);
   const Case before = shared_case(session.comm(), paths.case_file(), {});
   const Case c = shared_case(session.comm(), paths.case_file(), request.settings);
   if (fingerprint(c) != fingerprint(before))
@@ -258,13 +290,13 @@ ExitCode resume(const Session& session, const MarchRequest& request) {
         "--set: a resumed run may change keys of [march] and [output] only; start a new run, from "
         "this "
         "one's state if you like (initial.from)");
-  const CheckpointFile checkpoint = chosen_checkpoint(session, request, paths.checkpoints());
   const auto decomposition = or_bad_input([&] {
     return std::make_shared<Decomposition>(std::make_shared<Geometry>(c.model.shell, c.model.grid),
                                            session.comm());
   });
   const Archive archive = read_checkpoint(checkpoint.path, decomposition, fingerprint(c));
   auto march = std::make_unique<March>(c.model, c.flow, c.heat, archive, session.comm());
+  refuse_unfit_history(session, paths.history(), checkpoint.step);
   remove_checkpoints_after(session.comm(), paths.checkpoints(), checkpoint.step);
   on_first_rank<OutputError>(session.comm(),
                              [&] { write_atomically(paths.case_file(), write_case(c)); });

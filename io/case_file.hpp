@@ -17,6 +17,7 @@ struct OutputSettings {
   long checkpoint_every = 200;  ///< steps; 0: only at the end
   int checkpoints_kept = 2;     ///< >= 1
   bool normal_stress = true;    ///< pressure and wall normal stress in snapshots
+  bool pictures = true;         ///< a picture with every snapshot
 };
 
 struct Case {

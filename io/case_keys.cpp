@@ -171,6 +171,9 @@ std::vector<Key> output_keys() {
       {.path = "output.normal_stress",
        .access = at(&O::normal_stress),
        .help = "pressure and the walls' normal stress in snapshots"},
+      {.path = "output.pictures",
+       .access = at(&O::pictures),
+       .help = "a picture of the run with every snapshot"},
   };
 }
 

@@ -62,6 +62,13 @@ long step_of(std::string_view line) {
   return error == std::errc() && *end == ',' && line.back() != ',' ? step : -1;
 }
 
+/// Of a text that ends with a whole row or with the head.
+long step_of_last_row(std::string_view text) {
+  text.remove_suffix(1);
+  const std::size_t before = text.rfind('\n');
+  return step_of(text.substr(before + 1));
+}
+
 }  // namespace
 
 std::string history_head() { return table_head(title, columns); }
@@ -138,7 +145,9 @@ History History::resume(MPI_Comm comm, const std::string& path, long step) {
   on_first_rank<OutputError>(comm, [&] {
     if (kept != before) write_atomically(path, kept);
     history.open_for_appending();
+    history.last_step_ = step_of_last_row(kept);
   });
+  MPI_Bcast(&history.last_step_, 1, MPI_LONG, 0, comm);
   return history;
 }
 
@@ -152,6 +161,7 @@ void History::append(const HistoryRow& row) {
       throw OutputError(output_failure(path_, error));
     throw OutputError(output_failure(path_, error));
   });
+  last_step_ = row.step;
 }
 
 void History::sync() {

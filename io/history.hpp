@@ -23,6 +23,9 @@ class History {
   /// InputError when the file is missing or has other columns.
   static History resume(MPI_Comm, const std::string& path, long step);
 
+  /// Step of the last row, -1 while there is none. The same on all ranks.
+  long last_step() const { return last_step_; }
+
   void append(const HistoryRow&);
   void sync();
 
@@ -33,6 +36,7 @@ class History {
   MPI_Comm comm_;
   std::string path_;
   Descriptor file_;  ///< first rank only
+  long last_step_ = -1;
 };
 
 /// The file's head (what stands before the first row) and one row, as text.

@@ -26,8 +26,8 @@ namespace fs = std::filesystem;
 /// How long a process that was killed may need until the system lets go of its lock.
 constexpr std::chrono::seconds patience{2};
 
-std::array<std::string, 4> subfolders(const RunPaths& p) {
-  return {p.fields(), p.walls(), p.profiles(), p.checkpoints()};
+std::array<std::string, 5> subfolders(const RunPaths& p) {
+  return {p.fields(), p.walls(), p.profiles(), p.pictures(), p.checkpoints()};
 }
 
 /// Is it the name of a rank's piece of a snapshot?
@@ -52,6 +52,7 @@ bool own_name(std::string_view name) {
   return std::find(plain.begin(), plain.end(), name) != plain.end() || piece_name(name) ||
          of_snapshot("fields/fields_", ".pvts") || of_snapshot("walls/walls_", ".csv") ||
          of_snapshot("walls/walls_", ".vtp") || of_snapshot("profiles/profiles_", ".csv") ||
+         of_snapshot("pictures/picture_", ".png") ||
          numbered(name, "checkpoints/step_", checkpoint_digits, ".h5");
 }
 
@@ -78,7 +79,9 @@ void refuse_unless_free(const RunPaths& paths, ExistingRun existing) {
                     "with it by --resume {0}, or replace it with --overwrite",
                     paths.folder));
   }
-  const std::vector<std::string> names = own_files(paths);
+  std::vector<std::string> names = own_files(paths);
+  // What was never completed is nobody's result: a run that was killed right at its start.
+  std::erase_if(names, [](const std::string& name) { return name.ends_with(partial_suffix); });
   if (!names.empty())
     throw InputError(fmt::format(
         "{}: holds {}, which a run would overwrite, but is not the folder of a run; move it "
@@ -192,6 +195,8 @@ RunFolder RunFolder::create(MPI_Comm comm, const std::string& path, ExistingRun 
   on_first_rank<OutputError>(comm, [&] {
     make_folders(run.paths_);
     remove_run(run.paths_);
+    // First of all files, so that a run that is killed at any moment is known as one.
+    write_atomically(run.paths_.provenance(), provenance_mark);
   });
   on_first_rank<InputError>(comm, [&] {
     if (run.lock_ < 0) run.lock();

@@ -26,6 +26,7 @@ struct RunPaths {
   std::string fields() const { return folder + "/fields"; }
   std::string walls() const { return folder + "/walls"; }
   std::string profiles() const { return folder + "/profiles"; }
+  std::string pictures() const { return folder + "/pictures"; }
   std::string checkpoints() const { return folder + "/checkpoints"; }
 };
 

@@ -30,7 +30,8 @@ std::string profiles_name(std::size_t n) { return fmt::format("profiles/profiles
 
 /// The number of the snapshot that one of the run's files belongs to, nothing for other files.
 std::optional<long> snapshot_of(std::string_view file) {
-  for (const std::string_view stem : {"fields/fields_", "walls/walls_", "profiles/profiles_"}) {
+  for (const std::string_view stem :
+       {"fields/fields_", "walls/walls_", "profiles/profiles_", "pictures/picture_"}) {
     const std::size_t end = file.find_first_of("_.", std::min(stem.size(), file.size()));
     if (const auto number = numbered(file.substr(0, end), stem, snapshot_digits, "")) return number;
   }

@@ -1,0 +1,88 @@
+#pragma once
+
+#include <cairo.h>
+
+#include <memory>
+#include <string>
+#include <vector>
+
+#include "io/colour_map.hpp"
+
+/// A page to draw on: Cairo and Pango, with owners. Lengths are pixels, y counts downwards.
+namespace lidwright::plot {
+
+struct Place {
+  double x, y;
+};
+
+struct Frame {
+  double left, top, width, height;
+  double right() const { return left + width; }
+  double bottom() const { return top + height; }
+  Place middle() const { return {left + width / 2, top + height / 2}; }
+};
+
+enum class Weight { Normal, Bold };
+
+struct TextStyle {
+  double size = 14;
+  Colour colour{0.13, 0.15, 0.19};
+  Weight weight = Weight::Normal;
+  double widest = 0;  ///< what does not fit is left out with an ellipsis; 0: no limit
+};
+
+/// Which point of the text stands at the place given: 0 left or top, 1 right or bottom.
+struct Anchor {
+  double across = 0, down = 0;
+};
+
+struct Line {
+  Colour colour;
+  double width = 1;
+  double opacity = 1;
+};
+
+class Canvas {
+ public:
+  /// White. Throws std::runtime_error when there is no memory or no font.
+  Canvas(int width, int height);
+
+  cairo_t* context() { return context_.get(); }
+  Frame page() const { return {0, 0, width_, height_}; }
+
+  void text(const std::string& markup, Place, Anchor, const TextStyle&);
+  /// Read from bottom to top; the place is its middle.
+  void upright_text(const std::string& markup, Place, const TextStyle&);
+  double text_width(const std::string& markup, const TextStyle&);
+
+  void line(const std::vector<Place>&, const Line&);
+  void frame(const Frame&, const Line&);
+  /// Draws the current path.
+  void stroke(const Line&);
+  void clip_to(const Frame&);
+
+  /// The page as the bytes of a PNG file. Throws std::runtime_error when Cairo failed anywhere.
+  std::string png();
+
+ private:
+  double width_, height_;
+  std::unique_ptr<cairo_surface_t, void (*)(cairo_surface_t*)> surface_;
+  std::unique_ptr<cairo_t, void (*)(cairo_t*)> context_;
+};
+
+/// What stands in markup as the plain text given.
+std::string as_markup(const std::string& plain);
+
+/// Keeps the context's state (clip, transformation) and restores it at the end.
+class Saved {
+ public:
+  explicit Saved(Canvas& canvas) : context_(canvas.context()) { cairo_save(context_); }
+  Saved(const Saved&) = delete;
+  Saved& operator=(const Saved&) = delete;
+  ~Saved() { cairo_restore(context_); }
+
+ private:
+  cairo_t* context_;
+};
+
+}  // namespace lidwright::plot

@@ -1,0 +1,279 @@
+#include "io/picture.hpp"
+
+#include <fmt/format.h>
+
+#include <algorithm>
+#include <charconv>
+#include <cmath>
+#include <stdexcept>
+#include <string_view>
+
+#include "io/collective.hpp"
+#include "io/picture_layout.hpp"
+#include "io/plot_chart.hpp"
+#include "io/run_folder.hpp"
+#include "io/shell_map.hpp"
+#include "mesh/gather.hpp"
+
+namespace lidwright {
+namespace {
+
+using namespace plot;
+
+constexpr Colour outer_ink{0.05, 0.38, 0.52}, inner_ink{0.83, 0.27, 0.24},
+    profile_ink{0.2, 0.2, 0.28};
+
+/// Cuts the text before the next `end` off `rest`.
+std::string_view next_part(std::string_view& rest, char end) {
+  const std::size_t at = rest.find(end);
+  const std::string_view part = rest.substr(0, at);
+  rest.remove_prefix(at == std::string_view::npos ? rest.size() : at + 1);
+  return part;
+}
+
+std::vector<std::string_view> parts(std::string_view line) {
+  std::vector<std::string_view> all;
+  while (!line.empty()) all.push_back(next_part(line, ','));
+  return all;
+}
+
+std::size_t column_of(const std::vector<std::string_view>& names, std::string_view name) {
+  const auto found = std::find(names.begin(), names.end(), name);
+  if (found == names.end())
+    throw std::runtime_error(fmt::format("the history has no column '{}'", name));
+  return static_cast<std::size_t>(found - names.begin());
+}
+
+double number(std::string_view text) {
+  double value = std::nan("");
+  std::from_chars(text.data(), text.data() + text.size(), value);
+  return value;
+}
+
+/// Four digits, as markup.
+std::string digits_of(double value) {
+  if (value == 0 || std::abs(value) >= 1e-3) return fmt::format("{:.4g}", value);
+  const int exponent = static_cast<int>(std::floor(std::log10(std::abs(value))));
+  return fmt::format("{:.4g} \u00d7 {}", value / std::pow(10.0, exponent), power_of_ten(exponent));
+}
+
+void draw_heading(Canvas& canvas, const PictureContents& c) {
+  canvas.text(as_markup(c.title.empty() ? "Convection in time" : c.title), {page_border, 20},
+              {0, 0}, {27, ink, Weight::Bold, picture_width - 2 * page_border});
+  canvas.text(fmt::format("time {} {}   \u00b7   step {}", digits_of(c.units.time(c.time)),
+                          c.units.time.unit, c.step),
+              {page_border, 58}, {0, 0}, {18, faint_ink});
+}
+
+Interval shown_span(const PictureContents& c) {
+  const TemperatureSpan span = temperature_span(c);
+  return {c.units.temperature(span.low), c.units.temperature(span.high)};
+}
+
+void draw_shell(Canvas& canvas, const PictureContents& c, const PictureLayout& layout) {
+  const ShellMap map(c.geometry, layout.shell);
+  const TemperatureSpan span = temperature_span(c);
+  const Interval range{span.low, span.high};
+  draw_cells(canvas, map, c.temperature, range);
+  draw_flow_lines(canvas, map, c.stream_function, c.temperature, range);
+  draw_outline(canvas, map);
+  draw_colour_bar(canvas, linear_axis(shown_span(c), 8),
+                  Label{"temperature", c.units.temperature.unit}, layout.colour_bar);
+}
+
+std::vector<double> speed(const RadialProfiles& p) {
+  std::vector<double> all;
+  for (std::size_t k = 0; k < p.radius.size(); ++k)
+    all.push_back(std::hypot(p.velocity_radial_rms[k], p.velocity_lateral_rms[k]));
+  return all;
+}
+
+std::vector<double> depths(const PictureContents& c) {
+  std::vector<double> all;
+  for (const double radius : c.profiles.radius)
+    all.push_back(c.units.length(c.geometry.outer_radius() - radius));
+  return all;
+}
+
+Chart profile_chart(const PictureContents& c, const Label& label, const Axis& axis,
+                    std::vector<double> values, const PictureLayout& layout) {
+  const double thickness = c.geometry.outer_radius() - c.geometry.inner_radius();
+  Chart chart;
+  chart.x_label = label;
+  chart.y_label = Label{"depth", c.units.length.unit};
+  chart.x = axis;
+  chart.y = linear_axis({0, c.units.length(thickness)}, ticks_upright(layout.profiles[0]));
+  chart.curves = {{std::move(values), depths(c), profile_ink, ""}};
+  chart.y_downwards = true;
+  chart.overhang = 6;
+  return chart;
+}
+
+Axis from_zero(const std::vector<double>& values, int most) {
+  const double high = range_of(values).high;
+  return linear_axis({0, high > 0 ? 1.06 * high : 1}, most);
+}
+
+bool viscosity_varies(const PictureContents& c) {
+  const Interval r = range_of(c.profiles.viscosity);
+  return r.low > 0 && r.high > 1.01 * r.low;
+}
+
+std::vector<Chart> profile_charts(const PictureContents& c, const PictureLayout& layout) {
+  const int most = ticks_across(layout.profiles[0]);
+  const std::vector<double> velocity = c.units.velocity(speed(c.profiles));
+  std::vector<Chart> charts{profile_chart(c, Label{"temperature", c.units.temperature.unit},
+                                          linear_axis(with_margin(shown_span(c), 0.03), most),
+                                          c.units.temperature(c.profiles.temperature), layout),
+                            profile_chart(c, Label{"rms velocity", c.units.velocity.unit},
+                                          from_zero(velocity, most), velocity, layout)};
+  if (viscosity_varies(c)) {
+    const std::vector<double> viscosity = c.units.viscosity(c.profiles.viscosity);
+    charts.push_back(profile_chart(c, Label{"viscosity", c.units.viscosity.unit},
+                                   logarithmic_axis(range_of(viscosity), most), viscosity, layout));
+  }
+  charts.front().title = "Means at each depth";
+  for (std::size_t k = 1; k < charts.size(); ++k) charts[k].y_labels = false;
+  return charts;
+}
+
+/// Interval of both curves from a row on.
+Interval nusselt_range(const HeatFlowHistory& h, std::size_t first) {
+  const auto later = [&](const std::vector<double>& all) {
+    return range_of({all.begin() + static_cast<std::ptrdiff_t>(first), all.end()});
+  };
+  Interval range = later(h.nusselt_outer);
+  const Interval other = later(h.nusselt_inner);
+  range.include(other.low);
+  range.include(other.high);
+  return range;
+}
+
+/// Of all rows; a start that would dwarf what follows may leave the frame.
+Interval shown_nusselt_range(const HeatFlowHistory& h) {
+  const double early = h.time.front() + 0.1 * (h.time.back() - h.time.front());
+  const auto first = static_cast<std::size_t>(
+      std::lower_bound(h.time.begin(), h.time.end(), early) - h.time.begin());
+  const Interval all = nusselt_range(h, 0), later = nusselt_range(h, first);
+  const bool dwarfed = all.high - all.low > 2 * (later.high - later.low);
+  return {all.low, dwarfed ? later.high : all.high};
+}
+
+Curve history_curve(const PictureContents& c, const std::vector<double>& nusselt, Colour colour,
+                    const std::string& name, double width) {
+  return thinned({c.units.time(c.history.time), nusselt, colour, name, width}, 2000);
+}
+
+/// Where both walls lose the same heat, the wider curve shows on both sides of the other.
+std::vector<Curve> heat_flow_curves(const PictureContents& c) {
+  return {history_curve(c, c.history.nusselt_outer, outer_ink, "outer wall", 3.5),
+          history_curve(c, c.history.nusselt_inner, inner_ink, "inner wall", 1.8)};
+}
+
+Chart heat_flow_chart(const PictureContents& c, const Frame& f) {
+  const std::vector<double>& time = c.history.time;
+  Chart chart;
+  chart.title = "Heat flow";
+  chart.x_label = {"time", c.units.time.unit};
+  chart.y_label = {"Nusselt number", ""};
+  if (time.size() < 2 || !(time.back() > time.front())) {
+    chart.note = "the run begins";
+    return chart;
+  }
+  chart.x = linear_axis({c.units.time(time.front()), c.units.time(time.back())}, ticks_across(f));
+  chart.y = linear_axis(with_margin(shown_nusselt_range(c.history), 0.06), ticks_upright(f));
+  chart.curves = heat_flow_curves(c);
+  return chart;
+}
+
+void draw_charts(Canvas& canvas, const PictureContents& c, const PictureLayout& layout) {
+  const std::vector<Chart> charts = profile_charts(c, layout);
+  for (std::size_t k = 0; k < charts.size(); ++k) draw(canvas, charts[k], layout.profiles[k]);
+  draw(canvas, heat_flow_chart(c, layout.history), layout.history);
+}
+
+}  // namespace
+
+HeatFlowHistory heat_flow_history(const std::string& text) {
+  std::string_view rest = text;
+  std::string_view head = next_part(rest, '\n');
+  while (head.starts_with('#')) head = next_part(rest, '\n');
+  const std::vector<std::string_view> names = parts(head);
+  HeatFlowHistory h;
+  const auto read = [&](const std::vector<std::string_view>& row, std::string_view name,
+                        std::vector<double>& to) {
+    to.push_back(number(row[column_of(names, name)]));
+  };
+  while (rest.find('\n') != std::string_view::npos) {
+    const std::vector<std::string_view> row = parts(next_part(rest, '\n'));
+    if (row.size() != names.size()) continue;
+    read(row, "time", h.time);
+    read(row, "nusselt_inner", h.nusselt_inner);
+    read(row, "nusselt_outer", h.nusselt_outer);
+    read(row, "temperature_inner", h.temperature_inner);
+    read(row, "temperature_outer", h.temperature_outer);
+  }
+  return h;
+}
+
+std::vector<double> Shown::operator()(const std::vector<double>& values) const {
+  std::vector<double> shown;
+  for (const double value : values) shown.push_back((*this)(value));
+  return shown;
+}
+
+PictureUnits picture_units(const std::optional<Body>& body) {
+  if (!body)
+    return {{1, 0, "<i>d</i>"},
+            {1, 0, "\u0394<i>T</i>"},
+            {1, 0, "<i>d</i>\u00b2/<i>\u03ba</i>"},
+            {1, 0, "<i>\u03ba</i>/<i>d</i>"},
+            {1, 0, "<i>\u03b7</i><sub>ref</sub>"}};
+  const Scales s = scales_of(*body);
+  return {{s.length / 1e3, 0, "km"},
+          {s.temperature, body->surface_temperature, "K"},
+          {s.time / million_years, 0, "Myr"},
+          {s.velocity * 1e3 * year, 0, "mm/yr"},
+          {s.viscosity, 0, "Pa s"}};
+}
+
+TemperatureSpan temperature_span(const PictureContents& c) {
+  Interval range = range_of(c.temperature);
+  for (const auto* wall : {&c.history.temperature_inner, &c.history.temperature_outer})
+    if (!wall->empty()) range.include(wall->back());
+  if (range.empty()) range = with_margin(range, 0);
+  return {range.low, range.high};
+}
+
+std::string picture(const PictureContents& c) {
+  Canvas canvas(picture_width, picture_height);
+  const PictureLayout layout =
+      layout_for(extent_of(c.geometry), canvas.page(), viscosity_varies(c) ? 3 : 2);
+  draw_heading(canvas, c);
+  draw_shell(canvas, c, layout);
+  draw_charts(canvas, c, layout);
+  return canvas.png();
+}
+
+void draw_run(const std::string& path, const Snapshot& s, const std::string& history_path,
+              const std::string& title, const PictureUnits& units) {
+  const Decomposition& d = s.temperature.decomposition();
+  std::vector<double> temperature = gather_to_first(s.temperature);
+  std::vector<double> stream_function = gather_to_first(s.stream_function);
+  on_first_rank<OutputError>(d.comm(), [&] {
+    const PictureContents contents{title,
+                                   s.step,
+                                   s.time,
+                                   d.geometry(),
+                                   std::move(temperature),
+                                   std::move(stream_function),
+                                   s.profiles,
+                                   heat_flow_history(read_whole_file(history_path)),
+                                   units};
+    write_atomically(path, picture(contents));
+  });
+}
+
+std::string picture_name(std::size_t n) { return fmt::format("pictures/picture_{:04}.png", n); }
+
+}  // namespace lidwright

@@ -1,0 +1,64 @@
+#pragma once
+
+#include <vector>
+
+#include "io/canvas.hpp"
+#include "io/plot_axis.hpp"
+#include "mesh/geometry.hpp"
+
+/// A shell on a page, in its true proportions: x to the right, y (or the axis of symmetry) upwards.
+namespace lidwright::plot {
+
+/// The smallest upright rectangle around a shell, in its own coordinates.
+struct Extent {
+  Interval x, y;
+  double width() const { return x.high - x.low; }
+  double height() const { return y.high - y.low; }
+};
+Extent extent_of(const Geometry&);
+
+struct ShellPlace {
+  double radius, lateral;
+};
+
+class ShellMap {
+ public:
+  /// As large as fits into the frame, in its middle.
+  ShellMap(const Geometry&, const Frame&);
+
+  Place on_page(double radius, double lateral) const;
+  /// The reverse, moved to the nearest place within the shell.
+  ShellPlace in_shell(Place) const;
+  /// The rectangle that the shell fills.
+  Frame frame() const { return frame_; }
+  double pixels_per_thickness() const { return scale_; }
+  const Geometry& geometry() const { return geometry_; }
+
+  /// The outline as the canvas's path, to be clipped to (even-odd) or stroked.
+  void trace_outline(Canvas&) const;
+
+ private:
+  double page_angle(double lateral) const;
+  void trace_arc(Canvas&, double radius, double from, double to) const;
+
+  const Geometry& geometry_;
+  Extent extent_;
+  double scale_;
+  Frame frame_;
+};
+
+/// Numbers in cells, column by column, radial index fastest, as colours over `range`; a cell is
+/// drawn as the region between its faces.
+void draw_cells(Canvas&, const ShellMap&, const std::vector<double>& cells, const Interval& range);
+
+/// A few lines of flow: equal steps of the stream function, dark on light and light on dark ground.
+/// Numbers at corners, column by column.
+void draw_flow_lines(Canvas&, const ShellMap&, const std::vector<double>& stream_function,
+                     const std::vector<double>& cells, const Interval& range);
+
+void draw_outline(Canvas&, const ShellMap&);
+
+/// An upright bar with the colours of the range, its axis to the right and its title above.
+void draw_colour_bar(Canvas&, const Axis&, const Label&, const Frame&);
+
+}  // namespace lidwright::plot
