@@ -83,7 +83,7 @@ std::vector<Key> flow_keys() {
       {.path = "flow.refactor_cost",
        .access = at(&F::refactor_cost),
        .range = not_negative,
-       .help = "cost of a factorisation in applications of the factor; 0: estimated"},
+       .help = "cost of a factorisation in applications of the factor: when a new one pays"},
   };
 }
 

@@ -19,7 +19,7 @@ namespace {
 
 constexpr std::string_view title = "lidwright history";
 
-constexpr std::array<Column, 24> columns{{
+constexpr std::array<Column, 25> columns{{
     {"step", "1", "number of the time step; 0 is the start"},
     {"time", "d^2/kappa", "time at the end of the step"},
     {"time_step", "d^2/kappa", "length of the step"},
@@ -41,6 +41,8 @@ constexpr std::array<Column, 24> columns{{
     {"buoyancy_work", "eta kappa^2 d^(n-4)",
      "integral of Ra g T u_r over the volume, > 0 drives the flow"},
     {"work_mismatch", "1", "(dissipation - buoyancy_work) / buoyancy_work"},
+    {"flow_error", "1",
+     "relative velocity error in the dissipation norm, as the solver estimates it"},
     {"heat_source", "k DeltaT d^(n-2)", "integral of the internal heating over the volume"},
     {"heat_budget_residual", "1",
      "of the last step: change of heat content less wall flows and sources, over the largest of "
@@ -92,6 +94,7 @@ std::string history_row(const HistoryRow& r) {
                                                    r.dissipation,
                                                    r.buoyancy_work,
                                                    r.work_mismatch,
+                                                   r.flow_error,
                                                    r.heat_source,
                                                    r.heat_budget_residual,
                                                    r.temperature_change_rate,

@@ -148,6 +148,7 @@ HistoryRow March::row() const {
   row.buoyancy_work = buoyancy_work(power, psi_, buoyancy());
   row.work_mismatch =
       row.buoyancy_work != 0 ? (row.dissipation - row.buoyancy_work) / row.buoyancy_work : 0;
+  row.flow_error = flow_.last_error();
   row.heat_source = stepper_.heat().total_source();
   row.heat_budget_residual = budget_residual_;
   row.temperature_change_rate = steps_ > 0 ? change_rate_ : 0;

@@ -26,7 +26,9 @@ struct HistoryRow {
   double dissipation = 0;    ///< integral of tau : e, units eta kappa^2 d^(n-4)
   double buoyancy_work = 0;  ///< integral of Ra g T u_r, same units
   double work_mismatch = 0;  ///< (dissipation - work) / work
-  double heat_source = 0;    ///< integral of H
+  double flow_error =
+      0;  ///< relative velocity error in the dissipation norm, as the solver estimates it
+  double heat_source = 0;  ///< integral of H
   double heat_budget_residual =
       0;  ///< of the last step: (change of content - flows - sources) / largest of them
   double temperature_change_rate = 0;  ///< volume rms of dT/dt over the last step

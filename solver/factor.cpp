@@ -2,8 +2,7 @@
 
 #include <cblas.h>
 #include <cholmod.h>
-
-#include <algorithm>
+#include <omp.h>
 
 #include "mesh/gather.hpp"
 #include "solver/solve_error.hpp"
@@ -11,10 +10,6 @@
 
 namespace lidwright {
 namespace {
-
-/// A dense kernel's speed over the speed of streaming the factor, in operations per number
-/// streamed: turns operation counts into applications (measured, docs/performance.md).
-constexpr double operations_per_streamed_number = 12;
 
 /// Adds the wall time of its life to a sum.
 class Stopwatch {
@@ -29,15 +24,13 @@ class Stopwatch {
   double start_;
 };
 
-/// One BLAS thread but for factorisations of a run on one rank: a solve's blocks are too small to
-/// share out.
-class BlasThreads {
- public:
-  explicit BlasThreads(int threads) { openblas_set_num_threads(threads); }
-  ~BlasThreads() { openblas_set_num_threads(1); }
-  BlasThreads(const BlasThreads&) = delete;
-  BlasThreads& operator=(const BlasThreads&) = delete;
-};
+/// One thread, for BLAS and for CHOLMOD's own loops: its blocks are too small to share out, and the
+/// four threads it asks for, whatever OMP_NUM_THREADS says, double the time of a factorisation on
+/// two cores (docs/performance.md).
+void use_one_thread() {
+  openblas_set_num_threads(1);
+  omp_set_max_active_levels(0);
+}
 
 }  // namespace
 
@@ -47,8 +40,7 @@ struct Factor::Impl {
                                              MPI_COMM_SELF)),
         serial(mesh, walls_of(power)),
         stencil(serial) {
-    threads = power.decomposition().ranks() == 1 ? openblas_get_num_threads() : 1;
-    openblas_set_num_threads(1);
+    use_one_thread();
     cholmod_l_start(&common);
     common.supernodal = CHOLMOD_SUPERNODAL;
     common.nmethods = 1;
@@ -94,7 +86,6 @@ struct Factor::Impl {
     scatter_from_first(viscosity, eta);
     serial.set_viscosity(eta);
     stencil.assemble(serial);
-    const BlasThreads all(threads);
     const bool done = cholmod_l_factorize(&matrix, factor, &common) && common.status == CHOLMOD_OK;
     return done && factor->minor == factor->n;
   }
@@ -120,7 +111,6 @@ struct Factor::Impl {
   std::shared_ptr<const Decomposition> mesh;
   Power serial;
   StencilMatrix stencil;
-  int threads = 1;
   cholmod_common common{};
   cholmod_sparse matrix{};
   cholmod_factor* factor = nullptr;
@@ -129,15 +119,13 @@ struct Factor::Impl {
 };
 
 Factor::Factor(const Power& shape) : decomposition_(shape.decomposition_pointer()) {
-  double facts[2] = {0, 0};
+  double nonzeros = 0;
   if (decomposition_->rank() == 0) {
     impl_ = std::make_unique<Impl>(shape);
-    facts[0] = impl_->common.lnz;
-    facts[1] = impl_->common.fl;
+    nonzeros = impl_->common.lnz;
   }
-  MPI_Bcast(facts, 2, MPI_DOUBLE, 0, decomposition_->comm());
-  nonzeros_ = facts[0];
-  cost_ = std::max(1.0, facts[1] / (2 * facts[0] * operations_per_streamed_number));
+  MPI_Bcast(&nonzeros, 1, MPI_DOUBLE, 0, decomposition_->comm());
+  nonzeros_ = nonzeros;
 }
 
 Factor::~Factor() = default;

@@ -30,9 +30,6 @@ class Factor {
   /// Viscosity at the last factorisation.
   const CellField& viscosity() const { return viscosity_; }
   bool ready() const { return !viscosity_.empty(); }
-  /// Estimated cost of a factorisation in applications, from operation counts, so that it is the
-  /// same in every run (a measured one would make a restart differ). Same on all ranks.
-  double cost_in_applications() const { return cost_; }
   double nonzeros() const { return nonzeros_; }
   /// Bytes of the factor as stored (with the zeros that make its columns into dense blocks), on
   /// rank 0.
@@ -47,7 +44,7 @@ class Factor {
   std::shared_ptr<const Decomposition> decomposition_;
   std::unique_ptr<Impl> impl_;  ///< rank 0 only
   CellField viscosity_;
-  double cost_ = 1, nonzeros_ = 0;
+  double nonzeros_ = 0;
   double seconds_factorising_ = 0, seconds_applying_ = 0;
 };
 

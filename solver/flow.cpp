@@ -97,9 +97,7 @@ void FlowSolver::refactor() {
 bool FlowSolver::factor_is_stale() const {
   if (!factor_.ready()) return true;
   if (!viscosity_changed_ || solves_ < 2) return false;
-  const double factorisation =
-      settings_.refactor_cost > 0 ? settings_.refactor_cost : factor_.cost_in_applications();
-  return last_cost_ > (factorisation + spent_) / static_cast<double>(solves_);
+  return last_cost_ > (settings_.refactor_cost + spent_) / static_cast<double>(solves_);
 }
 
 FlowReport FlowSolver::solve(const CellField& eta, const std::function<double(RadialFace)>& b,
@@ -233,6 +231,7 @@ void FlowSolver::save(Archive& archive) const {
   archive.numbers["flow.factorisations"] = static_cast<double>(factorisations_);
   archive.numbers["flow.spent"] = spent_;
   archive.numbers["flow.last_cost"] = last_cost_;
+  archive.numbers["flow.error"] = error_;
   archive.numbers["flow.solves"] = static_cast<double>(solves_);
 }
 
@@ -250,6 +249,7 @@ void FlowSolver::restore(const Archive& archive) {
   factorisations_ = static_cast<long>(archive.numbers.at("flow.factorisations"));
   spent_ = archive.numbers.at("flow.spent");
   last_cost_ = archive.numbers.at("flow.last_cost");
+  error_ = archive.numbers.at("flow.error");
   solves_ = static_cast<long>(archive.numbers.at("flow.solves"));
 }
 

@@ -36,6 +36,8 @@ class FlowSolver {
   long applications() const { return applications_; }
   long factorisations() const { return factorisations_; }
   const Factor& factor() const { return factor_; }
+  /// Estimated error of the last solve: FlowReport::error.
+  double last_error() const { return error_; }
   /// Forgets former flows (after a jump in the state); the factor stays.
   void forget();
 

@@ -49,8 +49,7 @@ struct FlowSettings {
   double tolerance = 1e-6;    ///< relative velocity error in the dissipation norm, in (0, 0.1]
   int most_iterations = 200;  ///< of CG with a fresh factor, >= 1
   int memory = 4;             ///< former flows from which a solve starts, 1 to 8
-  double refactor_cost =
-      0;  ///< cost of a factorisation in applications; 0: estimated from the factor
+  double refactor_cost = 20;  ///< cost of a factorisation in applications of the factor, >= 0
 };
 
 enum class HeatFlux { Central, Limited };

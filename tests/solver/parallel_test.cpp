@@ -124,6 +124,7 @@ TEST_P(ParallelMarch, GoesOnFromAnArchiveBitForBit) {
     ASSERT_EQ(physics_of(a), physics_of(b)) << "step " << n;
     ASSERT_EQ(a.heat_budget_residual, b.heat_budget_residual);
     ASSERT_EQ(a.work_mismatch, b.work_mismatch);
+    ASSERT_EQ(a.flow_error, b.flow_error);
     ASSERT_EQ(a.step, b.step);
     ASSERT_EQ(a.applications, b.applications);
     ASSERT_EQ(a.factorisations, b.factorisations);
