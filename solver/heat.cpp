@@ -245,19 +245,30 @@ void ImplicitConduction::set_lines(double tau) {
     }
 }
 
-void ImplicitConduction::solve_lines(const std::vector<double>& r, std::vector<double>& z) const {
+/// Solves `lines` neighbouring lines side by side, which hides the latency of their recurrences.
+template <std::size_t lines>
+void ImplicitConduction::solve_together(std::size_t first, const double* r, double* z) const {
   const auto rows = static_cast<std::size_t>(heat_.geometry().radial_cells());
-  for (std::size_t line = 0; line < r.size(); line += rows) {
-    z[line] = r[line] * inverse_pivot_[line];
-    for (std::size_t n = line + 1; n < line + rows; ++n)
-      z[n] = (r[n] + above_[n - 1] * z[n - 1]) * inverse_pivot_[n];
-    for (std::size_t n = line + rows - 1; n-- > line;)
-      z[n] += above_[n] * inverse_pivot_[n] * z[n + 1];
-  }
+  for (std::size_t k = first; k < first + lines * rows; k += rows) z[k] = r[k] * inverse_pivot_[k];
+  for (std::size_t n = first + 1; n < first + rows; ++n)
+    for (std::size_t k = n; k < n + lines * rows; k += rows)
+      z[k] = (r[k] + above_[k - 1] * z[k - 1]) * inverse_pivot_[k];
+  for (std::size_t n = first + rows - 1; n-- > first;)
+    for (std::size_t k = n; k < n + lines * rows; k += rows)
+      z[k] += above_[k] * inverse_pivot_[k] * z[k + 1];
+}
+
+void ImplicitConduction::solve_lines(const std::vector<double>& r, std::vector<double>& z) const {
+  constexpr std::size_t together = 8;
+  const auto rows = static_cast<std::size_t>(heat_.geometry().radial_cells());
+  std::size_t line = 0;
+  for (; line + together * rows <= r.size(); line += together * rows)
+    solve_together<together>(line, r.data(), z.data());
+  for (; line < r.size(); line += rows) solve_together<1>(line, r.data(), z.data());
 }
 
 void ImplicitConduction::solve(double tau, const CellField& right, CellField& temperature) {
-  constexpr double tolerance = 1e-13;
+  constexpr double tolerance = 1e-12;
   constexpr int most_iterations = 2000;
   set_lines(tau);
   const Decomposition& d = heat_.decomposition();
@@ -345,21 +356,24 @@ WallHeat HeatStepper::step(const CellField& temperature, const CornerField& psi_
   CornerField psi_between = psi_now;
   for (std::size_t k = 0; k < psi_between.values().size(); ++k)
     psi_between.values()[k] += 2 * g * (psi_then.values()[k] - psi_now.values()[k]);
-  CellField right(temperature.decomposition_pointer()), middle = temperature;
+  CellField right(temperature.decomposition_pointer()), middle(temperature.decomposition_pointer());
 
   const Stage one = stage(temperature, psi_now);
   each([&](Cell c) {
     right[c] = geometry.volume(c) * temperature[c] +
                dt * (2 * g * one.advection[c] + g * one.conduction[c]);
+    middle[c] = temperature[c] +
+                2 * g * dt * (one.advection[c] + one.conduction[c]) * geometry.inverse_volume(c);
   });
   implicit_.solve(g * dt, right, middle);
   const Stage two = stage(middle, psi_between);
+  CellField last(temperature.decomposition_pointer());
   each([&](Cell c) {
     right[c] =
         geometry.volume(c) * temperature[c] + dt * ((one.advection[c] + two.advection[c]) / 2 +
                                                     b * (one.conduction[c] + two.conduction[c]));
+    last[c] = temperature[c] + (middle[c] - temperature[c]) / (2 * g);
   });
-  CellField last = middle;
   implicit_.solve(g * dt, right, last);
   const Stage three = stage(last, psi_then);
   next = temperature;

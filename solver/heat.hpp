@@ -83,6 +83,8 @@ class ImplicitConduction {
  private:
   void set_lines(double tau);
   void solve_lines(const std::vector<double>& r, std::vector<double>& z) const;
+  template <std::size_t lines>
+  void solve_together(std::size_t first, const double* r, double* z) const;
   void apply(double tau, CellField& x, std::vector<double>& y) const;
 
   const HeatOperator& heat_;
