@@ -3,13 +3,15 @@
 #include <CLI/CLI.hpp>
 #include <cstdio>
 #include <exception>
+#include <memory>
+#include <sstream>
 
 #include "app/exit_code.hpp"
 #include "app/march_verb.hpp"
-#include "app/session.hpp"
 #include "io/atomic_file.hpp"
 #include "io/case_file.hpp"
 #include "io/provenance.hpp"
+#include "mesh/session.hpp"
 #include "solver/march.hpp"
 
 /// lidwright VERB ...: reads the command line, runs the verb, turns what was thrown into one
@@ -17,15 +19,38 @@
 namespace lidwright {
 namespace {
 
+/// Help without the library's notes on types and on which options go together: the line says it.
+class PlainHelp : public CLI::Formatter {
+ public:
+  PlainHelp() {
+    column_width(28);
+    label("SUBCOMMAND", "VERB");
+  }
+  std::string make_option_opts(const CLI::Option* option) const override {
+    const std::string type = option->get_type_name();
+    return type.empty() || option->get_positional() ? "" : " " + type;
+  }
+  std::string make_usage(const CLI::App* app, std::string name) const override {
+    if (app->get_name() == "march")
+      return "Usage: lidwright march CASE [OPTIONS]\n"
+             "       lidwright march --resume FOLDER [OPTIONS]\n";
+    return CLI::Formatter::make_usage(app, std::move(name));
+  }
+};
+
 void add_march(CLI::App& app, MarchRequest& request) {
-  CLI::App* verb = app.add_subcommand("march", "Run a case in time");
+  CLI::App* verb = app.add_subcommand("march", "Run a case in time")->group("Verbs");
   auto* case_file =
       verb->add_option("CASE", request.case_file, "Case file (TOML); see `lidwright keys`");
-  verb->add_option("--set", request.settings,
-                   "Change a key of the case: table.key=value (repeatable)")
-      ->allow_extra_args(false);
-  auto* into = verb->add_option("--into", request.into, "Run folder [runs/NAME of the case file]");
-  auto* resume = verb->add_option("--resume", request.resume, "Go on with the run in this folder");
+  verb->add_option("--set", request.settings, "Change a key of the case; may be repeated")
+      ->allow_extra_args(false)
+      ->type_name("TABLE.KEY=VALUE");
+  auto* into = verb->add_option("--into", request.into, "Run folder [runs/NAME of the case file]")
+                   ->type_name("FOLDER");
+  auto* resume = verb->add_option("--resume", request.resume,
+                                  "Go on with the run in FOLDER, instead of CASE; only\n"
+                                  "keys of [march] and [output] may change")
+                     ->type_name("FOLDER");
   auto* overwrite =
       verb->add_flag("--overwrite", request.overwrite, "Replace a run that is in the folder");
   verb->add_flag("--resume-from-previous", request.from_previous,
@@ -37,6 +62,21 @@ void add_march(CLI::App& app, MarchRequest& request) {
   verb->add_flag_callback(
       "--no-progress", [&] { request.progress = ProgressMode::Never; }, "Show no progress");
   resume->excludes(case_file)->excludes(into)->excludes(overwrite);
+}
+
+void print_help(const CLI::App& app, const CLI::ParseError& e) {
+  std::ostringstream text;
+  app.exit(e, text, text);
+  const std::string all = text.str();
+  fmt::print("{}\n", all.substr(0, all.find_last_not_of('\n') + 1));
+}
+
+/// CLI11 reports a misspelt verb as a missing one.
+std::string command_line_message(const CLI::ParseError& e, int argc, char** argv) {
+  if (argc < 2) return "name a verb: march or keys";
+  if (e.get_name() == "RequiredError")
+    return fmt::format("'{}' is not a verb of this program (march, keys)", argv[1]);
+  return e.what();
 }
 
 ExitCode run_verb(const Session& session, const CLI::App& app, const MarchRequest& request,
@@ -62,22 +102,26 @@ ExitCode run(const Session& session, int argc, char** argv) {
   app.set_version_flag("--version",
                        "lidwright " + program_version() + " (" + program_commit() + ")");
   app.require_subcommand(1);
+  app.formatter(std::make_shared<PlainHelp>());
   app.footer(
-      "Exit codes: 0 done, 1 fault of the program, 2 bad input, 3 not solved, 4 not written,\n"
-      "5 interrupted with a checkpoint written (go on with march --resume FOLDER).");
+      "Exit codes: 0 done, 1 fault of the program, 2 bad input, 3 not solved,\n"
+      "4 not written, 5 interrupted with a checkpoint written (go on with --resume).");
   MarchRequest request;
   bool markdown = false;
   add_march(app, request);
   app.add_subcommand("keys", "Print the reference of all case keys")
+      ->group("Verbs")
       ->add_flag("--markdown", markdown, "As a Markdown page (docs/case.md)");
   try {
     app.parse(argc, argv);
   } catch (const CLI::ParseError& e) {
     if (e.get_exit_code() == 0) {
-      if (session.first()) app.exit(e);
+      if (session.first()) print_help(app, e);
       return ExitCode::Done;
     }
-    return report(session, fmt::format("{}; see `lidwright --help`", e.what()), ExitCode::BadInput);
+    return report(session,
+                  fmt::format("{}; see `lidwright --help`", command_line_message(e, argc, argv)),
+                  ExitCode::BadInput);
   }
   try {
     return run_verb(session, app, request, markdown);

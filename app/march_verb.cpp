@@ -252,8 +252,11 @@ ExitCode start_new(const Session& session, const MarchRequest& request) {
   RunFolder folder =
       RunFolder::create(session.comm(), folder_for(request),
                         request.overwrite ? ExistingRun::Overwrite : ExistingRun::Refuse);
-  on_first_rank<OutputError>(session.comm(),
-                             [&] { write_atomically(folder.paths().case_file(), write_case(c)); });
+  on_first_rank<OutputError>(session.comm(), [&] {
+    // First of all files, so that a run that is killed at any moment is known as one.
+    write_atomically(folder.paths().provenance(), provenance_mark);
+    write_atomically(folder.paths().case_file(), write_case(c));
+  });
   return Run(session, request, c, std::move(folder), std::move(march), 0).go();
 }
 

@@ -5,7 +5,7 @@
 
 #include "app/exit_code.hpp"
 #include "app/progress.hpp"
-#include "app/session.hpp"
+#include "mesh/session.hpp"
 
 /// `lidwright march`: a case in time, from its initial state or from a checkpoint, into a run
 /// folder.

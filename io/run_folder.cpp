@@ -195,8 +195,6 @@ RunFolder RunFolder::create(MPI_Comm comm, const std::string& path, ExistingRun 
   on_first_rank<OutputError>(comm, [&] {
     make_folders(run.paths_);
     remove_run(run.paths_);
-    // First of all files, so that a run that is killed at any moment is known as one.
-    write_atomically(run.paths_.provenance(), provenance_mark);
   });
   on_first_rank<InputError>(comm, [&] {
     if (run.lock_ < 0) run.lock();
