@@ -68,6 +68,7 @@ class Run {
  private:
   enum class End { None, Time, Steps, Steady, WallClock, Signal };
 
+  ExitCode go_on();
   HistoryRow row() const;
   End end_reached() const;
   double share_done() const;
@@ -202,6 +203,16 @@ void Run::finish(End end) {
 }
 
 ExitCode Run::go() {
+  try {
+    return go_on();
+  } catch (const SolveError&) {
+    progress_.finish();
+    provenance_.end_session(march_->steps(), "not solved");
+    throw;
+  }
+}
+
+ExitCode Run::go_on() {
   if (!resumed_) {
     record_step();
     write_snapshot();

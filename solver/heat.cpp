@@ -268,7 +268,7 @@ void ImplicitConduction::solve_lines(const std::vector<double>& r, std::vector<d
 }
 
 void ImplicitConduction::solve(double tau, const CellField& right, CellField& temperature) {
-  constexpr double tolerance = 1e-12;
+  constexpr double tolerance = 1e-13;
   constexpr int most_iterations = 2000;
   set_lines(tau);
   const Decomposition& d = heat_.decomposition();

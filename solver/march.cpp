@@ -120,6 +120,7 @@ double March::local_error(const CellField& next, double dt) const {
 
 void March::step(double until) {
   double dt = proposed_step(until);
+  const bool to_the_end = dt == until - time_;
   for (int attempt = 0;; ++attempt) {
     CellField next(decomposition_);
     const WallHeat through = stepper_.step(temperature_, psi_, foreseen_flow(dt), dt, next);
@@ -130,12 +131,16 @@ void March::step(double until) {
                       "{:.2e} with a step of {:.2e}. Lower "
                       "transport.first_step or transport.courant, or loosen transport.accuracy",
                       steps_, time_, error, dt));
-    if (error <= 2 * heat_settings_.accuracy) return accept(std::move(next), dt, through, error);
+    if (error <= 2 * heat_settings_.accuracy) {
+      // Not time_ + dt, which may miss it by a rounding and leave a step of that length.
+      const double end = to_the_end && attempt == 0 ? until : time_ + dt;
+      return accept(std::move(next), dt, end, through, error);
+    }
     dt *= std::max(0.3, 0.9 * std::cbrt(heat_settings_.accuracy / error));
   }
 }
 
-void March::accept(CellField next, double dt, const WallHeat& through, double error) {
+void March::accept(CellField next, double dt, double end, const WallHeat& through, double error) {
   const double change = volume_sum(next, [&](Cell c) { return next[c] - temperature_[c]; });
   const double source = stepper_.heat().total_source();
   const double scale = std::max({std::abs(change), dt * std::abs(through.inner),
@@ -147,7 +152,7 @@ void March::accept(CellField next, double dt, const WallHeat& through, double er
   former_.insert(former_.begin(), Former{time_, std::move(temperature_)});
   if (former_.size() > 2) former_.pop_back();
   temperature_ = std::move(next);
-  time_ += dt;
+  time_ = end;
   ++steps_;
   last_step_ = dt;
   const double by_error =

@@ -59,7 +59,7 @@ class March {
   CornerField foreseen_flow(double dt) const;
   double proposed_step(double until) const;
   double local_error(const CellField& next, double dt) const;
-  void accept(CellField next, double dt, const WallHeat& through, double error);
+  void accept(CellField next, double dt, double end, const WallHeat& through, double error);
 
   Model model_;
   HeatSettings heat_settings_;
