@@ -140,6 +140,7 @@ void Power::apply_normal(const CornerField& psi, CornerField& force) const {
     const double per_lateral = g.inverse_lateral_measure(j), per_angle = g.inv_lateral_width(j);
     const double per_left = g.inverse_side_lateral(j), per_right = g.inverse_side_lateral(j + 1);
     for (int i = 0; i <= n; ++i) u[i] = (right[i] - left[i]) * table_.per_area[i] * per_lateral;
+#pragma GCC ivdep
     for (int i = 0; i < n; ++i) {
       const double to_angle = per_angle * table_.per_stretch[i];
       const double lateral =
@@ -186,6 +187,7 @@ void Power::apply_shear_inside(const CornerField& psi, CornerField& force) const
     const double to_before = g.inverse_lateral_measure(j - 1) / g.lateral_distance(j);
     const double to_behind = g.inverse_lateral_measure(j) / g.lateral_distance(j);
     const double per_lateral = g.inverse_side_lateral(j);
+#pragma GCC ivdep
     for (int i = 1; i < n; ++i) {
       const double lateral = table_.lateral_shear[i] * table_.per_area[i];
       const double outer = table_.outer_shear[i] * table_.per_side[i] * per_lateral;
@@ -222,9 +224,24 @@ void Power::apply_shear_at_walls(const CornerField& psi, CornerField& force) con
 
 void Power::add_buoyancy(const std::function<double(RadialFace)>& b, CornerField& force) const {
   const Geometry& g = geometry();
-  for (int j = force.owned().begin; j < force.owned().end; ++j)
-    for (int i = 1; i < g.radial_cells(); ++i)
-      if (!g.on_side(j)) force[{i, j}] += g.radial_distance(i) * (b({i, j - 1}) - b({i, j}));
+  const int n = g.radial_cells();
+  std::vector<double> left(static_cast<std::size_t>(n)), right(left.size());
+  const auto fill = [&](std::vector<double>& column, int j) {
+    for (int i = 1; i < n; ++i) column[static_cast<std::size_t>(i)] = b({i, j});
+  };
+  Range columns = force.owned();
+  if (g.on_side(columns.begin)) ++columns.begin;
+  if (g.on_side(columns.end - 1)) --columns.end;
+  fill(left, columns.begin - 1);
+  for (int j = columns.begin; j < columns.end; ++j) {
+    fill(right, j);
+    double* out = force.column(j);
+    for (int i = 1; i < n; ++i) {
+      const auto k = static_cast<std::size_t>(i);
+      out[i] += g.radial_distance(i) * (left[k] - right[k]);
+    }
+    std::swap(left, right);
+  }
 }
 
 void Power::to_unknowns(CornerField& force, Vec out) const {
