@@ -7,6 +7,7 @@
 #include "mesh/gather.hpp"
 #include "solver/solve_error.hpp"
 #include "solver/stencil_matrix.hpp"
+#include "solver/supernodal.hpp"
 
 namespace lidwright {
 namespace {
@@ -49,11 +50,9 @@ struct Factor::Impl {
     view_matrix();
     factor = cholmod_l_analyze(&matrix, &common);
     if (!factor) throw SolveError("the flow's factorisation cannot be planned: not enough memory");
+    find_places();
   }
   ~Impl() {
-    cholmod_l_free_dense(&solution, &common);
-    cholmod_l_free_dense(&work_y, &common);
-    cholmod_l_free_dense(&work_e, &common);
     cholmod_l_free_factor(&factor, &common);
     cholmod_l_finish(&common);
   }
@@ -90,22 +89,31 @@ struct Factor::Impl {
     return done && factor->minor == factor->n;
   }
 
+  /// z = M^-1 r on places in natural order, 0 where psi is fixed. The factor holds its unknowns
+  /// permuted.
   void solve(const std::vector<double>& r, std::vector<double>& z) {
+    for (std::size_t k = 0; k < place.size(); ++k) permuted[k] = r[place[k]];
+    Substitution(supernodes()).solve(permuted.data());
+    z.assign(stencil.unknown_of_place().size(), 0.0);
+    for (std::size_t k = 0; k < place.size(); ++k) z[place[k]] = permuted[k];
+  }
+
+  Supernodes supernodes() const {
+    const auto longs = [](const void* list) { return static_cast<const long*>(list); };
+    return {factor->nsuper,    longs(factor->super), longs(factor->pi),
+            longs(factor->px), longs(factor->s),     static_cast<const double*>(factor->x)};
+  }
+
+  /// Place in natural order of each of the factor's unknowns.
+  void find_places() {
     const std::vector<long>& unknown = stencil.unknown_of_place();
-    right.resize(static_cast<std::size_t>(stencil.unknowns()));
-    for (std::size_t place = 0; place < unknown.size(); ++place)
-      if (unknown[place] >= 0) right[static_cast<std::size_t>(unknown[place])] = r[place];
-    cholmod_dense b{};
-    b.nrow = b.nzmax = b.d = right.size();
-    b.ncol = 1;
-    b.x = right.data();
-    b.xtype = CHOLMOD_REAL;
-    b.dtype = CHOLMOD_DOUBLE;
-    cholmod_l_solve2(CHOLMOD_A, factor, &b, nullptr, &solution, nullptr, &work_y, &work_e, &common);
-    const double* x = static_cast<const double*>(solution->x);
-    z.assign(unknown.size(), 0.0);
-    for (std::size_t place = 0; place < unknown.size(); ++place)
-      if (unknown[place] >= 0) z[place] = x[unknown[place]];
+    std::vector<std::size_t> of_unknown(static_cast<std::size_t>(stencil.unknowns()));
+    for (std::size_t p = 0; p < unknown.size(); ++p)
+      if (unknown[p] >= 0) of_unknown[static_cast<std::size_t>(unknown[p])] = p;
+    const long* permutation = static_cast<const long*>(factor->Perm);
+    for (std::size_t k = 0; k < of_unknown.size(); ++k)
+      place.push_back(of_unknown[static_cast<std::size_t>(permutation[k])]);
+    permuted.resize(place.size());
   }
 
   std::shared_ptr<const Decomposition> mesh;
@@ -114,8 +122,8 @@ struct Factor::Impl {
   cholmod_common common{};
   cholmod_sparse matrix{};
   cholmod_factor* factor = nullptr;
-  cholmod_dense *solution = nullptr, *work_y = nullptr, *work_e = nullptr;
-  std::vector<double> right, whole_z;
+  std::vector<std::size_t> place;
+  std::vector<double> permuted;
 };
 
 Factor::Factor(const Power& shape) : decomposition_(shape.decomposition_pointer()) {
