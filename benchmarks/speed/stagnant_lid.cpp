@@ -15,9 +15,9 @@
 #include <numbers>
 #include <vector>
 
-#include "mesh/session.hpp"
 #include "io/provenance.hpp"
 #include "mesh/gather.hpp"
+#include "mesh/session.hpp"
 #include "solver/march.hpp"
 
 namespace lidwright {
