@@ -96,6 +96,16 @@ ExitCode report(const Session& session, const std::string& message, ExitCode cod
   return code;
 }
 
+/// For what may have happened on one rank only: the others must not wait for it.
+ExitCode give_up(const Session& session, const std::string& message, ExitCode code) {
+  int ranks = 1;
+  MPI_Comm_size(session.comm(), &ranks);
+  if (ranks == 1) return report(session, message, code);
+  fmt::print(stderr, "lidwright: {} (rank {})\n", message, session.rank());
+  MPI_Abort(session.comm(), static_cast<int>(code));
+  return code;
+}
+
 ExitCode run(const Session& session, int argc, char** argv) {
   CLI::App app("Convection in the mantles of rocky bodies: heat flow, lid and budgets.",
                "lidwright");
@@ -132,10 +142,11 @@ ExitCode run(const Session& session, int argc, char** argv) {
   } catch (const OutputError& e) {
     return report(session, e.what(), ExitCode::NotWritten);
   } catch (const std::bad_alloc&) {
-    return report(session, "not enough memory for this grid; use fewer cells", ExitCode::NotSolved);
+    return give_up(session, "not enough memory for this grid; use fewer cells",
+                   ExitCode::NotSolved);
   } catch (const std::exception& e) {
-    return report(session, fmt::format("a fault of the program, please report it: {}", e.what()),
-                  ExitCode::Fault);
+    return give_up(session, fmt::format("a fault of the program, please report it: {}", e.what()),
+                   ExitCode::Fault);
   }
 }
 

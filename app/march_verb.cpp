@@ -48,12 +48,13 @@ Case shared_case(MPI_Comm comm, const std::string& path, const std::vector<std::
 class Run {
  public:
   Run(const Session& session, const MarchRequest& request, Case c, RunFolder folder,
-      std::unique_ptr<March> march, double wall_time_before)
+      std::unique_ptr<March> march, double wall_time_before, Clock::time_point start)
       : session_(session),
         case_(std::move(c)),
         folder_(std::move(folder)),
         march_(std::move(march)),
         wall_time_before_(wall_time_before),
+        start_(start),
         resumed_(!request.resume.empty()),
         provenance_(session.comm(), folder_.paths().provenance(), march_->steps()),
         history_(resumed_
@@ -88,7 +89,7 @@ class Run {
   RunFolder folder_;
   std::unique_ptr<March> march_;
   double wall_time_before_;
-  Clock::time_point start_ = Clock::now();
+  Clock::time_point start_;
   bool resumed_;
   Provenance provenance_;
   History history_;
@@ -209,6 +210,9 @@ ExitCode Run::go() {
     progress_.finish();
     provenance_.end_session(march_->steps(), "not solved");
     throw;
+  } catch (...) {
+    progress_.finish();
+    throw;
   }
 }
 
@@ -252,23 +256,23 @@ auto or_bad_input(Make&& make) {
   }
 }
 
-ExitCode start_new(const Session& session, const MarchRequest& request) {
+ExitCode start_new(const Session& session, const MarchRequest& request, Clock::time_point start) {
   const Case c = shared_case(session.comm(), request.case_file, request.settings);
+  const ExistingRun existing = request.overwrite ? ExistingRun::Overwrite : ExistingRun::Refuse;
+  RunFolder::refuse_taken(session.comm(), folder_for(request), existing);
   StoredTemperature stored;
   if (!c.initial.from.empty()) stored = read_temperature(session.comm(), stored_path(request, c));
   // Everything that bad input can spoil comes before the folder is made.
   auto march = or_bad_input([&] {
     return std::make_unique<March>(c.model, c.initial, stored, c.flow, c.heat, session.comm());
   });
-  RunFolder folder =
-      RunFolder::create(session.comm(), folder_for(request),
-                        request.overwrite ? ExistingRun::Overwrite : ExistingRun::Refuse);
+  RunFolder folder = RunFolder::create(session.comm(), folder_for(request), existing);
   on_first_rank<OutputError>(session.comm(), [&] {
     // First of all files, so that a run that is killed at any moment is known as one.
     write_atomically(folder.paths().provenance(), provenance_mark);
     write_atomically(folder.paths().case_file(), write_case(c));
   });
-  return Run(session, request, c, std::move(folder), std::move(march), 0).go();
+  return Run(session, request, c, std::move(folder), std::move(march), 0, start).go();
 }
 
 CheckpointFile chosen_checkpoint(const Session& session, const MarchRequest& request,
@@ -293,7 +297,7 @@ void refuse_unfit_history(const Session& session, const std::string& path, long 
                             [&] { history_until(read_whole_file(path), step, path); });
 }
 
-ExitCode resume(const Session& session, const MarchRequest& request) {
+ExitCode resume(const Session& session, const MarchRequest& request, Clock::time_point start) {
   RunFolder folder = RunFolder::resume(session.comm(), request.resume);
   const RunPaths& paths = folder.paths();
   const CheckpointFile checkpoint = chosen_checkpoint(session, request, paths);
@@ -315,14 +319,16 @@ ExitCode resume(const Session& session, const MarchRequest& request) {
   on_first_rank<OutputError>(session.comm(),
                              [&] { write_atomically(paths.case_file(), write_case(c)); });
   const double wall_time = archive.numbers.at("wall_time");
-  return Run(session, request, c, std::move(folder), std::move(march), wall_time).go();
+  return Run(session, request, c, std::move(folder), std::move(march), wall_time, start).go();
 }
 
 }  // namespace
 
 ExitCode march(const Session& session, const MarchRequest& request) {
   catch_stop_signals();
-  return request.resume.empty() ? start_new(session, request) : resume(session, request);
+  const Clock::time_point start = Clock::now();
+  return request.resume.empty() ? start_new(session, request, start)
+                                : resume(session, request, start);
 }
 
 }  // namespace lidwright

@@ -143,7 +143,8 @@ std::vector<Key> march_keys() {
        .access = at(&M::steady),
        .quantity = Quantity::TemperatureRate,
        .range = not_negative,
-       .help = "the run ends when the root mean square of dT/dt falls below; 0: never"},
+       .help = "the run ends when the root mean square of dT/dt falls below; 0: never. A start "
+               "without disturbance is steady at once"},
   };
 }
 

@@ -186,6 +186,11 @@ void RunFolder::lock() {
   }
 }
 
+void RunFolder::refuse_taken(MPI_Comm comm, const std::string& path, ExistingRun existing) {
+  on_first_rank<InputError>(comm,
+                            [&] { refuse_unless_free({without_trailing_slash(path)}, existing); });
+}
+
 RunFolder RunFolder::create(MPI_Comm comm, const std::string& path, ExistingRun existing) {
   RunFolder run(without_trailing_slash(path));
   on_first_rank<InputError>(comm, [&] {

@@ -42,6 +42,9 @@ class RunFolder {
   /// fails.
   static RunFolder create(MPI_Comm, const std::string& path, ExistingRun);
 
+  /// Refuses what `create` would refuse, before anything that takes long; writes nothing.
+  static void refuse_taken(MPI_Comm, const std::string& path, ExistingRun);
+
   /// Opens the folder of an interrupted run to go on with it; removes files that were never
   /// completed.
   static RunFolder resume(MPI_Comm, const std::string& path);

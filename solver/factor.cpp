@@ -4,6 +4,9 @@
 #include <cholmod.h>
 #include <omp.h>
 
+#include <new>
+#include <string>
+
 #include "mesh/gather.hpp"
 #include "solver/solve_error.hpp"
 #include "solver/stencil_matrix.hpp"
@@ -24,6 +27,30 @@ class Stopwatch {
   double& sum_;
   double start_;
 };
+
+constexpr const char* no_memory =
+    "not enough memory for the flow's factor; use fewer cells, or a larger machine";
+
+/// Runs `action` on the first rank; what it returns (a message, or empty) or throws is thrown on
+/// all ranks.
+template <class Action>
+void on_first_rank_or_throw(const Decomposition& d, Action&& action) {
+  std::string message;
+  if (d.rank() == 0) {
+    try {
+      message = action();
+    } catch (const std::bad_alloc&) {
+      message = no_memory;
+    } catch (const std::exception& e) {
+      message = e.what();
+    }
+  }
+  unsigned long length = message.size();
+  MPI_Bcast(&length, 1, MPI_UNSIGNED_LONG, 0, d.comm());
+  message.resize(length);
+  MPI_Bcast(message.data(), static_cast<int>(length), MPI_CHAR, 0, d.comm());
+  if (!message.empty()) throw SolveError(message);
+}
 
 /// One thread, for BLAS and for CHOLMOD's own loops: its blocks are too small to share out, and the
 /// four threads it asks for, whatever OMP_NUM_THREADS says, double the time of a factorisation on
@@ -49,7 +76,7 @@ struct Factor::Impl {
     common.print = 0;
     view_matrix();
     factor = cholmod_l_analyze(&matrix, &common);
-    if (!factor) throw SolveError("the flow's factorisation cannot be planned: not enough memory");
+    if (!factor) throw SolveError(no_memory);
     find_places();
   }
   ~Impl() {
@@ -80,13 +107,18 @@ struct Factor::Impl {
     matrix.sorted = matrix.packed = 1;
   }
 
-  bool factorise(const std::vector<double>& viscosity) {
+  /// Empty when done, else what is wrong and the remedy.
+  std::string factorise(const std::vector<double>& viscosity) {
     CellField eta(mesh);
     scatter_from_first(viscosity, eta);
     serial.set_viscosity(eta);
     stencil.assemble(serial);
-    const bool done = cholmod_l_factorize(&matrix, factor, &common) && common.status == CHOLMOD_OK;
-    return done && factor->minor == factor->n;
+    cholmod_l_factorize(&matrix, factor, &common);
+    if (common.status < CHOLMOD_OK) return no_memory;
+    if (factor->minor == factor->n) return "";
+    return "the flow's matrix is not positive definite to working precision: the viscosity varies "
+           "too much for "
+           "this mesh. Raise viscosity.lowest or lower viscosity.highest, or refine the mesh";
   }
 
   /// z = M^-1 r on places in natural order, 0 where psi is fixed. The factor holds its unknowns
@@ -127,13 +159,10 @@ struct Factor::Impl {
 };
 
 Factor::Factor(const Power& shape) : decomposition_(shape.decomposition_pointer()) {
-  double nonzeros = 0;
-  if (decomposition_->rank() == 0) {
+  on_first_rank_or_throw(*decomposition_, [&] {
     impl_ = std::make_unique<Impl>(shape);
-    nonzeros = impl_->common.lnz;
-  }
-  MPI_Bcast(&nonzeros, 1, MPI_DOUBLE, 0, decomposition_->comm());
-  nonzeros_ = nonzeros;
+    return std::string();
+  });
 }
 
 Factor::~Factor() = default;
@@ -145,14 +174,7 @@ double Factor::stored_bytes() const {
 void Factor::factorise(const Power& power) {
   const Stopwatch watch(seconds_factorising_);
   const std::vector<double> viscosity = gather_to_first(power.viscosity());
-  int done = 1;
-  if (impl_) done = impl_->factorise(viscosity) ? 1 : 0;
-  MPI_Bcast(&done, 1, MPI_INT, 0, decomposition_->comm());
-  if (!done)
-    throw SolveError(
-        "the flow's matrix is not positive definite to working precision: the viscosity varies too "
-        "much for this "
-        "mesh. Raise viscosity.lowest or lower viscosity.highest, or refine the mesh");
+  on_first_rank_or_throw(*decomposition_, [&] { return impl_->factorise(viscosity); });
   viscosity_ = power.viscosity();
 }
 

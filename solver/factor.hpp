@@ -8,8 +8,8 @@
 /// Sparse Cholesky factor of K = G^T W G at one viscosity, the lagged preconditioner of the flow.
 ///
 /// It lives on rank 0 whatever the number of ranks: residuals are gathered, solved and scattered.
-/// One CHOLMOD solve is several times faster than a distributed one at the sizes that fit a node,
-/// and the preconditioner, so the number of iterations, is the same on any number of ranks
+/// A solve there is faster than a distributed one at the sizes that fit a node, and the
+/// preconditioner, so the number of iterations, is the same on any number of ranks
 /// (docs/decisions/factor-on-one-rank.md).
 namespace lidwright {
 
@@ -30,7 +30,6 @@ class Factor {
   /// Viscosity at the last factorisation.
   const CellField& viscosity() const { return viscosity_; }
   bool ready() const { return !viscosity_.empty(); }
-  double nonzeros() const { return nonzeros_; }
   /// Bytes of the factor as stored (with the zeros that make its columns into dense blocks), on
   /// rank 0.
   double stored_bytes() const;
@@ -44,7 +43,6 @@ class Factor {
   std::shared_ptr<const Decomposition> decomposition_;
   std::unique_ptr<Impl> impl_;  ///< rank 0 only
   CellField viscosity_;
-  double nonzeros_ = 0;
   double seconds_factorising_ = 0, seconds_applying_ = 0;
 };
 

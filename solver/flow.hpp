@@ -18,8 +18,7 @@ struct [[nodiscard]] FlowReport {
   bool converged = false;
   int iterations = 0;
   int applications = 0;  ///< of the factor
-  bool refactored = false;
-  double error = 0;  ///< relative velocity error in the dissipation norm, estimated
+  double error = 0;      ///< relative velocity error in the dissipation norm, estimated
 };
 
 class FlowSolver {
@@ -38,8 +37,6 @@ class FlowSolver {
   const Factor& factor() const { return factor_; }
   /// Estimated error of the last solve: FlowReport::error.
   double last_error() const { return error_; }
-  /// Forgets former flows (after a jump in the state); the factor stays.
-  void forget();
 
   /// Everything the next solve depends on, so that a restart goes on bit for bit.
   void save(Archive&) const;

@@ -70,12 +70,6 @@ double HeatOperator::conducted(const CellField& t, RadialFace f) const {
   return geometry().area(f) * (t[inside(f)] - t[outside(f)]) / geometry().radial_distance(f.i);
 }
 
-double HeatOperator::conducted(const CellField& t, LateralFace f) const {
-  if (geometry().on_side(f.j)) return 0;
-  return geometry().area(f) * (t[left(f)] - t[right(f)]) /
-         (geometry().stretch(f.i) * geometry().lateral_distance(f.j));
-}
-
 /// Temperature of a row of cells that may lie one beyond a wall: continued on a straight line
 /// through the wall.
 double HeatOperator::radial_neighbour(const CellField& t, int i, int j) const {
@@ -268,7 +262,7 @@ void ImplicitConduction::solve_lines(const std::vector<double>& r, std::vector<d
 }
 
 void ImplicitConduction::solve(double tau, const CellField& right, CellField& temperature) {
-  constexpr double tolerance = 1e-13;
+  constexpr double tolerance = 1e-14;
   constexpr int most_iterations = 2000;
   set_lines(tau);
   const Decomposition& d = heat_.decomposition();
@@ -299,6 +293,8 @@ void ImplicitConduction::solve(double tau, const CellField& right, CellField& te
       tolerance * tolerance * std::max(floor, dot(volume_t.data(), temperature.owned_data()));
   std::copy(z.begin(), z.end(), direction_.owned_data());
   double rz = dot(r.data(), z.data());
+  if (!std::isfinite(rz))
+    throw SolveError("the temperature is no longer a number; shorten transport.largest_step");
   for (int iteration = 0; rz > stop; ++iteration) {
     if (iteration == most_iterations || !std::isfinite(rz))
       throw SolveError(

@@ -37,7 +37,6 @@ class HeatOperator {
   /// Conducted and advected heat through any radial face, > 0 along +r.
   double conducted(const CellField&, RadialFace) const;
   double advected(const CellField&, const CornerField& psi, RadialFace) const;
-  double conducted(const CellField&, LateralFace) const;
 
   /// Integral of H over the shell.
   double total_source() const { return total_source_; }

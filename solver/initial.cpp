@@ -1,6 +1,5 @@
 #include "solver/initial.hpp"
 
-#include <Eigen/Dense>
 #include <algorithm>
 #include <cmath>
 #include <numbers>
@@ -88,7 +87,7 @@ class Interpolation {
 
 void check_region(const Geometry& g, const StoredTemperature& s) {
   const auto near = [](double a, double b) { return std::abs(a - b) < 1e-9; };
-  if (near(s.face_radius.front(), g.inner_radius()) &&
+  if (s.shell.shape == g.shell().shape && near(s.face_radius.front(), g.inner_radius()) &&
       near(s.face_radius.back(), g.outer_radius()) &&
       near(s.face_lateral.front(), g.face_lateral(0)) &&
       near(s.face_lateral.back(), g.face_lateral(g.lateral_cells())))
@@ -121,37 +120,39 @@ void fill_from_stored(const StoredTemperature& s, CellField& t) {
 
 }  // namespace
 
+/// One column of the discrete conduction operator, elimination from the inner wall outwards: with
+/// the conductance c between two rows, (pivot) T(i) = right + c T(i + 1).
 std::vector<double> conductive_profile(const HeatOperator& heat) {
-  // One column of the discrete conduction operator: conductances c between rows, walls and sources
-  // on the right.
   const Geometry& g = heat.geometry();
   const int rows = g.radial_cells();
-  Eigen::MatrixXd a = Eigen::MatrixXd::Zero(rows, rows);
-  Eigen::VectorXd b(rows);
-  for (int i = 0; i < rows; ++i) b(i) = g.volume({i, 0}) * heat.source(i);
-  for (int i = 1; i < rows; ++i) {
-    const double c = g.area(RadialFace{i, 0}) / g.radial_distance(i);
-    a(i - 1, i - 1) += c;
-    a(i, i) += c;
-    a(i - 1, i) -= c;
-    a(i, i - 1) -= c;
-  }
-  const auto wall = [&](const ThermalWall& condition, int face, int row, double inward) {
-    const double area = g.area(RadialFace{face, 0});
-    if (const auto t = fixed_value(condition)) {
-      a(row, row) += area / g.radial_distance(face);
-      b(row) += area / g.radial_distance(face) * *t;
-    } else {
-      b(row) += inward * area * std::get<FixedHeatFlux>(condition).outward;
-    }
+  std::vector<double> t(static_cast<std::size_t>(rows)), share(t.size());
+  const auto conductance = [&](int face) {
+    return g.area(RadialFace{face, 0}) / g.radial_distance(face);
   };
-  wall(heat.walls().inner.thermal, 0, 0, 1);
-  wall(heat.walls().outer.thermal, rows, rows - 1, -1);
-  const bool floating =
-      !fixed_value(heat.walls().inner.thermal) && !fixed_value(heat.walls().outer.thermal);
-  const Eigen::VectorXd t = floating ? Eigen::VectorXd(a.completeOrthogonalDecomposition().solve(b))
-                                     : Eigen::VectorXd(a.ldlt().solve(b));
-  return {t.data(), t.data() + rows};
+  const auto fixed_flow = [&](const ThermalWall& wall, int face) {
+    return g.area(RadialFace{face, 0}) * std::get<FixedHeatFlux>(wall).outward;
+  };
+  double pivot = 0, right = 0;  // of what lies below, eliminated
+  const ThermalWall &inner = heat.walls().inner.thermal, &outer = heat.walls().outer.thermal;
+  if (const auto wall = fixed_value(inner)) {
+    pivot = conductance(0);
+    right = pivot * *wall;
+  } else {
+    right = fixed_flow(inner, 0);
+  }
+  for (int i = 0; i < rows; ++i) {
+    const auto k = static_cast<std::size_t>(i);
+    const bool last = i + 1 == rows;
+    const double above = last && !fixed_value(outer) ? 0 : conductance(i + 1);
+    right += g.volume({i, 0}) * heat.source(i);
+    if (last) right += fixed_value(outer) ? above * *fixed_value(outer) : -fixed_flow(outer, rows);
+    share[k] = above / (pivot + above);
+    t[k] = right / (pivot + above);
+    right = above * t[k];
+    pivot = above * (1 - share[k]);
+  }
+  for (std::size_t k = t.size() - 1; k-- > 0;) t[k] += share[k] * t[k + 1];
+  return t;
 }
 
 CellField initial_temperature(const HeatOperator& heat, const InitialSettings& s,

@@ -14,7 +14,7 @@ CellField initial_temperature(const HeatOperator&, const InitialSettings&,
                               const StoredTemperature&);
 
 /// The discrete conductive profile of the rows of cells: walls and sources of the operator, no
-/// flow. Where both walls give the heat flux it is determined up to a constant, and its mean is 0.
+/// flow. At least one wall must fix the temperature (io/case_rules.cpp sees to it).
 std::vector<double> conductive_profile(const HeatOperator&);
 
 }  // namespace lidwright

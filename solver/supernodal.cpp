@@ -1,6 +1,6 @@
 #include "solver/supernodal.hpp"
 
-#include <algorithm>
+#include <cstdint>
 
 namespace lidwright {
 namespace {
@@ -16,10 +16,15 @@ struct Block {
   long below() const { return rows - columns; }
 };
 
-/// Asks for a panel's numbers to be brought near. Addresses outside the factor do no harm.
+/// Asks for a panel's numbers to be brought near. It may lie in the next block, or outside the
+/// factor, where asking does no harm; hence addresses and not pointers.
 void foresee(const Block& b, long first_column) {
-  const double* from = b.column(first_column);
-  for (const double* p = from; p < from + panel * b.rows; p += 8) __builtin_prefetch(p);
+  const auto begin = reinterpret_cast<std::uintptr_t>(b.value);
+  const auto column = sizeof(double) * static_cast<std::uintptr_t>(b.rows);
+  const std::uintptr_t from = begin + static_cast<std::uintptr_t>(first_column) * column;
+  constexpr std::uintptr_t cache_line = 64;
+  for (std::uintptr_t a = from; a < from + panel * column; a += cache_line)
+    __builtin_prefetch(reinterpret_cast<const void*>(a));
 }
 constexpr long ahead = 2 * panel;  ///< how many columns ahead: measured
 
