@@ -161,9 +161,9 @@ class Geometry {
   std::vector<double> side_measure_, inv_side_measure_;  // integral of r^(p-1), box: of 1
   std::vector<double> stretch_, curvature_;
   PaddedList face_lateral_, cell_lateral_, lateral_width_, inv_lateral_width_, lateral_distance_;
-  PaddedList lateral_measure_, inv_lateral_measure_;  // integral of sin(theta), or the width
+  PaddedList lateral_measure_, inv_lateral_measure_;  // integral of 2 pi sin(theta), or the width
   PaddedList left_measure_, right_measure_;           // its parts left and right of the middle
-  PaddedList side_lateral_, inv_side_lateral_;        // sin(theta) at faces, or 1
+  PaddedList side_lateral_, inv_side_lateral_;        // 2 pi sin(theta) at faces, or 1
   double total_volume_ = 0, total_lateral_measure_ = 0;
 };
 
