@@ -30,7 +30,6 @@ class March {
 
   double time() const { return time_; }
   long steps() const { return steps_; }
-  double last_step() const { return last_step_; }
   /// Volume rms of dT/dt over the last step; infinity before the first.
   double temperature_change_rate() const { return change_rate_; }
 
