@@ -6,6 +6,7 @@
 
 #include "mesh/geometry.hpp"
 #include "physics/heat_sources.hpp"
+#include "physics/reference.hpp"
 #include "physics/rheology.hpp"
 #include "physics/walls.hpp"
 
@@ -23,6 +24,7 @@ struct Model {
       1e4;  ///< rho alpha g DeltaT d^3/(kappa eta), eta where the viscosity law gives 1; >= 0
   ViscosityLaw viscosity;
   HeatSources heat;
+  ReferenceProfiles reference;
 };
 
 /// T = base + modes + noise, clipped nowhere.
@@ -59,6 +61,17 @@ struct HeatSettings {
   double first_step = 1e-6;    ///< > 0
   double largest_step = 0.01;  ///< > 0
   double growth = 1.3;         ///< largest ratio of a step to the one before, in (1, 2]
+};
+
+/// How the equations of a Newton step are solved.
+enum class LinearSolver { Automatic, Direct, Iterative };
+struct SettleSettings {
+  double tolerance = 1e-10;  ///< rms of dT/dt over (heat flow / heat capacity) of the shell, > 0
+  int most_steps = 60;       ///< Newton steps on one grid, >= 1
+  double most_time = 20;     ///< of the march to a first guess on the coarsest grid, > 0
+  HeatFlux flux = HeatFlux::Central;
+  int coarsest = 16;         ///< radial cells of the coarsest grid to start from, >= 8
+  LinearSolver linear = LinearSolver::Automatic;
 };
 
 struct MarchSettings {
