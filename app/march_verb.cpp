@@ -309,8 +309,7 @@ ExitCode resume(const Session& session, const MarchRequest& request, Clock::time
         "this "
         "one's state if you like (initial.from)");
   const auto decomposition = or_bad_input([&] {
-    return std::make_shared<Decomposition>(std::make_shared<Geometry>(c.model.shell, c.model.grid),
-                                           session.comm());
+    return decompose(c.model, session.comm());
   });
   const Archive archive = read_checkpoint(checkpoint.path, decomposition, fingerprint(c));
   auto march = std::make_unique<March>(c.model, c.flow, c.heat, archive, session.comm());

@@ -19,7 +19,7 @@ namespace {
 
 constexpr std::string_view title = "lidwright history";
 
-constexpr std::array<Column, 25> columns{{
+constexpr std::array<Column, 27> columns{{
     {"step", "1", "number of the time step; 0 is the start"},
     {"time", "d^2/kappa", "time at the end of the step"},
     {"time_step", "d^2/kappa", "length of the step"},
@@ -39,11 +39,14 @@ constexpr std::array<Column, 25> columns{{
     {"velocity_rms_outer", "kappa/d", "root mean square along the outer wall, over its area"},
     {"dissipation", "eta kappa^2 d^(n-4)", "integral of stress : strain rate over the volume"},
     {"buoyancy_work", "eta kappa^2 d^(n-4)",
-     "integral of Ra g T u_r over the volume, > 0 drives the flow"},
+     "integral of Ra alpha rho g T u_r over the volume, > 0 drives the flow"},
     {"work_mismatch", "1", "(dissipation - buoyancy_work) / buoyancy_work"},
     {"flow_error", "1",
      "relative velocity error in the dissipation norm, as the solver estimates it"},
     {"heat_source", "k DeltaT d^(n-2)", "integral of the internal heating over the volume"},
+    {"viscous_heating", "k DeltaT d^(n-2)", "Di/Ra times dissipation"},
+    {"adiabatic_cooling", "k DeltaT d^(n-2)",
+     "integral of Di alpha rho g u_r (T + T_surf) over the volume, > 0 cools"},
     {"heat_budget_residual", "1",
      "of the last step: change of heat content less wall flows and sources, over the largest of "
      "them"},
@@ -96,6 +99,8 @@ std::string history_row(const HistoryRow& r) {
                                                    r.work_mismatch,
                                                    r.flow_error,
                                                    r.heat_source,
+                                                   r.viscous_heating,
+                                                   r.adiabatic_cooling,
                                                    r.heat_budget_residual,
                                                    r.temperature_change_rate,
                                                    static_cast<double>(r.applications),

@@ -87,9 +87,10 @@ std::vector<CollectionEntry> read_collection(const std::string& text) {
 }
 
 std::string profiles_table(const RadialProfiles& p, double time, long step) {
-  static constexpr std::array<Column, 7> columns{{
+  static constexpr std::array<Column, 8> columns{{
       {"radius", "d", "middle of the cells; height above the inner wall in the box"},
       {"temperature", "DeltaT", "mean over the surface"},
+      {"temperature_adiabatic", "DeltaT", "of the adiabat through the mean at mid-depth"},
       {"velocity_radial_rms", "kappa/d", "root mean square over the surface"},
       {"velocity_lateral_rms", "kappa/d", "root mean square over the surface"},
       {"viscosity", "eta", "geometric mean over the surface"},
@@ -98,8 +99,8 @@ std::string profiles_table(const RadialProfiles& p, double time, long step) {
       {"heat_advected", "k DeltaT d^(n-2)",
        "heat flow by advection through the surface, > 0 outwards"},
   }};
-  const std::array<std::vector<double>, 7> numbers{
-      p.radius,    p.temperature,    p.velocity_radial_rms, p.velocity_lateral_rms,
+  const std::array<std::vector<double>, 8> numbers{
+      p.radius,    p.temperature,    p.temperature_adiabatic, p.velocity_radial_rms, p.velocity_lateral_rms,
       p.viscosity, p.heat_conducted, p.heat_advected};
   return table(title_of("radial profiles", time, step), columns, numbers);
 }

@@ -14,8 +14,7 @@ namespace lidwright {
 
 template <At at>
 class Field {
-  static_assert(at == At::Cell || at == At::Corner,
-                "faces are derived from corners: see mesh/operators.hpp");
+  static_assert(at != At::LateralFace, "what is there follows from the corners");
 
  public:
   Field() = default;
@@ -53,7 +52,9 @@ class Field {
   }
 
   /// Brings the neighbours' columns up to date. Collective.
-  void exchange() {
+  void exchange()
+    requires(at != At::RadialFace)
+  {
     Handle<Vec, VecDestroy> local;
     check(VecCreateSeqWithArray(PETSC_COMM_SELF, 1, static_cast<PetscInt>(values_.size()),
                                 values_.data(), local.put()));
@@ -90,5 +91,16 @@ class Field {
 
 using CellField = Field<At::Cell>;
 using CornerField = Field<At::Corner>;
+/// Without exchange: whoever makes it fills the neighbours' columns too.
+using RadialFaceField = Field<At::RadialFace>;
+
+/// value(face) on all faces held.
+template <class Value>
+RadialFaceField on_radial_faces(std::shared_ptr<const Decomposition> d, Value&& value) {
+  RadialFaceField f(std::move(d));
+  for (int j = f.held().begin; j < f.held().end; ++j)
+    for (int i = 0; i < f.rows(); ++i) f[{i, j}] = value(RadialFace{i, j});
+  return f;
+}
 
 }  // namespace lidwright

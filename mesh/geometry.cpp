@@ -58,8 +58,11 @@ std::vector<double> graded_faces(double begin, double end, int n, Grading gradin
   return face;
 }
 
-Geometry::Geometry(const Shell& shell, const Grid& grid) : shell_(shell), grid_(grid) {
+Geometry::Geometry(const Shell& shell, const Grid& grid,
+                   const std::function<double(double depth)>& density)
+    : shell_(shell), grid_(grid) {
   set_radial_metric();
+  set_density(density);
   set_lateral_metric();
   const double radial = std::accumulate(cell_measure_.begin(), cell_measure_.end(), 0.0);
   for (int j = 0; j < grid_.lateral; ++j) total_lateral_measure_ += lateral_measure_[j];
@@ -90,6 +93,26 @@ void Geometry::set_radial_metric() {
     inv_face_measure_.push_back(1 / face_measure_[i]);
     const double below = i > 0 ? width_[i - 1] / 2 : 0, above = i < n ? width_[i] / 2 : 0;
     radial_distance_.push_back(below + above);
+  }
+}
+
+/// With div(rho u) = 0 over the cell and one density rho_c along its sides,
+///     V div u = A_o u_o (1 - rho_o/rho_c) - A_i u_i (1 - rho_i/rho_c).
+void Geometry::set_density(const std::function<double(double depth)>& density) {
+  const auto at = [&](double radius) { return density ? density(outer_radius() - radius) : 1.0; };
+  for (int i = 0; i <= grid_.radial; ++i) {
+    face_density_.push_back(at(face_radius_[i]));
+    face_velocity_per_flow_.push_back(inv_face_measure_[i] / face_density_[i]);
+  }
+  for (int i = 0; i < grid_.radial; ++i) {
+    const double here = at(cell_radius_[i]);
+    cell_density_.push_back(here);
+    side_velocity_per_flow_.push_back(inv_side_measure_[i] / here);
+    const auto dilatation = [&](int face) {
+      return face_measure_[face] * inv_cell_measure_[i] * (1 - face_density_[face] / here);
+    };
+    inner_dilatation_.push_back(dilatation(i));
+    outer_dilatation_.push_back(dilatation(i + 1));
   }
 }
 

@@ -1,6 +1,7 @@
 #pragma once
 
 #include <array>
+#include <functional>
 #include <vector>
 
 #include "mesh/location.hpp"
@@ -64,7 +65,8 @@ class PaddedList {
 
 class Geometry {
  public:
-  Geometry(const Shell&, const Grid&);
+  /// `density` of depth below the outer wall, > 0; none: 1. Flows through faces are mass flows.
+  Geometry(const Shell&, const Grid&, const std::function<double(double depth)>& density = {});
 
   const Shell& shell() const { return shell_; }
   const Grid& grid() const { return grid_; }
@@ -109,10 +111,24 @@ class Geometry {
   double side_measure(int i) const { return side_measure_[i]; }
   double lateral_measure(int j) const { return lateral_measure_[j]; }
   double side_lateral(int j) const { return side_lateral_[j]; }
-  double inverse_face_measure(int i) const { return inv_face_measure_[i]; }
-  double inverse_side_measure(int i) const { return inv_side_measure_[i]; }
   double inverse_lateral_measure(int j) const { return inv_lateral_measure_[j]; }
   double inverse_side_lateral(int j) const { return inv_side_lateral_[j]; }
+  // Density, and what it takes from a mass flow through a face to the velocity there, 1 / (density
+  // * area); 0 on the axis.
+  double face_density(int i) const { return face_density_[i]; }
+  double cell_density(int i) const { return cell_density_[i]; }
+  double velocity_per_flow(RadialFace f) const {
+    return face_velocity_per_flow_[f.i] * inv_lateral_measure_[f.j];
+  }
+  double velocity_per_flow(LateralFace f) const {
+    return side_velocity_per_flow_[f.i] * inv_side_lateral_[f.j];
+  }
+  double face_velocity_per_flow(int i) const { return face_velocity_per_flow_[i]; }
+  double side_velocity_per_flow(int i) const { return side_velocity_per_flow_[i]; }
+  /// div u in a cell that keeps its mass is outer_dilatation * u_outer - inner_dilatation * u_inner;
+  /// both exactly 0 where the density is uniform.
+  double inner_dilatation(int cell_row) const { return inner_dilatation_[cell_row]; }
+  double outer_dilatation(int cell_row) const { return outer_dilatation_[cell_row]; }
   /// Share of the cell's volume in its corner: above (outer) or below its middle, right or left of
   /// it.
   double quarter_volume(Cell c, bool upper, bool right) const {
@@ -151,6 +167,7 @@ class Geometry {
  private:
   void set_radial_metric();
   void set_lateral_metric();
+  void set_density(const std::function<double(double depth)>&);
 
   Shell shell_;
   Grid grid_;
@@ -160,6 +177,9 @@ class Geometry {
   std::vector<double> upper_measure_, lower_measure_;    // its parts above and below the middle
   std::vector<double> side_measure_, inv_side_measure_;  // integral of r^(p-1), box: of 1
   std::vector<double> stretch_, curvature_;
+  std::vector<double> face_density_, cell_density_;
+  std::vector<double> face_velocity_per_flow_, side_velocity_per_flow_;  // radial factors
+  std::vector<double> inner_dilatation_, outer_dilatation_;
   PaddedList face_lateral_, cell_lateral_, lateral_width_, inv_lateral_width_, lateral_distance_;
   PaddedList lateral_measure_, inv_lateral_measure_;  // integral of 2 pi sin(theta), or the width
   PaddedList left_measure_, right_measure_;           // its parts left and right of the middle

@@ -4,22 +4,22 @@
 
 /// The rows of the strain-rate operator, pure functions of one index that read like their formulas,
 /// and their transposes. Velocities follow from the stream function psi at the corners:
-///     u = [psi(i, j+1) - psi(i, j)] / area of the radial face       > 0 outwards
-///     v = [psi(i, j) - psi(i+1, j)] / area of the lateral face      > 0 along the lateral
-///     coordinate
-/// so that the net outflow of every cell is zero to round-off.
+///     u = [psi(i, j+1) - psi(i, j)] / (density * area of the radial face)    > 0 outwards
+///     v = [psi(i, j) - psi(i+1, j)] / (density * area of the lateral face)   > 0 along the
+///     lateral coordinate
+/// so that the net mass flow out of every cell is zero to round-off.
 namespace lidwright {
 
 template <class Psi>
 double velocity(const Geometry& g, const Psi& psi, RadialFace f) {
-  return (psi[right(f)] - psi[left(f)]) * g.inverse_area(f);
+  return (psi[right(f)] - psi[left(f)]) * g.velocity_per_flow(f);
 }
 template <class Psi>
 double velocity(const Geometry& g, const Psi& psi, LateralFace f) {
-  return (psi[inner(f)] - psi[outer(f)]) * g.inverse_area(f);
+  return (psi[inner(f)] - psi[outer(f)]) * g.velocity_per_flow(f);
 }
 
-/// Volume (mass) that passes a face in unit time.
+/// Mass that passes a face in unit time.
 template <class Psi>
 double flow_through(const Psi& psi, RadialFace f) {
   return psi[right(f)] - psi[left(f)];
@@ -58,12 +58,14 @@ inline Normal strain(const Geometry& g, const OnFaces& w, Cell c) {
   return {rr, tt, divergence - rr - tt};
 }
 
-/// The same for the divergence-free velocities of a stream function, where div u vanishes exactly.
-inline Normal strain_without_divergence(const Geometry& g, const OnFaces& w, Cell c) {
+/// Its deviatoric part for the velocities of a stream function, e - (div u)/3, where div u follows
+/// from the radial velocities alone and is exactly 0 at uniform density.
+inline Normal deviatoric_strain(const Geometry& g, const OnFaces& w, Cell c) {
   const double rr = (w.outer - w.inner) * g.inv_width(c.i);
   const double tt = (w.right - w.left) * g.inv_lateral_width(c.j) / g.stretch(c.i) +
                     g.curvature(c.i) * (w.inner + w.outer) / 2;
-  return {rr, tt, -rr - tt};
+  const double third = (g.outer_dilatation(c.i) * w.outer - g.inner_dilatation(c.i) * w.inner) / 3;
+  return {rr - third, tt - third, 2 * third - rr - tt};
 }
 
 /// Transpose of `strain`: forces on the faces from stresses times volume.
@@ -76,12 +78,14 @@ inline OnFaces forces(const Geometry& g, const Normal& s, Cell c) {
           -tt - spread * g.area(left(c)), tt + spread * g.area(right(c))};
 }
 
-/// Transpose of `strain_without_divergence`.
-inline OnFaces forces_without_divergence(const Geometry& g, const Normal& s, Cell c) {
+/// Transpose of `deviatoric_strain`.
+inline OnFaces deviatoric_forces(const Geometry& g, const Normal& s, Cell c) {
   const double rr = (s.rr - s.pp) * g.inv_width(c.i);
   const double tt = (s.tt - s.pp) * g.inv_lateral_width(c.j) / g.stretch(c.i);
   const double hoop = g.curvature(c.i) * (s.tt - s.pp) / 2;
-  return {-rr + hoop, rr + hoop, -tt, tt};
+  const double spread = (2 * s.pp - s.rr - s.tt) / 3;
+  return {-rr + hoop - spread * g.inner_dilatation(c.i),
+          rr + hoop + spread * g.outer_dilatation(c.i), -tt, tt};
 }
 
 /// Shear strain rate at a corner, e_rt = (1/2) [h d(v/h)/dr + (1/h) du/dtheta], as weights on two
@@ -133,13 +137,13 @@ double shear(const Geometry& g, const Psi& psi, const ShearRow& row) {
 /// Adds the forces on four faces, as forces on the stream function, to the corners.
 template <class Force>
 void add_to_corners(const Geometry& g, Force& force, RadialFace f, double face_force) {
-  const double push = face_force * g.inverse_area(f);
+  const double push = face_force * g.velocity_per_flow(f);
   force[right(f)] += push;
   force[left(f)] -= push;
 }
 template <class Force>
 void add_to_corners(const Geometry& g, Force& force, LateralFace f, double face_force) {
-  const double push = face_force * g.inverse_area(f);
+  const double push = face_force * g.velocity_per_flow(f);
   force[inner(f)] += push;
   force[outer(f)] -= push;
 }

@@ -27,6 +27,8 @@ struct ExponentialViscosity {
     return std::exp(-std::log(thermal_contrast) * (p.temperature - unity_at) +
                     std::log(depth_contrast) * p.depth);
   }
+  /// d(ln eta)/dT.
+  double log_slope(const Point&) const { return -std::log(thermal_contrast); }
 };
 
 /// Arrhenius: eta = exp[(E + V depth)/(T + T0) - (E + V depth_1)/(T_1 + T0)].
@@ -41,6 +43,11 @@ struct ArrheniusViscosity {
   double operator()(const Point& p) const {
     return std::exp((energy + volume * p.depth) / (p.temperature + offset) -
                     (energy + volume * unity_at_depth) / (unity_at + offset));
+  }
+  /// d(ln eta)/dT.
+  double log_slope(const Point& p) const {
+    const double absolute = p.temperature + offset;
+    return -(energy + volume * p.depth) / (absolute * absolute);
   }
 };
 
@@ -70,15 +77,22 @@ struct ViscosityLaw {
   double lowest = 0;
   double highest = std::numeric_limits<double>::infinity();
 
-  double operator()(const Point& p) const {
+  double operator()(const Point& p) const { return std::clamp(uncut(p), lowest, highest); }
+  /// d(ln eta)/dT; 0 where a cut-off holds.
+  double log_slope(const Point& p) const {
+    const double eta = uncut(p);
+    if (eta <= lowest || eta >= highest) return 0;
+    return (exponential ? exponential->log_slope(p) : 0) +
+           (arrhenius ? arrhenius->log_slope(p) : 0);
+  }
+
+ private:
+  double uncut(const Point& p) const {
     double eta = constant * layered(p);
     if (exponential) eta *= (*exponential)(p);
     if (arrhenius) eta *= (*arrhenius)(p);
-    return std::clamp(eta, lowest, highest);
+    return eta;
   }
-  /// Whether eta stays as it is while the temperature changes (then one factorisation serves a
-  /// whole run).
-  bool steady() const { return !exponential && !arrhenius; }
 };
 
 }  // namespace lidwright

@@ -24,13 +24,15 @@ struct HistoryRow {
   double velocity_rms_inner = 0;  ///< along the wall, over its area
   double velocity_rms_outer = 0;
   double dissipation = 0;    ///< integral of tau : e, units eta kappa^2 d^(n-4)
-  double buoyancy_work = 0;  ///< integral of Ra g T u_r, same units
+  double buoyancy_work = 0;  ///< integral of Ra alpha rho g T u_r, same units
   double work_mismatch = 0;  ///< (dissipation - work) / work
   double flow_error =
       0;  ///< relative velocity error in the dissipation norm, as the solver estimates it
-  double heat_source = 0;  ///< integral of H
+  double heat_source = 0;        ///< integral of H
+  double viscous_heating = 0;    ///< Di/Ra times dissipation, a heat flow
+  double adiabatic_cooling = 0;  ///< integral of Di alpha rho g u_r (T + T_surf), > 0 cools
   double heat_budget_residual =
-      0;  ///< of the last step: (change of content - flows - sources) / largest of them
+      0;  ///< of the last step: (change of content - flows - all that heats) / largest of them
   double temperature_change_rate = 0;  ///< volume rms of dT/dt over the last step
   long applications = 0;               ///< of the factor, since the start
   long factorisations = 0;             ///< since the start
@@ -41,6 +43,7 @@ struct HistoryRow {
 struct RadialProfiles {
   std::vector<double> radius;  ///< height in the box
   std::vector<double> temperature;
+  std::vector<double> temperature_adiabatic;  ///< of the adiabat through the mean at mid-depth
   std::vector<double> velocity_radial_rms;
   std::vector<double> velocity_lateral_rms;
   std::vector<double> viscosity;       ///< geometric mean (of the volume's logarithm)

@@ -101,8 +101,7 @@ bool FlowSolver::factor_is_stale() const {
   return last_cost_ > (settings_.refactor_cost + spent_) / static_cast<double>(solves_);
 }
 
-FlowReport FlowSolver::solve(const CellField& eta, const std::function<double(RadialFace)>& b,
-                             CornerField& psi) {
+FlowReport FlowSolver::solve(const CellField& eta, const RadialFaceField& b, CornerField& psi) {
   viscosity_changed_ = eta.values() != power_.viscosity().values();
   if (viscosity_changed_) power_.set_viscosity(eta);
   const bool changed_anywhere = power_.decomposition().max(viscosity_changed_ ? 1 : 0) > 0;

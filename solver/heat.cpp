@@ -2,6 +2,7 @@
 
 #include <algorithm>
 #include <cmath>
+#include <numeric>
 
 #include "mesh/operators.hpp"
 #include "solver/advection.hpp"
@@ -34,15 +35,50 @@ auto with_scheme(HeatFlux scheme, With&& with) {
 }  // namespace
 
 HeatOperator::HeatOperator(std::shared_ptr<const Decomposition> d, const Walls& walls,
-                           const HeatSources& sources, HeatFlux flux)
-    : decomposition_(std::move(d)), walls_(walls), flux_(flux) {
+                           const HeatSources& sources, HeatFlux flux,
+                           const ReferenceProfiles& reference)
+    : decomposition_(std::move(d)),
+      walls_(walls),
+      flux_(flux),
+      reference_(reference),
+      mantle_(geometry(), reference) {
   const Geometry& g = geometry();
   for (int i = 0; i < g.radial_cells(); ++i) {
+    const auto row = static_cast<std::size_t>(i);
     source_.push_back(sources(g.depth(i)));
-    for (int j = 0; j < g.lateral_cells(); ++j) total_source_ += g.volume({i, j}) * source_.back();
-    radial_conductance_.push_back(i > 0 ? g.face_measure(i) / g.radial_distance(i) : 0);
-    lateral_conductance_.push_back(g.side_measure(i) / g.stretch(i));
+    capacity_per_volume_.push_back(g.cell_density(i) * mantle_.heat_capacity[row]);
+    for (int j = 0; j < g.lateral_cells(); ++j) {
+      total_source_ += g.volume({i, j}) * source_.back();
+      total_capacity_ += capacity({i, j});
+    }
+    radial_conductance_.push_back(
+        i > 0 ? g.face_measure(i) * mantle_.face_conductivity[row] / g.radial_distance(i) : 0);
+    lateral_conductance_.push_back(g.side_measure(i) * mantle_.cell_conductivity[row] /
+                                   g.stretch(i));
   }
+  set_adiabatic_work();
+}
+
+void HeatOperator::set_adiabatic_work() {
+  const Geometry& g = geometry();
+  for (int i = 0; i <= g.radial_cells(); ++i) {
+    const bool wall = g.on_wall(i);
+    const double per_distance =
+        wall ? 0 : mantle_.dissipation_number * mantle_.buoyancy[static_cast<std::size_t>(i)];
+    adiabatic_inside_.push_back(wall ? 0 : per_distance * g.width(i - 1) / 2);
+    adiabatic_outside_.push_back(wall ? 0 : per_distance * g.width(i) / 2);
+  }
+}
+
+double HeatOperator::conductance(RadialFace f) const {
+  return geometry().area(f) * mantle_.face_conductivity[static_cast<std::size_t>(f.i)] /
+         geometry().radial_distance(f.i);
+}
+
+double HeatOperator::conductance(LateralFace f) const {
+  if (geometry().on_side(f.j)) return 0;
+  return lateral_conductance_[static_cast<std::size_t>(f.i)] * geometry().side_lateral(f.j) /
+         geometry().lateral_distance(f.j);
 }
 
 double HeatOperator::wall_flux(const CellField& temperature, RadialFace wall) const {
@@ -53,21 +89,28 @@ double HeatOperator::wall_flux(const CellField& temperature, RadialFace wall) co
   const double at_wall = std::get<FixedTemperature>(condition).value;
   const double inside_t = temperature[at_inner ? outside(wall) : inside(wall)];
   const double drop = at_inner ? at_wall - inside_t : inside_t - at_wall;
-  return geometry().area(wall) * drop / geometry().radial_distance(wall.i);
+  return conductance(wall) * drop;
 }
 
 double HeatOperator::wall_temperature(const CellField& temperature, RadialFace wall) const {
   const bool at_inner = wall.i == 0;
   const ThermalWall& condition = thermal(walls_, at_inner);
   if (const auto* fixed = std::get_if<FixedTemperature>(&condition)) return fixed->value;
-  const double fall =
-      std::get<FixedHeatFlux>(condition).outward * geometry().radial_distance(wall.i);
+  const double fall = std::get<FixedHeatFlux>(condition).outward *
+                      geometry().radial_distance(wall.i) /
+                      mantle_.face_conductivity[static_cast<std::size_t>(wall.i)];
   return at_inner ? temperature[outside(wall)] + fall : temperature[inside(wall)] - fall;
 }
 
 double HeatOperator::conducted(const CellField& t, RadialFace f) const {
   if (geometry().on_wall(f.i)) return wall_flux(t, f);
-  return geometry().area(f) * (t[inside(f)] - t[outside(f)]) / geometry().radial_distance(f.i);
+  return conductance(f) * (t[inside(f)] - t[outside(f)]);
+}
+
+double HeatOperator::face_temperature(const CellField& t, RadialFace f) const {
+  const double below = f.i == 0 ? wall_temperature(t, f) : t[inside(f)];
+  const double above = f.i == geometry().radial_cells() ? wall_temperature(t, f) : t[outside(f)];
+  return (below + above) / 2;
 }
 
 /// Temperature of a row of cells that may lie one beyond a wall: continued on a straight line
@@ -81,7 +124,9 @@ double HeatOperator::radial_neighbour(const CellField& t, int i, int j) const {
 
 double HeatOperator::advected(const CellField& t, const CornerField& psi, RadialFace f) const {
   if (geometry().on_wall(f.i)) return 0;
-  return with_scheme(flux_, [&](auto carried) {
+  const auto row = static_cast<std::size_t>(f.i);
+  const double capacity = (mantle_.heat_capacity[row - 1] + mantle_.heat_capacity[row]) / 2;
+  return capacity * with_scheme(flux_, [&](auto carried) {
     return carried(flow_through(psi, f), radial_neighbour(t, f.i - 2, f.j), t[inside(f)],
                    t[outside(f)], radial_neighbour(t, f.i + 1, f.j));
   });
@@ -135,10 +180,24 @@ void HeatOperator::add_advection(const CellField& t, const CornerField& psi,
       carry_radially(t, psi, j, carried, up);
       carry_laterally(t, psi, j + 1, carried, to_right);
       double* gain = rate.column(j);
-      for (std::size_t i = 0; i < n; ++i) gain[i] += up[i] - up[i + 1] + from_left[i] - to_right[i];
+      for (std::size_t i = 0; i < n; ++i)
+        gain[i] += mantle_.heat_capacity[i] * (up[i] - up[i + 1] + from_left[i] - to_right[i]);
       std::swap(from_left, to_right);
     }
   });
+}
+
+void HeatOperator::add_adiabatic_work(const CellField& t, const CornerField& psi,
+                                      CellField& rate) const {
+  if (mantle_.dissipation_number == 0) return;
+  for (int j = rate.owned().begin; j < rate.owned().end; ++j)
+    for (int i = 1; i < rate.rows(); ++i) {
+      const RadialFace f{i, j};
+      const double absolute = face_temperature(t, f) + mantle_.surface_temperature;
+      const double work = flow_through(psi, f) * absolute;
+      rate[inside(f)] -= adiabatic_inside(i) * work;
+      rate[outside(f)] -= adiabatic_outside(i) * work;
+    }
 }
 
 /// Heat conducted through the lateral faces on the left of column j.
@@ -189,7 +248,7 @@ double HeatOperator::outflow_rate(const CornerField& psi) const {
       const double out =
           positive(flow_through(psi, outer(c))) + positive(-flow_through(psi, inner(c))) +
           positive(flow_through(psi, right(c))) + positive(-flow_through(psi, left(c)));
-      most = std::max(most, out * geometry().inverse_volume(c));
+      most = std::max(most, out * geometry().inverse_volume(c) / geometry().cell_density(i));
     }
   return decomposition_->max(most);
 }
@@ -197,22 +256,21 @@ double HeatOperator::outflow_rate(const CornerField& psi) const {
 ImplicitConduction::ImplicitConduction(const HeatOperator& heat)
     : heat_(heat),
       homogeneous_(heat.decomposition_pointer(), homogeneous(heat.walls()), HeatSources{},
-                   HeatFlux::Central),
+                   HeatFlux::Central, heat.reference()),
       direction_(heat.decomposition_pointer()) {}
 
-/// y = (V - tau * linear conduction) x at owned cells.
+/// y = (V rho cp - tau * linear conduction) x at owned cells.
 void ImplicitConduction::apply(double tau, CellField& x, std::vector<double>& y) const {
   x.exchange();
   CellField rate(x.decomposition_pointer());
   (void)homogeneous_.add_conduction(x, rate);
-  const Geometry& g = heat_.geometry();
   std::size_t n = 0;
   for (int j = x.owned().begin; j < x.owned().end; ++j)
     for (int i = 0; i < x.rows(); ++i, ++n)
-      y[n] = g.volume({i, j}) * x[{i, j}] - tau * rate[{i, j}];
+      y[n] = heat_.capacity({i, j}) * x[{i, j}] - tau * rate[{i, j}];
 }
 
-/// Cholesky factors of the tridiagonal radial lines of V - tau * conduction.
+/// Cholesky factors of the tridiagonal radial lines of V rho cp - tau * conduction.
 void ImplicitConduction::set_lines(double tau) {
   if (lines_for_ == tau) return;
   lines_for_ = tau;
@@ -221,10 +279,7 @@ void ImplicitConduction::set_lines(double tau) {
   const int rows = g.radial_cells();
   const auto radial = [&](RadialFace f, ThermalWall condition) {
     if (g.on_wall(f.i) && std::holds_alternative<FixedHeatFlux>(condition)) return 0.0;
-    return tau * g.area(f) / g.radial_distance(f.i);
-  };
-  const auto lateral = [&](LateralFace f) {
-    return g.on_side(f.j) ? 0.0 : tau * g.area(f) / (g.stretch(f.i) * g.lateral_distance(f.j));
+    return tau * heat_.conductance(f);
   };
   inverse_pivot_.clear();
   above_.clear();
@@ -232,7 +287,9 @@ void ImplicitConduction::set_lines(double tau) {
     for (int i = 0; i < rows; ++i) {
       const double below = radial({i, j}, heat_.walls().inner.thermal);
       const double above = radial({i + 1, j}, heat_.walls().outer.thermal);
-      double pivot = g.volume({i, j}) + below + above + lateral({i, j}) + lateral({i, j + 1});
+      const double sideways =
+          heat_.conductance(LateralFace{i, j}) + heat_.conductance(LateralFace{i, j + 1});
+      double pivot = heat_.capacity({i, j}) + below + above + tau * sideways;
       if (i > 0) pivot -= below * below * inverse_pivot_.back();
       inverse_pivot_.push_back(1 / pivot);
       above_.push_back(i + 1 < rows ? above : 0);
@@ -275,20 +332,20 @@ void ImplicitConduction::solve(double tau, const CellField& right, CellField& te
   std::size_t k = 0;
   for (int j = right.owned().begin; j < right.owned().end; ++j)
     for (int i = 0; i < right.rows(); ++i, ++k)
-      r[k] = right[{i, j}] + tau * rate[{i, j}] - d.geometry().volume({i, j}) * temperature[{i, j}];
+      r[k] = right[{i, j}] + tau * rate[{i, j}] - heat_.capacity({i, j}) * temperature[{i, j}];
   const auto dot = [&](const double* a, const double* b) {
     double s = 0;
     for (std::size_t m = 0; m < n; ++m) s += a[m] * b[m];
     return d.sum(s);
   };
   solve_lines(r, z);
-  // Natural norm against the size of the temperature itself, V T . T.
+  // Natural norm against the size of the temperature itself, V rho cp T . T.
   std::vector<double> volume_t(n);
   k = 0;
   for (int j = right.owned().begin; j < right.owned().end; ++j)
     for (int i = 0; i < right.rows(); ++i, ++k)
-      volume_t[k] = d.geometry().volume({i, j}) * temperature[{i, j}];
-  const double floor = d.geometry().total_volume() * 1e-12;
+      volume_t[k] = heat_.capacity({i, j}) * temperature[{i, j}];
+  const double floor = heat_.total_capacity() * 1e-12;
   const double stop =
       tolerance * tolerance * std::max(floor, dot(volume_t.data(), temperature.owned_data()));
   std::copy(z.begin(), z.end(), direction_.owned_data());
@@ -317,22 +374,40 @@ void ImplicitConduction::solve(double tau, const CellField& right, CellField& te
 }
 
 HeatStepper::HeatStepper(std::shared_ptr<const Decomposition> d, const Walls& walls,
-                         const HeatSources& sources, HeatFlux flux)
-    : heat_(std::move(d), walls, sources, flux), implicit_(heat_) {}
+                         const HeatSources& sources, HeatFlux flux,
+                         const ReferenceProfiles& reference)
+    : heat_(std::move(d), walls, sources, flux, reference), implicit_(heat_) {}
 
-/// Rates of one stage: A by advection and sources, D by conduction, each times the cell's volume.
+namespace {
+
+double owned_sum(const CellField& f) {
+  return std::accumulate(f.owned_data(), f.owned_data() + f.owned_size(), 0.0);
+}
+
+}  // namespace
+
+/// Gains of cells in one stage: A by all that is explicit, D by conduction.
 struct HeatStepper::Stage {
   CellField advection, conduction;
-  WallHeat through;  ///< on this rank
+  StepHeat heat;  ///< on this rank
 };
 
-HeatStepper::Stage HeatStepper::stage(const CellField& temperature, const CornerField& psi) const {
+HeatStepper::Stage HeatStepper::stage(const CellField& temperature, const Forcing& forcing) const {
   Stage s{CellField(temperature.decomposition_pointer()),
           CellField(temperature.decomposition_pointer()),
           {}};
+  heat_.add_advection(temperature, forcing.psi, s.advection);
+  if (!heat_.mantle().uniform_heat_capacity) s.heat.carried = owned_sum(s.advection);
+  if (!forcing.viscous.empty()) {
+    CellField work(temperature.decomposition_pointer());
+    heat_.add_adiabatic_work(temperature, forcing.psi, work);
+    s.heat.adiabatic = -owned_sum(work);
+    s.heat.viscous = owned_sum(forcing.viscous);
+    for (std::size_t k = 0; k < work.owned_size(); ++k)
+      s.advection.owned_data()[k] += work.owned_data()[k] + forcing.viscous.owned_data()[k];
+  }
   heat_.add_sources(s.advection);
-  heat_.add_advection(temperature, psi, s.advection);
-  s.through = heat_.add_conduction(temperature, s.conduction);
+  s.heat.through = heat_.add_conduction(temperature, s.conduction);
   return s;
 }
 
@@ -341,50 +416,54 @@ HeatStepper::Stage HeatStepper::stage(const CellField& temperature, const Corner
 ///     T3 = T + dt [A1/2 + A2/2 + b D1 + b D2 + g D3]            at t + dt
 ///     T(t + dt) = T + dt [b (A1 + D1) + b (A2 + D2) + g (A3 + D3)]
 /// The last line is in flux form, so heat is conserved whatever the implicit solves leave.
-WallHeat HeatStepper::step(const CellField& temperature, const CornerField& psi_now,
-                           const CornerField& psi_then, double dt, CellField& next) {
+StepHeat HeatStepper::step(const CellField& temperature, const Forcing& now, const Forcing& then,
+                           double dt, CellField& next) {
   const double g = 1 - 1 / std::sqrt(2.0), b = 1 / (2 * std::sqrt(2.0));
-  const Geometry& geometry = heat_.geometry();
   const auto each = [&](auto&& body) {
     for (int j = temperature.owned().begin; j < temperature.owned().end; ++j)
       for (int i = 0; i < temperature.rows(); ++i) body(Cell{i, j});
   };
-  CornerField psi_between = psi_now;
-  for (std::size_t k = 0; k < psi_between.values().size(); ++k)
-    psi_between.values()[k] += 2 * g * (psi_then.values()[k] - psi_now.values()[k]);
+  Forcing between = now;
+  for (std::size_t k = 0; k < now.psi.values().size(); ++k)
+    between.psi.values()[k] += 2 * g * (then.psi.values()[k] - now.psi.values()[k]);
+  for (std::size_t k = 0; k < now.viscous.values().size(); ++k)
+    between.viscous.values()[k] += 2 * g * (then.viscous.values()[k] - now.viscous.values()[k]);
   CellField right(temperature.decomposition_pointer()), middle(temperature.decomposition_pointer());
 
-  const Stage one = stage(temperature, psi_now);
+  const Stage one = stage(temperature, now);
   each([&](Cell c) {
-    right[c] = geometry.volume(c) * temperature[c] +
+    right[c] = heat_.capacity(c) * temperature[c] +
                dt * (2 * g * one.advection[c] + g * one.conduction[c]);
     middle[c] = temperature[c] +
-                2 * g * dt * (one.advection[c] + one.conduction[c]) * geometry.inverse_volume(c);
+                2 * g * dt * (one.advection[c] + one.conduction[c]) / heat_.capacity(c);
   });
   implicit_.solve(g * dt, right, middle);
-  const Stage two = stage(middle, psi_between);
+  const Stage two = stage(middle, between);
   CellField last(temperature.decomposition_pointer());
   each([&](Cell c) {
     right[c] =
-        geometry.volume(c) * temperature[c] + dt * ((one.advection[c] + two.advection[c]) / 2 +
+        heat_.capacity(c) * temperature[c] + dt * ((one.advection[c] + two.advection[c]) / 2 +
                                                     b * (one.conduction[c] + two.conduction[c]));
     last[c] = temperature[c] + (middle[c] - temperature[c]) / (2 * g);
   });
   implicit_.solve(g * dt, right, last);
-  const Stage three = stage(last, psi_then);
+  const Stage three = stage(last, then);
   next = temperature;
   each([&](Cell c) {
     const double gain =
         b * (one.advection[c] + one.conduction[c] + two.advection[c] + two.conduction[c]) +
         g * (three.advection[c] + three.conduction[c]);
-    next[c] += dt * gain * geometry.inverse_volume(c);
+    next[c] += dt * gain / heat_.capacity(c);
   });
   next.exchange();
-  const auto mean = [&](double q1, double q2, double q3) {
-    return heat_.decomposition().sum(b * (q1 + q2) + g * q3);
-  };
-  return {mean(one.through.inner, two.through.inner, three.through.inner),
-          mean(one.through.outer, two.through.outer, three.through.outer)};
+  std::vector<double> mean;
+  for (double StepHeat::*part : {&StepHeat::viscous, &StepHeat::adiabatic, &StepHeat::carried})
+    mean.push_back(b * (one.heat.*part + two.heat.*part) + g * three.heat.*part);
+  for (double WallHeat::*wall : {&WallHeat::inner, &WallHeat::outer})
+    mean.push_back(b * (one.heat.through.*wall + two.heat.through.*wall) +
+                   g * three.heat.through.*wall);
+  heat_.decomposition().sum_in_place(mean);
+  return {{mean[3], mean[4]}, mean[0], mean[1], mean[2]};
 }
 
 }  // namespace lidwright

@@ -126,9 +126,7 @@ std::vector<double> conductive_profile(const HeatOperator& heat) {
   const Geometry& g = heat.geometry();
   const int rows = g.radial_cells();
   std::vector<double> t(static_cast<std::size_t>(rows)), share(t.size());
-  const auto conductance = [&](int face) {
-    return g.area(RadialFace{face, 0}) / g.radial_distance(face);
-  };
+  const auto conductance = [&](int face) { return heat.conductance(RadialFace{face, 0}); };
   const auto fixed_flow = [&](const ThermalWall& wall, int face) {
     return g.area(RadialFace{face, 0}) * std::get<FixedHeatFlux>(wall).outward;
   };

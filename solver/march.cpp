@@ -9,10 +9,6 @@
 namespace lidwright {
 namespace {
 
-std::shared_ptr<const Decomposition> decompose(const Model& model, MPI_Comm comm) {
-  return std::make_shared<Decomposition>(std::make_shared<Geometry>(model.shell, model.grid), comm);
-}
-
 template <class Value>
 double volume_rms(const CellField& shape, Value&& value) {
   const Geometry& g = shape.decomposition().geometry();
@@ -25,14 +21,6 @@ double volume_rms(const CellField& shape, Value&& value) {
   return std::sqrt(shape.decomposition().sum(sum) / g.total_volume());
 }
 
-template <class Value>
-double volume_sum(const CellField& shape, Value&& value) {
-  const Geometry& g = shape.decomposition().geometry();
-  double sum = 0;
-  for (int j = shape.owned().begin; j < shape.owned().end; ++j)
-    for (int i = 0; i < shape.rows(); ++i) sum += g.volume({i, j}) * value({i, j});
-  return shape.decomposition().sum(sum);
-}
 
 }  // namespace
 
@@ -41,9 +29,8 @@ March::March(const Model& model, const FlowSettings& flow, const HeatSettings& h
       heat_settings_(heat),
       decomposition_(decompose(model, comm)),
       flow_(decomposition_, model.walls, flow),
-      stepper_(decomposition_, model.walls, model.heat, heat.flux),
+      stepper_(decomposition_, model.walls, model.heat, heat.flux, model.reference),
       temperature_(decomposition_),
-      viscosity_(decomposition_, 1.0),
       psi_(decomposition_),
       former_psi_(decomposition_),
       error_limited_step_(heat.first_step),
@@ -55,28 +42,17 @@ March::March(const Model& model, const InitialSettings& initial, const StoredTem
   temperature_ = initial_temperature(stepper_.heat(), initial, stored);
   solve_flow();
   former_psi_ = psi_;
-}
-
-/// Buoyancy Ra T at radial faces; next to a wall, the mean of the wall and the cell.
-std::function<double(RadialFace)> March::buoyancy() const {
-  return [this](RadialFace f) {
-    const double ra = model_.rayleigh;
-    if (f.i == 0)
-      return ra * (stepper_.heat().wall_temperature(temperature_, f) + temperature_[outside(f)]) /
-             2;
-    if (f.i == temperature_.rows())
-      return ra * (temperature_[inside(f)] + stepper_.heat().wall_temperature(temperature_, f)) / 2;
-    return ra * (temperature_[inside(f)] + temperature_[outside(f)]) / 2;
-  };
+  former_viscous_ = viscous_;
 }
 
 void March::solve_flow() {
-  const Geometry& g = decomposition_->geometry();
-  for (int j = viscosity_.held().begin; j < viscosity_.held().end; ++j)
-    for (int i = 0; i < viscosity_.rows(); ++i)
-      viscosity_[{i, j}] = model_.viscosity({temperature_[{i, j}], g.depth(i)});
-  const FlowReport report = flow_.solve(viscosity_, buoyancy(), psi_);
-  if (report.converged) return;
+  const FlowReport report =
+      flow_.solve(viscosity_of(model_.viscosity, temperature_),
+                  buoyancy(stepper_.heat(), temperature_, model_.rayleigh), psi_);
+  if (report.converged) {
+    viscous_ = viscous_heating(view());
+    return;
+  }
   throw SolveError(
       fmt::format("the flow did not converge at step {} (time {:.6g}): relative error {:.2e} after "
                   "{} iterations with a fresh "
@@ -86,13 +62,17 @@ void March::solve_flow() {
                   steps_, time_, report.error, report.iterations));
 }
 
-/// The flow at t + dt on the straight line through the last two.
-CornerField March::foreseen_flow(double dt) const {
-  CornerField then = psi_;
+/// Flow and viscous heating at t + dt on the straight line through the last two.
+HeatStepper::Forcing March::foreseen(double dt) const {
+  HeatStepper::Forcing then{psi_, viscous_};
   if (steps_ == 0) return then;
   const double ratio = dt / last_step_;
-  for (std::size_t k = 0; k < then.values().size(); ++k)
-    then.values()[k] += ratio * (psi_.values()[k] - former_psi_.values()[k]);
+  const auto extrapolate = [ratio](auto& field, const auto& former) {
+    for (std::size_t k = 0; k < field.values().size(); ++k)
+      field.values()[k] += ratio * (field.values()[k] - former.values()[k]);
+  };
+  extrapolate(then.psi, former_psi_);
+  extrapolate(then.viscous, former_viscous_);
   return then;
 }
 
@@ -123,7 +103,7 @@ void March::step(double until) {
   const bool to_the_end = dt == until - time_;
   for (int attempt = 0;; ++attempt) {
     CellField next(decomposition_);
-    const WallHeat through = stepper_.step(temperature_, psi_, foreseen_flow(dt), dt, next);
+    const StepHeat heat = stepper_.step(temperature_, {psi_, viscous_}, foreseen(dt), dt, next);
     const double error = local_error(next, dt);
     if (!std::isfinite(error) || (error > 2 * heat_settings_.accuracy && attempt == 20))
       throw SolveError(
@@ -134,18 +114,29 @@ void March::step(double until) {
     if (error <= 2 * heat_settings_.accuracy) {
       // Not time_ + dt, which may miss it by a rounding and leave a step of that length.
       const double end = to_the_end && attempt == 0 ? until : time_ + dt;
-      return accept(std::move(next), dt, end, through, error);
+      return accept(std::move(next), dt, end, heat, error);
     }
     dt *= std::max(0.3, 0.9 * std::cbrt(heat_settings_.accuracy / error));
   }
 }
 
-void March::accept(CellField next, double dt, double end, const WallHeat& through, double error) {
-  const double change = volume_sum(next, [&](Cell c) { return next[c] - temperature_[c]; });
-  const double source = stepper_.heat().total_source();
-  const double scale = std::max({std::abs(change), dt * std::abs(through.inner),
-                                 dt * std::abs(through.outer), dt * std::abs(source)});
-  const double residual = change - dt * (through.inner - through.outer + source);
+/// Of the heat content, from the present temperature to the next.
+double March::content_change(const CellField& next) const {
+  double sum = 0;
+  for (int j = next.owned().begin; j < next.owned().end; ++j)
+    for (int i = 0; i < next.rows(); ++i)
+      sum += heat().capacity({i, j}) * (next[{i, j}] - temperature_[{i, j}]);
+  return decomposition_->sum(sum);
+}
+
+void March::accept(CellField next, double dt, double end, const StepHeat& heat, double error) {
+  const HeatOperator& op = stepper_.heat();
+  const double change = content_change(next);
+  const double source = op.total_source();
+  double scale = std::abs(change);
+  for (const double part : {heat.through.inner, heat.through.outer, source, heat.viscous})
+    scale = std::max(scale, dt * std::abs(part));
+  const double residual = change - dt * (heat.gain() + source);
   budget_residual_ = scale > 0 ? residual / scale : 0;
   change_rate_ = volume_rms(next, [&](Cell c) { return (next[c] - temperature_[c]) / dt; });
 
@@ -159,7 +150,28 @@ void March::accept(CellField next, double dt, double end, const WallHeat& throug
       error > 0 ? 0.9 * std::cbrt(heat_settings_.accuracy / error) : heat_settings_.growth;
   error_limited_step_ = dt * std::clamp(by_error, 0.3, heat_settings_.growth);
   former_psi_ = psi_;
+  former_viscous_ = viscous_;
   solve_flow();
+}
+
+HistoryRow March::row() const {
+  HistoryRow row = measure(view());
+  row.step = steps_;
+  row.time = time_;
+  row.time_step = last_step_;
+  row.flow_error = flow_.last_error();
+  row.heat_budget_residual = budget_residual_;
+  row.temperature_change_rate = steps_ > 0 ? change_rate_ : 0;
+  row.applications = flow_.applications();
+  row.factorisations = flow_.factorisations();
+  return row;
+}
+
+Snapshot March::snapshot(bool with_stress) const {
+  Snapshot s = lidwright::snapshot(view(), with_stress);
+  s.step = steps_;
+  s.time = time_;
+  return s;
 }
 
 Archive March::archive() const {
@@ -177,9 +189,12 @@ Archive March::archive() const {
     a.cells["former.temperature." + std::to_string(n)] = former_[n].temperature;
   }
   a.cells["temperature"] = temperature_;
-  a.cells["viscosity"] = viscosity_;
   a.corners["stream_function"] = psi_;
   a.corners["former_stream_function"] = former_psi_;
+  if (!viscous_.empty()) {
+    a.cells["viscous_heating"] = viscous_;
+    a.cells["former_viscous_heating"] = former_viscous_;
+  }
   return a;
 }
 
@@ -197,9 +212,13 @@ March::March(const Model& model, const FlowSettings& flow, const HeatSettings& h
   change_rate_ = a.numbers.at("change_rate");
   budget_residual_ = a.numbers.at("budget_residual");
   adopt(temperature_, a.cells.at("temperature"));
-  adopt(viscosity_, a.cells.at("viscosity"));
   adopt(psi_, a.corners.at("stream_function"));
   adopt(former_psi_, a.corners.at("former_stream_function"));
+  if (a.cells.contains("viscous_heating")) {
+    viscous_ = former_viscous_ = CellField(decomposition_);
+    adopt(viscous_, a.cells.at("viscous_heating"));
+    adopt(former_viscous_, a.cells.at("former_viscous_heating"));
+  }
   const auto count = static_cast<std::size_t>(a.numbers.at("former"));
   for (std::size_t n = 0; n < count; ++n) {
     Former f{a.numbers.at("former.time." + std::to_string(n)), CellField(decomposition_)};

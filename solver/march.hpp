@@ -8,6 +8,7 @@
 #include "solver/flow.hpp"
 #include "solver/heat.hpp"
 #include "solver/initial.hpp"
+#include "solver/measure.hpp"
 #include "solver/settings.hpp"
 #include "solver/snapshot.hpp"
 #include "solver/solve_error.hpp"
@@ -36,7 +37,7 @@ class March {
   /// The row of the history for the present state; wall_time is left 0. Collective.
   HistoryRow row() const;
   /// Collective.
-  RadialProfiles profiles() const;
+  RadialProfiles profiles() const { return lidwright::profiles(view()); }
   Snapshot snapshot(bool with_stress) const;
   Archive archive() const;
 
@@ -54,19 +55,21 @@ class March {
   };
   March(const Model&, const FlowSettings&, const HeatSettings&, MPI_Comm);
   void solve_flow();
-  std::function<double(RadialFace)> buoyancy() const;
-  CornerField foreseen_flow(double dt) const;
+  StateView view() const { return {power(), heat(), temperature_, psi_, model_.rayleigh}; }
+  double content_change(const CellField& next) const;
+  HeatStepper::Forcing foreseen(double dt) const;
   double proposed_step(double until) const;
   double local_error(const CellField& next, double dt) const;
-  void accept(CellField next, double dt, double end, const WallHeat& through, double error);
+  void accept(CellField next, double dt, double end, const StepHeat&, double error);
 
   Model model_;
   HeatSettings heat_settings_;
   std::shared_ptr<const Decomposition> decomposition_;
   FlowSolver flow_;
   HeatStepper stepper_;
-  CellField temperature_, viscosity_;
+  CellField temperature_;
   CornerField psi_, former_psi_;
+  CellField viscous_, former_viscous_;  ///< heating of cells; empty: none
   std::vector<Former> former_;  ///< newest first, at most 2
   double time_ = 0, last_step_ = 0, error_limited_step_;
   long steps_ = 0;

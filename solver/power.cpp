@@ -64,22 +64,43 @@ void Power::set_viscosity(const CellField& eta) {
 
 /// V eta_k with V / eta_k = sum over the quarters q of V_q / eta_q, summed volumes V.
 double Power::corner_viscosity_volume(Corner k) const {
-  const Geometry& g = geometry();
   double volume = 0, compliance = 0;
-  const auto add = [&](Cell c, bool upper, bool right) {
-    const double v = g.quarter_volume(c, upper, right);
+  visit_quarters(k, [&](Cell c, double v) {
     volume += v;
     compliance += v / eta_[c];
+  });
+  return volume * volume / compliance;
+}
+
+/// Calls visit(cell, volume of its quarter) for the cells that meet in a corner off the sides.
+template <class Visit>
+void Power::visit_quarters(Corner k, Visit&& visit) const {
+  const Geometry& g = geometry();
+  const auto quarter = [&](Cell c, bool upper, bool right) {
+    visit(c, g.quarter_volume(c, upper, right));
   };
   if (k.i > 0) {
-    add({k.i - 1, k.j - 1}, true, true);
-    add({k.i - 1, k.j}, true, false);
+    quarter({k.i - 1, k.j - 1}, true, true);
+    quarter({k.i - 1, k.j}, true, false);
   }
   if (k.i < g.radial_cells()) {
-    add({k.i, k.j - 1}, false, true);
-    add({k.i, k.j}, false, false);
+    quarter({k.i, k.j - 1}, false, true);
+    quarter({k.i, k.j}, false, false);
   }
-  return volume * volume / compliance;
+}
+
+std::array<Power::Share, 4> Power::shares(Corner k) const {
+  const int row = std::min(k.i, geometry().radial_cells() - 1);
+  std::array<Share, 4> all;
+  all.fill({{row, k.j}, 0});
+  std::size_t n = 0;
+  double compliance = 0;
+  visit_quarters(k, [&](Cell c, double v) {
+    all[n++] = {c, v / eta_[c]};
+    compliance += v / eta_[c];
+  });
+  for (Share& s : all) s.share /= compliance;
+  return all;
 }
 
 void Power::set_corner_weights() {
@@ -95,11 +116,13 @@ RadialTable::RadialTable(const Geometry& g) {
     per_width.push_back(g.inv_width(i));
     per_stretch.push_back(1 / g.stretch(i));
     half_curvature.push_back(g.curvature(i) / 2);
-    per_side.push_back(g.inverse_side_measure(i));
+    per_side.push_back(g.side_velocity_per_flow(i));
+    inner_dilatation.push_back(g.inner_dilatation(i));
+    outer_dilatation.push_back(g.outer_dilatation(i));
   }
   for (int i = 0; i <= n; ++i) {
     const bool inside = i > 0 && i < n;
-    per_area.push_back(g.inverse_face_measure(i));
+    per_area.push_back(g.face_velocity_per_flow(i));
     lateral_shear.push_back(inside ? 0.5 / g.face_stretch(i) : 0);
     outer_shear.push_back(inside ? 0.5 * g.face_stretch(i) / (g.radial_distance(i) * g.stretch(i))
                                  : 0);
@@ -148,12 +171,16 @@ void Power::apply_normal(const CornerField& psi, CornerField& force) const {
           table_.per_side[i];
       const double rr = (u[i + 1] - u[i]) * table_.per_width[i];
       const double tt = lateral * to_angle + table_.half_curvature[i] * (u[i] + u[i + 1]);
-      // Stress differences tau_rr - tau_pp and tau_tt - tau_pp, times volume: e_pp = - e_rr - e_tt.
-      const double along_r = weight[i] * (2 * rr + tt) * table_.per_width[i];
-      const double along_t = weight[i] * (2 * tt + rr);
+      const double dilatation =
+          table_.outer_dilatation[i] * u[i + 1] - table_.inner_dilatation[i] * u[i];
+      // Stress differences tau_rr - tau_pp and tau_tt - tau_pp, and tau_pp itself, times volume,
+      // with the deviatoric e_pp = (2/3) div u - e_rr - e_tt.
+      const double along_r = weight[i] * (2 * rr + tt - dilatation) * table_.per_width[i];
+      const double along_t = weight[i] * (2 * tt + rr - dilatation);
+      const double spread = weight[i] * (2 * dilatation / 3 - rr - tt);
       const double hoop = along_t * table_.half_curvature[i];
-      inner[i + 1] = hoop - along_r;
-      outer[i + 1] = hoop + along_r;
+      inner[i + 1] = hoop - along_r - spread * table_.inner_dilatation[i];
+      outer[i + 1] = hoop + along_r + spread * table_.outer_dilatation[i];
       side[i + 1] = along_t * to_angle * table_.per_side[i];
     }
     for (int i = 0; i <= n; ++i) {
@@ -222,25 +249,16 @@ void Power::apply_shear_at_walls(const CornerField& psi, CornerField& force) con
     }
 }
 
-void Power::add_buoyancy(const std::function<double(RadialFace)>& b, CornerField& force) const {
+void Power::add_buoyancy(const RadialFaceField& b, CornerField& force) const {
   const Geometry& g = geometry();
-  const int n = g.radial_cells();
-  std::vector<double> left(static_cast<std::size_t>(n)), right(left.size());
-  const auto fill = [&](std::vector<double>& column, int j) {
-    for (int i = 1; i < n; ++i) column[static_cast<std::size_t>(i)] = b({i, j});
-  };
   Range columns = force.owned();
   if (g.on_side(columns.begin)) ++columns.begin;
   if (g.on_side(columns.end - 1)) --columns.end;
-  fill(left, columns.begin - 1);
   for (int j = columns.begin; j < columns.end; ++j) {
-    fill(right, j);
+    const double* left = b.column(j - 1);
+    const double* right = b.column(j);
     double* out = force.column(j);
-    for (int i = 1; i < n; ++i) {
-      const auto k = static_cast<std::size_t>(i);
-      out[i] += g.radial_distance(i) * (left[k] - right[k]);
-    }
-    std::swap(left, right);
+    for (int i = 1; i < g.radial_cells(); ++i) out[i] += g.radial_distance(i) * (left[i] - right[i]);
   }
 }
 
@@ -273,7 +291,7 @@ double dissipation(const Power& power, const CornerField& psi) {
   double total = 0;
   for (int j = cells.begin; j < cells.end; ++j) {
     for (int i = 0; i < g.radial_cells(); ++i) {
-      const Normal e = strain_without_divergence(g, face_velocities(g, psi, Cell{i, j}), {i, j});
+      const Normal e = deviatoric_strain(g, face_velocities(g, psi, Cell{i, j}), {i, j});
       total += power.cell_weight({i, j}) * (e.rr * e.rr + e.tt * e.tt + e.pp * e.pp);
     }
     for (int i = 0; i < psi.rows(); ++i)
@@ -285,6 +303,26 @@ double dissipation(const Power& power, const CornerField& psi) {
   return power.decomposition().sum(total);
 }
 
+CellField dissipation_of_cells(const Power& power, const CornerField& psi) {
+  const Geometry& g = power.geometry();
+  CellField work(power.decomposition_pointer());
+  const Range mine = work.owned(), corners = power.shear_columns();
+  for (int j = mine.begin; j < mine.end; ++j)
+    for (int i = 0; i < work.rows(); ++i) {
+      const Normal e = deviatoric_strain(g, face_velocities(g, psi, Cell{i, j}), {i, j});
+      work[{i, j}] = power.cell_weight({i, j}) * (e.rr * e.rr + e.tt * e.tt + e.pp * e.pp);
+    }
+  for (int j = std::max(corners.begin, mine.begin); j < std::min(corners.end, mine.end + 1); ++j)
+    for (int i = 0; i < psi.rows(); ++i) {
+      if (!power.has_shear({i, j})) continue;
+      const double e = shear(g, psi, power.shear_row({i, j}));
+      for (const Power::Share& s : power.shares({i, j}))
+        if (s.cell.j >= mine.begin && s.cell.j < mine.end)
+          work[s.cell] += s.share * power.corner_weight({i, j}) * e * e;
+    }
+  return work;
+}
+
 CellField strain_rate(const Power& power, const CornerField& psi) {
   const Geometry& g = power.geometry();
   CellField rate(power.decomposition_pointer());
@@ -293,7 +331,7 @@ CellField strain_rate(const Power& power, const CornerField& psi) {
   };
   for (int j = rate.owned().begin; j < rate.owned().end; ++j)
     for (int i = 0; i < rate.rows(); ++i) {
-      const Normal e = strain_without_divergence(g, face_velocities(g, psi, Cell{i, j}), {i, j});
+      const Normal e = deviatoric_strain(g, face_velocities(g, psi, Cell{i, j}), {i, j});
       const double shear2 = (squared_shear({i, j}) + squared_shear({i + 1, j}) +
                              squared_shear({i, j + 1}) + squared_shear({i + 1, j + 1})) /
                             4;

@@ -1,6 +1,6 @@
 #pragma once
 
-#include <functional>
+#include <array>
 #include <vector>
 
 #include "mesh/field.hpp"
@@ -9,7 +9,8 @@
 
 /// The discrete power functional of a linear viscous shell,
 ///     J(psi) = sum_cells V eta (e_rr^2 + e_tt^2 + e_pp^2) + sum_corners V eta_k 2 e_rt^2 -
-///     sum_faces V b u,
+///     sum_faces V rho b u,
+/// with deviatoric strain rates e and the buoyancy b of a unit mass,
 /// whose minimum is the flow: K psi = f with K = G^T W G, symmetric positive definite. K is applied
 /// in factored form (forming it first loses digits like h^-4).
 ///
@@ -27,9 +28,10 @@ struct RadialTable {
   std::vector<double> per_width;    ///< 1 / width
   std::vector<double> per_stretch;  ///< 1 / stretch
   std::vector<double> half_curvature;
-  std::vector<double> per_side;  ///< 1 / (radial part of the side area)
+  std::vector<double> per_side;  ///< velocity of a unit mass flow through the side, radial part
+  std::vector<double> inner_dilatation, outer_dilatation;
   // Faces; the last two 0 at walls.
-  std::vector<double> per_area;       ///< 1 / (radial part of the area)
+  std::vector<double> per_area;       ///< velocity of a unit mass flow, radial part
   std::vector<double> lateral_shear;  ///< weight of du across a corner, times the lateral distance
   std::vector<double> outer_shear;    ///< weight of v above a corner
   std::vector<double> inner_shear;    ///< weight of v below a corner, > 0 and to be subtracted
@@ -61,15 +63,22 @@ class Power {
   /// psi with ghosts, walls set.
   void from_unknowns(Vec, CornerField& psi) const;
 
-  /// psi-force of the buoyancy b at radial faces: f(corner) = d (b left - b right), d the radial
-  /// distance.
-  void add_buoyancy(const std::function<double(RadialFace)>& b, CornerField& force) const;
+  /// psi-force of the buoyancy b of a unit mass at radial faces: f(corner) = d (b left - b right),
+  /// d the radial distance.
+  void add_buoyancy(const RadialFaceField& b, CornerField& force) const;
 
   /// Normal stress weights 2 V eta of a cell and shear weight 4 V eta_k of a corner: dissipation is
   /// the sum of weight * (strain rate)^2 (for shear the factor counts e_rt and e_tr).
   double cell_weight(Cell c) const { return cell_weight_[c]; }
   double corner_weight(Corner k) const { return corner_weight_[k]; }
   bool has_shear(Corner k) const;
+  /// The cells around a corner with their shares of what it dissipates; cells beyond walls have
+  /// share 0 and the corner's own neighbour inside the mesh as place.
+  struct Share {
+    Cell cell;
+    double share;
+  };
+  std::array<Share, 4> shares(Corner k) const;
   ShearRow shear_row(Corner k) const;
   /// Corners whose shear the held columns determine.
   Range shear_columns() const;
@@ -80,6 +89,8 @@ class Power {
 
  private:
   void set_corner_weights();
+  template <class Visit>
+  void visit_quarters(Corner, Visit&&) const;
   double corner_viscosity_volume(Corner) const;
   void apply_normal(const CornerField& psi, CornerField& force) const;
   void apply_shear_inside(const CornerField& psi, CornerField& force) const;
@@ -95,6 +106,9 @@ class Power {
 
 /// Integral of tau : e over the shell. Collective.
 double dissipation(const Power&, const CornerField& psi);
+/// Its parts: integral of tau : e over each owned cell. What a corner dissipates goes to its quarter
+/// cells in inverse proportion to their viscosities, as they bear one stress.
+CellField dissipation_of_cells(const Power&, const CornerField& psi);
 /// Second invariant sqrt(e : e / 2) at owned cells, shear averaged over the cell's corners.
 CellField strain_rate(const Power&, const CornerField& psi);
 

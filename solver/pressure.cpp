@@ -7,8 +7,7 @@ namespace {
 /// left.
 class FaceResidual {
  public:
-  FaceResidual(const Power& power, const CornerField& psi,
-               const std::function<double(RadialFace)>& b)
+  FaceResidual(const Power& power, const CornerField& psi, const RadialFaceField& b)
       : rows_(power.geometry().radial_cells()), columns_(power.decomposition().owned(At::Cell)) {
     radial_.assign(static_cast<std::size_t>((rows_ + 1) * columns_.size()), 0.0);
     lateral_.assign(static_cast<std::size_t>(rows_ * columns_.size()), 0.0);
@@ -17,7 +16,8 @@ class FaceResidual {
     const Geometry& g = power.geometry();
     for (int j = columns_.begin; j < columns_.end; ++j)
       for (int i = 0; i <= rows_; ++i)
-        add(RadialFace{i, j}, -g.area(RadialFace{i, j}) * g.radial_distance(i) * b({i, j}));
+        add(RadialFace{i, j}, -g.area(RadialFace{i, j}) * g.face_density(i) *
+                                  g.radial_distance(i) * b[{i, j}]);
   }
 
   double operator[](RadialFace f) const { return radial_[place(f)]; }
@@ -45,7 +45,7 @@ class FaceResidual {
       for (int i = 0; i < rows_; ++i) {
         const Cell c{i, j};
         const double w = power.cell_weight(c);
-        const Normal e = strain_without_divergence(g, face_velocities(g, psi, c), c);
+        const Normal e = deviatoric_strain(g, face_velocities(g, psi, c), c);
         const OnFaces f = forces(g, {w * e.rr, w * e.tt, w * e.pp}, c);
         add(inner(c), f.inner);
         add(outer(c), f.outer);
@@ -77,12 +77,12 @@ class FaceResidual {
   std::vector<double> radial_, lateral_;
 };
 
-/// Pressure of each column from 0 in its innermost cell.
+/// Pressure over density of each column from 0 in its innermost cell.
 void integrate_columns(const Geometry& g, const FaceResidual& residual, CellField& p) {
   for (int j = p.owned().begin; j < p.owned().end; ++j)
     for (int i = 1; i < p.rows(); ++i) {
       const RadialFace f{i, j};
-      p[{i, j}] = p[{i - 1, j}] - residual[f] * g.inverse_area(f);
+      p[{i, j}] = p[{i - 1, j}] - residual[f] * g.velocity_per_flow(f);
     }
 }
 
@@ -95,7 +95,7 @@ void tie_columns(const Geometry& g, const FaceResidual& residual, CellField& p) 
     if (j > 0)
       for (int i = 0; i < p.rows(); ++i) {
         const LateralFace f{i, j};
-        mean += (p[left(f)] - p[right(f)] - residual[f] * g.inverse_area(f)) / p.rows();
+        mean += (p[left(f)] - p[right(f)] - residual[f] * g.velocity_per_flow(f)) / p.rows();
       }
     step.push_back((step.empty() ? 0 : step.back()) + mean);
   }
@@ -107,12 +107,22 @@ void tie_columns(const Geometry& g, const FaceResidual& residual, CellField& p) 
       p[{i, j}] += before + step[static_cast<std::size_t>(j - p.owned().begin)];
 }
 
+/// A constant added to p/rho changes no force: the one for which the pressure has no mean.
 void remove_volume_mean(const Geometry& g, CellField& p) {
-  double sum = 0;
+  std::vector<double> sums(2, 0.0);
   for (int j = p.owned().begin; j < p.owned().end; ++j)
-    for (int i = 0; i < p.rows(); ++i) sum += g.volume({i, j}) * p[{i, j}];
-  const double mean = p.decomposition().sum(sum) / g.total_volume();
-  for (double& x : p.values()) x -= mean;
+    for (int i = 0; i < p.rows(); ++i) {
+      const double mass = g.volume({i, j}) * g.cell_density(i);
+      sums[0] += mass * p[{i, j}];
+      sums[1] += mass;
+    }
+  p.decomposition().sum_in_place(sums);
+  for (double& x : p.values()) x -= sums[0] / sums[1];
+}
+
+void multiply_by_density(const Geometry& g, CellField& p) {
+  for (int j = p.held().begin; j < p.held().end; ++j)
+    for (int i = 0; i < p.rows(); ++i) p[{i, j}] *= g.cell_density(i);
 }
 
 void remove_wall_mean(const Power& power, int face, std::vector<double>& stress) {
@@ -127,8 +137,7 @@ void remove_wall_mean(const Power& power, int face, std::vector<double>& stress)
 
 }  // namespace
 
-Stresses stresses(const Power& power, const CornerField& psi,
-                  const std::function<double(RadialFace)>& b) {
+Stresses stresses(const Power& power, const CornerField& psi, const RadialFaceField& b) {
   const Geometry& g = power.geometry();
   const FaceResidual residual(power, psi, b);
   Stresses s;
@@ -140,9 +149,12 @@ Stresses stresses(const Power& power, const CornerField& psi,
   const int last = g.radial_cells();
   for (int j = s.pressure.owned().begin; j < s.pressure.owned().end; ++j) {
     const RadialFace in{0, j}, out{last, j};
-    s.inner_normal.push_back(-residual[in] * g.inverse_area(in) - s.pressure[outside(in)]);
-    s.outer_normal.push_back(residual[out] * g.inverse_area(out) - s.pressure[inside(out)]);
+    s.inner_normal.push_back(-residual[in] * g.inverse_area(in) -
+                             g.face_density(0) * s.pressure[outside(in)]);
+    s.outer_normal.push_back(residual[out] * g.inverse_area(out) -
+                             g.face_density(last) * s.pressure[inside(out)]);
   }
+  multiply_by_density(g, s.pressure);
   remove_wall_mean(power, 0, s.inner_normal);
   remove_wall_mean(power, last, s.outer_normal);
   return s;

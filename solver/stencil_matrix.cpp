@@ -137,7 +137,7 @@ void StencilMatrix::assemble(const Power& serial) {
       std::array<Entry, 4> rr, tt, pp;
       for (std::size_t n = 0; n < 4; ++n) {
         const Normal e =
-            strain_without_divergence(g, face_velocities(g, UnitPsi(corners[n]), c), c);
+            deviatoric_strain(g, face_velocities(g, UnitPsi(corners[n]), c), c);
         rr[n] = {corners[n], e.rr};
         tt[n] = {corners[n], e.tt};
         pp[n] = {corners[n], e.pp};

@@ -105,7 +105,7 @@ Snapshot example(const std::shared_ptr<const Decomposition>& d, double time) {
     s.outer = trace(g, 5);
   }
   const std::vector<double> ones(static_cast<std::size_t>(g.radial_cells()), 1.0);
-  s.profiles = {ones, ones, ones, ones, ones, ones, ones};
+  s.profiles = {ones, ones, ones, ones, ones, ones, ones, ones};
   return s;
 }
 

@@ -63,7 +63,7 @@ TEST_P(Operators, StrainOfAStreamFunctionNeedsNoDivergence) {
   } psi{g};
   each_cell([&](Cell c) {
     const OnFaces w = face_velocities(g, psi, c);
-    const Normal a = strain(g, w, c), b = strain_without_divergence(g, w, c);
+    const Normal a = strain(g, w, c), b = deviatoric_strain(g, w, c);
     const double size = std::abs(a.rr) + std::abs(a.tt) + g.inverse_volume(c);
     EXPECT_NEAR(a.pp, b.pp, 1e-13 * size);
     EXPECT_EQ(a.rr, b.rr);
@@ -90,10 +90,10 @@ TEST_P(Operators, ForcesAreTheTransposeOfStrain) {
       return a.inner * b.inner + a.outer * b.outer + a.left * b.left + a.right * b.right;
     };
     const auto product = [&](const Normal& e) { return e.rr * s.rr + e.tt * s.tt + e.pp * s.pp; };
-    const Normal e = strain(g, w, c), d = strain_without_divergence(g, w, c);
+    const Normal e = strain(g, w, c), d = deviatoric_strain(g, w, c);
     const double size = std::abs(e.rr) + std::abs(e.tt) + std::abs(e.pp) + 100;
     EXPECT_NEAR(product(e), along(w, forces(g, s, c)), 1e-13 * size);
-    EXPECT_NEAR(product(d), along(w, forces_without_divergence(g, s, c)), 1e-13 * size);
+    EXPECT_NEAR(product(d), along(w, deviatoric_forces(g, s, c)), 1e-13 * size);
   });
 }
 
@@ -119,7 +119,7 @@ TEST_P(Operators, RigidRotationIsFreeOfStrain) {
     rotation.psi.push_back(rotation.psi.back() - g.stretch(i) * g.area(LateralFace{i, 0}));
   ASSERT_LT(rotation.psi.back(), -1);  // the walls' values differ: a net flow
   each_cell([&](Cell c) {
-    const Normal e = strain_without_divergence(g, face_velocities(g, rotation, c), c);
+    const Normal e = deviatoric_strain(g, face_velocities(g, rotation, c), c);
     EXPECT_NEAR(std::abs(e.rr) + std::abs(e.tt) + std::abs(e.pp), 0, 1e-13);
     if (c.i == 0) return;
     EXPECT_NEAR(shear(g, rotation, shear_row_inside(g, {c.i, c.j})), 0, 1e-13);
@@ -136,7 +136,7 @@ TEST_P(Operators, TranslationInTheBoxIsFreeOfStrain) {
     const OnFaces w = face_velocities(g, translation, c);
     EXPECT_NEAR(w.outer, 3, 1e-13);
     EXPECT_NEAR(w.right, 2, 1e-13);
-    const Normal e = strain_without_divergence(g, w, c);
+    const Normal e = deviatoric_strain(g, w, c);
     EXPECT_NEAR(std::abs(e.rr) + std::abs(e.tt), 0, 1e-12);
     if (c.i == 0 || g.on_side(c.j)) return;
     EXPECT_NEAR(shear(g, translation, shear_row_inside(g, {c.i, c.j})), 0, 1e-12);

@@ -148,7 +148,7 @@ CellField carried(std::shared_ptr<const Decomposition> d, HeatFlux flux, double 
   CellField t = smooth_start(d), next(d);
   const double dt = end / steps;
   for (int n = 0; n < steps; ++n) {
-    (void)stepper.step(t, psi_at(n * dt), psi_at((n + 1) * dt), dt, next);
+    (void)stepper.step(t, {psi_at(n * dt), {}}, {psi_at((n + 1) * dt), {}}, dt, next);
     std::swap(t, next);
   }
   return t;
@@ -217,7 +217,7 @@ TEST(LimitedTransport, KeepsToTheRangeOfTheStart) {
   const double dt = 0.5 / stepper.heat().outflow_rate(psi);
   double least = 0, most = 0;
   for (int n = 0; n < 200; ++n) {
-    (void)stepper.step(t, psi, psi, dt, next);
+    (void)stepper.step(t, {psi, {}}, {psi, {}}, dt, next);
     std::swap(t, next);
     for_each_owned<At::Cell>(*d, [&](Cell c) {
       least = std::min(least, t[c]);
@@ -251,9 +251,9 @@ TEST_P(HeatContent, ChangesByWallFlowsAndSourcesOnly) {
   };
   const double dt = 0.5 / stepper.heat().outflow_rate(psi);
   for (int n = 0; n < 5; ++n) {
-    const WallHeat through = stepper.step(t, psi, psi, dt, next);
+    const StepHeat heat = stepper.step(t, {psi, {}}, {psi, {}}, dt, next);
     const double gain = content(next) - content(t);
-    const double fed = dt * (through.inner - through.outer + stepper.heat().total_source());
+    const double fed = dt * (heat.gain() + stepper.heat().total_source());
     EXPECT_NEAR(gain, fed, 4e-15 * (std::abs(content(t)) + std::abs(fed)));
     std::swap(t, next);
   }

@@ -64,14 +64,16 @@ class FlowIdentities : public testing::TestWithParam<std::tuple<NamedShell, Slip
     const int n = g.lateral_cells();
     return random_at(f.i, (f.j + n) % n, 5);
   }
+  RadialFaceField buoyancies() const {
+    return on_radial_faces(d, [this](RadialFace f) { return buoyancy(f); });
+  }
   /// A solved flow; random viscosity, so that nothing is smooth.
   CornerField solved(double tolerance) {
     FlowSettings settings;
     settings.tolerance = tolerance;
     FlowSolver solver(d, walls, settings);
     CornerField psi(d);
-    const auto report = solver.solve(
-        eta, [this](RadialFace f) { return buoyancy(f); }, psi);
+    const auto report = solver.solve(eta, buoyancies(), psi);
     EXPECT_TRUE(report.converged);
     return psi;
   }
@@ -164,7 +166,7 @@ TEST_P(FlowIdentities, DissipationEqualsBuoyancyWork) {
 double lateral_residual(const Power& power, const CornerField& psi, LateralFace f) {
   const Geometry& g = power.geometry();
   const auto normal = [&](Cell c) {
-    const Normal e = strain_without_divergence(g, face_velocities(g, psi, c), c);
+    const Normal e = deviatoric_strain(g, face_velocities(g, psi, c), c);
     const double w = power.cell_weight(c);
     return forces(g, {w * e.rr, w * e.tt, w * e.pp}, c);
   };
@@ -181,7 +183,7 @@ double lateral_residual(const Power& power, const CornerField& psi, LateralFace 
 
 TEST_P(FlowIdentities, FaceResidualIsAGradient) {
   const CornerField psi = solved(1e-12);
-  const Stresses s = stresses(power, psi, [this](RadialFace f) { return buoyancy(f); });
+  const Stresses s = stresses(power, psi, buoyancies());
   double most = 0;
   for_each_owned<At::Cell>(*d, [&](Cell c) { most = std::max(most, std::abs(s.pressure[c])); });
   for (int j = 1; j < g.lateral_cells(); ++j)

@@ -65,7 +65,8 @@ FlowErrors flow_errors(const KnownFlow& known, const Grid& grid) {
   CellField eta(d);
   CornerField psi(d);
   fill(eta, [&](Cell c) { return known.viscosity(g.cell_radius(c.i), g.cell_lateral(c.j)); });
-  const auto b = [&](RadialFace f) { return face_buoyancy(known, g, f); };
+  const RadialFaceField b =
+      on_radial_faces(d, [&](RadialFace f) { return face_buoyancy(known, g, f); });
   FlowSettings settings;
   settings.tolerance = 1e-11;
   FlowSolver solver(d, known.walls, settings);

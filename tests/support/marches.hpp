@@ -44,6 +44,8 @@ inline std::vector<double> physics_of(const HistoryRow& r) {
           r.dissipation,
           r.buoyancy_work,
           r.heat_source,
+          r.viscous_heating,
+          r.adiabatic_cooling,
           r.temperature_change_rate};
 }
 

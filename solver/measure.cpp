@@ -1,4 +1,4 @@
-#include "solver/diagnostics.hpp"
+#include "solver/measure.hpp"
 
 #include <algorithm>
 #include <cmath>
@@ -6,7 +6,6 @@
 
 #include "mesh/gather.hpp"
 #include "mesh/operators.hpp"
-#include "solver/march.hpp"
 #include "solver/pressure.hpp"
 
 namespace lidwright {
@@ -56,15 +55,23 @@ double velocity_rms(const Power& power, const CornerField& psi) {
 }
 
 /// Integral of the buoyancy work, from the very faces of the power functional.
-double buoyancy_work(const Power& power, const CornerField& psi,
-                     const std::function<double(RadialFace)>& b) {
+double buoyancy_work(const Power& power, const CornerField& psi, const RadialFaceField& b) {
   const Geometry& g = power.geometry();
   const Range columns = power.decomposition().owned(At::Cell);
   double sum = 0;
   for (int j = columns.begin; j < columns.end; ++j)
     for (int i = 1; i < g.radial_cells(); ++i)
-      sum += g.radial_distance(i) * b({i, j}) * flow_through(psi, RadialFace{i, j});
+      sum += g.radial_distance(i) * b[{i, j}] * flow_through(psi, RadialFace{i, j});
   return power.decomposition().sum(sum);
+}
+
+double adiabatic_cooling(const StateView& s) {
+  if (s.heat.mantle().dissipation_number == 0) return 0;
+  CellField gain(s.temperature.decomposition_pointer());
+  s.heat.add_adiabatic_work(s.temperature, s.psi, gain);
+  double sum = 0;
+  for (std::size_t k = 0; k < gain.owned_size(); ++k) sum -= gain.owned_data()[k];
+  return s.heat.decomposition().sum(sum);
 }
 
 struct WallMeans {
@@ -103,67 +110,124 @@ void set_temperatures(const CellField& t, HistoryRow& row) {
 
 /// Adds one column's contributions to the surface sums of profiles: columns of `sums` are the
 /// quantities.
-void add_column(const March& m, const CellField& viscosity, int j, std::vector<double>& sums) {
-  const Geometry& g = m.power().geometry();
-  const CornerField& psi = m.stream_function();
-  const CellField& t = m.temperature();
+void add_column(const StateView& s, int j, std::vector<double>& sums) {
+  const Geometry& g = s.power.geometry();
+  const CellField& t = s.temperature;
   const auto rows = static_cast<std::size_t>(g.radial_cells());
   for (int i = 0; i < g.radial_cells(); ++i) {
     const Cell c{i, j};
     const double share = g.volume(c);
-    const OnFaces w = face_velocities(g, psi, c);
+    const OnFaces w = face_velocities(g, s.psi, c);
     const auto n = static_cast<std::size_t>(i);
     sums[n] += share * t[c];
     sums[rows + n] += share * (w.inner * w.inner + w.outer * w.outer) / 2;
     sums[2 * rows + n] += share * (w.left * w.left + w.right * w.right) / 2;
-    sums[3 * rows + n] += share * std::log(viscosity[c]);
-    sums[4 * rows + n] += (m.heat().conducted(t, inner(c)) + m.heat().conducted(t, outer(c))) / 2;
+    sums[3 * rows + n] += share * std::log(s.power.viscosity()[c]);
+    sums[4 * rows + n] += (s.heat.conducted(t, inner(c)) + s.heat.conducted(t, outer(c))) / 2;
     sums[5 * rows + n] +=
-        (m.heat().advected(t, psi, inner(c)) + m.heat().advected(t, psi, outer(c))) / 2;
+        (s.heat.advected(t, s.psi, inner(c)) + s.heat.advected(t, s.psi, outer(c))) / 2;
   }
+}
+
+/// The adiabat that passes through the mean temperature at mid-depth.
+std::vector<double> adiabat(const MantleRows& mantle, const std::vector<double>& mean) {
+  const std::size_t middle = mean.size() / 2;
+  const double surface =
+      (mean[middle] + mantle.surface_temperature) / mantle.adiabatic_rise[middle];
+  std::vector<double> t;
+  for (const double rise : mantle.adiabatic_rise)
+    t.push_back(surface * rise - mantle.surface_temperature);
+  return t;
+}
+
+/// What a wall shows, column by column.
+WallTrace wall_trace(const StateView& s, int face, const std::vector<double>& normal_stress) {
+  const Geometry& g = s.power.geometry();
+  const Decomposition& d = s.power.decomposition();
+  std::vector<double> flux, along;
+  for (int j = s.temperature.owned().begin; j < s.temperature.owned().end; ++j) {
+    flux.push_back(s.heat.wall_flux(s.temperature, {face, j}) *
+                   g.inverse_area(RadialFace{face, j}));
+    along.push_back(
+        (wall_velocity(s.power, s.psi, face, j) + wall_velocity(s.power, s.psi, face, j + 1)) / 2);
+  }
+  WallTrace t;
+  t.heat_flux = gather_to_first(d, flux.data(), flux.size());
+  t.velocity = gather_to_first(d, along.data(), along.size());
+  t.normal_stress = gather_to_first(d, normal_stress.data(), normal_stress.size());
+  if (d.rank() == 0)
+    for (int j = 0; j < g.lateral_cells(); ++j) t.lateral.push_back(g.cell_lateral(j));
+  return t;
 }
 
 }  // namespace
 
-HistoryRow March::row() const {
+RadialFaceField buoyancy(const HeatOperator& heat, const CellField& t, double rayleigh) {
+  RadialFaceField b(t.decomposition_pointer());
+  const int last = t.rows();
+  for (int j = b.held().begin; j < b.held().end; ++j) {
+    double* out = b.column(j);
+    const double* cell = t.column(j);
+    const auto factor = [&](int i) {
+      return rayleigh * heat.mantle().buoyancy[static_cast<std::size_t>(i)];
+    };
+    out[0] = factor(0) * heat.face_temperature(t, {0, j});
+    for (int i = 1; i < last; ++i) out[i] = factor(i) * (cell[i - 1] + cell[i]) / 2;
+    out[last] = factor(last) * heat.face_temperature(t, {last, j});
+  }
+  return b;
+}
+
+CellField viscosity_of(const ViscosityLaw& law, const CellField& t) {
+  const Geometry& g = t.decomposition().geometry();
+  CellField eta(t.decomposition_pointer());
+  for (int j = eta.held().begin; j < eta.held().end; ++j)
+    for (int i = 0; i < eta.rows(); ++i) eta[{i, j}] = law({t[{i, j}], g.depth(i)});
+  return eta;
+}
+
+CellField viscous_heating(const StateView& s) {
+  const double number = s.heat.mantle().dissipation_number;
+  if (number == 0 || s.rayleigh == 0) return {};
+  CellField heating = dissipation_of_cells(s.power, s.psi);
+  for (double& x : heating.values()) x *= number / s.rayleigh;
+  return heating;
+}
+
+HistoryRow measure(const StateView& s) {
   HistoryRow row;
-  const Power& power = flow_.power();
-  const WallMeans walls = wall_means(stepper_.heat(), temperature_);
+  const WallMeans walls = wall_means(s.heat, s.temperature);
   const double conductive =
-      decomposition_->geometry().conductive_heat_flow() * (walls.t_inner - walls.t_outer);
-  row.step = steps_;
-  row.time = time_;
-  row.time_step = last_step_;
+      s.heat.mantle().conductive_heat_flow * (walls.t_inner - walls.t_outer);
   row.heat_flow_inner = walls.heat_inner;
   row.heat_flow_outer = walls.heat_outer;
   row.nusselt_inner = walls.heat_inner / conductive;
   row.nusselt_outer = walls.heat_outer / conductive;
   row.temperature_inner = walls.t_inner;
   row.temperature_outer = walls.t_outer;
-  set_temperatures(temperature_, row);
-  row.velocity_rms = velocity_rms(power, psi_);
-  row.velocity_rms_inner = wall_velocity_rms(power, psi_, 0);
-  row.velocity_rms_outer = wall_velocity_rms(power, psi_, temperature_.rows());
-  row.dissipation = dissipation(power, psi_);
-  row.buoyancy_work = buoyancy_work(power, psi_, buoyancy());
+  set_temperatures(s.temperature, row);
+  row.velocity_rms = velocity_rms(s.power, s.psi);
+  row.velocity_rms_inner = wall_velocity_rms(s.power, s.psi, 0);
+  row.velocity_rms_outer = wall_velocity_rms(s.power, s.psi, s.temperature.rows());
+  row.dissipation = dissipation(s.power, s.psi);
+  row.buoyancy_work =
+      buoyancy_work(s.power, s.psi, buoyancy(s.heat, s.temperature, s.rayleigh));
   row.work_mismatch =
       row.buoyancy_work != 0 ? (row.dissipation - row.buoyancy_work) / row.buoyancy_work : 0;
-  row.flow_error = flow_.last_error();
-  row.heat_source = stepper_.heat().total_source();
-  row.heat_budget_residual = budget_residual_;
-  row.temperature_change_rate = steps_ > 0 ? change_rate_ : 0;
-  row.applications = flow_.applications();
-  row.factorisations = flow_.factorisations();
+  row.heat_source = s.heat.total_source();
+  if (s.rayleigh > 0)
+    row.viscous_heating = s.heat.mantle().dissipation_number / s.rayleigh * row.dissipation;
+  row.adiabatic_cooling = adiabatic_cooling(s);
   return row;
 }
 
-RadialProfiles March::profiles() const {
-  const Geometry& g = decomposition_->geometry();
+RadialProfiles profiles(const StateView& s) {
+  const Geometry& g = s.power.geometry();
   const auto rows = static_cast<std::size_t>(g.radial_cells());
   std::vector<double> sums(6 * rows, 0.0);
-  const Range columns = decomposition_->owned(At::Cell);
-  for (int j = columns.begin; j < columns.end; ++j) add_column(*this, viscosity_, j, sums);
-  decomposition_->sum_in_place(sums);
+  const Range columns = s.temperature.owned();
+  for (int j = columns.begin; j < columns.end; ++j) add_column(s, j, sums);
+  s.power.decomposition().sum_in_place(sums);
   RadialProfiles p;
   for (std::size_t i = 0; i < rows; ++i) {
     const int row = static_cast<int>(i);
@@ -177,52 +241,35 @@ RadialProfiles March::profiles() const {
     p.heat_conducted.push_back(sums[4 * rows + i]);
     p.heat_advected.push_back(sums[5 * rows + i]);
   }
+  p.temperature_adiabatic = adiabat(s.heat.mantle(), p.temperature);
   return p;
 }
 
-Snapshot March::snapshot(bool with_stress) const {
-  const Geometry& g = decomposition_->geometry();
-  const Power& power = flow_.power();
+Snapshot snapshot(const StateView& state, bool with_stress) {
+  const Geometry& g = state.power.geometry();
+  const auto decomposition = state.temperature.decomposition_pointer();
   Snapshot s;
-  s.step = steps_;
-  s.time = time_;
-  s.temperature = temperature_;
-  s.viscosity = viscosity_;
-  s.strain_rate = strain_rate(power, psi_);
-  s.stream_function = psi_;
-  s.velocity_radial = CellField(decomposition_);
-  s.velocity_lateral = CellField(decomposition_);
-  const Range columns = temperature_.owned();
-  for (int j = columns.begin; j < columns.end; ++j)
-    for (int i = 0; i < temperature_.rows(); ++i) {
-      const OnFaces w = face_velocities(g, psi_, Cell{i, j});
+  s.temperature = state.temperature;
+  s.viscosity = state.power.viscosity();
+  s.strain_rate = strain_rate(state.power, state.psi);
+  s.stream_function = state.psi;
+  s.velocity_radial = CellField(decomposition);
+  s.velocity_lateral = CellField(decomposition);
+  for (int j = s.temperature.owned().begin; j < s.temperature.owned().end; ++j)
+    for (int i = 0; i < s.temperature.rows(); ++i) {
+      const OnFaces w = face_velocities(g, state.psi, Cell{i, j});
       s.velocity_radial[{i, j}] = (w.inner + w.outer) / 2;
       s.velocity_lateral[{i, j}] = (w.left + w.right) / 2;
     }
   Stresses stress;
   if (with_stress) {
-    stress = stresses(power, psi_, buoyancy());
+    stress = stresses(state.power, state.psi,
+                      buoyancy(state.heat, state.temperature, state.rayleigh));
     s.pressure = stress.pressure;
   }
-  const auto trace = [&](int face, const std::vector<double>& normal) {
-    std::vector<double> flux, along;
-    for (int j = columns.begin; j < columns.end; ++j) {
-      flux.push_back(stepper_.heat().wall_flux(temperature_, {face, j}) *
-                     g.inverse_area(RadialFace{face, j}));
-      along.push_back(
-          (wall_velocity(power, psi_, face, j) + wall_velocity(power, psi_, face, j + 1)) / 2);
-    }
-    WallTrace t;
-    t.heat_flux = gather_to_first(*decomposition_, flux.data(), flux.size());
-    t.velocity = gather_to_first(*decomposition_, along.data(), along.size());
-    t.normal_stress = gather_to_first(*decomposition_, normal.data(), normal.size());
-    if (decomposition_->rank() == 0)
-      for (int j = 0; j < g.lateral_cells(); ++j) t.lateral.push_back(g.cell_lateral(j));
-    return t;
-  };
-  s.inner = trace(0, stress.inner_normal);
-  s.outer = trace(g.radial_cells(), stress.outer_normal);
-  s.profiles = profiles();
+  s.inner = wall_trace(state, 0, stress.inner_normal);
+  s.outer = wall_trace(state, g.radial_cells(), stress.outer_normal);
+  s.profiles = profiles(state);
   return s;
 }
 
