@@ -308,9 +308,7 @@ ExitCode resume(const Session& session, const MarchRequest& request, Clock::time
         "--set: a resumed run may change keys of [march] and [output] only; start a new run, from "
         "this "
         "one's state if you like (initial.from)");
-  const auto decomposition = or_bad_input([&] {
-    return decompose(c.model, session.comm());
-  });
+  const auto decomposition = or_bad_input([&] { return decompose(c.model, session.comm()); });
   const Archive archive = read_checkpoint(checkpoint.path, decomposition, fingerprint(c));
   auto march = std::make_unique<March>(c.model, c.flow, c.heat, archive, session.comm());
   refuse_unfit_history(session, paths.history(), checkpoint.step);
