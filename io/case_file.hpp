@@ -27,6 +27,7 @@ struct Case {
   FlowSettings flow;
   HeatSettings heat;
   MarchSettings march;
+  SettleSettings settle;
   OutputSettings output;
   /// Present: the file was in SI and everything above was made dimensionless with it.
   std::optional<Body> body;
