@@ -224,6 +224,7 @@ std::vector<Key> list_all() {
   append(keys, wall_keys("walls.outer", &Draft::outer));
   append(keys, viscosity_keys());
   append(keys, heat_keys());
+  append(keys, reference_keys());
   append(keys, initial_keys());
   append(keys, flow_keys());
   append(keys, transport_keys());

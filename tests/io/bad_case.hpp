@@ -84,4 +84,13 @@ inline void expect_all(const std::string& good, const std::vector<Bad>& table) {
   for (const Bad& bad : table) expect_message(message_of(changed(good, bad)), bad.place, bad.words);
 }
 
+using Settings = std::vector<std::string>;
+
+/// Of a liquid mantle with Di = 0.5 and T_surf = 0.1; more is added.
+inline Settings liquid(Settings more) {
+  more.insert(more.end(), {"reference.approximation=anelastic-liquid", "numbers.dissipation=0.5",
+                           "numbers.surface_temperature=0.1"});
+  return more;
+}
+
 }  // namespace lidwright::test

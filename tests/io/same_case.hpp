@@ -29,6 +29,9 @@ inline auto parts(const ArrheniusViscosity& a) {
   return std::tie(a.energy, a.volume, a.offset, a.unity_at, a.unity_at_depth);
 }
 inline auto parts(const ViscosityLayer& l) { return std::tie(l.below, l.factor); }
+inline auto parts(const RadialProfile& p) {
+  return std::tie(p.rise, p.radius_power, p.depths, p.values);
+}
 inline auto parts(const HeatLayer& l) { return std::tie(l.below, l.source); }
 inline auto parts(const TemperatureMode& m) { return std::tie(m.lateral, m.radial, m.amplitude); }
 inline auto parts(const FlowSettings& f) {
@@ -66,6 +69,16 @@ inline void expect_same(const std::optional<T>& a, const std::optional<T>& b) {
   }
 }
 
+inline void expect_same(const ReferenceProfiles& a, const ReferenceProfiles& b) {
+  EXPECT_EQ(a.dissipation_number, b.dissipation_number);
+  EXPECT_EQ(a.surface_temperature, b.surface_temperature);
+  EXPECT_TRUE(parts(a.density) == parts(b.density));
+  EXPECT_TRUE(parts(a.expansivity) == parts(b.expansivity));
+  EXPECT_TRUE(parts(a.gravity) == parts(b.gravity));
+  EXPECT_TRUE(parts(a.conductivity) == parts(b.conductivity));
+  EXPECT_TRUE(parts(a.heat_capacity) == parts(b.heat_capacity));
+}
+
 inline void expect_same(const Model& a, const Model& b) {
   EXPECT_TRUE(parts(a.shell) == parts(b.shell));
   EXPECT_EQ(a.grid.radial, b.grid.radial);
@@ -83,6 +96,7 @@ inline void expect_same(const Model& a, const Model& b) {
   expect_same(a.viscosity.layered.layers, b.viscosity.layered.layers);
   EXPECT_EQ(a.heat.uniform, b.heat.uniform);
   expect_same(a.heat.layers, b.heat.layers);
+  expect_same(a.reference, b.reference);
 }
 
 inline void expect_same(const Case& a, const Case& b) {
