@@ -143,6 +143,8 @@ struct CoupledSolver::BlockFactors final : Preconditioner {
   SparseMatrix flow_by_temperature;
 };
 
+CoupledSolver::CoupledSolver(LinearSolver kind) : kind_(kind) {}
+
 CoupledSolver::~CoupledSolver() = default;
 
 PetscErrorCode CoupledSolver::multiply_callback(Mat a, Vec x, Vec y) {
@@ -167,31 +169,31 @@ PetscErrorCode CoupledSolver::precondition_callback(PC pc, Vec r, Vec z) {
   return 0;
 }
 
+/// Column by column: first the flow's rows, then those of heat.
 void CoupledSolver::set_matrix(const Linearised& j, double shift) {
   flow_ = j.flow_by_psi.rows();
   const long cells = j.capacity.size(), n = flow_ + cells;
-  std::vector<long> per_column(static_cast<std::size_t>(n));
-  for (long c = 0; c < n; ++c) {
-    const bool psi = c < flow_;
-    const SparseMatrix& upper = psi ? j.flow_by_psi : j.flow_by_temperature;
-    const SparseMatrix& lower = psi ? j.heat_by_psi : j.heat_by_temperature;
-    const long k = psi ? c : c - flow_;
-    per_column[static_cast<std::size_t>(c)] =
-        upper.outerIndexPtr()[k + 1] - upper.outerIndexPtr()[k] + lower.outerIndexPtr()[k + 1] -
-        lower.outerIndexPtr()[k];
-  }
   matrix_ = SparseMatrix(n, n);
-  matrix_.reserve(per_column);
-  for (long c = 0; c < n; ++c) {
-    const bool psi = c < flow_;
-    const long k = psi ? c : c - flow_;
-    for (SparseMatrix::InnerIterator it(psi ? j.flow_by_psi : j.flow_by_temperature, k); it; ++it)
-      matrix_.insertBack(it.row(), c) = it.value();
-    for (SparseMatrix::InnerIterator it(psi ? j.heat_by_psi : j.heat_by_temperature, k); it; ++it)
-      matrix_.insertBack(it.row() + flow_, c) =
-          it.value() + (!psi && it.row() == k ? shift * j.capacity[k] : 0);
+  matrix_.resizeNonZeros(j.flow_by_psi.nonZeros() + j.flow_by_temperature.nonZeros() +
+                         j.heat_by_psi.nonZeros() + j.heat_by_temperature.nonZeros());
+  long next = 0;
+  const auto put = [&](const SparseMatrix& block, long column, long first_row, double diagonal) {
+    for (SparseMatrix::InnerIterator it(block, column); it; ++it, ++next) {
+      matrix_.innerIndexPtr()[next] = it.row() + first_row;
+      matrix_.valuePtr()[next] = it.value() + (it.row() == column ? diagonal : 0);
+    }
+  };
+  for (long c = 0; c < flow_; ++c) {
+    matrix_.outerIndexPtr()[c] = next;
+    put(j.flow_by_psi, c, 0, 0);
+    put(j.heat_by_psi, c, flow_, 0);
   }
-  matrix_.makeCompressed();
+  for (long c = 0; c < cells; ++c) {
+    matrix_.outerIndexPtr()[flow_ + c] = next;
+    put(j.flow_by_temperature, c, 0, 0);
+    put(j.heat_by_temperature, c, flow_, shift * j.capacity[c]);
+  }
+  matrix_.outerIndexPtr()[n] = next;
 }
 
 void CoupledSolver::choose_preconditioner() {

@@ -22,7 +22,7 @@ struct LinearReport {
 
 class CoupledSolver {
  public:
-  explicit CoupledSolver(LinearSolver kind) : kind_(kind) {}
+  explicit CoupledSolver(LinearSolver kind);
   ~CoupledSolver();
   CoupledSolver(const CoupledSolver&) = delete;
   CoupledSolver& operator=(const CoupledSolver&) = delete;
