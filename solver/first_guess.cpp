@@ -10,15 +10,14 @@
 namespace lidwright {
 namespace {
 
-/// Below this residual Newton's method is tried.
-constexpr double near = 0.3;
-constexpr int most_attempts = 6;
-constexpr long most_steps = 20000;
+/// Relative rate of change (as the residual) below which Newton's method is tried.
+constexpr double near = 0.1;
+constexpr int most_attempts = 5;
 constexpr long most_steps_of_a_stretch = 100;
 
 /// What a stretch of the march ended with.
 struct Seen {
-  double time, residual, heat_flow;
+  double time, change, heat_flow;  ///< change: relative rate, as the residual
 };
 
 /// What the second half of a march looked like.
@@ -32,8 +31,9 @@ std::string account(const std::vector<Seen>& seen, int attempts) {
     }
   return fmt::format(
       "time-dependent flow: from time {:.3g} to {:.3g} of a march the surface heat flow went from "
-      "{:.4g} to {:.4g}, the residual at its end is {:.1e}, and Newton's method failed {} times",
-      middle, seen.back().time, low, high, seen.back().residual, attempts);
+      "{:.4g} to {:.4g}, its relative rate of change at the end is {:.1e}, and Newton's method "
+      "failed {} times",
+      middle, seen.back().time, low, high, seen.back().change, attempts);
 }
 
 class Guess {
@@ -52,24 +52,26 @@ class Guess {
     const double until = march_.time() + length;
     for (long n = 0; n < most_steps_of_a_stretch && march_.time() < until; ++n) march_.step(until);
     equations_.set_temperature(march_.temperature());
-    seen_.push_back({march_.time(), equations_.residual(), march_.row().heat_flow_outer});
+    seen_.push_back({march_.time(), march_.temperature_change_rate() / equations_.heat_rate(),
+                     march_.row().heat_flow_outer});
   }
-  /// Small, and on its way down: not the slow start of an instability.
+  /// Slow, and ever slower: not the slow start of an instability.
   bool near_steady(double below) const {
-    if (seen_.size() < 2 || seen_.back().residual >= below) return false;
-    return seen_.back().residual < seen_[seen_.size() - 2].residual;
+    if (seen_.size() < 2 || seen_.back().change >= below) return false;
+    return seen_.back().change < seen_[seen_.size() - 2].change;
   }
-  bool exhausted() const {
+  bool exhausted(long most_steps) const {
     return march_.time() >= settings_.most_time || march_.steps() >= most_steps;
   }
+  const CellField& temperature() const { return march_.temperature(); }
   const std::vector<Seen>& seen() const { return seen_; }
 
  private:
   static HeatSettings heat(const SettleSettings& settings) {
     HeatSettings h;
-    h.flux = settings.flux;
-    h.courant = 1;
+    h.flux = HeatFlux::Limited;
     h.accuracy = 1e-3;
+    h.largest_step = settings.most_time / 100;
     return h;
   }
   SteadyEquations& equations_;
@@ -82,24 +84,26 @@ class Guess {
 
 NewtonOutcome settle_by_marching(SteadyEquations& equations, CoupledSolver& solver,
                                  const SettleSettings& settings, const InitialSettings& initial,
-                                 const StoredTemperature& start, const SettleObserver& observer) {
+                                 const StoredTemperature& start, long most_steps,
+                                 const SettleObserver& observer) {
   Guess guess(equations, settings, initial, start);
   NewtonOutcome outcome;
   double below = near;
-  for (int attempts = 0; attempts < most_attempts && !guess.exhausted();) {
+  for (int attempts = 0; attempts < most_attempts && !guess.exhausted(most_steps);) {
     guess.stretch();
     const Seen& now = guess.seen().back();
-    outcome.stopped =
-        observer && !observer({equations.model().grid, -1, now.residual, now.time, 0});
+    outcome.stopped = observer && !observer({equations.model().grid, -1, now.change, now.time, 0});
     if (outcome.stopped) return outcome;
     if (!guess.near_steady(below)) continue;
     SettleSettings few = settings;
     few.most_steps = std::min(settings.most_steps, 20);
     outcome = newton(equations, solver, few, std::numeric_limits<double>::infinity(), observer);
     if (outcome.converged || outcome.stopped) return outcome;
-    below = now.residual / 2;
-    ++attempts;
-    outcome.remark = account(guess.seen(), attempts);
+    outcome.remark = account(guess.seen(), ++attempts);
+    equations.set_temperature(guess.temperature());
+    // As steady as it will be, yet Newton's method finds nothing: the grid is too coarse.
+    if (now.change < 1e-3) return outcome;
+    below = now.change / 3;
   }
   if (outcome.remark.empty()) outcome.remark = account(guess.seen(), 0);
   return outcome;

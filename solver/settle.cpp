@@ -18,6 +18,8 @@ namespace lidwright {
 namespace {
 
 constexpr double infinity = std::numeric_limits<double>::infinity();
+/// Of a march to a first guess: where a coarse grid has no steady state, a finer one goes on.
+constexpr long steps_on_coarse_grids = 3000, steps_on_the_grid = 20000;
 
 Grid halved(Grid grid, int times) {
   for (int k = 0; k < times; ++k) {
@@ -30,8 +32,8 @@ Grid halved(Grid grid, int times) {
 /// How often the grid can be halved without fewer than `coarsest` radial cells.
 int halvings(const Grid& grid, int coarsest) {
   int times = 0;
-  for (Grid g = grid; g.radial % 2 == 0 && g.lateral % 2 == 0 && g.radial / 2 >= coarsest &&
-                      g.lateral / 2 >= 4;
+  for (Grid g = grid;
+       g.radial % 2 == 0 && g.lateral % 2 == 0 && g.radial / 2 >= coarsest && g.lateral / 2 >= 4;
        g = halved(g, 1))
     ++times;
   return times;
@@ -102,10 +104,14 @@ Found Ladder::solve(int times, const StoredTemperature& from) {
   equations.set_temperature(initial_temperature(equations.heat(), start, from));
   // A start that is far away, like a disturbed conductive one, must not fall back on an unstable
   // state near by: it is marched first.
-  if (!from.values.empty() || equations.residual() == 0)
-    take(newton(equations, solver, settings_, infinity, observer_));
+  if (!from.values.empty() || equations.residual() == 0) {
+    SettleSettings few = settings_;
+    few.most_steps = std::min(settings_.most_steps, 25);
+    take(newton(equations, solver, few, infinity, observer_));
+  }
   if (!found.converged && !stopped_)
-    take(settle_by_marching(equations, solver, settings_, start, from, observer_));
+    take(settle_by_marching(equations, solver, settings_, start, from,
+                            times > 0 ? steps_on_coarse_grids : steps_on_the_grid, observer_));
   found.residual = equations.residual();
   found.temperature = stored(equations.temperature());
   found.psi = gather_to_first(equations.view().psi);
@@ -150,7 +156,7 @@ SteadyState share(const Model& model, const SettleSettings& settings, const Foun
   scatter_from_first(found.psi, psi);
   power.set_viscosity(viscosity_of(model.viscosity, temperature));
   const StateView view{power, heat, temperature, psi, model.rayleigh};
-  SteadyState s{found.grid,   found.converged, found.residual, found.remark,
+  SteadyState s{found.grid,    found.converged,      found.residual, found.remark,
                 measure(view), snapshot(view, true), found.steps};
   const double passing = std::abs(s.row.heat_flow_outer);
   const double net = s.row.heat_flow_inner - s.row.heat_flow_outer + s.row.heat_source +
