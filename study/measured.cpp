@@ -1,0 +1,209 @@
+#include "study/measured.hpp"
+
+#include <fmt/format.h>
+
+#include <algorithm>
+#include <cmath>
+
+#include "solver/march.hpp"
+#include "solver/settle.hpp"
+#include "solver/solve_error.hpp"
+#include "study/cycle.hpp"
+#include "study/quantities.hpp"
+
+namespace lidwright {
+namespace {
+
+using Values = std::map<std::string, std::vector<double>>;  ///< one a grid, from coarse to fine
+
+constexpr const char* critical_name = "rayleigh_critical";
+constexpr std::string_view mode_prefix = "rayleigh_mode_";
+
+constexpr double flow_tolerance = 1e-11;
+/// Relative errors that the solver's tolerance may leave in a quantity.
+constexpr double flow_floor = 1e-9, settle_floor = 1e-8, march_floor = 1e-4;
+
+Measured with_bars(const Values& values, const std::vector<std::string>& wanted, double floor) {
+  Measured bars;
+  for (const std::string& name : wanted) {
+    const std::vector<double>& v = values.at(name);
+    bars[name] = error_bar(v, floor * std::abs(v.back()));
+  }
+  return bars;
+}
+
+void append(Values& values, const std::map<std::string, double>& of_a_grid) {
+  for (const auto& [name, value] : of_a_grid) values[name].push_back(value);
+}
+
+Measured measure_flow(const Problem& p, int grids, const std::vector<std::string>& wanted,
+                      const Watch& watch) {
+  Values values;
+  for (int n = grids - 1; n >= 0; --n) {
+    const Grid grid = coarsened(p.model.grid, n);
+    watch.say(fmt::format("{} x {}", grid.radial, grid.lateral));
+    append(values, prescribed_flow(p.model, p.forcing, flow_tolerance, grid));
+    if (watch.stop()) throw Stopped{};
+  }
+  return with_bars(values, wanted, flow_floor);
+}
+
+Measured measure_settled(const Problem& p, int grids, const std::vector<std::string>& wanted,
+                         const Watch& watch) {
+  bool stopped = false;
+  const auto observe = [&](const NewtonStep& s) {
+    watch.say(fmt::format("{} x {}, step {}, residual {:.1e}", s.grid.radial, s.grid.lateral,
+                          s.step, s.residual));
+    stopped = stopped || watch.stop();
+    return !stopped;
+  };
+  const std::vector<SteadyState> states =
+      settle(p.model, p.initial, {}, p.settle, grids, PETSC_COMM_SELF, observe);
+  if (stopped) throw Stopped{};
+  Values values;
+  for (const SteadyState& s : states) {
+    if (!s.converged)
+      throw SolveError(
+          fmt::format("no steady state on {} x {}: {}", s.grid.radial, s.grid.lateral, s.remark));
+    for (const std::string& name : wanted)
+      values[name].push_back(steady_quantity(name, {p.model, s.row, s.snapshot}).value());
+  }
+  return with_bars(values, wanted, settle_floor);
+}
+
+/// History of a march on one grid, and its end.
+struct Marched {
+  std::vector<double> time, nusselt, velocity;
+  StoredTemperature end;
+};
+
+StoredTemperature stored(const March& m) {
+  const CellField& t = m.temperature();
+  const Geometry& g = t.decomposition().geometry();
+  StoredTemperature s;
+  s.shell = g.shell();
+  for (int i = 0; i <= g.radial_cells(); ++i) s.face_radius.push_back(g.face_radius(i));
+  for (int j = 0; j <= g.lateral_cells(); ++j) s.face_lateral.push_back(g.face_lateral(j));
+  s.values.assign(t.owned_data(), t.owned_data() + t.owned_size());
+  return s;
+}
+
+Marched march_on(const Problem& p, const Grid& grid, const StoredTemperature& start,
+                 const Watch& watch) {
+  Model model = p.model;
+  model.grid = grid;
+  InitialSettings initial = p.initial;
+  if (!start.values.empty()) initial.modes.clear();
+  March march(model, initial, start, p.flow, p.heat, PETSC_COMM_SELF);
+  Marched m;
+  while (march.time() < p.march.end_time) {
+    march.step(p.march.end_time);
+    const HistoryRow row = march.row();
+    m.time.push_back(row.time);
+    m.nusselt.push_back(row.nusselt_outer);
+    m.velocity.push_back(row.velocity_rms);
+    if (watch.stop()) throw Stopped{};
+    watch.say(fmt::format("{} x {}, time {:.3f} of {:g}", grid.radial, grid.lateral, row.time,
+                          p.march.end_time));
+  }
+  m.end = stored(march);
+  return m;
+}
+
+/// The source of case 3 lists minima of the velocity by size, not by what they follow.
+std::map<std::string, double> cycle_quantities(const Beats& heat, const Beats& flow) {
+  return {{"period", heat.period},
+          {"nusselt_maximum_1", heat.maximum_1},
+          {"nusselt_minimum_1", heat.minimum_1},
+          {"nusselt_maximum_2", heat.maximum_2},
+          {"nusselt_minimum_2", heat.minimum_2},
+          {"velocity_maximum_1", flow.maximum_1},
+          {"velocity_maximum_2", flow.maximum_2},
+          {"velocity_minimum_1", std::max(flow.minimum_1, flow.minimum_2)},
+          {"velocity_minimum_2", std::min(flow.minimum_1, flow.minimum_2)}};
+}
+
+Measured measure_march(const Problem& p, int grids, const std::vector<std::string>& wanted,
+                       const Watch& watch) {
+  Values values;
+  Marched last;
+  Beats heat, flow;
+  for (int n = grids - 1; n >= 0; --n) {
+    const Grid grid = coarsened(p.model.grid, n);
+    last = march_on(p, grid, last.end, watch);
+    heat = beats(last.time, last.nusselt, p.cycles);
+    flow = beats(last.time, last.velocity, p.cycles);
+    if (heat.cycles < 2 || flow.cycles < 2)
+      throw SolveError(fmt::format("no cycle of two beats on {} x {} by time {:g}", grid.radial,
+                                   grid.lateral, p.march.end_time));
+    append(values, cycle_quantities(heat, flow));
+  }
+  Measured bars = with_bars(values, wanted, march_floor);
+  // What an extremum wanders from cycle to cycle is not known better than that.
+  for (auto& [name, bar] : bars) {
+    const double wander = name.starts_with("nusselt")    ? heat.wander
+                          : name.starts_with("velocity") ? flow.wander
+                                                         : 0;
+    bar.half_width = std::max(bar.half_width, wander);
+  }
+  return bars;
+}
+
+const std::vector<std::string>& cycle_names() {
+  static const std::vector<std::string> names = [] {
+    std::vector<std::string> all;
+    for (const auto& [name, value] : cycle_quantities({}, {})) all.push_back(name);
+    return all;
+  }();
+  return names;
+}
+
+}  // namespace
+
+Measured measured(How how, const Problem& p, int grids, const std::vector<std::string>& wanted,
+                  const Watch& watch) {
+  switch (how) {
+    case How::Flow:
+      return measure_flow(p, grids, wanted, watch);
+    case How::March:
+      return measure_march(p, grids, wanted, watch);
+    case How::Onset:
+      throw SolveError("onset: not there yet");
+    case How::Settle:
+      break;
+  }
+  return measure_settled(p, grids, wanted, watch);
+}
+
+namespace {
+
+/// "rayleigh_mode_12".
+bool names_a_mode(const std::string& quantity) {
+  if (!quantity.starts_with(mode_prefix)) return false;
+  const std::string number = quantity.substr(mode_prefix.size());
+  return !number.empty() && number.size() < 5 && number.front() != '0' &&
+         number.find_first_not_of("0123456789") == std::string::npos;
+}
+
+}  // namespace
+
+bool measurable(How how, const std::string& quantity) {
+  if (how == How::Onset && names_a_mode(quantity)) return true;
+  const std::vector<std::string> names = measurable_names(how);
+  return std::find(names.begin(), names.end(), quantity) != names.end();
+}
+
+std::vector<std::string> measurable_names(How how) {
+  if (how == How::Flow) return prescribed_flow_names();
+  if (how == How::March) return cycle_names();
+  if (how == How::Onset) return {critical_name, std::string(mode_prefix) + "N"};
+  return steady_quantity_names();
+}
+
+Grid coarsened(Grid grid, int times) {
+  grid.radial >>= times;
+  grid.lateral >>= times;
+  return grid;
+}
+
+}  // namespace lidwright
