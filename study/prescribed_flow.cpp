@@ -183,7 +183,8 @@ std::map<std::string, double> prescribed_flow(const Model& model, const Forcing&
   settings.tolerance = tolerance;
   FlowSolver solver(d, model.walls, settings);
   CornerField psi(d);
-  const auto b = [&](RadialFace f) { return face_buoyancy(*geometry, forcing, f); };
+  const RadialFaceField b =
+      on_radial_faces(d, [&](RadialFace f) { return face_buoyancy(*geometry, forcing, f); });
   const FlowReport report = solver.solve(viscosity(d, model, forcing), b, psi);
   if (!report.converged) throw SolveError("the flow of the prescribed buoyancy did not converge");
   const Flow flow{*geometry, solver.power(), psi, stresses(solver.power(), psi, b)};
