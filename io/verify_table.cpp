@@ -29,7 +29,7 @@ std::string published_text(const Expectation& e) {
 }
 
 std::string share_text(int part, int whole) {
-  return whole ? fmt::format("{} of {} ({:.1f} %)", part, whole, 100.0 * part / whole) : "none";
+  return fmt::format("{} of {} ({:.1f} %)", part, whole, 100.0 * part / whole);
 }
 
 std::string csv_number(double x) { return std::isfinite(x) ? fmt::format("{}", x) : ""; }
@@ -64,17 +64,19 @@ std::string verify_row(const Comparison& c) {
 
 std::string verify_close(const Tally& t, double seconds) {
   const int judged = t.agree + t.marginal + t.differ + t.unresolved + t.not_solved;
-  std::string text = fmt::format("\n{} quantities agree", share_text(t.agree, judged));
+  std::string text = judged ? fmt::format("\n{} values agree", share_text(t.agree, judged))
+                            : "\nno value is judged";
   if (t.marginal) text += fmt::format(", {} marginal", t.marginal);
   if (t.differ) text += fmt::format(", {} differ", t.differ);
   if (t.unresolved) text += fmt::format(", {} unresolved", t.unresolved);
   if (t.not_solved) text += fmt::format(", {} not solved", t.not_solved);
-  if (t.doubtful) text += fmt::format("; {} doubtful ones shown, not judged", t.doubtful);
-  text += fmt::format(
-      "\nthe error bar holds the published value in {}; median width of a bar {:.2g} %"
-      " of the value\n{:.0f} s\n",
-      share_text(t.contained, t.bars), 100 * t.median_width, seconds);
-  return text;
+  if (t.doubtful) text += fmt::format("; {} doubtful ones are shown, not judged", t.doubtful);
+  if (t.bars)
+    text += fmt::format(
+        "\nthe error bar holds the published value in {}; median width of a bar {:.2g} % of the "
+        "value",
+        share_text(t.contained, t.bars), 100 * t.median_width);
+  return text + fmt::format("\n{:.0f} s\n", seconds);
 }
 
 std::string verify_csv(const std::vector<Comparison>& comparisons) {

@@ -43,7 +43,7 @@ def writes_its_table(into):
     shown = run(FLOW, "--csv", path).stdout
     rows = table(path)
     assert len(rows) == 14 and all(r["verdict"] == "agrees" for r in rows), rows
-    assert "14 of 14 (100.0 %) quantities agree" in shown, shown
+    assert "14 of 14 (100.0 %) values agree" in shown, shown
 
 
 def refuses_bad_input(into):
