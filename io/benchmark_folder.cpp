@@ -131,6 +131,7 @@ Problem problem(const BenchmarkFile& head, const std::string& case_path, const T
     p.flow = c.flow;
     p.heat = c.heat;
     p.march = c.march;
+    p.settle = c.settle;
   } catch (const InputError& e) {
     refuse(row.place, fmt::format("settings: {}", e.what()));
   }

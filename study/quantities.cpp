@@ -61,13 +61,6 @@ TurningPoint midline_extremum(const SteadyView& s, int sign, double from, double
 TurningPoint inner_minimum(const SteadyView& s) { return midline_extremum(s, -1, 0, 0.5); }
 TurningPoint outer_maximum(const SteadyView& s) { return midline_extremum(s, 1, 0.5, 1); }
 
-/// alpha rho g at a cell's depth.
-double coupling(const SteadyView& s, int i) {
-  const ReferenceProfiles& r = s.model.reference;
-  const double depth = geometry(s).depth(i), radius = geometry(s).outer_radius();
-  return r.expansivity(depth, radius) * r.density(depth, radius) * r.gravity(depth, radius);
-}
-
 using Quantity = double (*)(const SteadyView&);
 
 template <double HistoryRow::*member>
@@ -147,19 +140,10 @@ double dissipation_mean(const SteadyView& s) {
   return s.row.dissipation / geometry(s).total_volume();
 }
 double dissipation_heating(const SteadyView& s) {
-  return s.model.reference.dissipation_number / s.model.rayleigh * dissipation_mean(s);
+  return s.row.viscous_heating / geometry(s).total_volume();
 }
 double adiabatic_cooling(const SteadyView& s) {
-  const Geometry& g = geometry(s);
-  const ReferenceProfiles& reference = s.model.reference;
-  double sum = 0;
-  for (int i = 0; i < g.radial_cells(); ++i)
-    for (int j = 0; j < g.lateral_cells(); ++j) {
-      const Cell c{i, j};
-      sum += g.volume(c) * coupling(s, i) * s.snapshot.velocity_radial[c] *
-             (s.snapshot.temperature[c] + reference.surface_temperature);
-    }
-  return reference.dissipation_number * sum / g.total_volume();
+  return s.row.adiabatic_cooling / geometry(s).total_volume();
 }
 
 std::optional<double> steady_quantity(const std::string& name, const SteadyView& s) {
