@@ -41,7 +41,7 @@ std::string contents(const std::string& path) {
 std::vector<TextRow> expected_rows(const std::string& folder, const std::string& name) {
   const std::string path = path_of(folder, name, "expected.csv");
   return parse_text_table(contents(path), path, {"quantity", "value", "mark", "source"},
-                          {"variant", "case", "settings", "spread", "definition", "run"});
+                          {"variant", "case", "settings", "start", "spread", "definition", "run"});
 }
 
 bool quick_row(const BenchmarkFile& head, const TextRow& row) {
@@ -139,6 +139,15 @@ Problem problem(const BenchmarkFile& head, const std::string& case_path, const T
   return p;
 }
 
+/// The state it starts from is found before it.
+void check_start(const Benchmark& b, const TextRow& row) {
+  const auto same = [&](const Variant& v) { return v.name == row["start"]; };
+  if (row["start"].empty() || std::any_of(b.variants.begin(), b.variants.end(), same)) return;
+  refuse(row.place, fmt::format("start = '{}': must be the name of a variant above that is run "
+                                "whenever this one is",
+                                row["start"]));
+}
+
 }  // namespace
 
 std::vector<std::string> benchmark_names(const std::string& folder) {
@@ -174,13 +183,15 @@ Benchmark read_benchmark(const std::string& folder, const std::string& name, Row
     const bool quick = quick_row(file, row);
     if (rows == Rows::Quick && !quick) continue;
     const auto same = [&](const Variant& v) {
-      return v.case_file == row["case"] && v.settings == row["settings"];
+      return v.case_file == row["case"] && v.settings == row["settings"] && v.start == row["start"];
     };
     auto variant = std::find_if(b.variants.begin(), b.variants.end(), same);
     if (variant == b.variants.end()) {
       const std::string case_name = row["case"].empty() ? "case.toml" : row["case"];
       Problem p = problem(file, path_of(folder, name, case_name.c_str()), row);
-      b.variants.push_back({row["variant"], row["case"], row["settings"], std::move(p), {}});
+      check_start(b, row);
+      b.variants.push_back(
+          {row["variant"], row["case"], row["settings"], row["start"], std::move(p), {}});
       variant = b.variants.end() - 1;
     }
     variant->expected.push_back(expectation(b.how, row));

@@ -5,6 +5,7 @@
 #include <vector>
 
 #include "solver/settings.hpp"
+#include "solver/stored_temperature.hpp"
 #include "study/error_bars.hpp"
 #include "study/prescribed_flow.hpp"
 
@@ -43,8 +44,9 @@ struct Problem {
   HeatSettings heat;
   MarchSettings march;
   SettleSettings settle;
-  Forcing forcing;  ///< How::Flow
-  int cycles = 9;   ///< How::March: the last ones, over which means are taken
+  StoredTemperature start;  ///< How::Settle: a state near by; empty: the initial settings
+  Forcing forcing;          ///< How::Flow
+  int cycles = 9;           ///< How::March: the last ones, over which means are taken
 };
 
 /// One problem of a benchmark and the values published for it.
@@ -52,6 +54,7 @@ struct Variant {
   std::string name;       ///< for people; may be empty
   std::string case_file;  ///< in the benchmark's folder; empty: case.toml
   std::string settings;   ///< what sets it off from the case; may be empty
+  std::string start;      ///< name of the variant above whose steady state it starts from, or empty
   Problem problem;
   std::vector<Expectation> expected;
 };

@@ -24,12 +24,23 @@ constexpr double flow_tolerance = 1e-11;
 constexpr double flow_floor = 1e-9, settle_floor = 1e-8, march_floor = 1e-4;
 
 Measured with_bars(const Values& values, const std::vector<std::string>& wanted, double floor) {
-  Measured bars;
+  Measured m;
   for (const std::string& name : wanted) {
     const std::vector<double>& v = values.at(name);
-    bars[name] = error_bar(v, floor * std::abs(v.back()));
+    m.bars[name] = error_bar(v, floor * std::abs(v.back()));
   }
-  return bars;
+  return m;
+}
+
+/// All of a field on one rank.
+StoredTemperature stored(const CellField& t) {
+  const Geometry& g = t.decomposition().geometry();
+  StoredTemperature s;
+  s.shell = g.shell();
+  for (int i = 0; i <= g.radial_cells(); ++i) s.face_radius.push_back(g.face_radius(i));
+  for (int j = 0; j <= g.lateral_cells(); ++j) s.face_lateral.push_back(g.face_lateral(j));
+  s.values.assign(t.owned_data(), t.owned_data() + t.owned_size());
+  return s;
 }
 
 void append(Values& values, const std::map<std::string, double>& of_a_grid) {
@@ -52,15 +63,17 @@ Measured measure_settled(const Problem& p, int grids, const std::vector<std::str
                          const Watch& watch) {
   bool stopped = false;
   const auto observe = [&](const NewtonStep& s) {
-    watch.say(fmt::format("{} x {}, step {}, residual {:.1e}", s.grid.radial, s.grid.lateral,
-                          s.step, s.residual));
+    const std::string stage = s.step < 0 ? "march" : fmt::format("Newton step {}", s.step);
+    watch.say(fmt::format("{} x {}, {}, residual {:.1e}", s.grid.radial, s.grid.lateral, stage,
+                          s.residual));
     stopped = stopped || watch.stop();
     return !stopped;
   };
   const std::vector<SteadyState> states =
-      settle(p.model, p.initial, {}, p.settle, grids, PETSC_COMM_SELF, observe);
+      settle(p.model, p.initial, p.start, p.settle, grids, PETSC_COMM_SELF, observe);
   if (stopped) throw Stopped{};
   Values values;
+  if (states.size() < 2) throw SolveError("steady states on fewer than two grids");
   for (const SteadyState& s : states) {
     if (!s.converged)
       throw SolveError(
@@ -68,7 +81,9 @@ Measured measure_settled(const Problem& p, int grids, const std::vector<std::str
     for (const std::string& name : wanted)
       values[name].push_back(steady_quantity(name, {p.model, s.row, s.snapshot}).value());
   }
-  return with_bars(values, wanted, settle_floor);
+  Measured m = with_bars(values, wanted, settle_floor);
+  m.end = stored(states.back().snapshot.temperature);
+  return m;
 }
 
 /// History of a march on one grid, and its end.
@@ -76,17 +91,6 @@ struct Marched {
   std::vector<double> time, nusselt, velocity;
   StoredTemperature end;
 };
-
-StoredTemperature stored(const March& m) {
-  const CellField& t = m.temperature();
-  const Geometry& g = t.decomposition().geometry();
-  StoredTemperature s;
-  s.shell = g.shell();
-  for (int i = 0; i <= g.radial_cells(); ++i) s.face_radius.push_back(g.face_radius(i));
-  for (int j = 0; j <= g.lateral_cells(); ++j) s.face_lateral.push_back(g.face_lateral(j));
-  s.values.assign(t.owned_data(), t.owned_data() + t.owned_size());
-  return s;
-}
 
 Marched march_on(const Problem& p, const Grid& grid, const StoredTemperature& start,
                  const Watch& watch) {
@@ -106,7 +110,7 @@ Marched march_on(const Problem& p, const Grid& grid, const StoredTemperature& st
     watch.say(fmt::format("{} x {}, time {:.3f} of {:g}", grid.radial, grid.lateral, row.time,
                           p.march.end_time));
   }
-  m.end = stored(march);
+  m.end = stored(march.temperature());
   return m;
 }
 
@@ -138,15 +142,15 @@ Measured measure_march(const Problem& p, int grids, const std::vector<std::strin
                                    grid.lateral, p.march.end_time));
     append(values, cycle_quantities(heat, flow));
   }
-  Measured bars = with_bars(values, wanted, march_floor);
+  Measured m = with_bars(values, wanted, march_floor);
   // What an extremum wanders from cycle to cycle is not known better than that.
-  for (auto& [name, bar] : bars) {
+  for (auto& [name, bar] : m.bars) {
     const double wander = name.starts_with("nusselt")    ? heat.wander
                           : name.starts_with("velocity") ? flow.wander
                                                          : 0;
     bar.half_width = std::max(bar.half_width, wander);
   }
-  return bars;
+  return m;
 }
 
 const std::vector<std::string>& cycle_names() {

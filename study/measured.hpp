@@ -10,7 +10,10 @@
 /// Quantities of a problem with their error bars, from grids refined by two.
 namespace lidwright {
 
-using Measured = std::map<std::string, ErrorBar>;
+struct Measured {
+  std::map<std::string, ErrorBar> bars;
+  StoredTemperature end;  ///< How::Settle: of the steady state on the finest grid
+};
 
 /// How the work is watched.
 struct Watch {
