@@ -8,6 +8,7 @@
 #include <optional>
 
 #include "app/run_summary.hpp"
+#include "app/shared_case.hpp"
 #include "app/stop_signals.hpp"
 #include "io/case_file.hpp"
 #include "io/checkpoint.hpp"
@@ -34,14 +35,6 @@ std::string fingerprint(Case c) {
   c.march = MarchSettings{};
   c.output = OutputSettings{};
   return write_case(c);
-}
-
-/// A case read on the first rank, so that all ranks see the same file; errors on all ranks.
-Case shared_case(MPI_Comm comm, const std::string& path, const std::vector<std::string>& settings) {
-  std::string text;
-  on_first_rank<InputError>(comm, [&] { text = write_case(read_case(path, settings)); });
-  broadcast(comm, text);
-  return parse_case(text, path);
 }
 
 /// A run that is going on: the march, its files, and when which is written.
@@ -246,16 +239,6 @@ std::string stored_path(const MarchRequest& request, const Case& c) {
       .string();
 }
 
-/// Runs `make`; what only shows when the mesh is made or the ranks share it is bad input.
-template <class Make>
-auto or_bad_input(Make&& make) {
-  try {
-    return make();
-  } catch (const std::invalid_argument& e) {
-    throw InputError(e.what());
-  }
-}
-
 ExitCode start_new(const Session& session, const MarchRequest& request, Clock::time_point start) {
   const Case c = shared_case(session.comm(), request.case_file, request.settings);
   const ExistingRun existing = request.overwrite ? ExistingRun::Overwrite : ExistingRun::Refuse;
@@ -308,9 +291,7 @@ ExitCode resume(const Session& session, const MarchRequest& request, Clock::time
         "--set: a resumed run may change keys of [march] and [output] only; start a new run, from "
         "this "
         "one's state if you like (initial.from)");
-  const auto decomposition = or_bad_input([&] {
-    return decompose(c.model, session.comm());
-  });
+  const auto decomposition = or_bad_input([&] { return decompose(c.model, session.comm()); });
   const Archive archive = read_checkpoint(checkpoint.path, decomposition, fingerprint(c));
   auto march = std::make_unique<March>(c.model, c.flow, c.heat, archive, session.comm());
   refuse_unfit_history(session, paths.history(), checkpoint.step);
