@@ -68,7 +68,7 @@ void add_march(CLI::App& app, MarchRequest& request) {
 
 void add_onset(CLI::App& app, OnsetRequest& request) {
   CLI::App* verb =
-      app.add_subcommand("onset", "Find the Rayleigh number at which a case begins to convect")
+      app.add_subcommand("onset", "Find the Rayleigh number at which convection begins")
           ->group("Verbs");
   verb->add_option("CASE", request.case_file,
                    "Case file (TOML); its numbers.rayleigh serves to\n"
