@@ -83,6 +83,19 @@ std::string caution(const OnsetCurve& curve) {
             "grid for shorter waves");
 }
 
+/// Modes whose error bars meet that of the critical one.
+std::string rivals(const OnsetCurve& curve) {
+  const ErrorBar& least = critical(curve).rayleigh;
+  std::vector<int> numbers;
+  for (const OnsetPoint& p : curve.points)
+    if (p.wave.number != critical(curve).wave.number &&
+        p.rayleigh.value - p.rayleigh.half_width < least.value + least.half_width)
+      numbers.push_back(p.wave.number);
+  if (numbers.empty()) return "";
+  return fmt::format("  error bars overlap    mode {} may be the critical one: refine the grid\n",
+                     fmt::join(numbers, ", "));
+}
+
 std::string with_error(const ErrorBar& bar) {
   if (bar.half_width == 0) return fmt::format("{:.7g}", bar.value);
   return fmt::format("{:.7g} +- {:.2g}", bar.value, bar.half_width);
@@ -115,13 +128,14 @@ std::string onset_for_people(const Case& c, const OnsetCurve& curve, double seco
       "{}onset of convection{}: modes {} to {} on {} in {}\n{}"
       "  critical Rayleigh     {}\n"
       "  critical mode         {}; wavelength {:.4g} d at mid-depth\n"
+      "{}"
       "  this case             {}\n{}"
       "  results in            {}\n",
       c.title.empty() ? "" : c.title + "\n", curve.interrupted ? ", interrupted" : "",
       curve.points.front().wave.number, curve.points.back().wave.number, grids_text(curve),
       duration_text(seconds), table_text(curve), with_error(p.rayleigh),
-      counted(c.model.shell, p.wave), wavelength(p.wave), verdict(c, curve), caution(curve),
-      folder);
+      counted(c.model.shell, p.wave), wavelength(p.wave), rivals(curve), verdict(c, curve),
+      caution(curve), folder);
 }
 
 }  // namespace lidwright
