@@ -33,6 +33,7 @@ double seconds_since(Clock::time_point t) {
 std::string fingerprint(Case c) {
   c.title.clear();
   c.march = MarchSettings{};
+  c.settle = SettleSettings{};
   c.output = OutputSettings{};
   return write_case(c);
 }

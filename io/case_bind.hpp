@@ -58,12 +58,17 @@ Access heat_layer(Member member) {
   return item(member, &Draft::made, &Case::model, &Model::heat, &HeatSources::layers);
 }
 template <class Member>
+Access reference_level(Member member) {
+  return item(member, &Draft::reference, &ReferenceDraft::levels);
+}
+template <class Member>
 Access mode(Member member) {
   return item(member, &Draft::made, &Case::initial, &InitialSettings::modes);
 }
 
 inline constexpr Range positive = {.low = 0, .low_open = true};
 inline constexpr Range not_negative = {.low = 0};
+inline constexpr Range ratio = {.low = 1e-6, .high = 1e6};
 inline constexpr Range at_least_one = {.low = 1};
 inline constexpr Range cells = {.low = 4, .high = 100000};
 inline constexpr Range refinement = {.low = 1, .high = 1000};
@@ -76,5 +81,6 @@ std::vector<Key> shell_keys();  ///< [shell], [grid]
 std::vector<Key> wall_keys(const std::string& table, WallDraft Draft::*);
 std::vector<Key> viscosity_keys();
 std::vector<Key> heat_keys();
+std::vector<Key> reference_keys();
 
 }  // namespace lidwright::case_text

@@ -52,7 +52,25 @@ void set_wall(Wall& wall, const WallDraft& draft) {
 void derive_from_body(Draft& draft) {
   draft.radius_ratio = radius_ratio(draft.body);
   draft.made.model.rayleigh = rayleigh_number(draft.body);
-  draft.arrhenius.offset = absolute_surface_temperature(draft.body);
+}
+
+RadialProfile with_table(RadialProfile profile, const TabulatedProperty& property,
+                         const ReferenceDraft& draft) {
+  profile.depths.clear(), profile.values.clear();
+  if (!tabulated(draft, property)) return profile;
+  for (const ReferenceLevel& level : draft.levels) {
+    profile.depths.push_back(level.depth);
+    profile.values.push_back(*(level.*property.value));
+  }
+  return profile;
+}
+
+void set_reference(ReferenceProfiles& profiles, const Draft& draft) {
+  profiles.dissipation_number = draft.compressible() ? draft.dissipation() : 0;
+  profiles.surface_temperature = draft.compressible() ? draft.absolute_surface() : 0;
+  profiles.density.rise = draft.density_rise();
+  for (const TabulatedProperty& property : tabulated_properties())
+    profiles.*property.profile = with_table(profiles.*property.profile, property, draft.reference);
 }
 
 WallDraft take_apart(const Wall& wall) {
@@ -91,7 +109,71 @@ void take_apart_shell(Draft& draft, const Shell& shell) {
   draft.opening = exact_inverse(end, shell.lateral_end, degrees(shell.lateral_end) - draft.from);
 }
 
+Approximation approximation_of(const ReferenceProfiles& profiles) {
+  if (!profiles.density.constant()) return Approximation::AnelasticLiquid;
+  return profiles.dissipation_number > 0 ? Approximation::ExtendedBoussinesq
+                                         : Approximation::Boussinesq;
+}
+
+/// All tables of a case that was read have the same depths.
+std::vector<ReferenceLevel> levels_of(const ReferenceProfiles& profiles) {
+  std::vector<ReferenceLevel> levels;
+  for (const TabulatedProperty& property : tabulated_properties()) {
+    const RadialProfile& profile = profiles.*property.profile;
+    if (profile.depths.empty()) continue;
+    levels.resize(profile.depths.size());
+    for (std::size_t k = 0; k < levels.size(); ++k) {
+      levels[k].depth = profile.depths[k];
+      levels[k].*property.value = profile.values[k];
+    }
+  }
+  return levels;
+}
+
+void take_apart_reference(Draft& draft, const Model& model) {
+  const ReferenceProfiles& profiles = model.reference;
+  draft.reference.approximation = approximation_of(profiles);
+  draft.reference.levels = levels_of(profiles);
+  if (profiles.density.rise != 1) draft.reference.density_rise = profiles.density.rise;
+  // The surface temperature is said once, where the approximation or else the viscosity needs it.
+  if (draft.compressible())
+    draft.reference.surface_temperature = profiles.surface_temperature;
+  else if (model.viscosity.arrhenius)
+    draft.arrhenius_surface = model.viscosity.arrhenius->offset;
+}
+
 }  // namespace
+
+const std::vector<TabulatedProperty>& tabulated_properties() {
+  using L = ReferenceLevel;
+  using P = ReferenceProfiles;
+  static const std::vector<TabulatedProperty> all = {
+      {"density", &L::density, &P::density},
+      {"expansivity", &L::expansivity, &P::expansivity},
+      {"gravity", &L::gravity, &P::gravity},
+      {"conductivity", &L::conductivity, &P::conductivity},
+      {"heat_capacity", &L::heat_capacity, &P::heat_capacity},
+  };
+  return all;
+}
+
+bool tabulated(const ReferenceDraft& draft, const TabulatedProperty& property) {
+  return !draft.levels.empty() && (draft.levels.front().*property.value).has_value();
+}
+
+double Draft::absolute_surface() const {
+  if (si) return absolute_surface_temperature(body);
+  return reference.surface_temperature.value_or(arrhenius_surface.value_or(0));
+}
+
+double Draft::dissipation() const {
+  return si ? dissipation_number(body) : made.model.reference.dissipation_number;
+}
+
+double Draft::density_rise() const {
+  if (reference.gruneisen) return std::exp(dissipation() / *reference.gruneisen);
+  return reference.density_rise.value_or(1);
+}
 
 Extent Draft::extent_or_default() const {
   return extent.value_or(axisymmetric() ? Extent::PoleToPole : Extent::FullCircle);
@@ -107,7 +189,9 @@ Case assemble(Draft draft) {
   set_wall(model.walls.inner, draft.inner);
   set_wall(model.walls.outer, draft.outer);
   if (draft.has_exponential) model.viscosity.exponential = draft.exponential;
+  draft.arrhenius.offset = draft.absolute_surface();
   if (draft.has_arrhenius) model.viscosity.arrhenius = draft.arrhenius;
+  set_reference(model.reference, draft);
   model.viscosity.highest =
       draft.highest_viscosity.value_or(std::numeric_limits<double>::infinity());
   if (draft.si || draft.body_used) draft.made.body = draft.body;
@@ -125,6 +209,7 @@ Draft take_apart(const Case& from) {
   draft.has_arrhenius = model.viscosity.arrhenius.has_value();
   draft.exponential = model.viscosity.exponential.value_or(ExponentialViscosity{});
   draft.arrhenius = model.viscosity.arrhenius.value_or(ArrheniusViscosity{});
+  take_apart_reference(draft, model);
   if (std::isfinite(model.viscosity.highest)) draft.highest_viscosity = model.viscosity.highest;
   draft.body_used = from.body.has_value();
   draft.body = from.body.value_or(Body{});

@@ -1,6 +1,8 @@
 #pragma once
 
 #include <optional>
+#include <string>
+#include <vector>
 
 #include "io/case_file.hpp"
 
@@ -17,6 +19,31 @@ struct WallDraft {
   Slip flow = Slip::Free;
 };
 
+enum class Approximation { Boussinesq, ExtendedBoussinesq, AnelasticLiquid };
+
+/// One depth of the tabulated profiles; a property is there at all depths or at none.
+struct ReferenceLevel {
+  double depth = 0;
+  std::optional<double> density, expansivity, gravity, conductivity, heat_capacity;
+};
+
+struct ReferenceDraft {
+  Approximation approximation = Approximation::Boussinesq;
+  std::optional<double> surface_temperature;  ///< of [numbers]
+  std::optional<double> gruneisen, density_rise;
+  std::string table;  ///< path of a file that gives the levels
+  std::vector<ReferenceLevel> levels;
+};
+
+/// A property that may be tabulated: its name, its number at a level, its profile.
+struct TabulatedProperty {
+  const char* name;
+  std::optional<double> ReferenceLevel::*value;
+  RadialProfile ReferenceProfiles::*profile;
+};
+const std::vector<TabulatedProperty>& tabulated_properties();
+bool tabulated(const ReferenceDraft&, const TabulatedProperty&);
+
 struct Draft {
   Case made;
   std::optional<double> radius_ratio;
@@ -28,6 +55,8 @@ struct Draft {
   bool has_exponential = false, has_arrhenius = false;
   ExponentialViscosity exponential;
   ArrheniusViscosity arrhenius;
+  std::optional<double> arrhenius_surface;  ///< its surface_temperature
+  ReferenceDraft reference;
   std::optional<double> highest_viscosity;
   Body body;
   bool si = false;         ///< [body]: values are in SI
@@ -35,6 +64,12 @@ struct Draft {
 
   bool box() const { return made.model.shell.shape == Shape::Box; }
   bool axisymmetric() const { return made.model.shell.shape == Shape::AxisymmetricShell; }
+  bool compressible() const { return reference.approximation != Approximation::Boussinesq; }
+  bool anelastic() const { return reference.approximation == Approximation::AnelasticLiquid; }
+  /// Absolute, where T = 0, in units of the drop; 0 if neither the body nor any key says it.
+  double absolute_surface() const;
+  double dissipation() const;   ///< Di of a compressible mantle
+  double density_rise() const;  ///< by gruneisen or density_rise, else 1
   Extent extent_or_default() const;
   /// The body by which numbers in the file are converted.
   std::optional<Body> units() const { return si ? std::optional(body) : std::nullopt; }

@@ -8,6 +8,8 @@
 #include <set>
 #include <sstream>
 
+#include "io/text_file.hpp"
+
 namespace lidwright::case_text {
 namespace {
 
@@ -85,11 +87,8 @@ std::string elsewhere(std::string_view name) {
          fmt::format("{0} = {1}: {0} is a table: write [{0}] and its keys below it", path, value));
 }
 
-/// Most bytes of a case; a longer file is something else.
-constexpr std::size_t longest_case = 1 << 20;
-
 toml::table parse(const std::string& text, const std::string& name) {
-  if (text.size() > longest_case)
+  if (text.size() > longest_text)
     refuse(name, "is longer than 1 MiB and hardly a case; a case is a short TOML file");
   try {
     return toml::parse(text);

@@ -27,6 +27,7 @@ struct Case {
   FlowSettings flow;
   HeatSettings heat;
   MarchSettings march;
+  SettleSettings settle;
   OutputSettings output;
   /// Present: the file was in SI and everything above was made dimensionless with it.
   std::optional<Body> body;
@@ -38,17 +39,18 @@ struct InputError : std::runtime_error {
   using std::runtime_error::runtime_error;
 };
 
-/// A relative initial.from is made absolute, starting at the folder of the case file.
 /// Reads a case, then applies `settings` ("table.key=value", as on the command line) before any
-/// value is checked. Throws InputError. Not collective: every rank may call it, or one.
+/// value is checked. A relative initial.from is made absolute, starting at the folder of the case
+/// file; a table of reference profiles that the case names is read, from there as well. Throws
+/// InputError. Not collective: every rank may call it, or one.
 Case read_case(const std::string& path, const std::vector<std::string>& settings = {});
 Case parse_case(const std::string& text, const std::string& name,
                 const std::vector<std::string>& settings = {});
 
 /// The case with every default filled in, as TOML that `parse_case` reads back to the same case,
 /// bit for bit if it was once read. Always dimensionless; a body goes into [body_used], so that
-/// rereading converts nothing. Values that do not apply (initial.interior of a conductive start)
-/// are left out.
+/// rereading converts nothing; a table of reference profiles is written out, so that its file is
+/// not needed. Values that do not apply (initial.interior of a conductive start) are left out.
 std::string write_case(const Case&);
 
 /// Reference of all keys, for `lidwright keys` (plain, 80 columns) and docs/case.md (Markdown).

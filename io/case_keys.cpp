@@ -148,6 +148,39 @@ std::vector<Key> march_keys() {
   };
 }
 
+std::vector<Key> settle_keys() {
+  using S = SettleSettings;
+  const auto at = [](auto member) { return of_case(&Case::settle, member); };
+  return {
+      {.path = "settle.tolerance",
+       .access = at(&S::tolerance),
+       .range = {.low = 0, .high = 0.1, .low_open = true},
+       .help = "root mean square of dT/dt, over heat flow through heat capacity of the shell, at "
+               "which it is steady"},
+      {.path = "settle.most_steps",
+       .access = at(&S::most_steps),
+       .range = {.low = 1, .high = 1e6},
+       .help = "Newton steps on one grid before giving up"},
+      {.path = "settle.most_time",
+       .access = at(&S::most_time),
+       .quantity = Quantity::Time,
+       .range = positive,
+       .help = "longest march to a first guess, on the coarsest grid"},
+      {.path = "settle.flux",
+       .access = at(&S::flux),
+       .words = {"central", "limited"},
+       .help = "heat carried by the flow of a steady state, as transport.flux says it of a march"},
+      {.path = "settle.coarsest",
+       .access = at(&S::coarsest),
+       .range = {.low = 8, .high = 100000},
+       .help = "cells from wall to wall of the coarsest grid to start from"},
+      {.path = "settle.linear",
+       .access = at(&S::linear),
+       .words = {"automatic", "direct", "iterative"},
+       .help = "how the equations of a Newton step are solved"},
+  };
+}
+
 std::vector<Key> output_keys() {
   using O = OutputSettings;
   const auto at = [](auto member) { return of_case(&Case::output, member); };
@@ -191,10 +224,12 @@ std::vector<Key> list_all() {
   append(keys, wall_keys("walls.outer", &Draft::outer));
   append(keys, viscosity_keys());
   append(keys, heat_keys());
+  append(keys, reference_keys());
   append(keys, initial_keys());
   append(keys, flow_keys());
   append(keys, transport_keys());
   append(keys, march_keys());
+  append(keys, settle_keys());
   append(keys, output_keys());
   return keys;
 }

@@ -71,7 +71,8 @@ struct Key {
   bool in_list() const { return path.find("[].") != std::string::npos; }
 };
 
-/// In the order of the reference page; a key comes after those its condition asks.
+/// In the order of the reference page. A key comes after those its condition asks, where these are
+/// not words of a list: such words are read first.
 const std::vector<Key>& all_keys();
 /// Keys of the items of a list.
 std::vector<const Key*> item_keys(const Key& list);

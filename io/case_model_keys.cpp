@@ -24,6 +24,13 @@ constexpr Condition exponential = {"with [viscosity.exponential]",
                                    [](const Draft& d) { return d.has_exponential; }};
 constexpr Condition arrhenius = {"with [viscosity.arrhenius]",
                                  [](const Draft& d) { return d.has_arrhenius; }};
+constexpr Condition compressible_numbers = {
+    R"(with [numbers] and reference.approximation = "extended-boussinesq" or "anelastic-liquid")",
+    [](const Draft& d) { return !d.si && d.compressible(); }};
+constexpr Condition absolute_numbers = {
+    R"(with [numbers], and with [viscosity.arrhenius] or reference.approximation = )"
+    R"("extended-boussinesq" or "anelastic-liquid")",
+    [](const Draft& d) { return !d.si && (d.compressible() || d.has_arrhenius); }};
 constexpr Condition offset_free = {
     "in [viscosity.arrhenius] with [numbers] (with [body] it follows from body.surface_temperature "
     "and "
@@ -52,10 +59,25 @@ std::vector<Key> scale_keys() {
        .only = numbers,
        .help = "rho alpha g DeltaT d^3/(kappa eta_ref), with the viscosity eta_ref where the law "
                "gives 1"},
+      {.path = "numbers.dissipation",
+       .access = of_model(&Model::reference, &ReferenceProfiles::dissipation_number),
+       .need = Need::Required,
+       .range = {.low = 0, .high = 100, .low_open = true},
+       .only = compressible_numbers,
+       .help = "Di = alpha g d/cp; with [body] it follows from the body"},
+      {.path = "numbers.surface_temperature",
+       .access = said(&Draft::reference, &ReferenceDraft::surface_temperature),
+       .default_text = "required; with [viscosity.arrhenius] alone, that table may say it",
+       .unit = "DeltaT",
+       .range = not_negative,
+       .only = absolute_numbers,
+       .help = "absolute temperature where T = 0; with [body] it follows from the body"},
       number("radius", &Body::radius, "", "radius of the outer wall", Quantity::Kilometres),
       number("core_radius", &Body::core_radius, "",
              "radius of the inner wall, less than body.radius", Quantity::Kilometres),
-      number("gravity", &Body::gravity, "m/s^2", "gravity in the mantle, uniform"),
+      number(
+          "gravity", &Body::gravity, "m/s^2",
+          "gravity in the mantle; this and the next four: where the profile in [reference] is 1"),
       number("density", &Body::density, "kg/m^3", "density of the mantle"),
       number("expansivity", &Body::expansivity, "1/K", "thermal expansivity, by volume"),
       number("conductivity", &Body::conductivity, "W/m/K", "thermal conductivity"),
@@ -250,12 +272,13 @@ std::vector<Key> viscosity_keys() {
        .only = arrhenius,
        .help = "volume V in exp[(E + p V)/(R T)], p = rho g depth"},
       {.path = "viscosity.arrhenius.surface_temperature",
-       .access = said(&Draft::arrhenius, &A::offset),
-       .need = Need::Required,
+       .access = said(&Draft::arrhenius_surface),
+       .default_text = "numbers.surface_temperature; required without",
        .unit = "DeltaT",
        .range = positive,
        .only = offset_free,
-       .help = "absolute temperature where T = 0"},
+       .help = "absolute temperature where T = 0; equal to numbers.surface_temperature if both are "
+               "given"},
       {.path = "viscosity.arrhenius.unity_at",
        .access = said(&Draft::arrhenius, &A::unity_at),
        .quantity = Quantity::Temperature,

@@ -95,8 +95,7 @@ void check_viscosity(const Draft& draft, const Entries& entries) {
     refuse(entries.place("viscosity.highest"),
            "viscosity.highest is less than viscosity.lowest; the upper cut-off must be the larger");
   if (!draft.has_arrhenius) return;
-  const double offset =
-      draft.si ? absolute_surface_temperature(draft.body) : draft.arrhenius.offset;
+  const double offset = draft.absolute_surface();
   if (draft.arrhenius.unity_at + offset <= 0)
     refuse(entries.place("viscosity.arrhenius.unity_at"),
            "viscosity.arrhenius.unity_at must be above absolute zero");
@@ -105,7 +104,7 @@ void check_viscosity(const Draft& draft, const Entries& entries) {
       refuse(entries.place(wall == &draft.inner ? "walls.inner.temperature"
                                                 : "walls.outer.temperature"),
              "the wall's temperature must be above absolute zero, where an Arrhenius viscosity is "
-             "infinite; raise it or viscosity.arrhenius.surface_temperature");
+             "infinite; raise it or the absolute surface temperature");
 }
 
 void check_initial(const Draft& draft, const Entries& entries) {
@@ -160,7 +159,8 @@ void check_body(const Draft& draft, const Entries& entries) {
   const Scales scales = scales_of(draft.body);
   for (const double derived :
        {rayleigh_number(draft.body), radius_ratio(draft.body), scales.time, scales.heat_source,
-        scales.activation_volume, absolute_surface_temperature(draft.body)})
+        scales.activation_volume, absolute_surface_temperature(draft.body),
+        dissipation_number(draft.body)})
     if (!std::isnormal(derived))
       refuse(entries.place(table),
              fmt::format("[{}]: its scales overflow or vanish, so its numbers are far from any "
@@ -172,6 +172,7 @@ void check_together(const Draft& draft, const Entries& entries) {
   check_extent(draft, entries);
   check_grid(draft, entries);
   check_walls(draft, entries);
+  check_reference(draft, entries);
   check_viscosity(draft, entries);
   check_sorted(draft.made.model.heat.layers, "heat.layers", entries);
   check_initial(draft, entries);

@@ -9,6 +9,8 @@ namespace lidwright::case_text {
 void choose_tables(Draft&, const Entries&);
 /// Radii of the body, before anything is converted with them.
 void check_body(const Draft&, const Entries&);
+/// Approximation, surface temperature and reference profiles; part of `check_together`.
+void check_reference(const Draft&, const Entries&);
 /// The rest, when all keys are read.
 void check_together(const Draft&, const Entries&);
 

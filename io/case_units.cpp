@@ -26,6 +26,16 @@ Units units_of(Quantity quantity) {
       return {"R DeltaT", "J/mol"};
     case Quantity::ActivationVolume:
       return {"R DeltaT/(rho g d)", "m^3/mol"};
+    case Quantity::Density:
+      return {"1", "kg/m^3"};
+    case Quantity::Expansivity:
+      return {"1", "1/K"};
+    case Quantity::Gravity:
+      return {"1", "m/s^2"};
+    case Quantity::Conductivity:
+      return {"1", "W/m/K"};
+    case Quantity::HeatCapacity:
+      return {"1", "J/kg/K"};
     case Quantity::Kilometres:
       return {"km", "km"};
   }
@@ -65,6 +75,16 @@ Conversion conversion(Quantity quantity, const std::optional<Body>& body) {
       return {.scale = s.activation_energy};
     case Quantity::ActivationVolume:
       return {.scale = s.activation_volume};
+    case Quantity::Density:
+      return {.scale = body->density};
+    case Quantity::Expansivity:
+      return {.scale = body->expansivity};
+    case Quantity::Gravity:
+      return {.scale = body->gravity};
+    case Quantity::Conductivity:
+      return {.scale = body->conductivity};
+    case Quantity::HeatCapacity:
+      return {.scale = body->heat_capacity};
   }
   return {};
 }

@@ -23,6 +23,11 @@ enum class Quantity {
   Viscosity,
   ActivationEnergy,
   ActivationVolume,
+  Density,  ///< this and the following: 1, or with a body over the body's value
+  Expansivity,
+  Gravity,
+  Conductivity,
+  HeatCapacity,
   Kilometres,  ///< of a body: km in the file, m in the program
 };
 

@@ -32,7 +32,7 @@ std::string join_bounds(const std::string& low, const std::string& high) {
 }
 
 std::string with_unit(std::string text, std::string_view unit) {
-  return unit.empty() || text.empty() ? text : fmt::format("{} {}", text, unit);
+  return unit.empty() || unit == "1" || text.empty() ? text : fmt::format("{} {}", text, unit);
 }
 
 std::string number_kind(const Given& given, const char* kind) {
@@ -100,13 +100,12 @@ struct Store {
 };
 
 Given given_of(const Key& key, const std::string& path, const Entry& entry, const Draft& draft) {
-  const Units units = key.units();
   return {key,
           path,
           *entry.value,
           entry.place,
           conversion(key.quantity, draft.units()),
-          draft.si ? units.si : units.dimensionless};
+          unit_in_file(key, draft)};
 }
 
 [[noreturn]] void refuse_missing(const Key& key, const std::string& path,
@@ -136,8 +135,7 @@ void read_item(const Key& list_key, const std::string& path, const toml::node& n
     }
     const std::string place = place_of(found->first.source());
     entries.note_place(full, place);
-    const Given given = given_of(*key, full, {&found->second, place}, draft);
-    std::visit(Store{given}, key->access(draft, k));
+    read_value(*key, full, {&found->second, place}, draft, k);
   }
 }
 
@@ -165,8 +163,7 @@ void read_key(const Key& key, Draft& draft, Entries& entries) {
   const Target target = key.access(draft, 0);
   if (const auto* list = std::get_if<List>(&target))
     return read_list(key, *list, *entry, draft, entries);
-  const Given given = given_of(key, key.path, *entry, draft);
-  std::visit(Store{given}, target);
+  read_value(key, key.path, *entry, draft);
 }
 
 bool is_body_key(const Key& key) { return key.table().starts_with("body"); }
@@ -211,8 +208,20 @@ void read_body_keys(Draft& draft, Entries& entries) {
 }
 
 void read_other_keys(Draft& draft, Entries& entries) {
-  for (const Key& key : all_keys())
-    if (!is_body_key(key) && !key.in_list()) read_key(key, draft, entries);
+  for (const bool words : {true, false})  // conditions ask words of keys further down the list
+    for (const Key& key : all_keys())
+      if (!is_body_key(key) && !key.in_list() && words != key.words.empty())
+        read_key(key, draft, entries);
+}
+
+void read_value(const Key& key, const std::string& name, const Entry& entry, Draft& draft,
+                std::size_t item) {
+  const Given given = given_of(key, name, entry, draft);
+  std::visit(Store{given}, key.access(draft, item));
+}
+
+std::string_view unit_in_file(const Key& key, const Draft& draft) {
+  return draft.si ? key.units().si : key.units().dimensionless;
 }
 
 std::string written_value(const Key& key, Draft& draft, std::size_t item) {

@@ -1,6 +1,7 @@
 #pragma once
 
 #include <string>
+#include <string_view>
 
 #include "io/case_entries.hpp"
 #include "io/case_keys.hpp"
@@ -12,6 +13,11 @@ namespace lidwright::case_text {
 /// The body's come first, the others are converted with it.
 void read_body_keys(Draft&, Entries&);
 void read_other_keys(Draft&, Entries&);
+
+/// One value that is not a list, called `name` in messages, into the draft.
+void read_value(const Key&, const std::string& name, const Entry&, Draft&, std::size_t item = 0);
+/// Unit of a key's number in the file that is read.
+std::string_view unit_in_file(const Key&, const Draft&);
 
 /// The value as TOML in the draft's units; "" when there is none to write. Doubles in the shortest
 /// form that reads back to the same bits.

@@ -46,9 +46,11 @@ std::string list_value(const Key& list_key, std::size_t items, Draft& draft) {
   for (std::size_t k = 0; k < items; ++k) {
     text += "\n  { ";
     std::string members;
-    for (const Key* key : item_keys(list_key))
-      members += fmt::format("{}{} = {}", members.empty() ? "" : ", ", key->name(),
-                             written_value(*key, draft, k));
+    for (const Key* key : item_keys(list_key)) {
+      const std::string value = written_value(*key, draft, k);
+      if (value.empty()) continue;
+      members += fmt::format("{}{} = {}", members.empty() ? "" : ", ", key->name(), value);
+    }
     text += members + " },";
   }
   return text + (items == 0 ? "]" : "\n]");

@@ -99,9 +99,14 @@ std::string profiles_table(const RadialProfiles& p, double time, long step) {
       {"heat_advected", "k DeltaT d^(n-2)",
        "heat flow by advection through the surface, > 0 outwards"},
   }};
-  const std::array<std::vector<double>, 8> numbers{
-      p.radius,    p.temperature,    p.temperature_adiabatic, p.velocity_radial_rms, p.velocity_lateral_rms,
-      p.viscosity, p.heat_conducted, p.heat_advected};
+  const std::array<std::vector<double>, 8> numbers{p.radius,
+                                                   p.temperature,
+                                                   p.temperature_adiabatic,
+                                                   p.velocity_radial_rms,
+                                                   p.velocity_lateral_rms,
+                                                   p.viscosity,
+                                                   p.heat_conducted,
+                                                   p.heat_advected};
   return table(title_of("radial profiles", time, step), columns, numbers);
 }
 

@@ -52,9 +52,7 @@ class Field {
   }
 
   /// Brings the neighbours' columns up to date. Collective.
-  void exchange()
-    requires(at != At::RadialFace)
-  {
+  void exchange() requires(at != At::RadialFace) {
     Handle<Vec, VecDestroy> local;
     check(VecCreateSeqWithArray(PETSC_COMM_SELF, 1, static_cast<PetscInt>(values_.size()),
                                 values_.data(), local.put()));

@@ -125,8 +125,8 @@ class Geometry {
   }
   double face_velocity_per_flow(int i) const { return face_velocity_per_flow_[i]; }
   double side_velocity_per_flow(int i) const { return side_velocity_per_flow_[i]; }
-  /// div u in a cell that keeps its mass is outer_dilatation * u_outer - inner_dilatation * u_inner;
-  /// both exactly 0 where the density is uniform.
+  /// div u in a cell that keeps its mass is outer_dilatation * u_outer - inner_dilatation *
+  /// u_inner; both exactly 0 where the density is uniform.
   double inner_dilatation(int cell_row) const { return inner_dilatation_[cell_row]; }
   double outer_dilatation(int cell_row) const { return outer_dilatation_[cell_row]; }
   /// Share of the cell's volume in its corner: above (outer) or below its middle, right or left of

@@ -19,10 +19,10 @@ namespace lidwright {
 ///     rise^depth * (r / r_outer)^radius_power * table(depth),
 /// depth in shell thicknesses below the outer wall. 1 everywhere by default.
 struct RadialProfile {
-  double rise = 1;              ///< at depth 1 over depth 0, exponential between; > 0
-  double radius_power = 0;      ///< 1: proportional to the radius; 0 in the box
-  std::vector<double> depths;   ///< of a table, ascending, at least two; empty: none
-  std::vector<double> values;   ///< of the table, > 0, joined by straight lines, constant beyond
+  double rise = 1;             ///< at depth 1 over depth 0, exponential between; > 0
+  double radius_power = 0;     ///< 1: proportional to the radius; 0 in the box
+  std::vector<double> depths;  ///< of a table, ascending, at least two; empty: none
+  std::vector<double> values;  ///< of the table, > 0, joined by straight lines, constant beyond
 
   bool constant() const { return rise == 1 && radius_power == 0 && depths.empty(); }
   double operator()(double depth, double outer_radius) const {

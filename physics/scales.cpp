@@ -16,6 +16,10 @@ double rayleigh_number(const Body& body) {
          (diffusivity(body) * body.reference_viscosity);
 }
 
+double dissipation_number(const Body& body) {
+  return body.expansivity * body.gravity * thickness(body) / body.heat_capacity;
+}
+
 double absolute_surface_temperature(const Body& body) {
   return body.surface_temperature / body.temperature_drop;
 }

@@ -44,6 +44,8 @@ double diffusivity(const Body&);   ///< k/(rho cp), m^2/s
 double radius_ratio(const Body&);  ///< inner over outer radius
 /// rho alpha g DeltaT d^3/(kappa eta).
 double rayleigh_number(const Body&);
+/// Di = alpha g d/cp, the adiabatic rise of temperature over the shell in units of the temperature.
+double dissipation_number(const Body&);
 /// Absolute surface temperature in units of the temperature drop.
 double absolute_surface_temperature(const Body&);
 Scales scales_of(const Body&);

@@ -8,6 +8,7 @@
 #include <string>
 
 #include "mesh/gather.hpp"
+#include "solver/first_rank.hpp"
 #include "solver/solve_error.hpp"
 #include "solver/stencil_matrix.hpp"
 #include "solver/supernodal.hpp"
@@ -31,25 +32,9 @@ class Stopwatch {
 constexpr const char* no_memory =
     "not enough memory for the flow's factor; use fewer cells, or a larger machine";
 
-/// Runs `action` on the first rank; what it returns (a message, or empty) or throws is thrown on
-/// all ranks.
-template <class Action>
-void on_first_rank_or_throw(const Decomposition& d, Action&& action) {
-  std::string message;
-  if (d.rank() == 0) {
-    try {
-      message = action();
-    } catch (const std::bad_alloc&) {
-      message = no_memory;
-    } catch (const std::exception& e) {
-      message = e.what();
-    }
-  }
-  unsigned long length = message.size();
-  MPI_Bcast(&length, 1, MPI_UNSIGNED_LONG, 0, d.comm());
-  message.resize(length);
-  MPI_Bcast(message.data(), static_cast<int>(length), MPI_CHAR, 0, d.comm());
-  if (!message.empty()) throw SolveError(message);
+/// Throws what a factorisation complains of, if anything.
+void refuse(const std::string& complaint) {
+  if (!complaint.empty()) throw SolveError(complaint);
 }
 
 /// One thread, for BLAS and for CHOLMOD's own loops: its blocks are too small to share out, and the
@@ -159,10 +144,8 @@ struct Factor::Impl {
 };
 
 Factor::Factor(const Power& shape) : decomposition_(shape.decomposition_pointer()) {
-  on_first_rank_or_throw(*decomposition_, [&] {
-    impl_ = std::make_unique<Impl>(shape);
-    return std::string();
-  });
+  on_first_rank_or_throw(decomposition_->comm(), no_memory,
+                         [&] { impl_ = std::make_unique<Impl>(shape); });
 }
 
 Factor::~Factor() = default;
@@ -174,7 +157,8 @@ double Factor::stored_bytes() const {
 void Factor::factorise(const Power& power) {
   const Stopwatch watch(seconds_factorising_);
   const std::vector<double> viscosity = gather_to_first(power.viscosity());
-  on_first_rank_or_throw(*decomposition_, [&] { return impl_->factorise(viscosity); });
+  on_first_rank_or_throw(decomposition_->comm(), no_memory,
+                         [&] { refuse(impl_->factorise(viscosity)); });
   viscosity_ = power.viscosity();
 }
 

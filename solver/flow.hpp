@@ -25,9 +25,9 @@ class FlowSolver {
  public:
   FlowSolver(std::shared_ptr<const Decomposition>, const Walls&, const FlowSettings&);
 
-  /// Flow of the buoyancy b of a unit mass at radial faces and the viscosity eta (ghosts up to date), with ghosts.
-  /// psi holds the best flow found whether or not it converged. Collective; same report on all
-  /// ranks.
+  /// Flow of the buoyancy b of a unit mass at radial faces and the viscosity eta (ghosts up to
+  /// date), with ghosts. psi holds the best flow found whether or not it converged. Collective;
+  /// same report on all ranks.
   FlowReport solve(const CellField& eta, const RadialFaceField& b, CornerField& psi);
 
   const Power& power() const { return power_; }

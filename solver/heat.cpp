@@ -127,9 +127,9 @@ double HeatOperator::advected(const CellField& t, const CornerField& psi, Radial
   const auto row = static_cast<std::size_t>(f.i);
   const double capacity = (mantle_.heat_capacity[row - 1] + mantle_.heat_capacity[row]) / 2;
   return capacity * with_scheme(flux_, [&](auto carried) {
-    return carried(flow_through(psi, f), radial_neighbour(t, f.i - 2, f.j), t[inside(f)],
-                   t[outside(f)], radial_neighbour(t, f.i + 1, f.j));
-  });
+           return carried(flow_through(psi, f), radial_neighbour(t, f.i - 2, f.j), t[inside(f)],
+                          t[outside(f)], radial_neighbour(t, f.i + 1, f.j));
+         });
 }
 
 /// Heat carried outwards through the radial faces of a column (walls: 0), for cells 0 to n - 1 held
@@ -434,8 +434,8 @@ StepHeat HeatStepper::step(const CellField& temperature, const Forcing& now, con
   each([&](Cell c) {
     right[c] = heat_.capacity(c) * temperature[c] +
                dt * (2 * g * one.advection[c] + g * one.conduction[c]);
-    middle[c] = temperature[c] +
-                2 * g * dt * (one.advection[c] + one.conduction[c]) / heat_.capacity(c);
+    middle[c] =
+        temperature[c] + 2 * g * dt * (one.advection[c] + one.conduction[c]) / heat_.capacity(c);
   });
   implicit_.solve(g * dt, right, middle);
   const Stage two = stage(middle, between);
@@ -443,7 +443,7 @@ StepHeat HeatStepper::step(const CellField& temperature, const Forcing& now, con
   each([&](Cell c) {
     right[c] =
         heat_.capacity(c) * temperature[c] + dt * ((one.advection[c] + two.advection[c]) / 2 +
-                                                    b * (one.conduction[c] + two.conduction[c]));
+                                                   b * (one.conduction[c] + two.conduction[c]));
     last[c] = temperature[c] + (middle[c] - temperature[c]) / (2 * g);
   });
   implicit_.solve(g * dt, right, last);

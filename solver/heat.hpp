@@ -71,7 +71,9 @@ class HeatOperator {
   double face_temperature(const CellField&, RadialFace) const;
   /// Adiabatic work on a face, per mass flow and unit absolute temperature, that its inner and its
   /// outer cell do.
-  double adiabatic_inside(int face) const { return adiabatic_inside_[static_cast<std::size_t>(face)]; }
+  double adiabatic_inside(int face) const {
+    return adiabatic_inside_[static_cast<std::size_t>(face)];
+  }
   double adiabatic_outside(int face) const {
     return adiabatic_outside_[static_cast<std::size_t>(face)];
   }
@@ -103,7 +105,7 @@ class HeatOperator {
   MantleRows mantle_;
   std::vector<double> capacity_per_volume_;                   ///< rho cp of each row
   std::vector<double> adiabatic_inside_, adiabatic_outside_;  ///< of each radial face; walls 0
-  std::vector<double> source_;               ///< of each row of cells
+  std::vector<double> source_;                                ///< of each row of cells
   std::vector<double> radial_conductance_;   ///< of the face below each row, without its lateral
                                              ///< factor; 0 at the wall
   std::vector<double> lateral_conductance_;  ///< of each row, without its lateral factor
@@ -115,8 +117,8 @@ class HeatOperator {
 class ImplicitConduction {
  public:
   ImplicitConduction(const HeatOperator&);
-  /// `right` at owned cells holds V rho cp * (what T would be without implicit conduction); walls included
-  /// here. T: start in, solution out, with ghosts. Throws SolveError when it does not
+  /// `right` at owned cells holds V rho cp * (what T would be without implicit conduction); walls
+  /// included here. T: start in, solution out, with ghosts. Throws SolveError when it does not
   /// converge. Collective.
   void solve(double tau, const CellField& right, CellField& temperature);
 

@@ -2,6 +2,7 @@
 
 #include <array>
 #include <cmath>
+#include <span>
 
 #include "solver/advection.hpp"
 #include "solver/measure.hpp"
@@ -72,8 +73,7 @@ Slopes upwind_slopes(double far_upwind, double upwind, double downwind) {
 Slopes carried_slopes(HeatFlux scheme, double flow, const std::array<double, 4>& t) {
   if (scheme == HeatFlux::Central) return {0, flow / 2, flow / 2, 0};
   const bool forwards = flow > 0;
-  const Slopes s =
-      forwards ? upwind_slopes(t[0], t[1], t[2]) : upwind_slopes(t[3], t[2], t[1]);
+  const Slopes s = forwards ? upwind_slopes(t[0], t[1], t[2]) : upwind_slopes(t[3], t[2], t[1]);
   if (forwards) return {flow * s[0], flow * s[1], flow * s[2], 0};
   return {0, flow * s[2], flow * s[1], flow * s[0]};
 }
@@ -96,13 +96,19 @@ class Assembly {
         t_(t),
         psi_(psi),
         g_(power.geometry()),
-        heating_(model.rayleigh > 0 ? heat.mantle().dissipation_number / model.rayleigh : 0) {}
+        heating_(model.rayleigh > 0 ? heat.mantle().dissipation_number / model.rayleigh : 0),
+        thermal_viscosity_(model.viscosity.exponential || model.viscosity.arrhenius) {}
 
   Linearised blocks();
 
  private:
   using Entries = std::vector<Eigen::Triplet<double, long>>;
 
+  /// Which of the four temperatures in line a flux depends on, whatever the flow.
+  std::span<const int> in_line() const {
+    static constexpr std::array all{0, 1, 2, 3};
+    return scheme_ == HeatFlux::Central ? std::span(all).subspan(1, 2) : std::span(all);
+  }
   double viscosity_slope(Cell c) const {
     return model_.viscosity.log_slope({t_[c], g_.depth(c.i)});
   }
@@ -114,7 +120,9 @@ class Assembly {
   void add_lateral_transport(LateralFace);
 
   // One entry each; rows of the heat residual get the opposite sign of a gain.
-  void flow_by_t(Corner k, Cell c, double x) { add(flow_by_t_, unknowns_.of(k), unknowns_.of(c), x); }
+  void flow_by_t(Corner k, Cell c, double x) {
+    add(flow_by_t_, unknowns_.of(k), unknowns_.of(c), x);
+  }
   void gain_by_psi(Cell c, Corner k, double x) {
     add(heat_by_psi_, unknowns_.of(c), unknowns_.of(k), -x);
   }
@@ -122,7 +130,7 @@ class Assembly {
     add(heat_by_t_, unknowns_.of(c), unknowns_.of(by), -x);
   }
   static void add(Entries& entries, long row, long column, double x) {
-    if (row >= 0 && column >= 0 && x != 0) entries.emplace_back(row, column, x);
+    if (row >= 0 && column >= 0) entries.emplace_back(row, column, x);
   }
   /// Heat that leaves one cell of a face for the other; capacity counts at each.
   template <class Face>
@@ -147,6 +155,7 @@ class Assembly {
   const CornerField& psi_;
   const Geometry& g_;
   double heating_;  ///< Di/Ra
+  bool thermal_viscosity_;
   Entries flow_by_t_, heat_by_psi_, heat_by_t_;
 };
 
@@ -163,8 +172,8 @@ void Assembly::add_buoyancy(RadialFace f) {
 /// The force is proportional to the cell's viscosity and is half the derivative of what it
 /// dissipates.
 void Assembly::add_normal_strain(Cell c) {
+  if (!thermal_viscosity_ && heating_ == 0) return;
   const double w = power_.cell_weight(c), slope = viscosity_slope(c);
-  if (slope == 0 && heating_ == 0) return;
   const Normal e = deviatoric_strain(g_, face_velocities(g_, psi_, c), c);
   const OnFaces f = deviatoric_forces(g_, {w * e.rr, w * e.tt, w * e.pp}, c);
   AtCorners force;
@@ -175,15 +184,17 @@ void Assembly::add_normal_strain(Cell c) {
   for (int n = 0; n < force.count; ++n) {
     const Corner k = force.corner[static_cast<std::size_t>(n)];
     const double x = force.value[static_cast<std::size_t>(n)];
-    flow_by_t(k, c, slope * x);
-    gain_by_psi(c, k, 2 * heating_ * x);
+    if (thermal_viscosity_) flow_by_t(k, c, slope * x);
+    if (heating_ != 0) gain_by_psi(c, k, 2 * heating_ * x);
   }
-  gain_by_t(c, c, heating_ * slope * w * (e.rr * e.rr + e.tt * e.tt + e.pp * e.pp));
+  if (thermal_viscosity_ && heating_ != 0)
+    gain_by_t(c, c, heating_ * slope * w * (e.rr * e.rr + e.tt * e.tt + e.pp * e.pp));
 }
 
 /// With shares s of the quarter cells, d(weight)/d(ln eta_p) = weight s_p, and what cell q gets of
 /// the dissipation D is D s_q, so that d(D s_q)/d(ln eta_p) = D s_q (2 s_p - delta_qp).
 void Assembly::add_shear(Corner k) {
+  if (!thermal_viscosity_ && heating_ == 0) return;
   const ShearRow row = power_.shear_row(k);
   const double e = shear(g_, psi_, row), stress = power_.corner_weight(k) * e;
   AtCorners force;
@@ -198,10 +209,10 @@ void Assembly::add_shear(Corner k) {
     for (int n = 0; n < force.count; ++n) {
       const Corner at = force.corner[static_cast<std::size_t>(n)];
       const double x = force.value[static_cast<std::size_t>(n)] * p.share;
-      flow_by_t(at, p.cell, slope * x);
-      gain_by_psi(p.cell, at, 2 * heating_ * x);
+      if (thermal_viscosity_) flow_by_t(at, p.cell, slope * x);
+      if (heating_ != 0) gain_by_psi(p.cell, at, 2 * heating_ * x);
     }
-    if (heating_ == 0 || slope == 0) continue;
+    if (heating_ == 0 || !thermal_viscosity_) continue;
     for (const Power::Share& q : shares) {
       const bool same = p.cell.i == q.cell.i && p.cell.j == q.cell.j;
       gain_by_t(q.cell, p.cell,
@@ -216,8 +227,7 @@ void Assembly::add_conduction(Cell c) {
     gain_by_t(c, c, -conductance);
   };
   const auto wall = [&](RadialFace f, const ThermalWall& condition) {
-    if (std::holds_alternative<FixedTemperature>(condition))
-      gain_by_t(c, c, -heat_.conductance(f));
+    if (std::holds_alternative<FixedTemperature>(condition)) gain_by_t(c, c, -heat_.conductance(f));
   };
   if (c.i > 0)
     couple({c.i - 1, c.j}, heat_.conductance(inner(c)));
@@ -269,7 +279,7 @@ void Assembly::add_radial_transport(RadialFace f) {
   };
   const std::array<double, 4> t{value(f.i - 2), value(f.i - 1), value(f.i), value(f.i + 1)};
   const Slopes slopes = carried_slopes(scheme_, flow, t);
-  for (int n = 0; n < 4; ++n) {
+  for (const int n : in_line()) {
     const auto [by, sign] = neighbour(f.i - 2 + n);
     transport_by_t(inside(f), outside(f), by, sign * slopes[static_cast<std::size_t>(n)]);
   }
@@ -293,10 +303,9 @@ void Assembly::add_lateral_transport(LateralFace f) {
     return j < 0 ? -1 - j : (j >= n ? 2 * n - 1 - j : j);
   };
   std::array<double, 4> t;
-  for (int k = 0; k < 4; ++k)
-    t[static_cast<std::size_t>(k)] = t_[{f.i, mirrored(f.j - 2 + k)}];
+  for (int k = 0; k < 4; ++k) t[static_cast<std::size_t>(k)] = t_[{f.i, mirrored(f.j - 2 + k)}];
   const Slopes slopes = carried_slopes(scheme_, flow, t);
-  for (int k = 0; k < 4; ++k)
+  for (const int k : in_line())
     transport_by_t(left(f), right(f), {f.i, mirrored(f.j - 2 + k)},
                    slopes[static_cast<std::size_t>(k)]);
   transport_by_flow(left(f), right(f), f, carried_per_flow(scheme_, flow, t), 1);

@@ -17,9 +17,9 @@ std::shared_ptr<const Decomposition> decompose(const Model&, MPI_Comm);
 /// inner wall outwards; all in units of the values that the dimensionless numbers are made with.
 struct MantleRows {
   MantleRows(const Geometry&, const ReferenceProfiles&);
-  double dissipation_number;         ///< Di
-  double surface_temperature;        ///< absolute, of T = 0
-  std::vector<double> buoyancy;      ///< alpha g at radial faces: of a unit mass, per Ra T
+  double dissipation_number;     ///< Di
+  double surface_temperature;    ///< absolute, of T = 0
+  std::vector<double> buoyancy;  ///< alpha g at radial faces: of a unit mass, per Ra T
   std::vector<double> face_conductivity, cell_conductivity;
   std::vector<double> heat_capacity;  ///< cp of a unit mass, at cells
   bool uniform_heat_capacity;

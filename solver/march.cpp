@@ -21,7 +21,6 @@ double volume_rms(const CellField& shape, Value&& value) {
   return std::sqrt(shape.decomposition().sum(sum) / g.total_volume());
 }
 
-
 }  // namespace
 
 March::March(const Model& model, const FlowSettings& flow, const HeatSettings& heat, MPI_Comm comm)

@@ -70,7 +70,7 @@ class March {
   CellField temperature_;
   CornerField psi_, former_psi_;
   CellField viscous_, former_viscous_;  ///< heating of cells; empty: none
-  std::vector<Former> former_;  ///< newest first, at most 2
+  std::vector<Former> former_;          ///< newest first, at most 2
   double time_ = 0, last_step_ = 0, error_limited_step_;
   long steps_ = 0;
   double change_rate_, budget_residual_ = 0;

@@ -197,8 +197,7 @@ CellField viscous_heating(const StateView& s) {
 HistoryRow measure(const StateView& s) {
   HistoryRow row;
   const WallMeans walls = wall_means(s.heat, s.temperature);
-  const double conductive =
-      s.heat.mantle().conductive_heat_flow * (walls.t_inner - walls.t_outer);
+  const double conductive = s.heat.mantle().conductive_heat_flow * (walls.t_inner - walls.t_outer);
   row.heat_flow_inner = walls.heat_inner;
   row.heat_flow_outer = walls.heat_outer;
   row.nusselt_inner = walls.heat_inner / conductive;
@@ -210,8 +209,7 @@ HistoryRow measure(const StateView& s) {
   row.velocity_rms_inner = wall_velocity_rms(s.power, s.psi, 0);
   row.velocity_rms_outer = wall_velocity_rms(s.power, s.psi, s.temperature.rows());
   row.dissipation = dissipation(s.power, s.psi);
-  row.buoyancy_work =
-      buoyancy_work(s.power, s.psi, buoyancy(s.heat, s.temperature, s.rayleigh));
+  row.buoyancy_work = buoyancy_work(s.power, s.psi, buoyancy(s.heat, s.temperature, s.rayleigh));
   row.work_mismatch =
       row.buoyancy_work != 0 ? (row.dissipation - row.buoyancy_work) / row.buoyancy_work : 0;
   row.heat_source = s.heat.total_source();
@@ -263,8 +261,8 @@ Snapshot snapshot(const StateView& state, bool with_stress) {
     }
   Stresses stress;
   if (with_stress) {
-    stress = stresses(state.power, state.psi,
-                      buoyancy(state.heat, state.temperature, state.rayleigh));
+    stress =
+        stresses(state.power, state.psi, buoyancy(state.heat, state.temperature, state.rayleigh));
     s.pressure = stress.pressure;
   }
   s.inner = wall_trace(state, 0, stress.inner_normal);

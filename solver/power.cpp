@@ -258,7 +258,8 @@ void Power::add_buoyancy(const RadialFaceField& b, CornerField& force) const {
     const double* left = b.column(j - 1);
     const double* right = b.column(j);
     double* out = force.column(j);
-    for (int i = 1; i < g.radial_cells(); ++i) out[i] += g.radial_distance(i) * (left[i] - right[i]);
+    for (int i = 1; i < g.radial_cells(); ++i)
+      out[i] += g.radial_distance(i) * (left[i] - right[i]);
   }
 }
 

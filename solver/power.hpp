@@ -106,8 +106,8 @@ class Power {
 
 /// Integral of tau : e over the shell. Collective.
 double dissipation(const Power&, const CornerField& psi);
-/// Its parts: integral of tau : e over each owned cell. What a corner dissipates goes to its quarter
-/// cells in inverse proportion to their viscosities, as they bear one stress.
+/// Its parts: integral of tau : e over each owned cell. What a corner dissipates goes to its
+/// quarter cells in inverse proportion to their viscosities, as they bear one stress.
 CellField dissipation_of_cells(const Power&, const CornerField& psi);
 /// Second invariant sqrt(e : e / 2) at owned cells, shear averaged over the cell's corners.
 CellField strain_rate(const Power&, const CornerField& psi);

@@ -16,8 +16,8 @@ class FaceResidual {
     const Geometry& g = power.geometry();
     for (int j = columns_.begin; j < columns_.end; ++j)
       for (int i = 0; i <= rows_; ++i)
-        add(RadialFace{i, j}, -g.area(RadialFace{i, j}) * g.face_density(i) *
-                                  g.radial_distance(i) * b[{i, j}]);
+        add(RadialFace{i, j},
+            -g.area(RadialFace{i, j}) * g.face_density(i) * g.radial_distance(i) * b[{i, j}]);
   }
 
   double operator[](RadialFace f) const { return radial_[place(f)]; }

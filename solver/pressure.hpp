@@ -17,9 +17,10 @@ struct Stresses {
       outer_normal;  ///< sigma_rr on this rank's columns, > 0 tension; mean over the wall 0
 };
 
-/// b: buoyancy of a unit mass at radial faces, at walls the one to be used in the half cell next to them. Columns
-/// are integrated outwards and tied together by the mean over all rows of the lateral faces'
-/// residual. The normal stress is the wall's reaction, which is second-order accurate. Collective.
+/// b: buoyancy of a unit mass at radial faces, at walls the one to be used in the half cell next to
+/// them. Columns are integrated outwards and tied together by the mean over all rows of the lateral
+/// faces' residual. The normal stress is the wall's reaction, which is second-order accurate.
+/// Collective.
 Stresses stresses(const Power&, const CornerField& psi, const RadialFaceField& b);
 
 }  // namespace lidwright

@@ -70,7 +70,7 @@ struct SettleSettings {
   int most_steps = 60;       ///< Newton steps on one grid, >= 1
   double most_time = 20;     ///< of the march to a first guess on the coarsest grid, > 0
   HeatFlux flux = HeatFlux::Central;
-  int coarsest = 16;         ///< radial cells of the coarsest grid to start from, >= 8
+  int coarsest = 16;  ///< radial cells of the coarsest grid to start from, >= 8
   LinearSolver linear = LinearSolver::Automatic;
 };
 

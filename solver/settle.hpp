@@ -15,9 +15,9 @@ namespace lidwright {
 /// One Newton step, as it is reported while it goes on.
 struct NewtonStep {
   Grid grid;
-  int step = 0;             ///< on this grid, from 0 (the start)
-  double residual = 0;      ///< as SettleSettings::tolerance
-  double pseudo_time = 0;   ///< of the step that led here; infinity: a full Newton step
+  int step = 0;            ///< on this grid, from 0 (the start)
+  double residual = 0;     ///< as SettleSettings::tolerance
+  double pseudo_time = 0;  ///< of the step that led here; infinity: a full Newton step
   int linear_iterations = 0;
 };
 

@@ -136,8 +136,7 @@ void StencilMatrix::assemble(const Power& serial) {
       const std::array<Corner, 4> corners = corners_of(c);
       std::array<Entry, 4> rr, tt, pp;
       for (std::size_t n = 0; n < 4; ++n) {
-        const Normal e =
-            deviatoric_strain(g, face_velocities(g, UnitPsi(corners[n]), c), c);
+        const Normal e = deviatoric_strain(g, face_velocities(g, UnitPsi(corners[n]), c), c);
         rr[n] = {corners[n], e.rr};
         tt[n] = {corners[n], e.tt};
         pp[n] = {corners[n], e.pp};

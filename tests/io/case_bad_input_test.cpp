@@ -5,86 +5,19 @@
 #include <filesystem>
 #include <fstream>
 #include <string>
-#include <vector>
 
 #include "io/case_file.hpp"
+#include "tests/io/bad_case.hpp"
 
 /// Every bad input has a message with its place and a remedy.
 namespace lidwright {
 namespace {
 
-/// Line numbers of the messages below count from here.
-constexpr const char* good_case =
-    "title = \"test\"\n"        // 1
-    "[numbers]\n"               // 2
-    "rayleigh = 1e4\n"          // 3
-    "[shell]\n"                 // 4
-    "geometry = \"annulus\"\n"  // 5
-    "radius_ratio = 0.5\n"      // 6
-    "[grid]\n"                  // 7
-    "radial = 8\n"              // 8
-    "lateral = 32\n"            // 9
-    "[walls.inner]\n"           // 10
-    "temperature = 1\n"         // 11
-    "[walls.outer]\n"           // 12
-    "temperature = 0\n"         // 13
-    "[march]\n"                 // 14
-    "end_time = 0.1\n";         // 15
-
-constexpr const char* good_body =
-    "[body]\n"                      // 1
-    "radius = 2000\n"               // 2
-    "core_radius = 1000\n"          // 3
-    "gravity = 4\n"                 // 4
-    "density = 3000\n"              // 5
-    "expansivity = 3e-5\n"          // 6
-    "conductivity = 3\n"            // 7
-    "heat_capacity = 1000\n"        // 8
-    "surface_temperature = 200\n"   // 9
-    "temperature_drop = 1000\n"     // 10
-    "reference_viscosity = 1e20\n"  // 11
-    "[shell]\n"                     // 12
-    "geometry = \"annulus\"\n"      // 13
-    "[grid]\n"                      // 14
-    "radial = 8\n"                  // 15
-    "lateral = 32\n"                // 16
-    "[walls.inner]\n"               // 17
-    "temperature = 1200\n"          // 18
-    "[walls.outer]\n"               // 19
-    "temperature = 200\n";          // 20
-
-/// `from` is replaced by `to`; empty `from`: `to` goes to the end. The message must begin with
-/// `place` and hold `words`.
-struct Bad {
-  std::string from, to, place, words;
-};
-
-std::string changed(std::string text, const Bad& bad) {
-  if (bad.from.empty()) return text + bad.to;
-  const auto at = text.find(bad.from);
-  EXPECT_NE(at, std::string::npos) << bad.from;
-  return text.replace(at, bad.from.size(), bad.to);
-}
-
-std::string message_of(const std::string& text, const std::vector<std::string>& settings = {}) {
-  try {
-    parse_case(text, "c.toml", settings);
-  } catch (const InputError& error) {
-    return error.what();
-  }
-  return "accepted";
-}
-
-void expect_message(const std::string& message, const std::string& place,
-                    const std::string& words) {
-  EXPECT_TRUE(message.starts_with(place + ": ")) << "wanted " << place << ", got: " << message;
-  EXPECT_NE(message.find(words), std::string::npos) << "wanted " << words << ", got: " << message;
-}
-
-void expect_all(const std::string& good, const std::vector<Bad>& table) {
-  EXPECT_EQ(message_of(good), "accepted");
-  for (const Bad& bad : table) expect_message(message_of(changed(good, bad)), bad.place, bad.words);
-}
+using test::expect_all;
+using test::expect_message;
+using test::good_body;
+using test::good_case;
+using test::message_of;
 
 TEST(BadCase, Syntax) {
   expect_all(good_case,
@@ -174,6 +107,12 @@ TEST(BadCase, OutOfRange) {
           {"", "[output]\nhistory_every = 0\n", "c.toml:17:1", "at least 1"},
           {"", "[output]\ncheckpoints_kept = 0\n", "c.toml:17:1", "at least 1"},
           {"", "[viscosity]\nconstant = 0\n", "c.toml:17:1", "greater than 0"},
+          {"", "[settle]\ntolerance = 0\n", "c.toml:17:1", "greater than 0 and at most 0.1"},
+          {"", "[settle]\nmost_steps = 0\n", "c.toml:17:1", "at least 1"},
+          {"", "[settle]\nmost_time = 0.0\n", "c.toml:17:1", "greater than 0"},
+          {"", "[settle]\ncoarsest = 7\n", "c.toml:17:1", "at least 8"},
+          {"", "[settle]\nflux = \"upwind\"\n", "c.toml:17:1", "\"central\", \"limited\""},
+          {"", "[settle]\nlinear = \"directly\"\n", "c.toml:17:1", "did you mean 'direct'"},
           {"", "[viscosity]\nlayers = [{ below = 1, factor = 2 }]\n", "c.toml:17:13",
            "viscosity.layers[1].below = 1: must be at least 0 and less than 1 d"},
           {"lateral = 32", "lateral = 32\ninner_refinement = 0.5", "c.toml:10:1", "at least 1"},

@@ -2,116 +2,21 @@
 
 #include <gtest/gtest.h>
 
-#include <cmath>
 #include <filesystem>
 #include <fstream>
 #include <limits>
 #include <numbers>
 #include <random>
 #include <sstream>
-#include <tuple>
+
+#include "tests/io/same_case.hpp"
 
 namespace lidwright {
-
 namespace {
 
 using std::numbers::pi;
-
-// Member by member, so that a key that is not written cannot hide.
-
-auto parts(const Grading& g) { return std::tie(g.first, g.last); }
-auto parts(const Shell& s) {
-  return std::tie(s.shape, s.inner_radius, s.lateral_begin, s.lateral_end, s.sides);
-}
-auto parts(const Wall& w) {
-  const auto* fixed = std::get_if<FixedTemperature>(&w.thermal);
-  const double number = fixed ? fixed->value : std::get<FixedHeatFlux>(w.thermal).outward;
-  return std::tuple(w.thermal.index(), number, w.slip);
-}
-auto parts(const ExponentialViscosity& e) {
-  return std::tie(e.thermal_contrast, e.depth_contrast, e.unity_at);
-}
-auto parts(const ArrheniusViscosity& a) {
-  return std::tie(a.energy, a.volume, a.offset, a.unity_at, a.unity_at_depth);
-}
-auto parts(const ViscosityLayer& l) { return std::tie(l.below, l.factor); }
-auto parts(const HeatLayer& l) { return std::tie(l.below, l.source); }
-auto parts(const TemperatureMode& m) { return std::tie(m.lateral, m.radial, m.amplitude); }
-auto parts(const FlowSettings& f) {
-  return std::tie(f.tolerance, f.most_iterations, f.memory, f.refactor_cost);
-}
-auto parts(const HeatSettings& h) {
-  return std::tie(h.flux, h.courant, h.accuracy, h.first_step, h.largest_step, h.growth);
-}
-auto parts(const MarchSettings& m) {
-  return std::tie(m.end_time, m.most_steps, m.wall_clock, m.steady);
-}
-auto parts(const OutputSettings& o) {
-  return std::tie(o.history_every, o.snapshot_every, o.checkpoint_every, o.checkpoints_kept,
-                  o.normal_stress);
-}
-auto parts(const Body& b) {
-  return std::tie(b.radius, b.core_radius, b.gravity, b.density, b.expansivity, b.conductivity,
-                  b.heat_capacity, b.surface_temperature, b.temperature_drop,
-                  b.reference_viscosity);
-}
-
-template <class T>
-void expect_same(const std::vector<T>& a, const std::vector<T>& b) {
-  ASSERT_EQ(a.size(), b.size());
-  for (std::size_t k = 0; k < a.size(); ++k) EXPECT_TRUE(parts(a[k]) == parts(b[k]));
-}
-template <class T>
-void expect_same(const std::optional<T>& a, const std::optional<T>& b) {
-  ASSERT_EQ(a.has_value(), b.has_value());
-  if (a) {
-    EXPECT_TRUE(parts(*a) == parts(*b));
-  }
-}
-
-void expect_same(const Model& a, const Model& b) {
-  EXPECT_TRUE(parts(a.shell) == parts(b.shell));
-  EXPECT_EQ(a.grid.radial, b.grid.radial);
-  EXPECT_EQ(a.grid.lateral, b.grid.lateral);
-  EXPECT_TRUE(parts(a.grid.radial_grading) == parts(b.grid.radial_grading));
-  EXPECT_TRUE(parts(a.grid.lateral_grading) == parts(b.grid.lateral_grading));
-  EXPECT_TRUE(parts(a.walls.inner) == parts(b.walls.inner));
-  EXPECT_TRUE(parts(a.walls.outer) == parts(b.walls.outer));
-  EXPECT_EQ(a.rayleigh, b.rayleigh);
-  EXPECT_EQ(a.viscosity.constant, b.viscosity.constant);
-  EXPECT_EQ(a.viscosity.lowest, b.viscosity.lowest);
-  EXPECT_EQ(a.viscosity.highest, b.viscosity.highest);
-  expect_same(a.viscosity.exponential, b.viscosity.exponential);
-  expect_same(a.viscosity.arrhenius, b.viscosity.arrhenius);
-  expect_same(a.viscosity.layered.layers, b.viscosity.layered.layers);
-  EXPECT_EQ(a.heat.uniform, b.heat.uniform);
-  expect_same(a.heat.layers, b.heat.layers);
-}
-
-void expect_same(const Case& a, const Case& b) {
-  EXPECT_EQ(a.title, b.title);
-  expect_same(a.model, b.model);
-  EXPECT_EQ(std::tie(a.initial.base, a.initial.noise, a.initial.seed, a.initial.from),
-            std::tie(b.initial.base, b.initial.noise, b.initial.seed, b.initial.from));
-  if (a.initial.base == InitialBase::BoundaryLayers) {
-    EXPECT_EQ(std::tie(a.initial.interior, a.initial.layer_thickness),
-              std::tie(b.initial.interior, b.initial.layer_thickness));
-  }
-  expect_same(a.initial.modes, b.initial.modes);
-  EXPECT_TRUE(parts(a.flow) == parts(b.flow));
-  EXPECT_TRUE(parts(a.heat) == parts(b.heat));
-  EXPECT_TRUE(parts(a.march) == parts(b.march));
-  EXPECT_TRUE(parts(a.output) == parts(b.output));
-  expect_same(a.body, b.body);
-}
-
-void expect_round_trip(const Case& made) {
-  const std::string written = write_case(made);
-  SCOPED_TRACE(written);
-  const Case again = parse_case(written, "written.toml");
-  expect_same(made, again);
-  EXPECT_EQ(write_case(again), written);
-}
+using test::expect_round_trip;
+using test::parts;
 
 constexpr const char* small_case = R"(
 [numbers]
@@ -183,6 +88,7 @@ TEST(CaseFile, DefaultsAreThoseOfTheStructs) {
   EXPECT_TRUE(parts(made.flow) == parts(FlowSettings{}));
   EXPECT_TRUE(parts(made.heat) == parts(HeatSettings{}));
   EXPECT_TRUE(parts(made.march) == parts(MarchSettings{}));
+  EXPECT_TRUE(parts(made.settle) == parts(SettleSettings{}));
   EXPECT_TRUE(parts(made.output) == parts(OutputSettings{}));
   EXPECT_EQ(made.model.viscosity.highest, std::numeric_limits<double>::infinity());
   EXPECT_TRUE(made.model.viscosity.steady());
@@ -314,16 +220,32 @@ TEST(CaseFile, RoundTripOfAnyNumbers) {
 }
 
 TEST(CaseFile, RoundTripOfEverythingAtOnce) {
-  expect_round_trip(parse_case(
-      small_case, "small.toml",
-      {"title=a \"quoted\" \\ title, \xc3\xa9", "walls.inner.flow=no-slip",
-       "walls.inner.temperature=0.1", "viscosity.exponential.thermal_contrast=1e6",
-       "viscosity.exponential.depth_contrast=3", "viscosity.lowest=1e-3", "viscosity.highest=1e300",
-       "viscosity.layers=[{below=0.1,factor=0.3}]",
-       "heat.layers=[{below=0,source=-1},{below=0.3,source=5e-324}]", "heat.uniform=3",
-       "initial.base=boundary-layers", "initial.interior=0.3", "initial.seed=9223372036854775807",
-       "initial.from=/old/run", "flow.memory=2", "transport.flux=central",
-       "march.most_steps=2147483648", "output.normal_stress=false", "output.checkpoint_every=0"}));
+  expect_round_trip(parse_case(small_case, "small.toml",
+                               {"title=a \"quoted\" \\ title, \xc3\xa9",
+                                "walls.inner.flow=no-slip",
+                                "walls.inner.temperature=0.1",
+                                "viscosity.exponential.thermal_contrast=1e6",
+                                "viscosity.exponential.depth_contrast=3",
+                                "viscosity.lowest=1e-3",
+                                "viscosity.highest=1e300",
+                                "viscosity.layers=[{below=0.1,factor=0.3}]",
+                                "heat.layers=[{below=0,source=-1},{below=0.3,source=5e-324}]",
+                                "heat.uniform=3",
+                                "initial.base=boundary-layers",
+                                "initial.interior=0.3",
+                                "initial.seed=9223372036854775807",
+                                "initial.from=/old/run",
+                                "flow.memory=2",
+                                "transport.flux=central",
+                                "march.most_steps=2147483648",
+                                "settle.tolerance=1e-7",
+                                "settle.most_steps=9",
+                                "settle.most_time=0.7",
+                                "settle.flux=limited",
+                                "settle.coarsest=9",
+                                "settle.linear=iterative",
+                                "output.normal_stress=false",
+                                "output.checkpoint_every=0"}));
   Case made = parse_case(small_case, "small.toml");
   made.title = "line\nbreak\ttab\x01";
   made.model.walls.inner.thermal = FixedHeatFlux{};

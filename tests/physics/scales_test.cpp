@@ -38,6 +38,10 @@ TEST(Scales, RayleighNumberByHand) {
   EXPECT_NEAR(rayleigh_number(round_body()) / 3.6e6, 1, 1e-15);
 }
 
+TEST(Scales, DissipationNumberByHand) {
+  EXPECT_DOUBLE_EQ(dissipation_number(round_body()), 0.12);  // 3e-5 * 4 * 1e6/1000
+}
+
 TEST(Scales, RatiosAndTemperatures) {
   EXPECT_DOUBLE_EQ(radius_ratio(round_body()), 0.5);
   EXPECT_DOUBLE_EQ(absolute_surface_temperature(round_body()), 0.2);

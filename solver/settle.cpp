@@ -1,0 +1,204 @@
+#include "solver/settle.hpp"
+
+#include <fmt/format.h>
+
+#include <algorithm>
+#include <cmath>
+#include <limits>
+#include <memory>
+#include <stdexcept>
+
+#include "mesh/gather.hpp"
+#include "solver/first_guess.hpp"
+#include "solver/first_rank.hpp"
+#include "solver/initial.hpp"
+#include "solver/newton.hpp"
+
+namespace lidwright {
+namespace {
+
+constexpr double infinity = std::numeric_limits<double>::infinity();
+
+Grid halved(Grid grid, int times) {
+  for (int k = 0; k < times; ++k) {
+    grid.radial /= 2;
+    grid.lateral /= 2;
+  }
+  return grid;
+}
+
+/// How often the grid can be halved without fewer than `coarsest` radial cells.
+int halvings(const Grid& grid, int coarsest) {
+  int times = 0;
+  for (Grid g = grid; g.radial % 2 == 0 && g.lateral % 2 == 0 && g.radial / 2 >= coarsest &&
+                      g.lateral / 2 >= 4;
+       g = halved(g, 1))
+    ++times;
+  return times;
+}
+
+StoredTemperature stored(const CellField& t) {
+  const Geometry& g = t.decomposition().geometry();
+  StoredTemperature s;
+  s.shell = g.shell();
+  for (int i = 0; i <= g.radial_cells(); ++i) s.face_radius.push_back(g.face_radius(i));
+  for (int j = 0; j <= g.lateral_cells(); ++j) s.face_lateral.push_back(g.face_lateral(j));
+  s.values = gather_to_first(t);
+  return s;
+}
+
+/// A temperature found on one grid, on the first rank.
+struct Found {
+  Grid grid;
+  bool converged = false;
+  double residual = 0;
+  std::string remark;
+  std::vector<NewtonStep> steps;
+  StoredTemperature temperature;
+  std::vector<double> psi;
+};
+
+/// On the first rank: from the coarsest grid on which a steady state can be had to the model's own.
+class Ladder {
+ public:
+  Ladder(const Model& model, const InitialSettings& initial, const StoredTemperature& start,
+         const SettleSettings& settings, const SettleObserver& observer)
+      : model_(model), initial_(initial), start_(start), settings_(settings), observer_(observer) {}
+
+  std::vector<Found> climb(int grids);
+
+ private:
+  Found solve(int halved, const StoredTemperature& from);
+  Found first(int coarsest);
+  Model halved_model(int times) const {
+    Model m = model_;
+    m.grid = halved(m.grid, times);
+    return m;
+  }
+
+  const Model& model_;
+  const InitialSettings& initial_;
+  const StoredTemperature& start_;
+  const SettleSettings& settings_;
+  const SettleObserver& observer_;
+  bool stopped_ = false;
+  int reached_ = 0;  ///< how often the grid of the last result is halved
+};
+
+/// From a temperature near by, else by marching on from it.
+Found Ladder::solve(int times, const StoredTemperature& from) {
+  const Model model = halved_model(times);
+  SteadyEquations equations(model, settings_.flux);
+  CoupledSolver solver(settings_.linear);
+  Found found{model.grid, false, 0, {}, {}, {}, {}};
+  InitialSettings start;
+  if (from.values.empty()) start = initial_;
+  const auto take = [&](const NewtonOutcome& outcome) {
+    found.converged = outcome.converged;
+    found.remark = outcome.remark;
+    found.steps.insert(found.steps.end(), outcome.steps.begin(), outcome.steps.end());
+    stopped_ = outcome.stopped;
+  };
+  equations.set_temperature(initial_temperature(equations.heat(), start, from));
+  // A start that is far away, like a disturbed conductive one, must not fall back on an unstable
+  // state near by: it is marched first.
+  if (!from.values.empty() || equations.residual() == 0)
+    take(newton(equations, solver, settings_, infinity, observer_));
+  if (!found.converged && !stopped_)
+    take(settle_by_marching(equations, solver, settings_, start, from, observer_));
+  found.residual = equations.residual();
+  found.temperature = stored(equations.temperature());
+  found.psi = gather_to_first(equations.view().psi);
+  reached_ = times;
+  return found;
+}
+
+/// On the coarsest grid, or where that fails to find a steady state, as it may when it is too
+/// coarse for the flow, on a finer one.
+Found Ladder::first(int coarsest) {
+  Found found = solve(coarsest, start_);
+  while (!found.converged && !stopped_ && reached_ > 0) {
+    Found finer = solve(reached_ - 1, found.temperature);
+    finer.steps.insert(finer.steps.begin(), found.steps.begin(), found.steps.end());
+    found = std::move(finer);
+  }
+  return found;
+}
+
+std::vector<Found> Ladder::climb(int grids) {
+  const int coarsest = std::max(halvings(model_.grid, settings_.coarsest), grids - 1);
+  std::vector<Found> found{first(coarsest)};
+  while (reached_ > 0 && found.back().converged && !stopped_)
+    found.push_back(solve(reached_ - 1, found.back().temperature));
+  if (found.size() > static_cast<std::size_t>(grids))
+    found.erase(found.begin(), found.end() - grids);
+  if (!found.back().converged && stopped_) found.back().remark = "stopped";
+  return found;
+}
+
+/// The state on all ranks, with what is measured on it.
+SteadyState share(const Model& model, const SettleSettings& settings, const Found& found,
+                  MPI_Comm comm) {
+  Model on_grid = model;
+  on_grid.grid = found.grid;
+  const auto d = decompose(on_grid, comm);
+  Power power(d, model.walls);
+  const HeatOperator heat(d, model.walls, model.heat, settings.flux, model.reference);
+  CellField temperature(d);
+  CornerField psi(d);
+  scatter_from_first(found.temperature.values, temperature);
+  scatter_from_first(found.psi, psi);
+  power.set_viscosity(viscosity_of(model.viscosity, temperature));
+  const StateView view{power, heat, temperature, psi, model.rayleigh};
+  SteadyState s{found.grid,   found.converged, found.residual, found.remark,
+                measure(view), snapshot(view, true), found.steps};
+  const double passing = std::abs(s.row.heat_flow_outer);
+  const double net = s.row.heat_flow_inner - s.row.heat_flow_outer + s.row.heat_source +
+                     s.row.viscous_heating - s.row.adiabatic_cooling;
+  s.row.heat_budget_residual = passing > 0 ? net / passing : 0;
+  return s;
+}
+
+/// Plain data of what the first rank found, on all ranks (fields stay on the first).
+void broadcast(Found& f, MPI_Comm comm) {
+  int numbers[4] = {f.grid.radial, f.grid.lateral, f.converged ? 1 : 0,
+                    static_cast<int>(f.remark.size())};
+  MPI_Bcast(numbers, 4, MPI_INT, 0, comm);
+  f.grid.radial = numbers[0];
+  f.grid.lateral = numbers[1];
+  f.converged = numbers[2] != 0;
+  f.remark.resize(static_cast<std::size_t>(numbers[3]));
+  MPI_Bcast(f.remark.data(), numbers[3], MPI_CHAR, 0, comm);
+  MPI_Bcast(&f.residual, 1, MPI_DOUBLE, 0, comm);
+}
+
+}  // namespace
+
+std::vector<SteadyState> settle(const Model& model, const InitialSettings& initial,
+                                const StoredTemperature& start, const SettleSettings& settings,
+                                int grids, MPI_Comm comm, const SettleObserver& observer) {
+  if (halvings(model.grid, 4) < grids - 1)
+    throw std::invalid_argument(fmt::format(
+        "a grid of {} x {} cells cannot be halved {} times; error bars need a multiple of {} "
+        "cells each way, at least {} of them radial",
+        model.grid.radial, model.grid.lateral, grids - 1, 1 << (grids - 1), 4 << (grids - 1)));
+  std::vector<Found> found;
+  on_first_rank_or_throw(comm, "not enough memory for this grid; use fewer cells", [&] {
+    found = Ladder(model, initial, start, settings, observer).climb(grids);
+  });
+  int count = static_cast<int>(found.size());
+  MPI_Bcast(&count, 1, MPI_INT, 0, comm);
+  found.resize(static_cast<std::size_t>(count));
+  std::vector<SteadyState> states;
+  for (Found& f : found) {
+    Grid grid = model.grid;  // with its gradings
+    broadcast(f, comm);
+    grid.radial = f.grid.radial;
+    grid.lateral = f.grid.lateral;
+    f.grid = grid;
+    states.push_back(share(model, settings, f, comm));
+  }
+  return states;
+}
+
+}  // namespace lidwright
