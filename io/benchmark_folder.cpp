@@ -135,7 +135,7 @@ Problem problem(const BenchmarkFile& head, const std::string& case_path, const T
   } catch (const InputError& e) {
     refuse(row.place, fmt::format("settings: {}", e.what()));
   }
-  if (head.how != How::Onset) check_grids(p.model.grid, head.grids, row.place);
+  check_grids(p.model.grid, head.grids, row.place);
   return p;
 }
 

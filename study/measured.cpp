@@ -9,15 +9,13 @@
 #include "solver/settle.hpp"
 #include "solver/solve_error.hpp"
 #include "study/cycle.hpp"
+#include "study/onset_values.hpp"
 #include "study/quantities.hpp"
 
 namespace lidwright {
 namespace {
 
 using Values = std::map<std::string, std::vector<double>>;  ///< one a grid, from coarse to fine
-
-constexpr const char* critical_name = "rayleigh_critical";
-constexpr std::string_view mode_prefix = "rayleigh_mode_";
 
 constexpr double flow_tolerance = 1e-11;
 /// Relative errors that the solver's tolerance may leave in a quantity.
@@ -172,27 +170,15 @@ Measured measured(How how, const Problem& p, int grids, const std::vector<std::s
     case How::March:
       return measure_march(p, grids, wanted, watch);
     case How::Onset:
-      throw SolveError("onset: not there yet");
+      return measured_onset(p, wanted, watch);
     case How::Settle:
       break;
   }
   return measure_settled(p, grids, wanted, watch);
 }
 
-namespace {
-
-/// "rayleigh_mode_12".
-bool names_a_mode(const std::string& quantity) {
-  if (!quantity.starts_with(mode_prefix)) return false;
-  const std::string number = quantity.substr(mode_prefix.size());
-  return !number.empty() && number.size() < 5 && number.front() != '0' &&
-         number.find_first_not_of("0123456789") == std::string::npos;
-}
-
-}  // namespace
-
 bool measurable(How how, const std::string& quantity) {
-  if (how == How::Onset && names_a_mode(quantity)) return true;
+  if (how == How::Onset && mode_named(quantity) > 0) return true;
   const std::vector<std::string> names = measurable_names(how);
   return std::find(names.begin(), names.end(), quantity) != names.end();
 }
