@@ -8,6 +8,7 @@
 
 #include "app/exit_code.hpp"
 #include "app/march_verb.hpp"
+#include "app/onset_verb.hpp"
 #include "io/atomic_file.hpp"
 #include "io/case_file.hpp"
 #include "io/provenance.hpp"
@@ -34,6 +35,7 @@ class PlainHelp : public CLI::Formatter {
     if (app->get_name() == "march")
       return "Usage: lidwright march CASE [OPTIONS]\n"
              "       lidwright march --resume FOLDER [OPTIONS]\n";
+    if (app->get_name() == "onset") return "Usage: lidwright onset CASE [OPTIONS]\n";
     return CLI::Formatter::make_usage(app, std::move(name));
   }
 };
@@ -64,6 +66,35 @@ void add_march(CLI::App& app, MarchRequest& request) {
   resume->excludes(case_file)->excludes(into)->excludes(overwrite);
 }
 
+void add_onset(CLI::App& app, OnsetRequest& request) {
+  CLI::App* verb =
+      app.add_subcommand("onset", "Find the Rayleigh number at which convection begins")
+          ->group("Verbs");
+  verb->add_option("CASE", request.case_file,
+                   "Case file (TOML); its numbers.rayleigh serves to\n"
+                   "compare only, all else is held fixed");
+  verb->add_option("--set", request.settings, "Change a key of the case; may be repeated")
+      ->allow_extra_args(false)
+      ->type_name("TABLE.KEY=VALUE");
+  verb->add_option("--into", request.into, "Folder for the results [runs/NAME_onset]")
+      ->type_name("FOLDER");
+  verb->add_flag("--overwrite", request.overwrite, "Replace a run that is in the folder");
+  verb->add_option("--modes", request.modes,
+                   "Lateral modes A to B: whole waves along a\n"
+                   "periodic shell, else half waves (the degree from\n"
+                   "pole to pole) [1 until the least is passed]")
+      ->type_name("A:B");
+  verb->add_flag_callback(
+      "--no-error-bars", [&] { request.error_bars = false; },
+      "Take the case's own grid only, not a half and a\n"
+      "quarter of it too");
+  verb->add_flag_callback(
+      "--progress", [&] { request.progress = ProgressMode::Always; },
+      "Show progress, also without a terminal");
+  verb->add_flag_callback(
+      "--no-progress", [&] { request.progress = ProgressMode::Never; }, "Show no progress");
+}
+
 void print_help(const CLI::App& app, const CLI::ParseError& e) {
   std::ostringstream text;
   app.exit(e, text, text);
@@ -73,18 +104,19 @@ void print_help(const CLI::App& app, const CLI::ParseError& e) {
 
 /// CLI11 reports a misspelt verb as a missing one.
 std::string command_line_message(const CLI::ParseError& e, int argc, char** argv) {
-  if (argc < 2) return "name a verb: march or keys";
+  if (argc < 2) return "name a verb: march, onset or keys";
   if (e.get_name() == "RequiredError")
-    return fmt::format("'{}' is not a verb of this program (march, keys)", argv[1]);
+    return fmt::format("'{}' is not a verb of this program (march, onset, keys)", argv[1]);
   return e.what();
 }
 
 ExitCode run_verb(const Session& session, const CLI::App& app, const MarchRequest& request,
-                  bool markdown) {
+                  const OnsetRequest& onset_request, bool markdown) {
   if (app.got_subcommand("keys")) {
     if (session.first()) fmt::print("{}", markdown ? keys_as_markdown() : keys_as_text());
     return ExitCode::Done;
   }
+  if (app.got_subcommand("onset")) return onset(session, onset_request);
   if (request.case_file.empty() && request.resume.empty())
     throw InputError(
         "march: name a case file, or a run folder with --resume; see `lidwright march --help`");
@@ -117,8 +149,10 @@ ExitCode run(const Session& session, int argc, char** argv) {
       "Exit codes: 0 done, 1 fault of the program, 2 bad input, 3 not solved,\n"
       "4 not written, 5 interrupted with a checkpoint written (go on with --resume).");
   MarchRequest request;
+  OnsetRequest onset_request;
   bool markdown = false;
   add_march(app, request);
+  add_onset(app, onset_request);
   app.add_subcommand("keys", "Print the reference of all case keys")
       ->group("Verbs")
       ->add_flag("--markdown", markdown, "As a Markdown page (docs/case.md)");
@@ -134,7 +168,7 @@ ExitCode run(const Session& session, int argc, char** argv) {
                   ExitCode::BadInput);
   }
   try {
-    return run_verb(session, app, request, markdown);
+    return run_verb(session, app, request, onset_request, markdown);
   } catch (const InputError& e) {
     return report(session, e.what(), ExitCode::BadInput);
   } catch (const SolveError& e) {

@@ -8,6 +8,7 @@
 #include <optional>
 
 #include "app/run_summary.hpp"
+#include "app/shared_case.hpp"
 #include "app/stop_signals.hpp"
 #include "io/case_file.hpp"
 #include "io/checkpoint.hpp"
@@ -35,14 +36,6 @@ std::string fingerprint(Case c) {
   c.settle = SettleSettings{};
   c.output = OutputSettings{};
   return write_case(c);
-}
-
-/// A case read on the first rank, so that all ranks see the same file; errors on all ranks.
-Case shared_case(MPI_Comm comm, const std::string& path, const std::vector<std::string>& settings) {
-  std::string text;
-  on_first_rank<InputError>(comm, [&] { text = write_case(read_case(path, settings)); });
-  broadcast(comm, text);
-  return parse_case(text, path);
 }
 
 /// A run that is going on: the march, its files, and when which is written.
@@ -245,16 +238,6 @@ std::string stored_path(const MarchRequest& request, const Case& c) {
   const std::filesystem::path from(c.initial.from);
   return (from.is_absolute() ? from : std::filesystem::path(request.case_file).parent_path() / from)
       .string();
-}
-
-/// Runs `make`; what only shows when the mesh is made or the ranks share it is bad input.
-template <class Make>
-auto or_bad_input(Make&& make) {
-  try {
-    return make();
-  } catch (const std::invalid_argument& e) {
-    throw InputError(e.what());
-  }
 }
 
 ExitCode start_new(const Session& session, const MarchRequest& request, Clock::time_point start) {

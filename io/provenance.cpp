@@ -4,6 +4,7 @@
 #include <fmt/format.h>
 #include <hdf5.h>
 #include <petscsys.h>
+#include <slepcversion.h>
 #include <suitesparse/cholmod.h>
 #include <unistd.h>
 
@@ -110,6 +111,8 @@ std::string program_commit() { return LIDWRIGHT_COMMIT; }
 
 std::vector<std::pair<std::string, std::string>> library_versions() {
   return {{"petsc", petsc_version()},
+          {"slepc", fmt::format("{}.{}.{}", SLEPC_VERSION_MAJOR, SLEPC_VERSION_MINOR,
+                                SLEPC_VERSION_SUBMINOR)},
           {"mpi", mpi_version()},
           {"vtk", vtk_version()},
           {"hdf5", hdf5_version()},

@@ -44,8 +44,9 @@ bool own_name(std::string_view name) {
     name.remove_suffix(partial_suffix.size());
     if (name == "provenance.toml") return true;
   }
-  static constexpr std::array<std::string_view, 5> plain{"case_as_read.toml", "summary.toml",
-                                                         "history.csv", "fields.pvd", "walls.pvd"};
+  static constexpr std::array<std::string_view, 7> plain{
+      "case_as_read.toml", "summary.toml", "history.csv", "fields.pvd",
+      "walls.pvd",         "onset.csv",    "onset.png"};
   const auto of_snapshot = [&](std::string_view before, std::string_view after) {
     return numbered(name, before, snapshot_digits, after).has_value();
   };

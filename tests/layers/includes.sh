@@ -34,10 +34,11 @@ only io mesh physics solver study io
 only app mesh physics solver study io app
 
 never physics 'petsc|slepc|mpi|hdf5|vtk|toml|CLI'
-never mesh 'hdf5|H5|vtk|toml|CLI'
+never mesh 'slepc|hdf5|H5|vtk|toml|CLI'
 never solver 'hdf5|H5|vtk|toml|CLI'
 never io 'CLI'
-never app 'vtk|toml|hdf5|H5'
+never study 'slepc|hdf5|H5|vtk|toml|CLI'
+never app 'slepc|vtk|toml|hdf5|H5'
 
 # The cases live in an invented planetary system.
 bodies='Mercury|Venus|Earth|Moon|Mars|Ceres|Vesta|Europa|Ganymede|Callisto|Titan|Enceladus|Triton|Pluto'
