@@ -155,8 +155,7 @@ PetscErrorCode CoupledSolver::multiply_callback(Mat a, Vec x, Vec y) {
   PetscCall(VecGetArrayRead(x, &in));
   PetscCall(VecGetArray(y, &out));
   const long n = self->matrix_.rows();
-  Eigen::Map<Eigen::VectorXd>(out, n).noalias() =
-      self->matrix_ * Eigen::Map<const Eigen::VectorXd>(in, n);
+  Eigen::Map<Eigen::VectorXd>(out, n) = self->multiply(Eigen::Map<const Eigen::VectorXd>(in, n));
   PetscCall(VecRestoreArray(y, &out));
   PetscCall(VecRestoreArrayRead(x, &in));
   return 0;
@@ -172,6 +171,8 @@ PetscErrorCode CoupledSolver::precondition_callback(PC pc, Vec r, Vec z) {
 /// Column by column: first the flow's rows, then those of heat.
 void CoupledSolver::set_matrix(const Linearised& j, double shift) {
   flow_ = j.flow_by_psi.rows();
+  capacity_ = j.capacity;
+  held_.resize(0);
   const long cells = j.capacity.size(), n = flow_ + cells;
   matrix_ = SparseMatrix(n, n);
   matrix_.resizeNonZeros(j.flow_by_psi.nonZeros() + j.flow_by_temperature.nonZeros() +
@@ -196,6 +197,18 @@ void CoupledSolver::set_matrix(const Linearised& j, double shift) {
   matrix_.outerIndexPtr()[n] = next;
 }
 
+void CoupledSolver::hold(const Eigen::VectorXd& v, double rate) {
+  held_ = v.size() > 0 ? Eigen::VectorXd(capacity_.cwiseProduct(v)) : v;
+  hold_rate_ = rate;
+}
+
+Eigen::VectorXd CoupledSolver::multiply(const Eigen::VectorXd& x) const {
+  Eigen::VectorXd y = matrix_ * x;
+  if (held_.size() > 0)
+    y.tail(held_.size()) += hold_rate_ * held_.dot(x.tail(held_.size())) * held_;
+  return y;
+}
+
 void CoupledSolver::choose_preconditioner() {
   if (kind_ != LinearSolver::Iterative) {
     auto whole = std::make_unique<WholeFactor>(matrix_);
@@ -209,7 +222,15 @@ void CoupledSolver::choose_preconditioner() {
 
 void CoupledSolver::factorise() {
   if (!factor_) choose_preconditioner();
-  factor_->factorise(matrix_);
+  if (held_.size() == 0) {
+    factor_->factorise(matrix_);
+  } else {
+    // A dense row would fill the factor: a little of M everywhere keeps it regular instead.
+    SparseMatrix regular = matrix_;
+    for (long c = 0; c < capacity_.size(); ++c)
+      regular.coeffRef(flow_ + c, flow_ + c) += 1e-3 * hold_rate_ * capacity_[c];
+    factor_->factorise(regular);
+  }
   ready_ = true;
 }
 
@@ -243,7 +264,7 @@ LinearReport CoupledSolver::solve(const Eigen::VectorXd& b, double tolerance, Ei
   LinearReport report;
   const auto attempt = [&] {
     report.iterations = iterate(b, tolerance, x);
-    report.residual = b.norm() > 0 ? (b - matrix_ * x).norm() / b.norm() : 0;
+    report.residual = b.norm() > 0 ? (b - multiply(x)).norm() / b.norm() : 0;
     return report.residual <= 2 * tolerance;
   };
   if (ready_ && attempt()) {

@@ -29,6 +29,11 @@ class CoupledSolver {
 
   /// The matrix of the next solves; `shift` is 1/dt, 0 for none.
   void set_matrix(const Linearised&, double shift);
+  /// Adds rate * (M v)(M v)^T, with v . M v = 1, to the heat block of the next solves (an empty v:
+  /// nothing). Where the pattern may turn round a full circle or slide along a periodic box, v is
+  /// that turning: the matrix alone is singular then, and the sum picks the state that does not
+  /// turn.
+  void hold(const Eigen::VectorXd& v, double rate);
   /// Makes the next solve factorise anew, whatever the old factor would do.
   void drop_factor() { ready_ = false; }
   /// x with |b - A x| <= tolerance |b|. Throws SolveError when that is not reached, even with a new
@@ -36,7 +41,7 @@ class CoupledSolver {
   LinearReport solve(const Eigen::VectorXd& b, double tolerance, Eigen::VectorXd& x);
 
   /// y = A x.
-  Eigen::VectorXd multiply(const Eigen::VectorXd& x) const { return matrix_ * x; }
+  Eigen::VectorXd multiply(const Eigen::VectorXd& x) const;
   bool direct() const { return kind_ == LinearSolver::Direct; }
 
  private:
@@ -53,6 +58,9 @@ class CoupledSolver {
   bool ready_ = false;  ///< is the factor fit to be tried
   long flow_ = 0;
   SparseMatrix matrix_;
+  Eigen::VectorXd capacity_;
+  Eigen::VectorXd held_;  ///< M v
+  double hold_rate_ = 0;
   std::unique_ptr<Preconditioner> factor_;
   Handle<Mat, MatDestroy> operator_;
   Handle<KSP, KSPDestroy> ksp_;

@@ -61,10 +61,24 @@ class Guess {
     return seen_.back().change < seen_[seen_.size() - 2].change;
   }
   bool exhausted(long most_steps) const {
-    return march_.time() >= settings_.most_time || march_.steps() >= most_steps;
+    return march_.time() >= settings_.most_time || march_.steps() >= most_steps ||
+           keeps_changing();
   }
   const CellField& temperature() const { return march_.temperature(); }
   const std::vector<Seen>& seen() const { return seen_; }
+
+  /// In the last third of a long record the slowest change is hardly slower than in the third
+  /// before.
+  bool keeps_changing() const {
+    const std::size_t n = seen_.size();
+    if (n < 60) return false;
+    const auto slowest = [&](std::size_t from, std::size_t to) {
+      double least = seen_[from].change;
+      for (std::size_t k = from; k < to; ++k) least = std::min(least, seen_[k].change);
+      return least;
+    };
+    return slowest(2 * n / 3, n) > std::max(0.7 * slowest(n / 3, 2 * n / 3), near);
+  }
 
  private:
   static HeatSettings heat(const SettleSettings& settings) {

@@ -63,6 +63,21 @@ double SteadyEquations::fastest_change() const {
   return most;
 }
 
+Eigen::VectorXd SteadyEquations::turning() const {
+  const Geometry& g = decomposition_->geometry();
+  if (!g.periodic()) return {};
+  Eigen::VectorXd v(unknowns_.cells());
+  double square = 0;
+  for (int j = 0; j < g.lateral_cells(); ++j)
+    for (int i = 0; i < g.radial_cells(); ++i) {
+      const double slope = temperature_[{i, j + 1}] - temperature_[{i, j - 1}];
+      v[unknowns_.of(Cell{i, j})] = slope;
+      square += heat_.capacity({i, j}) * slope * slope;
+    }
+  if (square < 1e-12 * heat_.total_capacity()) return {};
+  return v / std::sqrt(square);
+}
+
 Linearised SteadyEquations::linearise() const {
   return lidwright::linearise(model_, flow_.power(), heat_, flux_, unknowns_, temperature_, psi_);
 }

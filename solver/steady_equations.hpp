@@ -25,6 +25,9 @@ class SteadyEquations {
   double residual() const { return residual_; }
   /// That rate itself.
   double heat_rate() const { return heat_rate_; }
+  /// dT/d(lateral) of each cell, normalised to v . M v = 1: the turning of the pattern. Empty where
+  /// the shell is not periodic or the temperature does not vary along it.
+  Eigen::VectorXd turning() const;
   /// Of dT/dt, the largest of all cells.
   double fastest_change() const;
   /// Heat gained by each cell, in the order of its unknowns: minus the heat residual.

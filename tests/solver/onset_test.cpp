@@ -150,9 +150,11 @@ TEST(OnsetAxisymmetric, LateralModesAreLegendrePolynomials) {
 /// ratios from 0.2 to 0.9. Of the longest table, every fifth problem, which meets all of its walls.
 class Onset : public testing::TestWithParam<std::string> {};
 
-bool selected(const std::string& table, std::size_t row, int problem, bool critical) {
-  if (table == "sphere_gr") return critical && problem % 5 == 0;
-  return critical || row % 29 == 3;
+bool selected(const std::string& table, std::size_t row, int problem, const OnsetCase& c) {
+  const bool thin = c.model.shell.inner_radius > 5;
+  if (table == "sphere_gr") return c.critical && problem % 5 == 0;
+  if (table == "sphere_internal" && thin) return false;  // it takes long, and sphere_bottom has it
+  return c.critical || row % 29 == 3;
 }
 
 /// The thin layers of a varying viscosity need more.
@@ -165,7 +167,7 @@ TEST_P(Onset, AgreesWithLinearTheory) {
   for (std::size_t row = 0; row < cases.size(); ++row) {
     const OnsetCase& c = cases[row];
     if (row > 0 && cases[row - 1].name != c.name) ++problem;
-    if (!selected(GetParam(), row, problem, c.critical)) continue;
+    if (!selected(GetParam(), row, problem, c)) continue;
     const double off = deviation(c.model, c.number, c.rayleigh, fast_cells(GetParam()));
     EXPECT_LT(off, close_enough) << testing::PrintToString(c);
     worst = std::max(worst, off);

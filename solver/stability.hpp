@@ -1,0 +1,25 @@
+#pragma once
+
+#include <vector>
+
+#include "solver/settings.hpp"
+#include "mesh/field.hpp"
+
+/// Does a steady state last? The eigenvalues of the equations linearised about it.
+namespace lidwright {
+
+/// A disturbance goes with exp(growth t) cos(frequency t); time in d^2/kappa.
+struct GrowthRate {
+  double growth;
+  double frequency;  ///< >= 0; one entry stands for a conjugate pair
+};
+
+/// The leading `count` growth rates about a steady state, fastest growing first, by shift-invert
+/// Krylov-Schur iterations (SLEPc; Stewart 2001, SIAM J. Matrix Anal. Appl. 23, 601) about 0 and
+/// about the rate of overturning: those are found that are near either. On a full circle one of
+/// them is 0, that of turning the pattern. Computed on the first rank. Collective; throws
+/// SolveError.
+std::vector<GrowthRate> growth_rates(const Model&, HeatFlux, const CellField& temperature,
+                                     int count);
+
+}  // namespace lidwright
