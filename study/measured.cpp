@@ -57,6 +57,33 @@ Measured measure_flow(const Problem& p, int grids, const std::vector<std::string
   return with_bars(values, wanted, flow_floor);
 }
 
+/// Steady states from coarse to fine. Grids too coarse to be reached from the start are reached
+/// from the finer state instead, if there is a steady state on them.
+std::vector<SteadyState> steady_states(const Problem& p, int grids, const SettleObserver& observe) {
+  std::vector<SteadyState> states =
+      settle(p.model, p.initial, p.start, p.settle, grids, PETSC_COMM_SELF, observe);
+  while (!states.empty() && states.front().converged && static_cast<int>(states.size()) < grids) {
+    Model model = p.model;
+    model.grid = coarsened(model.grid, static_cast<int>(states.size()));
+    SettleSettings settings = p.settle;
+    settings.coarsest = model.grid.radial;
+    std::vector<SteadyState> coarser =
+        settle(model, p.initial, stored(states.front().snapshot.temperature), settings, 1,
+               PETSC_COMM_SELF, observe);
+    if (coarser.empty() || !coarser.front().converged) break;
+    states.insert(states.begin(), coarser.front());
+  }
+  return states;
+}
+
+/// Throws SolveError when there are too few for an error bar.
+void check_converged(const std::vector<SteadyState>& states) {
+  if (!states.empty() && !states.back().converged)
+    throw SolveError(fmt::format("no steady state on {} x {}: {}", states.back().grid.radial,
+                                 states.back().grid.lateral, states.back().remark));
+  if (states.size() < 2) throw SolveError("a steady state on the finest grid only: no error bar");
+}
+
 Measured measure_settled(const Problem& p, int grids, const std::vector<std::string>& wanted,
                          const Watch& watch) {
   bool stopped = false;
@@ -67,18 +94,13 @@ Measured measure_settled(const Problem& p, int grids, const std::vector<std::str
     stopped = stopped || watch.stop();
     return !stopped;
   };
-  const std::vector<SteadyState> states =
-      settle(p.model, p.initial, p.start, p.settle, grids, PETSC_COMM_SELF, observe);
+  const std::vector<SteadyState> states = steady_states(p, grids, observe);
   if (stopped) throw Stopped{};
+  check_converged(states);
   Values values;
-  if (states.size() < 2) throw SolveError("steady states on fewer than two grids");
-  for (const SteadyState& s : states) {
-    if (!s.converged)
-      throw SolveError(
-          fmt::format("no steady state on {} x {}: {}", s.grid.radial, s.grid.lateral, s.remark));
+  for (const SteadyState& s : states)
     for (const std::string& name : wanted)
       values[name].push_back(steady_quantity(name, {p.model, s.row, s.snapshot}).value());
-  }
   Measured m = with_bars(values, wanted, settle_floor);
   m.end = stored(states.back().snapshot.temperature);
   return m;
