@@ -57,12 +57,23 @@ std::string digits_of(double value) {
   return fmt::format("{:.4g} \u00d7 {}", value / std::pow(10.0, exponent), power_of_ten(exponent));
 }
 
+std::string state_heading(const SteadyState& s, const std::string& at, const PictureUnits& units) {
+  const std::string where = at.empty() ? "" : " at " + as_markup(at);
+  return fmt::format(
+      "{} state{}   \u00b7   Nusselt number {:.5g} outer, {:.5g} inner   \u00b7   rms velocity "
+      "{:.5g} "
+      "{}",
+      s.converged ? "steady" : "not yet steady", where, s.row.nusselt_outer, s.row.nusselt_inner,
+      units.velocity(s.row.velocity_rms), units.velocity.unit);
+}
+
 void draw_heading(Canvas& canvas, const PictureContents& c) {
   canvas.text(as_markup(c.title.empty() ? "Convection in time" : c.title), {page_border, 20},
               {0, 0}, {27, ink, Weight::Bold, picture_width - 2 * page_border});
-  canvas.text(fmt::format("time {} {}   \u00b7   step {}", digits_of(c.units.time(c.time)),
-                          c.units.time.unit, c.step),
-              {page_border, 58}, {0, 0}, {18, faint_ink});
+  const std::string moment = fmt::format(
+      "time {} {}   \u00b7   step {}", digits_of(c.units.time(c.time)), c.units.time.unit, c.step);
+  canvas.text(c.state.empty() ? moment : c.state, {page_border, 58}, {0, 0},
+              {18, faint_ink, Weight::Normal, picture_width - 2 * page_border});
 }
 
 Interval shown_span(const PictureContents& c) {
@@ -186,10 +197,37 @@ Chart heat_flow_chart(const PictureContents& c, const Frame& f) {
   return chart;
 }
 
+std::vector<double> count_up_to(std::size_t n) {
+  std::vector<double> numbers;
+  while (numbers.size() < n) numbers.push_back(static_cast<double>(numbers.size()));
+  return numbers;
+}
+
+Chart residual_chart(const PictureContents& c, const Frame& f) {
+  Chart chart;
+  chart.title = "Way to the steady state";
+  chart.x_label = {"Newton step", ""};
+  chart.y_label = {"residual", ""};
+  std::vector<double> shown;
+  for (const double r : c.residuals)
+    if (r > 0) shown.push_back(r);
+  if (shown.size() < 2) {
+    chart.note = "one step";
+    return chart;
+  }
+  chart.x = linear_axis({0, static_cast<double>(shown.size() - 1)}, ticks_across(f));
+  std::erase_if(chart.x.ticks, [](const Tick& t) { return t.value != std::round(t.value); });
+  chart.y = logarithmic_axis(range_of(shown), ticks_upright(f));
+  chart.curves = {{count_up_to(shown.size()), shown, outer_ink, "", 2.5}};
+  return chart;
+}
+
 void draw_charts(Canvas& canvas, const PictureContents& c, const PictureLayout& layout) {
   const std::vector<Chart> charts = profile_charts(c, layout);
   for (std::size_t k = 0; k < charts.size(); ++k) draw(canvas, charts[k], layout.profiles[k]);
-  draw(canvas, heat_flow_chart(c, layout.history), layout.history);
+  draw(canvas,
+       c.state.empty() ? heat_flow_chart(c, layout.history) : residual_chart(c, layout.history),
+       layout.history);
 }
 
 }  // namespace
@@ -270,6 +308,29 @@ void draw_run(const std::string& path, const Snapshot& s, const std::string& his
                                    s.profiles,
                                    heat_flow_history(read_whole_file(history_path)),
                                    units};
+    write_atomically(path, picture(contents));
+  });
+}
+
+void draw_state(const std::string& path, const SteadyState& s, const std::vector<double>& residuals,
+                const std::string& at, const std::string& title, const PictureUnits& units) {
+  const Decomposition& d = s.snapshot.temperature.decomposition();
+  std::vector<double> temperature = gather_to_first(s.snapshot.temperature);
+  std::vector<double> stream_function = gather_to_first(s.snapshot.stream_function);
+  on_first_rank<OutputError>(d.comm(), [&] {
+    PictureContents contents{title.empty() ? "Steady convection" : title,
+                             0,
+                             0,
+                             d.geometry(),
+                             std::move(temperature),
+                             std::move(stream_function),
+                             s.snapshot.profiles,
+                             {},
+                             units};
+    contents.history.temperature_inner = {s.row.temperature_inner};
+    contents.history.temperature_outer = {s.row.temperature_outer};
+    contents.state = state_heading(s, at, units);
+    contents.residuals = residuals;
     write_atomically(path, picture(contents));
   });
 }

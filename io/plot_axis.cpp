@@ -78,6 +78,23 @@ Axis logarithmic_axis(Interval range, int most) {
   return axis;
 }
 
+Axis logarithmic_axis_within(Interval range, int most) {
+  const double decades = std::log10(range.high / range.low);
+  const int stride = std::max(1, static_cast<int>(std::ceil(decades / std::max(most, 1))));
+  const bool between = 3 * decades <= most;
+  Axis axis{range, Spacing::Logarithmic, {}, ""};
+  const auto mark = [&](double value, const std::string& text) {
+    if (value >= range.low && value <= range.high) axis.ticks.push_back({value, text});
+  };
+  for (int k = static_cast<int>(std::floor(std::log10(range.low))); power(k) <= range.high; ++k) {
+    if (k % stride != 0) continue;
+    mark(power(k), power_of_ten(k));
+    for (const int factor : {2, 5})
+      if (between) mark(factor * power(k), fmt::format("{} \u00d7 {}", factor, power_of_ten(k)));
+  }
+  return axis;
+}
+
 Interval with_margin(Interval range, double share) {
   const double size = std::max(std::abs(range.low), std::abs(range.high));
   const double least = size > 0 ? 1e-3 * size : 1;
