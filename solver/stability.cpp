@@ -69,8 +69,7 @@ std::vector<Growth> nearest_to(const SteadyEquations& equations, const Linearise
   const auto n = static_cast<PetscInt>(inverse.size());
   Handle<Mat, MatDestroy> op;
   check(MatCreateShell(PETSC_COMM_SELF, n, n, n, n, &inverse, op.put()));
-  check(MatShellSetOperation(op, MATOP_MULT,
-                             reinterpret_cast<void (*)()>(ShiftInvert::callback)));
+  check(MatShellSetOperation(op, MATOP_MULT, reinterpret_cast<void (*)()>(ShiftInvert::callback)));
   Handle<EPS, EPSDestroy> eps;
   check(EPSCreate(PETSC_COMM_SELF, eps.put()));
   check(EPSSetOperators(eps, op, nullptr));
