@@ -66,8 +66,12 @@ bool BranchWalk::see(const BranchPoint& p) {
 }
 
 BranchRow BranchWalk::row_of(const BranchPoint& p) {
-  BranchRow row{p.parameter,    p.asked_for, p.backwards, -1,
-                p.newton_steps, p.residual,  p.state.row, {}};
+  BranchRow row{.parameter = p.parameter,
+                .asked_for = p.asked_for,
+                .backwards = p.backwards,
+                .newton_steps = p.newton_steps,
+                .residual = p.residual,
+                .row = p.state.row};
   if (!p.asked_for || !job_.request.stability) return row;
   const Case c = cases_.at(p.parameter);
   const StabilityVerdict verdict = judge_stability(
@@ -83,7 +87,7 @@ void BranchWalk::write(const Branch& branch) {
   std::vector<int> numbers;
   for (const BranchPoint& p : branch.points)
     numbers.push_back(
-        p.asked_for ? files.write(cases_.at(p.parameter), p.state, cases_.text_of(p.parameter), {})
+        p.asked_for ? files.write(cases_.at(p.parameter), p.state, cases_.text_of(p.parameter))
                     : -1);
   if (job_.request.stability && job_.session.first()) watch_.say("growth of disturbances");
   for (std::size_t k = 0; k < branch.points.size(); ++k) {

@@ -18,8 +18,7 @@ Archive archive_of(const SteadyState& s) {
 
 }  // namespace
 
-int SteadyFiles::write(const Case& c, SteadyState s, const std::string& at,
-                       const std::vector<double>& residuals) {
+int SteadyFiles::write(const Case& c, SteadyState s, const std::string& at) {
   const auto number = snapshots_.count();
   // Viewers step through the states as through moments.
   s.snapshot.time = static_cast<double>(number);
@@ -27,8 +26,7 @@ int SteadyFiles::write(const Case& c, SteadyState s, const std::string& at,
                    fmt::format("of a {} state{}{}", s.converged ? "steady" : "not steady",
                                at.empty() ? "" : " at ", at));
   if (c.output.pictures)
-    draw_state(paths_.folder + "/" + picture_name(number), s, residuals, at, c.title,
-               picture_units(c.body));
+    draw_state(paths_.folder + "/" + picture_name(number), s, at, c.title, picture_units(c.body));
   write_checkpoint(checkpoint_path(paths_.checkpoints(), static_cast<long>(number)), archive_of(s),
                    s.snapshot.temperature.decomposition(), fingerprint(c));
   return static_cast<int>(number);

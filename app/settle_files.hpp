@@ -1,7 +1,6 @@
 #pragma once
 
 #include <string>
-#include <vector>
 
 #include "io/case_file.hpp"
 #include "io/run_folder.hpp"
@@ -16,9 +15,8 @@ class SteadyFiles {
  public:
   SteadyFiles(MPI_Comm comm, const RunPaths& paths) : paths_(paths), snapshots_(comm, paths) {}
 
-  /// Numbered from 0; returns the number. `at`: the parameter's value, "" when there is none;
-  /// `residuals` for the picture, on the first rank.
-  int write(const Case&, SteadyState, const std::string& at, const std::vector<double>& residuals);
+  /// Numbered from 0; returns the number. `at`: the parameter's value, "" when there is none.
+  int write(const Case&, SteadyState, const std::string& at);
 
  private:
   RunPaths paths_;

@@ -17,7 +17,7 @@ void write_found(const SettleJob& job, const RunPaths& paths, const SteadyState&
                  const SettleWatch& watch) {
   const MPI_Comm comm = job.session.comm();
   write_text(comm, paths.newton(), newton_table(watch.steps()));
-  SteadyFiles(comm, paths).write(job.c, found, "", watch.residuals());
+  SteadyFiles(comm, paths).write(job.c, found, "");
 }
 
 void end_with(const SettleJob& job, const RunPaths& paths, const SteadyState& found,

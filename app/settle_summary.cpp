@@ -78,11 +78,13 @@ std::vector<SummaryEntry> settle_entries(const Case& c, const SteadyState& s, st
 
 std::string settle_for_people(const Case& c, const SteadyState& s, std::size_t steps,
                               double seconds) {
+  HistoryRow row = s.row;
+  if (!convects(s)) row.work_mismatch = 0;  // of nothing with nothing
   return fmt::format(
       "{}{}: {} x {} cells, {} Newton steps in {}\n{}{}"
-      "  residual              {:.1e}; {:.1e} was asked for   [heat flow/heat capacity]\n",
+      "  residual              {:.1e}; at most {:.1g} was asked for   [heat flow/heat capacity]\n",
       heading(c), end_of(s), s.grid.radial, s.grid.lateral, steps, duration_text(seconds),
-      state_lines(s.row), hint(s), s.residual, c.settle.tolerance);
+      state_lines(row), hint(s), s.residual, c.settle.tolerance);
 }
 
 std::string bars_for_people(const std::vector<QuantityBar>& bars, const std::vector<Grid>& grids) {

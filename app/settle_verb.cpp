@@ -30,7 +30,7 @@ int grids_for(const SettleRequest& request) { return request.error_bars ? grids_
 void refuse_together(const SettleRequest& request) {
   if (request.case_file.empty())
     throw InputError("settle: name a case file; see `lidwright settle --help`");
-  if (!request.along.empty() && request.error_bars)
+  if (request.along && request.error_bars)
     throw InputError(
         "--along and --error-bars do not go together; take error bars at one value of the key, "
         "with --set instead of --along");
@@ -54,7 +54,7 @@ void refuse_unfit(const SettleRequest& request, const Case& c, const StoredTempe
 
 /// The text of a case file as the first rank sees it, on all ranks.
 CaseAlong shared_along(MPI_Comm comm, const SettleRequest& request) {
-  const Along along = read_along(request.along);
+  const Along along = read_along(*request.along);
   std::string text;
   on_first_rank<InputError>(comm, [&] { text = read_case_text(request.case_file); });
   broadcast(comm, text);
@@ -149,7 +149,7 @@ ExitCode settle(const Session& session, const SettleRequest& request) {
   const MPI_Comm comm = session.comm();
   refuse_together(request);
   std::optional<CaseAlong> along;
-  if (!request.along.empty()) along = shared_along(comm, request);
+  if (request.along) along = shared_along(comm, request);
   const Case c = along ? along->at(along->along().values.front())
                        : shared_case(comm, request.case_file, request.settings);
   const std::string path = folder_for(request.into, request.case_file, "_settle");

@@ -1,5 +1,6 @@
 #pragma once
 
+#include <optional>
 #include <string>
 #include <vector>
 
@@ -15,7 +16,7 @@ struct SettleRequest {
   std::string case_file;
   std::vector<std::string> settings;  ///< table.key=value
   std::string into;                   ///< folder; empty: runs/NAME_settle of the case file
-  std::string along;                  ///< KEY=FROM:TO:COUNT; empty: one steady state
+  std::optional<std::string> along;   ///< KEY=FROM:TO:COUNT; absent: one steady state
   bool overwrite = false;             ///< replace a run that is already in the folder
   bool stability = false;
   bool error_bars = false;

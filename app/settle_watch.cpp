@@ -39,11 +39,4 @@ bool SettleWatch::see(const NewtonStep& step) {
   return !stop_requested(MPI_COMM_SELF);
 }
 
-std::vector<double> SettleWatch::residuals() const {
-  std::vector<double> all;
-  for (const NewtonStep& s : steps_)
-    if (s.step >= 0) all.push_back(s.residual);
-  return all;
-}
-
 }  // namespace lidwright

@@ -18,8 +18,6 @@ class SettleWatch {
   void say(const std::string& text) { line_.show_always(text); }
   void finish() { line_.clear(); }
   const std::vector<NewtonStep>& steps() const { return steps_; }
-  /// Of the Newton steps alone, in their order.
-  std::vector<double> residuals() const;
 
  private:
   bool see(const NewtonStep&);

@@ -60,9 +60,10 @@ NumberKey number_key(const std::string& path) {
                                     "the effect of the grid use --error-bars",
                                     path));
   if (type != "number")
-    refuse(along_place, fmt::format("{} takes {} and cannot go from one number to another; give a "
-                                    "key that takes a number, such as numbers.rayleigh",
-                                    path, type == "list" ? "a list" : type));
+    refuse(along_place,
+           fmt::format("{} takes {} and cannot go from one number to another; give a "
+                       "key that takes a number, such as numbers.rayleigh",
+                       path, type == "list" || type == "whole number" ? "a " + type : type));
   return {path, std::string(key.units().dimensionless), std::string(key.units().si)};
 }
 

@@ -5,6 +5,7 @@
 #include <algorithm>
 #include <charconv>
 #include <cmath>
+#include <numbers>
 #include <stdexcept>
 #include <string_view>
 
@@ -197,36 +198,39 @@ Chart heat_flow_chart(const PictureContents& c, const Frame& f) {
   return chart;
 }
 
-std::vector<double> count_up_to(std::size_t n) {
-  std::vector<double> numbers;
-  while (numbers.size() < n) numbers.push_back(static_cast<double>(numbers.size()));
-  return numbers;
+/// The lateral coordinate as people read it: along the box, or in degrees.
+Shown lateral_units(const PictureContents& c) {
+  if (c.geometry.shell().shape == Shape::Box) return c.units.length;
+  return {180 / std::numbers::pi, 0, "\u00b0"};
 }
 
-Chart residual_chart(const PictureContents& c, const Frame& f) {
+const char* lateral_name(Shape shape) {
+  if (shape == Shape::Box) return "place along the wall";
+  return shape == Shape::AxisymmetricShell ? "colatitude" : "longitude";
+}
+
+Chart wall_chart(const PictureContents& c, const Frame& f) {
+  const Shown lateral = lateral_units(c);
+  const std::vector<double> places = lateral(c.outer.lateral);
+  const Shell& shell = c.geometry.shell();
+  Interval range = range_of(c.outer.heat_flux);
+  for (const double flux : c.inner.heat_flux) range.include(flux);
   Chart chart;
-  chart.title = "Way to the steady state";
-  chart.x_label = {"Newton step", ""};
-  chart.y_label = {"residual", ""};
-  std::vector<double> shown;
-  for (const double r : c.residuals)
-    if (r > 0) shown.push_back(r);
-  if (shown.size() < 2) {
-    chart.note = "one step";
-    return chart;
-  }
-  chart.x = linear_axis({0, static_cast<double>(shown.size() - 1)}, ticks_across(f));
-  std::erase_if(chart.x.ticks, [](const Tick& t) { return t.value != std::round(t.value); });
-  chart.y = logarithmic_axis(range_of(shown), ticks_upright(f));
-  chart.curves = {{count_up_to(shown.size()), shown, outer_ink, "", 2.5}};
+  chart.title = "Heat flux along the walls";
+  chart.x_label = {lateral_name(shell.shape), lateral.unit};
+  chart.y_label = {"heat flux outwards", "<i>k</i> \u0394<i>T</i>/<i>d</i>"};
+  chart.x =
+      linear_axis({lateral(shell.lateral_begin), lateral(shell.lateral_end)}, ticks_across(f));
+  chart.y = linear_axis(with_margin(range, 0.06), ticks_upright(f));
+  chart.curves = {{places, c.outer.heat_flux, outer_ink, "outer wall", 2.5},
+                  {places, c.inner.heat_flux, inner_ink, "inner wall", 2.5}};
   return chart;
 }
 
 void draw_charts(Canvas& canvas, const PictureContents& c, const PictureLayout& layout) {
   const std::vector<Chart> charts = profile_charts(c, layout);
   for (std::size_t k = 0; k < charts.size(); ++k) draw(canvas, charts[k], layout.profiles[k]);
-  draw(canvas,
-       c.state.empty() ? heat_flow_chart(c, layout.history) : residual_chart(c, layout.history),
+  draw(canvas, c.state.empty() ? heat_flow_chart(c, layout.history) : wall_chart(c, layout.history),
        layout.history);
 }
 
@@ -312,8 +316,8 @@ void draw_run(const std::string& path, const Snapshot& s, const std::string& his
   });
 }
 
-void draw_state(const std::string& path, const SteadyState& s, const std::vector<double>& residuals,
-                const std::string& at, const std::string& title, const PictureUnits& units) {
+void draw_state(const std::string& path, const SteadyState& s, const std::string& at,
+                const std::string& title, const PictureUnits& units) {
   const Decomposition& d = s.snapshot.temperature.decomposition();
   std::vector<double> temperature = gather_to_first(s.snapshot.temperature);
   std::vector<double> stream_function = gather_to_first(s.snapshot.stream_function);
@@ -330,7 +334,8 @@ void draw_state(const std::string& path, const SteadyState& s, const std::vector
     contents.history.temperature_inner = {s.row.temperature_inner};
     contents.history.temperature_outer = {s.row.temperature_outer};
     contents.state = state_heading(s, at, units);
-    contents.residuals = residuals;
+    contents.inner = s.snapshot.inner;
+    contents.outer = s.snapshot.outer;
     write_atomically(path, picture(contents));
   });
 }

@@ -51,7 +51,7 @@ struct PictureContents {
   HeatFlowHistory history;
   PictureUnits units;
   std::string state = {};  ///< markup that stands instead of time and step; empty: not a state
-  std::vector<double> residuals = {};  ///< of Newton's method, of a state that it found
+  WallTrace inner = {}, outer = {};  ///< of such a state: their heat flux is shown
 };
 
 /// Temperatures that the colours span: those of all cells and of both walls.
@@ -68,10 +68,10 @@ std::string picture(const PictureContents&);
 void draw_run(const std::string& path, const Snapshot&, const std::string& history_path,
               const std::string& title, const PictureUnits&);
 
-/// Draws a steady state with the way Newton's method took to it, in the same way. `at`: what is
-/// said of it beside its numbers, plain text; may be empty.
-void draw_state(const std::string& path, const SteadyState&, const std::vector<double>& residuals,
-                const std::string& at, const std::string& title, const PictureUnits&);
+/// Draws a steady state in the same way, with the heat flux along the walls. `at`: what is said of
+/// it beside its numbers, plain text; may be empty.
+void draw_state(const std::string& path, const SteadyState&, const std::string& at,
+                const std::string& title, const PictureUnits&);
 
 /// File of picture n, relative to the run folder.
 std::string picture_name(std::size_t n);

@@ -54,7 +54,7 @@ std::string newton_table(const std::vector<NewtonStep>& steps) {
        "root mean square of dT/dt, over heat flow through heat capacity of the shell"},
       {"pseudo_time", "d^2/kappa",
        "length of the step; inf: a full Newton step. Of a march, the time it has reached"},
-      {"linear_iterations", "1", "of the linear solver; 0: none, or a direct one"},
+      {"linear_iterations", "1", "of the linear solver"},
   }};
   std::string text = table_head("lidwright way to the steady state", columns);
   for (const NewtonStep& s : steps) {
