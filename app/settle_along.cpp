@@ -76,7 +76,7 @@ BranchRow BranchWalk::row_of(const BranchPoint& p) {
   const Case c = cases_.at(p.parameter);
   const StabilityVerdict verdict = judge_stability(
       growth_rates(c.model, c.settle.flux, p.state.snapshot.temperature, growth_rates_of_a_point),
-      c.model.shell.sides, convects(p.state));
+      c.model.shell.sides, convects(p.state.row));
   if (verdict.leading >= 0) row.leading = verdict.leader();
   return row;
 }

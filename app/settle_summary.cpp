@@ -19,7 +19,7 @@ constexpr double at_rest = 1e-3;
 std::string heading(const Case& c) { return c.title.empty() ? "" : c.title + "\n"; }
 
 std::string hint(const SteadyState& s) {
-  if (!s.converged || convects(s)) return "";
+  if (!s.converged || convects(s.row)) return "";
   return "  conduction            carries the heat alone; from another start (initial.modes, "
          "initial.noise,\n                        initial.from) it may convect\n";
 }
@@ -45,11 +45,11 @@ std::string sentence(const StabilityVerdict& v) {
 
 }  // namespace
 
-bool convects(const SteadyState& s) { return s.row.velocity_rms >= at_rest; }
+bool convects(const HistoryRow& r) { return r.velocity_rms >= at_rest; }
 
 std::string end_of(const SteadyState& s) {
   if (!s.converged) return s.remark == "stopped" ? "interrupted" : "not steady";
-  return convects(s) ? "steady" : "does not convect";
+  return convects(s.row) ? "steady" : "does not convect";
 }
 
 std::vector<SummaryEntry> settle_entries(const Case& c, const SteadyState& s, std::size_t steps,
@@ -79,7 +79,7 @@ std::vector<SummaryEntry> settle_entries(const Case& c, const SteadyState& s, st
 std::string settle_for_people(const Case& c, const SteadyState& s, std::size_t steps,
                               double seconds) {
   HistoryRow row = s.row;
-  if (!convects(s)) row.work_mismatch = 0;  // of nothing with nothing
+  if (!convects(s.row)) row.work_mismatch = 0;  // of nothing with nothing
   return fmt::format(
       "{}{}: {} x {} cells, {} Newton steps in {}\n{}{}"
       "  residual              {:.1e}; at most {:.1g} was asked for   [heat flow/heat capacity]\n",
@@ -152,6 +152,7 @@ std::string branch_for_people(const Case& c, const BranchParameter& p,
                    r.row.nusselt_outer, r.row.nusselt_inner, r.row.velocity_rms,
                    r.row.temperature_mean);
     if (growth) fmt::format_to(out, " {:>12.5g} {:>12.5g}", r.leading.growth, r.leading.frequency);
+    if (!convects(r.row)) text += "   does not convect";
     text += r.backwards ? "   beyond a fold\n" : "\n";
   }
   return text;

@@ -14,8 +14,8 @@ namespace lidwright {
 
 /// "steady", "does not convect", "not steady" or "interrupted".
 std::string end_of(const SteadyState&);
-/// So slow a flow carries no heat to speak of.
-bool convects(const SteadyState&);
+/// A slower flow carries no heat to speak of.
+bool convects(const HistoryRow&);
 
 /// `steps`: Newton steps on all grids.
 std::vector<SummaryEntry> settle_entries(const Case&, const SteadyState&, std::size_t steps,

@@ -95,7 +95,7 @@ void Extras::add_bars(const std::vector<SteadyState>& states) {
 void Extras::add_stability(const SteadyState& s) {
   const StabilityVerdict verdict = judge_stability(
       growth_rates(job_.c.model, job_.c.settle.flux, s.snapshot.temperature, growth_rates_shown),
-      job_.c.model.shell.sides, convects(s));
+      job_.c.model.shell.sides, convects(s.row));
   write_text(job_.session.comm(), paths_.growth_rates(), growth_table(verdict));
   entries_ = stability_entries(verdict);
   text_ += stability_for_people(verdict);
