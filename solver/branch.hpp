@@ -13,11 +13,11 @@ namespace lidwright {
 /// A steady state on the branch.
 struct BranchPoint {
   double parameter = 0;
-  bool asked_for = false;   ///< one of the values asked for, met exactly; else a step on the way
-  bool backwards = false;   ///< the parameter falls along the branch here: beyond a fold
+  bool asked_for = false;  ///< one of the values asked for, met exactly; else a step on the way
+  bool backwards = false;  ///< the parameter falls along the branch here: beyond a fold
   double residual = 0;
   int newton_steps = 0;
-  SteadyState state;        ///< without snapshot where not asked for
+  SteadyState state;  ///< without snapshot where not asked for
 };
 
 struct BranchRequest {

@@ -61,8 +61,7 @@ class Guess {
     return seen_.back().change < seen_[seen_.size() - 2].change;
   }
   bool exhausted(long most_steps) const {
-    return march_.time() >= settings_.most_time || march_.steps() >= most_steps ||
-           keeps_changing();
+    return march_.time() >= settings_.most_time || march_.steps() >= most_steps || keeps_changing();
   }
   const CellField& temperature() const { return march_.temperature(); }
   const std::vector<Seen>& seen() const { return seen_; }

@@ -1,12 +1,10 @@
 #include "solver/neutral_modes.hpp"
 
-#include <slepceps.h>
-
 #include <Eigen/SparseCholesky>
 #include <algorithm>
 #include <cmath>
 
-#include "mesh/petsc.hpp"
+#include "solver/eigenvalue_library.hpp"
 #include "solver/solve_error.hpp"
 
 namespace lidwright {
@@ -18,15 +16,6 @@ using Vector = Eigen::VectorXd;
 /// where those of a stable state crowd; a first look has a `coarse_error`, results `fine_error`.
 constexpr double noise = 1e-7, coarse_error = 2e-8, fine_error = 1e-11;
 constexpr int most_restarts = 2000;
-
-/// SLEPc, while it is needed.
-class EigenvalueLibrary {
- public:
-  EigenvalueLibrary() { check(SlepcInitializeNoArguments()); }
-  ~EigenvalueLibrary() { SlepcFinalize(); }
-  EigenvalueLibrary(const EigenvalueLibrary&) = delete;
-  EigenvalueLibrary& operator=(const EigenvalueLibrary&) = delete;
-};
 
 /// B, applied by substitution.
 class RestResponse {

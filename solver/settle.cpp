@@ -8,9 +8,9 @@
 #include <memory>
 #include <stdexcept>
 
-#include "mesh/gather.hpp"
 #include "solver/first_guess.hpp"
 #include "solver/first_rank.hpp"
+#include "solver/found.hpp"
 #include "solver/initial.hpp"
 #include "solver/newton.hpp"
 
@@ -38,27 +38,6 @@ int halvings(const Grid& grid, int coarsest) {
     ++times;
   return times;
 }
-
-StoredTemperature stored(const CellField& t) {
-  const Geometry& g = t.decomposition().geometry();
-  StoredTemperature s;
-  s.shell = g.shell();
-  for (int i = 0; i <= g.radial_cells(); ++i) s.face_radius.push_back(g.face_radius(i));
-  for (int j = 0; j <= g.lateral_cells(); ++j) s.face_lateral.push_back(g.face_lateral(j));
-  s.values = gather_to_first(t);
-  return s;
-}
-
-/// A temperature found on one grid, on the first rank.
-struct Found {
-  Grid grid;
-  bool converged = false;
-  double residual = 0;
-  std::string remark;
-  std::vector<NewtonStep> steps;
-  StoredTemperature temperature;
-  std::vector<double> psi;
-};
 
 /// On the first rank: from the coarsest grid on which a steady state can be had to the model's own.
 class Ladder {
@@ -92,7 +71,7 @@ Found Ladder::solve(int times, const StoredTemperature& from) {
   const Model model = halved_model(times);
   SteadyEquations equations(model, settings_.flux);
   CoupledSolver solver(settings_.linear);
-  Found found{model.grid, false, 0, {}, {}, {}, {}};
+  Found found;
   InitialSettings start;
   if (from.values.empty()) start = initial_;
   const auto take = [&](const NewtonOutcome& outcome) {
@@ -112,9 +91,7 @@ Found Ladder::solve(int times, const StoredTemperature& from) {
   if (!found.converged && !stopped_)
     take(settle_by_marching(equations, solver, settings_, start, from,
                             times > 0 ? steps_on_coarse_grids : steps_on_the_grid, observer_));
-  found.residual = equations.residual();
-  found.temperature = stored(equations.temperature());
-  found.psi = gather_to_first(equations.view().psi);
+  found.keep(equations);
   reached_ = times;
   return found;
 }
@@ -142,42 +119,6 @@ std::vector<Found> Ladder::climb(int grids) {
   return found;
 }
 
-/// The state on all ranks, with what is measured on it.
-SteadyState share(const Model& model, const SettleSettings& settings, const Found& found,
-                  MPI_Comm comm) {
-  Model on_grid = model;
-  on_grid.grid = found.grid;
-  const auto d = decompose(on_grid, comm);
-  Power power(d, model.walls);
-  const HeatOperator heat(d, model.walls, model.heat, settings.flux, model.reference);
-  CellField temperature(d);
-  CornerField psi(d);
-  scatter_from_first(found.temperature.values, temperature);
-  scatter_from_first(found.psi, psi);
-  power.set_viscosity(viscosity_of(model.viscosity, temperature));
-  const StateView view{power, heat, temperature, psi, model.rayleigh};
-  SteadyState s{found.grid,    found.converged,      found.residual, found.remark,
-                measure(view), snapshot(view, true), found.steps};
-  const double passing = std::abs(s.row.heat_flow_outer);
-  const double net = s.row.heat_flow_inner - s.row.heat_flow_outer + s.row.heat_source +
-                     s.row.viscous_heating - s.row.adiabatic_cooling;
-  s.row.heat_budget_residual = passing > 0 ? net / passing : 0;
-  return s;
-}
-
-/// Plain data of what the first rank found, on all ranks (fields stay on the first).
-void broadcast(Found& f, MPI_Comm comm) {
-  int numbers[4] = {f.grid.radial, f.grid.lateral, f.converged ? 1 : 0,
-                    static_cast<int>(f.remark.size())};
-  MPI_Bcast(numbers, 4, MPI_INT, 0, comm);
-  f.grid.radial = numbers[0];
-  f.grid.lateral = numbers[1];
-  f.converged = numbers[2] != 0;
-  f.remark.resize(static_cast<std::size_t>(numbers[3]));
-  MPI_Bcast(f.remark.data(), numbers[3], MPI_CHAR, 0, comm);
-  MPI_Bcast(&f.residual, 1, MPI_DOUBLE, 0, comm);
-}
-
 }  // namespace
 
 std::vector<SteadyState> settle(const Model& model, const InitialSettings& initial,
@@ -192,19 +133,7 @@ std::vector<SteadyState> settle(const Model& model, const InitialSettings& initi
   on_first_rank_or_throw(comm, "not enough memory for this grid; use fewer cells", [&] {
     found = Ladder(model, initial, start, settings, observer).climb(grids);
   });
-  int count = static_cast<int>(found.size());
-  MPI_Bcast(&count, 1, MPI_INT, 0, comm);
-  found.resize(static_cast<std::size_t>(count));
-  std::vector<SteadyState> states;
-  for (Found& f : found) {
-    Grid grid = model.grid;  // with its gradings
-    broadcast(f, comm);
-    grid.radial = f.grid.radial;
-    grid.lateral = f.grid.lateral;
-    f.grid = grid;
-    states.push_back(share(model, settings, f, comm));
-  }
-  return states;
+  return share_all(model, settings.flux, found, comm);
 }
 
 }  // namespace lidwright

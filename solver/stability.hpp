@@ -2,8 +2,8 @@
 
 #include <vector>
 
-#include "solver/settings.hpp"
 #include "mesh/field.hpp"
+#include "solver/settings.hpp"
 
 /// Does a steady state last? The eigenvalues of the equations linearised about it.
 namespace lidwright {
