@@ -10,6 +10,7 @@ enum class ExitCode : int {
   NotSolved = 3,    ///< the numerics failed; the last checkpoint stands
   NotWritten = 4,   ///< a result could not be written
   Interrupted = 5,  ///< stopped by a signal or the wall-clock limit; a checkpoint was written
+  Disagrees = 6,    ///< verify: a value of ours differs from a published one, or is unresolved
 };
 
 }  // namespace lidwright

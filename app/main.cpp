@@ -9,6 +9,7 @@
 #include "app/exit_code.hpp"
 #include "app/march_verb.hpp"
 #include "app/onset_verb.hpp"
+#include "app/verify_verb.hpp"
 #include "io/atomic_file.hpp"
 #include "io/case_file.hpp"
 #include "io/provenance.hpp"
@@ -95,6 +96,22 @@ void add_onset(CLI::App& app, OnsetRequest& request) {
       "--no-progress", [&] { request.progress = ProgressMode::Never; }, "Show no progress");
 }
 
+void add_verify(CLI::App& app, VerifyRequest& request) {
+  CLI::App* verb =
+      app.add_subcommand("verify", "Run published benchmarks and compare")->group("Verbs");
+  verb->add_option("NAME", request.names, "Benchmarks to run [all quick ones]");
+  verb->add_flag("--all", request.all, "The slow benchmarks and values too");
+  verb->add_flag("--list", request.list, "Say which benchmarks there are");
+  verb->add_option("--csv", request.csv, "Write the table to FILE too")->type_name("FILE");
+  verb->add_option("--from", request.from, "Folder of benchmarks [the program's own]")
+      ->type_name("FOLDER");
+  verb->add_flag_callback(
+      "--progress", [&] { request.progress = ProgressMode::Always; },
+      "Show progress, also without a terminal");
+  verb->add_flag_callback(
+      "--no-progress", [&] { request.progress = ProgressMode::Never; }, "Show no progress");
+}
+
 void print_help(const CLI::App& app, const CLI::ParseError& e) {
   std::ostringstream text;
   app.exit(e, text, text);
@@ -104,19 +121,21 @@ void print_help(const CLI::App& app, const CLI::ParseError& e) {
 
 /// CLI11 reports a misspelt verb as a missing one.
 std::string command_line_message(const CLI::ParseError& e, int argc, char** argv) {
-  if (argc < 2) return "name a verb: march, onset or keys";
+  if (argc < 2) return "name a verb: march, onset, verify or keys";
   if (e.get_name() == "RequiredError")
-    return fmt::format("'{}' is not a verb of this program (march, onset, keys)", argv[1]);
+    return fmt::format("'{}' is not a verb of this program (march, onset, verify, keys)", argv[1]);
   return e.what();
 }
 
 ExitCode run_verb(const Session& session, const CLI::App& app, const MarchRequest& request,
-                  const OnsetRequest& onset_request, bool markdown) {
+                  const OnsetRequest& onset_request, const VerifyRequest& verification,
+                  bool markdown) {
   if (app.got_subcommand("keys")) {
     if (session.first()) fmt::print("{}", markdown ? keys_as_markdown() : keys_as_text());
     return ExitCode::Done;
   }
   if (app.got_subcommand("onset")) return onset(session, onset_request);
+  if (app.got_subcommand("verify")) return verify(session, verification);
   if (request.case_file.empty() && request.resume.empty())
     throw InputError(
         "march: name a case file, or a run folder with --resume; see `lidwright march --help`");
@@ -147,12 +166,15 @@ ExitCode run(const Session& session, int argc, char** argv) {
   app.formatter(std::make_shared<PlainHelp>());
   app.footer(
       "Exit codes: 0 done, 1 fault of the program, 2 bad input, 3 not solved,\n"
-      "4 not written, 5 interrupted with a checkpoint written (go on with --resume).");
+      "4 not written, 5 interrupted with a checkpoint written (go on with --resume),\n"
+      "6 a published benchmark disagrees (verify).");
   MarchRequest request;
   OnsetRequest onset_request;
+  VerifyRequest verification;
   bool markdown = false;
   add_march(app, request);
   add_onset(app, onset_request);
+  add_verify(app, verification);
   app.add_subcommand("keys", "Print the reference of all case keys")
       ->group("Verbs")
       ->add_flag("--markdown", markdown, "As a Markdown page (docs/case.md)");
@@ -168,7 +190,7 @@ ExitCode run(const Session& session, int argc, char** argv) {
                   ExitCode::BadInput);
   }
   try {
-    return run_verb(session, app, request, onset_request, markdown);
+    return run_verb(session, app, request, onset_request, verification, markdown);
   } catch (const InputError& e) {
     return report(session, e.what(), ExitCode::BadInput);
   } catch (const SolveError& e) {

@@ -47,10 +47,9 @@ ErrorBar bar_of(Convergence seen, double finest, double e1, double e2) {
       return extrapolate(finest, e2, larger(e2, e1 / 4), 2, doubtful_factor);
     case Convergence::Slow:
       return extrapolate(finest, e2, e2, 1, doubtful_factor);
-    case Convergence::Oscillating:
-      return extrapolate(finest, e2, larger(e2, e1), 2, doubtful_factor);
     case Convergence::TwoGrids:
       return extrapolate(finest, e2, e2, 2, doubtful_factor);
+    case Convergence::Oscillating:
     case Convergence::Diverging:
     case Convergence::Flat:
       break;

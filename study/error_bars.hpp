@@ -17,7 +17,7 @@ enum class Convergence {
   Sound,        ///< monotone, 1.5 <= p <= 2.5 about the scheme's order 2: observed order, F = 1.25
   Steep,        ///< monotone, p > 2.5: order 2, F = 3, of the larger of e2 and e1/4
   Slow,         ///< monotone, p < 1.5: order 1, F = 3
-  Oscillating,  ///< e1 and e2 of unlike sign: order 2, F = 3, of the larger of e2 and e1
+  Oscillating,  ///< e1 and e2 of unlike sign: no extrapolation; F = 3, of the larger of them
   Diverging,    ///< |e2| >= |e1|: no extrapolation; F = 3, of e2
   Flat,         ///< steps at the solver's tolerance: no extrapolation; F = 3, of the larger step
   TwoGrids,     ///< no order can be observed: order 2, F = 3
