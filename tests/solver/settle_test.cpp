@@ -55,21 +55,21 @@ InitialSettings rolls(double waves, double amplitude = 0.12) {
 
 class Quadratic : public testing::TestWithParam<std::tuple<Region, double>> {};
 
-/// The order of the last steps, log(r3/r2)/log(r2/r1), is 2; a residual at round-off tells nothing,
-/// so the last one above it counts.
+/// The order of the last steps, log(r3/r2)/log(r2/r1), is 2. Residuals below 1e-11 are those of
+/// round-off and of the linear solver; the last three above count.
 TEST_P(Quadratic, LastStepsConvergeQuadratically) {
   const auto& [region, contrast] = GetParam();
   SettleSettings settings;
   settings.coarsest = region.grid.radial;  // one grid only
-  const SteadyState state = settle(convecting(region, contrast), rolls(region.waves), {}, settings,
-                                   1, PETSC_COMM_SELF)
-                                .back();
+  const SteadyState state =
+      settle(convecting(region, contrast), rolls(region.waves), {}, settings, 1, PETSC_COMM_SELF)
+          .back();
   ASSERT_TRUE(state.converged) << state.remark;
   EXPECT_LE(state.residual, 1e-10);
   EXPECT_GT(state.row.nusselt_outer, 1.1) << "it does not convect";
   std::vector<double> r;
   for (const NewtonStep& s : state.steps)
-    if (s.step >= 0 && s.residual > 1e-13) r.push_back(s.residual);
+    if (s.step >= 0 && s.residual > 1e-11) r.push_back(s.residual);
   ASSERT_GE(r.size(), 3u);
   const std::size_t n = r.size();
   const double order = std::log(r[n - 1] / r[n - 2]) / std::log(r[n - 2] / r[n - 3]);
@@ -139,8 +139,7 @@ TEST(Settle, TheLimitedFluxHasASteadyStateToo) {
 }
 
 TEST(Settle, AStartAtRestStaysAtRest) {
-  const SteadyState s =
-      settle(convecting(box(16), 1), {}, {}, {}, 1, PETSC_COMM_SELF).back();
+  const SteadyState s = settle(convecting(box(16), 1), {}, {}, {}, 1, PETSC_COMM_SELF).back();
   EXPECT_TRUE(s.converged);
   EXPECT_NEAR(s.row.nusselt_outer, 1, 1e-12);
 }
@@ -155,9 +154,10 @@ TEST(Settle, SaysThatAGridCannotBeHalved) {
 }
 
 TEST(Settle, StopsWhenToldTo) {
-  const SteadyState s = settle(convecting(box(16), 1), rolls(1), {}, {}, 1, PETSC_COMM_SELF,
-                               [](const NewtonStep&) { return false; })
-                            .back();
+  const SteadyState s =
+      settle(convecting(box(16), 1), rolls(1), {}, {}, 1, PETSC_COMM_SELF, [](const NewtonStep&) {
+        return false;
+      }).back();
   EXPECT_FALSE(s.converged);
 }
 
@@ -207,8 +207,8 @@ TEST(Stability, APatternMayTurnRoundAFullCircle) {
 
 /// With contrast 1e4 convection sets in below its critical Rayleigh number: the branch folds and
 /// goes back, now unstable, to the conductive state, which it meets where that loses its stability:
-/// for cells of width 1 in a free layer near 150089, the least of all wavenumbers (at 3.473) of this
-/// project's table of linear theory (tests/reference/onset_expvisc.csv).
+/// for cells of width 1 in a free layer near 150089, the least of all wavenumbers (at 3.473) of
+/// this project's table of linear theory (tests/reference/onset_expvisc.csv).
 TEST(Branch, FoldsAndEndsAtTheOnset) {
   BranchRequest request;
   request.logarithmic = true;
@@ -225,8 +225,7 @@ TEST(Branch, FoldsAndEndsAtTheOnset) {
   hot.base = InitialBase::BoundaryLayers;
   hot.interior = 0.8;
   hot.modes = {{1, 1, 0.2}};
-  const SteadyState start =
-      settle(request.model_at(2e5), hot, {}, {}, 1, PETSC_COMM_SELF).back();
+  const SteadyState start = settle(request.model_at(2e5), hot, {}, {}, 1, PETSC_COMM_SELF).back();
   ASSERT_TRUE(start.converged);
   double onset = 0;
   const Branch branch = follow_branch(request, start.snapshot.temperature, {}, PETSC_COMM_SELF,
