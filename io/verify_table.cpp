@@ -73,9 +73,9 @@ std::string verify_close(const Tally& t, double seconds) {
   if (t.doubtful) text += fmt::format("; {} doubtful ones are shown, not judged", t.doubtful);
   if (t.bars)
     text += fmt::format(
-        "\nthe error bar holds the published value in {}; median width of a bar {:.2g} % of the "
-        "value",
-        share_text(t.contained, t.bars), 100 * t.median_width);
+        "\nthe error bar holds the published value in {}"
+        "\nmedian width of a bar {:.2g} %, median difference {:.2g} % of the published value",
+        share_text(t.contained, t.bars), 100 * t.median_width, 100 * t.median_difference);
   return text + fmt::format("\n{:.0f} s\n", seconds);
 }
 

@@ -118,7 +118,7 @@ Place Walk::tangent(const Place& at, const Place* former) {
   Eigen::VectorXd right = Eigen::VectorXd::Zero(u.size()), x;
   right.tail(u.cells()) = gain_by_p(at);
   solver_.set_matrix(equations->linearise(), 0);
-  solver_.hold(equations->turning(), equations->heat_rate());
+  solver_.hold(equations->turning(), equations->holding_rate());
   solver_.drop_factor();
   (void)solver_.solve(right, 1e-8, x);
   Place t{x.tail(u.cells()), 1};
@@ -140,7 +140,7 @@ std::optional<Walk::Kept> Walk::correct(Place& trial, const Place& direction) {
     if (n == most_corrections || equations->residual() > far) break;
     const Unknowns& u = equations->unknowns();
     solver_.set_matrix(equations->linearise(), 0);
-    solver_.hold(equations->turning(), equations->heat_rate());
+    solver_.hold(equations->turning(), equations->holding_rate());
     const auto response = [&](const Eigen::VectorXd& gain) {
       Eigen::VectorXd right = Eigen::VectorXd::Zero(u.size()), x;
       right.tail(u.cells()) = gain;

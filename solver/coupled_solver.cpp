@@ -228,7 +228,7 @@ void CoupledSolver::factorise() {
     // A dense row would fill the factor: a little of M everywhere keeps it regular instead.
     SparseMatrix regular = matrix_;
     for (long c = 0; c < capacity_.size(); ++c)
-      regular.coeffRef(flow_ + c, flow_ + c) += 1e-3 * hold_rate_ * capacity_[c];
+      regular.coeffRef(flow_ + c, flow_ + c) += hold_rate_ * capacity_[c];
     factor_->factorise(regular);
   }
   ready_ = true;

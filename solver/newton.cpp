@@ -57,7 +57,7 @@ double Newton::forcing_term() const { return std::clamp(0.03 * equations_.residu
 Eigen::VectorXd Newton::change_of_temperature(double pseudo_time) {
   const Unknowns& u = equations_.unknowns();
   solver_.set_matrix(equations_.linearise(), std::isinf(pseudo_time) ? 0 : 1 / pseudo_time);
-  solver_.hold(equations_.turning(), equations_.heat_rate());
+  solver_.hold(equations_.turning(), equations_.holding_rate());
   Eigen::VectorXd right = Eigen::VectorXd::Zero(u.size()), x;
   right.tail(u.cells()) = equations_.gain();
   linear_iterations_ = solver_.solve(right, forcing_term(), x).iterations;

@@ -83,7 +83,7 @@ Found Ladder::solve(int times, const StoredTemperature& from) {
   equations.set_temperature(initial_temperature(equations.heat(), start, from));
   // A start that is far away, like a disturbed conductive one, must not fall back on an unstable
   // state near by: it is marched first.
-  if (!from.values.empty() || equations.residual() == 0) {
+  if (!from.values.empty() || equations.residual() <= settings_.tolerance) {
     SettleSettings few = settings_;
     few.most_steps = std::min(settings_.most_steps, 25);
     take(newton(equations, solver, few, infinity, observer_));

@@ -15,8 +15,9 @@ struct GrowthRate {
 };
 
 /// The leading `count` growth rates about a steady state, fastest growing first, by shift-invert
-/// Krylov-Schur iterations (SLEPc; Stewart 2001, SIAM J. Matrix Anal. Appl. 23, 601) about 0 and
-/// about the rate of overturning: those are found that are near either. On a full circle one of
+/// Krylov-Schur iterations (SLEPc; Stewart 2001, SIAM J. Matrix Anal. Appl. 23, 601) about 0, about
+/// the rate of overturning and about half the fastest growth that the Rayleigh number allows: those
+/// are found that are near one of them. On a full circle one of
 /// them is 0, that of turning the pattern. Computed on the first rank. Collective; throws
 /// SolveError.
 std::vector<GrowthRate> growth_rates(const Model&, HeatFlux, const CellField& temperature,

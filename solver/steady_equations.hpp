@@ -25,6 +25,9 @@ class SteadyEquations {
   double residual() const { return residual_; }
   /// That rate itself.
   double heat_rate() const { return heat_rate_; }
+  /// By which turning is held (CoupledSolver::hold): far below the rates of other disturbances, as
+  /// a coarse grid may have a phase of its own for the pattern, which Newton's method must reach.
+  double holding_rate() const { return 1e-3 * heat_rate_; }
   /// dT/d(lateral) of each cell, normalised to v . M v = 1: the turning of the pattern. Empty where
   /// the shell is not periodic or the temperature does not vary along it.
   Eigen::VectorXd turning() const;

@@ -52,7 +52,7 @@ Comparison not_solved(const Expectation& expected) {
 
 Tally tally(std::span<const Comparison> comparisons) {
   Tally t;
-  std::vector<double> widths;
+  std::vector<double> widths, differences;
   for (const Comparison& c : comparisons) {
     if (!c.judged()) {
       ++t.doubtful;
@@ -63,8 +63,10 @@ Tally tally(std::span<const Comparison> comparisons) {
     ++t.bars;
     t.contained += c.contained;
     widths.push_back(2 * c.ours.half_width / std::abs(c.expected.value));
+    differences.push_back(std::abs(c.ours.value / c.expected.value - 1));
   }
   t.median_width = median(std::move(widths));
+  t.median_difference = median(std::move(differences));
   return t;
 }
 

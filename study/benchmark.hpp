@@ -95,8 +95,9 @@ Comparison not_solved(const Expectation&);
 /// Of the judged comparisons.
 struct Tally {
   int agree = 0, marginal = 0, differ = 0, unresolved = 0, not_solved = 0, doubtful = 0;
-  int bars = 0, contained = 0;  ///< ours that stand beside a value; those that hold it
-  double median_width = 0;      ///< of 2 half width / |published|
+  int bars = 0, contained = 0;   ///< ours that stand beside a value; those that hold it
+  double median_width = 0;       ///< of 2 half width / |published|
+  double median_difference = 0;  ///< of |ours - published| / |published|
 };
 Tally tally(std::span<const Comparison>);
 

@@ -95,6 +95,25 @@ TEST_F(BenchmarkFolder, IsFoundByItsFile) {
               HasSubstr("holds no benchmarks"));
 }
 
+TEST_F(BenchmarkFolder, StartsAVariantFromOneAboveIt) {
+  const std::string names = "quantity,variant,settings,start,value,mark,source\n";
+  const std::string first = "velocity_rms,first,,,1,analytic,own\n";
+  const std::string second = "velocity_rms,second,shell.width=2,first,1,analytic,own\n";
+  put("expected.csv", names + first + second);
+  EXPECT_EQ(read().variants[1].start, "first");
+  put("expected.csv", names + second + first);
+  EXPECT_THAT(refusal(), HasSubstr("expected.csv:2: start = 'first': must be the name"));
+}
+
+TEST_F(BenchmarkFolder, TakesAnotherCaseBesideTheFirst) {
+  put("wide.toml",
+      std::string(box).replace(std::string(box).find("\"box\""), 5, "\"box\"\nwidth = 3"));
+  put("expected.csv",
+      "quantity,case,value,mark,source\nvelocity_rms,,1,analytic,own\n"
+      "velocity_rms,wide.toml,1,analytic,own\n");
+  EXPECT_EQ(read().variants[1].problem.model.shell.lateral_end, 3);
+}
+
 TEST_F(BenchmarkFolder, RefusesRowsThatCannotBeMeant) {
   expect_refused("velocity_rns,,1,,analytic,,own\n",
                  "expected.csv:2: unknown quantity 'velocity_rns' (did you mean 'velocity_rms'?)");

@@ -91,7 +91,6 @@ TEST(CaseFile, DefaultsAreThoseOfTheStructs) {
   EXPECT_TRUE(parts(made.settle) == parts(SettleSettings{}));
   EXPECT_TRUE(parts(made.output) == parts(OutputSettings{}));
   EXPECT_EQ(made.model.viscosity.highest, std::numeric_limits<double>::infinity());
-  EXPECT_TRUE(made.model.viscosity.steady());
   EXPECT_EQ(made.model.walls.inner.slip, Slip::Free);
   EXPECT_FALSE(made.body);
 }

@@ -67,9 +67,12 @@ TEST(VerifyTable, ClosesWithWhatCounts) {
   t.bars = 20;
   t.contained = 19;
   t.median_width = 5e-4;
+  t.median_difference = 1e-5;
   const std::string close = verify_close(t, 12);
   EXPECT_THAT(close, HasSubstr("19 of 20 (95.0 %) values agree, 1 differ; 2 doubtful"));
-  EXPECT_THAT(close, HasSubstr("in 19 of 20 (95.0 %); median width of a bar 0.05 %"));
+  EXPECT_THAT(
+      close,
+      HasSubstr("in 19 of 20 (95.0 %)\nmedian width of a bar 0.05 %, median difference 0.001 %"));
 }
 
 }  // namespace

@@ -59,6 +59,7 @@ TEST(Tallies, LeaveOutWhatIsDoubtful) {
   EXPECT_EQ(t.bars, 3);
   EXPECT_EQ(t.contained, 2);
   EXPECT_NEAR(t.median_width, 0.002, 1e-12);
+  EXPECT_NEAR(t.median_difference, 0.0015, 1e-12);
 }
 
 TEST(Rounding, IsHalfOfTheLastDigit) {
