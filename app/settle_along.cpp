@@ -53,7 +53,14 @@ class BranchWalk {
 
 BranchRequest BranchWalk::request() const {
   const Along& along = cases_.along();
-  return {[this](double value) { return cases_.at(value).model; }, along.values, along.logarithmic};
+  const auto model_at = [this](double value) {
+    try {
+      return cases_.at(value).model;
+    } catch (const InputError& e) {
+      throw SolveError(e.what());  // a value that a step tried: a shorter one may do
+    }
+  };
+  return {model_at, along.values, along.logarithmic};
 }
 
 bool BranchWalk::see(const BranchPoint& p) {
@@ -89,7 +96,7 @@ void BranchWalk::write(const Branch& branch) {
     numbers.push_back(
         p.asked_for ? files.write(cases_.at(p.parameter), p.state, cases_.text_of(p.parameter))
                     : -1);
-  if (job_.request.stability && job_.session.first()) watch_.say("growth of disturbances");
+  if (job_.request.stability) watch_.say("growth of disturbances");
   for (std::size_t k = 0; k < branch.points.size(); ++k) {
     rows_.push_back(row_of(branch.points[k]));
     rows_.back().snapshot = numbers[k];

@@ -115,7 +115,7 @@ ExitCode settle_one(const SettleJob& job, const RunPaths& paths, SettleWatch& wa
   Extras extras(job, paths);
   if (found.converged && states.size() > 1) extras.add_bars(states);
   if (found.converged && job.request.stability) {
-    if (job.session.first()) watch.say("growth of disturbances");
+    watch.say("growth of disturbances");
     extras.add_stability(found);
   }
   watch.finish();
