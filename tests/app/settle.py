@@ -203,7 +203,7 @@ def refusals(scratch):
     def wrong_along(text, *words, **options):
         wrong(["--along", *words], "box.toml", "--along", text, **options)
 
-    for text in ("", "numbers.rayleigh", "numbers.rayleigh=1e4", "numbers.rayleigh=1e4:1e5", "numbers.rayleigh=a:1e5:3"):
+    for text in ("", "numbers.rayleigh", "numbers.rayleigh=1e4:1e5", "numbers.rayleigh=a:1e5:3"):
         wrong_along(text, "KEY=FROM:TO:COUNT")
     wrong_along("numbers.rayleigh=1e4:1e5:2.5", "KEY=FROM:TO:COUNT")
     wrong_along("numbers.rayleigh=1e4:inf:3", "finite")
