@@ -9,6 +9,7 @@
 #include "app/exit_code.hpp"
 #include "app/march_verb.hpp"
 #include "app/onset_verb.hpp"
+#include "app/settle_verb.hpp"
 #include "app/verify_verb.hpp"
 #include "io/atomic_file.hpp"
 #include "io/case_file.hpp"
@@ -36,7 +37,8 @@ class PlainHelp : public CLI::Formatter {
     if (app->get_name() == "march")
       return "Usage: lidwright march CASE [OPTIONS]\n"
              "       lidwright march --resume FOLDER [OPTIONS]\n";
-    if (app->get_name() == "onset") return "Usage: lidwright onset CASE [OPTIONS]\n";
+    if (app->get_name() == "onset" || app->get_name() == "settle")
+      return fmt::format("Usage: lidwright {} CASE [OPTIONS]\n", app->get_name());
     return CLI::Formatter::make_usage(app, std::move(name));
   }
 };
@@ -96,6 +98,31 @@ void add_onset(CLI::App& app, OnsetRequest& request) {
       "--no-progress", [&] { request.progress = ProgressMode::Never; }, "Show no progress");
 }
 
+void add_settle(CLI::App& app, SettleRequest& request) {
+  CLI::App* verb = app.add_subcommand("settle", "Find the steady state of a case")->group("Verbs");
+  verb->add_option("CASE", request.case_file, "Case file (TOML); see `lidwright keys`");
+  verb->add_option("--set", request.settings, "Change a key of the case; may be repeated")
+      ->allow_extra_args(false)
+      ->type_name("TABLE.KEY=VALUE");
+  verb->add_option("--into", request.into, "Folder for the results [runs/NAME_settle]")
+      ->type_name("FOLDER");
+  verb->add_flag("--overwrite", request.overwrite, "Replace a run that is in the folder");
+  verb->add_option("--along", request.along,
+                   "Follow the steady state along a key of the case,\n"
+                   "past folds, and keep it at COUNT values")
+      ->type_name("KEY=FROM:TO:COUNT");
+  verb->add_flag("--stability", request.stability,
+                 "Say whether small disturbances grow, and how fast");
+  verb->add_flag("--error-bars", request.error_bars,
+                 "Solve on a half and a quarter of the grid too, and\n"
+                 "extrapolate");
+  verb->add_flag_callback(
+      "--progress", [&] { request.progress = ProgressMode::Always; },
+      "Show progress, also without a terminal");
+  verb->add_flag_callback(
+      "--no-progress", [&] { request.progress = ProgressMode::Never; }, "Show no progress");
+}
+
 void add_verify(CLI::App& app, VerifyRequest& request) {
   CLI::App* verb =
       app.add_subcommand("verify", "Run published benchmarks and compare")->group("Verbs");
@@ -121,25 +148,34 @@ void print_help(const CLI::App& app, const CLI::ParseError& e) {
 
 /// CLI11 reports a misspelt verb as a missing one.
 std::string command_line_message(const CLI::ParseError& e, int argc, char** argv) {
-  if (argc < 2) return "name a verb: march, onset, verify or keys";
+  if (argc < 2) return "name a verb: march, settle, onset, verify or keys";
   if (e.get_name() == "RequiredError")
-    return fmt::format("'{}' is not a verb of this program (march, onset, verify, keys)", argv[1]);
+    return fmt::format("'{}' is not a verb of this program (march, settle, onset, verify, keys)",
+                       argv[1]);
   return e.what();
 }
 
-ExitCode run_verb(const Session& session, const CLI::App& app, const MarchRequest& request,
-                  const OnsetRequest& onset_request, const VerifyRequest& verification,
-                  bool markdown) {
+/// What the command line asks of each verb.
+struct Requests {
+  MarchRequest march;
+  SettleRequest settle;
+  OnsetRequest onset;
+  VerifyRequest verify;
+  bool markdown = false;
+};
+
+ExitCode run_verb(const Session& session, const CLI::App& app, const Requests& asked) {
   if (app.got_subcommand("keys")) {
-    if (session.first()) fmt::print("{}", markdown ? keys_as_markdown() : keys_as_text());
+    if (session.first()) fmt::print("{}", asked.markdown ? keys_as_markdown() : keys_as_text());
     return ExitCode::Done;
   }
-  if (app.got_subcommand("onset")) return onset(session, onset_request);
-  if (app.got_subcommand("verify")) return verify(session, verification);
-  if (request.case_file.empty() && request.resume.empty())
+  if (app.got_subcommand("onset")) return onset(session, asked.onset);
+  if (app.got_subcommand("settle")) return settle(session, asked.settle);
+  if (app.got_subcommand("verify")) return verify(session, asked.verify);
+  if (asked.march.case_file.empty() && asked.march.resume.empty())
     throw InputError(
         "march: name a case file, or a run folder with --resume; see `lidwright march --help`");
-  return march(session, request);
+  return march(session, asked.march);
 }
 
 ExitCode report(const Session& session, const std::string& message, ExitCode code) {
@@ -168,16 +204,14 @@ ExitCode run(const Session& session, int argc, char** argv) {
       "Exit codes: 0 done, 1 fault of the program, 2 bad input, 3 not solved,\n"
       "4 not written, 5 interrupted with a checkpoint written (go on with --resume),\n"
       "6 a published benchmark disagrees (verify).");
-  MarchRequest request;
-  OnsetRequest onset_request;
-  VerifyRequest verification;
-  bool markdown = false;
-  add_march(app, request);
-  add_onset(app, onset_request);
-  add_verify(app, verification);
+  Requests asked;
+  add_march(app, asked.march);
+  add_settle(app, asked.settle);
+  add_onset(app, asked.onset);
+  add_verify(app, asked.verify);
   app.add_subcommand("keys", "Print the reference of all case keys")
       ->group("Verbs")
-      ->add_flag("--markdown", markdown, "As a Markdown page (docs/case.md)");
+      ->add_flag("--markdown", asked.markdown, "As a Markdown page (docs/case.md)");
   try {
     app.parse(argc, argv);
   } catch (const CLI::ParseError& e) {
@@ -190,7 +224,7 @@ ExitCode run(const Session& session, int argc, char** argv) {
                   ExitCode::BadInput);
   }
   try {
-    return run_verb(session, app, request, onset_request, verification, markdown);
+    return run_verb(session, app, asked);
   } catch (const InputError& e) {
     return report(session, e.what(), ExitCode::BadInput);
   } catch (const SolveError& e) {

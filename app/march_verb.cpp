@@ -4,9 +4,9 @@
 
 #include <algorithm>
 #include <cmath>
-#include <filesystem>
 #include <optional>
 
+#include "app/run_start.hpp"
 #include "app/run_summary.hpp"
 #include "app/shared_case.hpp"
 #include "app/stop_signals.hpp"
@@ -27,15 +27,6 @@ using Clock = std::chrono::steady_clock;
 
 double seconds_since(Clock::time_point t) {
   return std::chrono::duration<double>(Clock::now() - t).count();
-}
-
-/// What two sessions of one run must share: everything but how long it goes and what it writes.
-std::string fingerprint(Case c) {
-  c.title.clear();
-  c.march = MarchSettings{};
-  c.settle = SettleSettings{};
-  c.output = OutputSettings{};
-  return write_case(c);
 }
 
 /// A run that is going on: the march, its files, and when which is written.
@@ -229,33 +220,17 @@ ExitCode Run::go_on() {
   return complete(end) ? ExitCode::Done : ExitCode::Interrupted;
 }
 
-std::string folder_for(const MarchRequest& request) {
-  if (!request.into.empty()) return request.into;
-  return "runs/" + std::filesystem::path(request.case_file).stem().string();
-}
-
-std::string stored_path(const MarchRequest& request, const Case& c) {
-  const std::filesystem::path from(c.initial.from);
-  return (from.is_absolute() ? from : std::filesystem::path(request.case_file).parent_path() / from)
-      .string();
-}
-
 ExitCode start_new(const Session& session, const MarchRequest& request, Clock::time_point start) {
   const Case c = shared_case(session.comm(), request.case_file, request.settings);
-  const ExistingRun existing = request.overwrite ? ExistingRun::Overwrite : ExistingRun::Refuse;
-  RunFolder::refuse_taken(session.comm(), folder_for(request), existing);
-  StoredTemperature stored;
-  if (!c.initial.from.empty()) stored = read_temperature(session.comm(), stored_path(request, c));
+  const std::string path = folder_for(request.into, request.case_file, "");
+  const ExistingRun existing = existing_run(request.overwrite);
+  RunFolder::refuse_taken(session.comm(), path, existing);
+  const StoredTemperature stored = stored_start(session.comm(), c);
   // Everything that bad input can spoil comes before the folder is made.
   auto march = or_bad_input([&] {
     return std::make_unique<March>(c.model, c.initial, stored, c.flow, c.heat, session.comm());
   });
-  RunFolder folder = RunFolder::create(session.comm(), folder_for(request), existing);
-  on_first_rank<OutputError>(session.comm(), [&] {
-    // First of all files, so that a run that is killed at any moment is known as one.
-    write_atomically(folder.paths().provenance(), provenance_mark);
-    write_atomically(folder.paths().case_file(), write_case(c));
-  });
+  RunFolder folder = start_folder(session.comm(), path, existing, c);
   return Run(session, request, c, std::move(folder), std::move(march), 0, start).go();
 }
 
@@ -275,6 +250,16 @@ CheckpointFile chosen_checkpoint(const Session& session, const MarchRequest& req
   return found[request.from_previous ? 1 : 0];
 }
 
+void refuse_steady_states(const Session& session, const std::string& folder) {
+  on_first_rank<InputError>(session.comm(), [&] {
+    if (holds_steady_states(folder))
+      throw InputError(
+          fmt::format("{0}: holds steady states, which do not go on in time; start a run from "
+                      "there, with initial.from = \"{0}\"",
+                      folder));
+  });
+}
+
 /// Before anything of the run is changed.
 void refuse_unfit_history(const Session& session, const std::string& path, long step) {
   on_first_rank<InputError>(session.comm(),
@@ -282,6 +267,7 @@ void refuse_unfit_history(const Session& session, const std::string& path, long 
 }
 
 ExitCode resume(const Session& session, const MarchRequest& request, Clock::time_point start) {
+  refuse_steady_states(session, request.resume);
   RunFolder folder = RunFolder::resume(session.comm(), request.resume);
   const RunPaths& paths = folder.paths();
   const CheckpointFile checkpoint = chosen_checkpoint(session, request, paths);

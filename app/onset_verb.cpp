@@ -1,15 +1,14 @@
 #include "app/onset_verb.hpp"
 
 #include <fmt/format.h>
-#include <unistd.h>
 
 #include <algorithm>
 #include <charconv>
 #include <chrono>
-#include <filesystem>
 #include <new>
 
 #include "app/onset_summary.hpp"
+#include "app/run_start.hpp"
 #include "app/shared_case.hpp"
 #include "app/stop_signals.hpp"
 #include "io/collective.hpp"
@@ -53,37 +52,11 @@ void refuse_coarse(const Case& c, bool error_bars) {
       error_bars ? ", or --no-error-bars" : ""));
 }
 
-/// The modes as they come: one line that is rewritten at a terminal, else a line now and then.
-class ModeProgress {
- public:
-  explicit ModeProgress(ProgressMode mode)
-      : terminal_(isatty(STDERR_FILENO) != 0),
-        on_(mode == ProgressMode::Always || (mode == ProgressMode::Automatic && terminal_)) {}
-  ~ModeProgress() {
-    if (on_ && terminal_) fmt::print(stderr, "\r\033[K");
-  }
-  ModeProgress(const ModeProgress&) = delete;
-  ModeProgress& operator=(const ModeProgress&) = delete;
-
-  void show(int number) {
-    const auto now = Clock::now();
-    if (!on_ || now - shown_ < std::chrono::milliseconds(terminal_ ? 200 : 5000)) return;
-    shown_ = now;
-    fmt::print(stderr, "{}mode {} done{}", terminal_ ? "\r\033[K" : "", number,
-               terminal_ ? "" : "\n");
-    std::fflush(stderr);
-  }
-
- private:
-  bool terminal_, on_;
-  Clock::time_point shown_{};
-};
-
 OnsetCurve watched_curve(const Model& model, const OnsetSettings& settings, ProgressMode progress) {
-  ModeProgress shown(progress);
+  WorkLine shown(progress);
   try {
     return onset_curve(model, settings, [&](int number) {
-      shown.show(number);
+      shown.show(fmt::format("mode {} done", number));
       return !stop_requested(MPI_COMM_SELF);
     });
   } catch (const std::bad_alloc&) {
@@ -121,11 +94,6 @@ Model model_of_fields(const Case& c, int number) {
 
 void write_results(const Session& session, const Case& c, const OnsetCurve& curve,
                    const RunPaths& paths) {
-  on_first_rank<OutputError>(session.comm(), [&] {
-    // First of all files, so that a folder is known as ours whatever happens next.
-    write_atomically(paths.provenance(), provenance_mark);
-    write_atomically(paths.case_file(), write_case(c));
-  });
   Provenance provenance(session.comm(), paths.provenance(), 0);
   const int number = curve.shape.number;
   SnapshotWriter(session.comm(), paths)
@@ -139,11 +107,6 @@ void write_results(const Session& session, const Case& c, const OnsetCurve& curv
   if (session.first()) entries = onset_entries(c, curve);
   write_summary(session.comm(), paths.summary(), entries);
   provenance.end_session(0, curve.interrupted ? "interrupted" : "complete");
-}
-
-std::string folder_for(const OnsetRequest& request) {
-  if (!request.into.empty()) return request.into;
-  return "runs/" + std::filesystem::path(request.case_file).stem().string() + "_onset";
 }
 
 OnsetSettings settings_of(const OnsetRequest& request) {
@@ -164,10 +127,11 @@ ExitCode onset(const Session& session, const OnsetRequest& request) {
   const Case c = shared_case(session.comm(), request.case_file, request.settings);
   refuse_coarse(c, settings.error_bars);
   or_bad_input([&] { return decompose(c.model, session.comm()); });
-  const ExistingRun existing = request.overwrite ? ExistingRun::Overwrite : ExistingRun::Refuse;
-  RunFolder::refuse_taken(session.comm(), folder_for(request), existing);
+  const std::string path = folder_for(request.into, request.case_file, "_onset");
+  const ExistingRun existing = existing_run(request.overwrite);
+  RunFolder::refuse_taken(session.comm(), path, existing);
   const OnsetCurve curve = search(session, c, settings, request.progress);
-  const RunFolder folder = RunFolder::create(session.comm(), folder_for(request), existing);
+  const RunFolder folder = start_folder(session.comm(), path, existing, c);
   write_results(session, c, curve, folder.paths());
   const double seconds = std::chrono::duration<double>(Clock::now() - start).count();
   if (session.first()) fmt::print("{}", onset_for_people(c, curve, seconds, folder.paths().folder));

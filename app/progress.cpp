@@ -15,6 +15,28 @@ std::string duration_text(double seconds) {
   return fmt::format("{} s", s);
 }
 
+WorkLine::WorkLine(ProgressMode mode)
+    : terminal_(isatty(STDERR_FILENO) != 0),
+      on_(mode == ProgressMode::Always || (mode == ProgressMode::Automatic && terminal_)) {}
+
+void WorkLine::show(const std::string& text) {
+  const auto pause = std::chrono::milliseconds(terminal_ ? 200 : 5000);
+  if (Clock::now() - shown_ >= pause) show_always(text);
+}
+
+void WorkLine::show_always(const std::string& text) {
+  if (!on_) return;
+  shown_ = Clock::now();
+  fmt::print(stderr, "{}{}{}", terminal_ ? "\r\033[K" : "", text, terminal_ ? "" : "\n");
+  std::fflush(stderr);
+  open_line_ = terminal_;
+}
+
+void WorkLine::clear() {
+  if (open_line_) fmt::print(stderr, "\r\033[K");
+  open_line_ = false;
+}
+
 Progress::Progress(ProgressMode mode, bool first_rank)
     : on_(first_rank && (mode == ProgressMode::Always ||
                          (mode == ProgressMode::Automatic && isatty(STDERR_FILENO)))),

@@ -28,6 +28,27 @@ class Progress {
   bool open_line_ = false;
 };
 
+/// A line that says what goes on, for work without a foreseen end: rewritten at a terminal, else
+/// written now and then. On one rank.
+class WorkLine {
+ public:
+  explicit WorkLine(ProgressMode);
+  ~WorkLine() { clear(); }
+  WorkLine(const WorkLine&) = delete;
+  WorkLine& operator=(const WorkLine&) = delete;
+  /// May be left out when one was shown a moment ago.
+  void show(const std::string& text);
+  /// Is never left out.
+  void show_always(const std::string& text);
+  void clear();
+
+ private:
+  using Clock = std::chrono::steady_clock;
+  bool terminal_, on_;
+  Clock::time_point shown_{};
+  bool open_line_ = false;
+};
+
 /// "1 h 05 min", "2 min 13 s", "42 s".
 std::string duration_text(double seconds);
 

@@ -10,6 +10,10 @@
 /// The end of a run in a few numbers, for programs (summary.toml) and for people (standard output).
 namespace lidwright {
 
+/// What describes a state, moving or steady.
+std::vector<SummaryEntry> state_entries(const HistoryRow&);
+std::string state_lines(const HistoryRow&);
+
 /// `end`: why the run stopped.
 std::vector<SummaryEntry> summary_entries(const Case&, const HistoryRow& last,
                                           const std::string& end);

@@ -1,7 +1,6 @@
 #include "app/verify_verb.hpp"
 
 #include <fmt/format.h>
-#include <unistd.h>
 
 #include <algorithm>
 #include <chrono>
@@ -30,28 +29,6 @@ std::string own_folder() {
   const fs::path installed = program.parent_path().parent_path() / "share/lidwright/benchmarks";
   return fs::is_directory(installed, error) ? installed.string() : LIDWRIGHT_BENCHMARKS;
 }
-
-/// A line on standard error that is rewritten at a terminal.
-class WorkLine {
- public:
-  explicit WorkLine(ProgressMode mode)
-      : terminal_(isatty(STDERR_FILENO) != 0),
-        on_(mode == ProgressMode::Always || (mode == ProgressMode::Automatic && terminal_)) {}
-  void show(const std::string& text) {
-    const auto now = Clock::now();
-    if (!on_ || now - shown_ < std::chrono::milliseconds(terminal_ ? 200 : 5000)) return;
-    shown_ = now;
-    fmt::print(stderr, "{}{}{}", terminal_ ? "\r\033[K" : "", text, terminal_ ? "" : "\n");
-    std::fflush(stderr);
-  }
-  void clear() const {
-    if (on_ && terminal_) fmt::print(stderr, "\r\033[K");
-  }
-
- private:
-  bool terminal_, on_;
-  Clock::time_point shown_{};
-};
 
 /// Everything that is asked for, one benchmark after the other.
 class Verification {

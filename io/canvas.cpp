@@ -126,6 +126,13 @@ void Canvas::frame(const Frame& f, const Line& style) {
   stroke(style);
 }
 
+void Canvas::dot(Place p, double radius, Colour colour) {
+  cairo_new_path(context());
+  cairo_arc(context(), p.x, p.y, radius, 0, 6.2831853071795864);
+  set_source(context(), colour, 1);
+  cairo_fill(context());
+}
+
 void Canvas::stroke(const Line& style) {
   set_source(context(), style.colour, style.opacity);
   cairo_set_line_width(context(), style.width);

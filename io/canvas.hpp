@@ -57,6 +57,7 @@ class Canvas {
 
   void line(const std::vector<Place>&, const Line&);
   void frame(const Frame&, const Line&);
+  void dot(Place, double radius, Colour);
   /// Draws the current path.
   void stroke(const Line&);
   void clip_to(const Frame&);

@@ -149,6 +149,14 @@ std::string nearest(std::string_view word, const std::vector<std::string>& candi
   return best.empty() ? "" : fmt::format(" (did you mean '{}'?)", best);
 }
 
+const Key& key_named(const std::string& path, const std::string& place) {
+  if (const Key* key = find_key(path)) return *key;
+  const auto dot = path.rfind('.');
+  const std::string table = dot == std::string::npos ? "" : path.substr(0, dot);
+  if (known_tables().count(table) == 0) refuse_unknown(place, "", table, true);
+  refuse_unknown(place, table, dot == std::string::npos ? path : path.substr(dot + 1), false);
+}
+
 void check_item_keys(const Key& list, const toml::table& item, const std::string& path,
                      const Entries& entries, const std::string& list_place) {
   std::vector<std::string> names;
@@ -194,24 +202,17 @@ void Entries::note_table(const std::string& path, const std::string& place) {
   tables_.try_emplace(path, place);
 }
 
-void Entries::set(const std::string& setting, std::size_t n) {
-  const std::string place = fmt::format("--set {}", n);
+void Entries::set(const std::string& setting, const std::string& place) {
   const auto equals = setting.find('=');
   if (equals == 0 || equals == std::string::npos || equals + 1 == setting.size())
     refuse(place, fmt::format("\"{}\": must be table.key=value, such as grid.radial=64",
                               shortened(setting)));
-  const std::string path = setting.substr(0, equals);
-  const Key* key = find_key(path);
-  const auto dot = path.rfind('.');
-  const std::string table = dot == std::string::npos ? "" : path.substr(0, dot);
-  if (!key && known_tables().count(path) > 0)
-    refuse_as_table(place, path, setting.substr(equals + 1));
-  if (!key && known_tables().count(table) == 0) refuse_unknown(place, "", table, true);
-  if (!key)
-    refuse_unknown(place, table, dot == std::string::npos ? path : path.substr(dot + 1), false);
-  parsed_.push_back(parse_setting(setting.substr(equals + 1), takes_text(*key)));
+  const std::string path = setting.substr(0, equals), value = setting.substr(equals + 1);
+  if (!find_key(path) && known_tables().count(path) > 0) refuse_as_table(place, path, value);
+  const Key& key = key_named(path, place);
+  parsed_.push_back(parse_setting(value, takes_text(key)));
   entries_[path] = {parsed_.back().get("value"), place};
-  note_table(table, place);
+  note_table(key.table(), place);
 }
 
 const Entry* Entries::find(const std::string& path) const {

@@ -16,7 +16,7 @@ namespace lidwright::case_text {
 
 struct Entry {
   const toml::node* value;
-  std::string place;  ///< "case.toml:12:3" or "--set 2"
+  std::string place;  ///< "case.toml:12:3", "--set 2" or "--along"
 };
 
 class Entries {
@@ -26,8 +26,9 @@ class Entries {
   Entries(const Entries&) = delete;
   Entries& operator=(const Entries&) = delete;
 
-  /// The n-th (from 1) "table.key=value" of the command line; replaces what the file says.
-  void set(const std::string& setting, std::size_t n);
+  /// A "table.key=value" of the command line, which stands at `place` ("--set 2"); replaces what
+  /// the file says.
+  void set(const std::string& setting, const std::string& place);
 
   const Entry* find(const std::string& path) const;
   bool has_table(const std::string& table) const { return tables_.count(table) > 0; }
@@ -47,6 +48,9 @@ class Entries {
   std::map<std::string, Entry> entries_;
   std::map<std::string, std::string> tables_, places_;
 };
+
+/// The key that a command line names at `place`; lists' items cannot be named.
+const Key& key_named(const std::string& path, const std::string& place);
 
 [[noreturn]] void refuse(const std::string& place, const std::string& message);
 /// The value as in TOML, shortened when long.

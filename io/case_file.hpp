@@ -44,8 +44,18 @@ struct InputError : std::runtime_error {
 /// file; a table of reference profiles that the case names is read, from there as well. Throws
 /// InputError. Not collective: every rank may call it, or one.
 Case read_case(const std::string& path, const std::vector<std::string>& settings = {});
+/// `along`: one more setting, which messages place at "--along"; empty: none.
 Case parse_case(const std::string& text, const std::string& name,
-                const std::vector<std::string>& settings = {});
+                const std::vector<std::string>& settings = {}, const std::string& along = {});
+/// The file as it is; throws InputError.
+std::string read_case_text(const std::string& path);
+
+/// A key that takes a number, as `--along` needs one. Throws InputError at --along for any other,
+/// and for keys of the grid.
+struct NumberKey {
+  std::string path, unit, unit_with_body;
+};
+NumberKey number_key(const std::string& path);
 
 /// The case with every default filled in, as TOML that `parse_case` reads back to the same case,
 /// bit for bit if it was once read. Always dimensionless; a body goes into [body_used], so that

@@ -12,7 +12,6 @@
 
 #include "io/case_file.hpp"
 #include "io/collective.hpp"
-#include "io/csv.hpp"
 
 namespace lidwright {
 namespace {
@@ -78,36 +77,39 @@ long step_of_last_row(std::string_view text) {
 
 std::string history_head() { return table_head(title, columns); }
 
-std::string history_row(const HistoryRow& r) {
-  const std::array<double, columns.size()> numbers{static_cast<double>(r.step),
-                                                   r.time,
-                                                   r.time_step,
-                                                   r.heat_flow_inner,
-                                                   r.heat_flow_outer,
-                                                   r.nusselt_inner,
-                                                   r.nusselt_outer,
-                                                   r.temperature_mean,
-                                                   r.temperature_min,
-                                                   r.temperature_max,
-                                                   r.temperature_inner,
-                                                   r.temperature_outer,
-                                                   r.velocity_rms,
-                                                   r.velocity_rms_inner,
-                                                   r.velocity_rms_outer,
-                                                   r.dissipation,
-                                                   r.buoyancy_work,
-                                                   r.work_mismatch,
-                                                   r.flow_error,
-                                                   r.heat_source,
-                                                   r.viscous_heating,
-                                                   r.adiabatic_cooling,
-                                                   r.heat_budget_residual,
-                                                   r.temperature_change_rate,
-                                                   static_cast<double>(r.applications),
-                                                   static_cast<double>(r.factorisations),
-                                                   r.wall_time};
-  return table_row(numbers);
+std::span<const Column> history_columns() { return columns; }
+
+std::vector<double> history_numbers(const HistoryRow& r) {
+  return {static_cast<double>(r.step),
+          r.time,
+          r.time_step,
+          r.heat_flow_inner,
+          r.heat_flow_outer,
+          r.nusselt_inner,
+          r.nusselt_outer,
+          r.temperature_mean,
+          r.temperature_min,
+          r.temperature_max,
+          r.temperature_inner,
+          r.temperature_outer,
+          r.velocity_rms,
+          r.velocity_rms_inner,
+          r.velocity_rms_outer,
+          r.dissipation,
+          r.buoyancy_work,
+          r.work_mismatch,
+          r.flow_error,
+          r.heat_source,
+          r.viscous_heating,
+          r.adiabatic_cooling,
+          r.heat_budget_residual,
+          r.temperature_change_rate,
+          static_cast<double>(r.applications),
+          static_cast<double>(r.factorisations),
+          r.wall_time};
 }
+
+std::string history_row(const HistoryRow& r) { return table_row(history_numbers(r)); }
 
 std::string history_until(const std::string& text, long step, const std::string& path) {
   const std::string head = history_head();

@@ -2,9 +2,12 @@
 
 #include <mpi.h>
 
+#include <span>
 #include <string>
+#include <vector>
 
 #include "io/atomic_file.hpp"
+#include "io/csv.hpp"
 #include "solver/diagnostics.hpp"
 
 /// history.csv: one row a step (or every n-th), written as the run goes.
@@ -38,6 +41,10 @@ class History {
   Descriptor file_;  ///< first rank only
   long last_step_ = -1;
 };
+
+/// What the columns are, and the numbers of one row in their order.
+std::span<const Column> history_columns();
+std::vector<double> history_numbers(const HistoryRow&);
 
 /// The file's head (what stands before the first row) and one row, as text.
 std::string history_head();

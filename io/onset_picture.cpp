@@ -88,11 +88,7 @@ void Picture::draw_point(std::size_t k) {
   const Colour colour = critical(k) ? critical_ink : curve_ink;
   const double x = across(drawn_.x[k]), y = down(drawn_.y[k]);
   canvas_.line({{x, down(drawn_.low[k])}, {x, down(drawn_.high[k])}}, {colour, 2});
-  cairo_t* c = canvas_.context();
-  cairo_new_path(c);
-  cairo_arc(c, x, y, critical(k) ? 7 : 4, 0, 6.2831853);
-  cairo_set_source_rgb(c, colour.red, colour.green, colour.blue);
-  cairo_fill(c);
+  canvas_.dot({x, y}, critical(k) ? 7 : 4, colour);
 }
 
 }  // namespace

@@ -5,6 +5,7 @@
 #include <algorithm>
 #include <charconv>
 #include <cmath>
+#include <numbers>
 #include <stdexcept>
 #include <string_view>
 
@@ -57,12 +58,23 @@ std::string digits_of(double value) {
   return fmt::format("{:.4g} \u00d7 {}", value / std::pow(10.0, exponent), power_of_ten(exponent));
 }
 
+std::string state_heading(const SteadyState& s, const std::string& at, const PictureUnits& units) {
+  const std::string where = at.empty() ? "" : " at " + as_markup(at);
+  return fmt::format(
+      "{} state{}   \u00b7   Nusselt number {:.5g} outer, {:.5g} inner   \u00b7   rms velocity "
+      "{:.5g} "
+      "{}",
+      s.converged ? "steady" : "not yet steady", where, s.row.nusselt_outer, s.row.nusselt_inner,
+      units.velocity(s.row.velocity_rms), units.velocity.unit);
+}
+
 void draw_heading(Canvas& canvas, const PictureContents& c) {
   canvas.text(as_markup(c.title.empty() ? "Convection in time" : c.title), {page_border, 20},
               {0, 0}, {27, ink, Weight::Bold, picture_width - 2 * page_border});
-  canvas.text(fmt::format("time {} {}   \u00b7   step {}", digits_of(c.units.time(c.time)),
-                          c.units.time.unit, c.step),
-              {page_border, 58}, {0, 0}, {18, faint_ink});
+  const std::string moment = fmt::format(
+      "time {} {}   \u00b7   step {}", digits_of(c.units.time(c.time)), c.units.time.unit, c.step);
+  canvas.text(c.state.empty() ? moment : c.state, {page_border, 58}, {0, 0},
+              {18, faint_ink, Weight::Normal, picture_width - 2 * page_border});
 }
 
 Interval shown_span(const PictureContents& c) {
@@ -186,10 +198,40 @@ Chart heat_flow_chart(const PictureContents& c, const Frame& f) {
   return chart;
 }
 
+/// The lateral coordinate as people read it: along the box, or in degrees.
+Shown lateral_units(const PictureContents& c) {
+  if (c.geometry.shell().shape == Shape::Box) return c.units.length;
+  return {180 / std::numbers::pi, 0, "\u00b0"};
+}
+
+const char* lateral_name(Shape shape) {
+  if (shape == Shape::Box) return "place along the wall";
+  return shape == Shape::AxisymmetricShell ? "colatitude" : "longitude";
+}
+
+Chart wall_chart(const PictureContents& c, const Frame& f) {
+  const Shown lateral = lateral_units(c);
+  const std::vector<double> places = lateral(c.outer.lateral);
+  const Shell& shell = c.geometry.shell();
+  Interval range = range_of(c.outer.heat_flux);
+  for (const double flux : c.inner.heat_flux) range.include(flux);
+  Chart chart;
+  chart.title = "Heat flux along the walls";
+  chart.x_label = {lateral_name(shell.shape), lateral.unit};
+  chart.y_label = {"heat flux outwards", "<i>k</i> \u0394<i>T</i>/<i>d</i>"};
+  chart.x =
+      linear_axis({lateral(shell.lateral_begin), lateral(shell.lateral_end)}, ticks_across(f));
+  chart.y = linear_axis(with_margin(range, 0.06), ticks_upright(f));
+  chart.curves = {{places, c.outer.heat_flux, outer_ink, "outer wall", 2.5},
+                  {places, c.inner.heat_flux, inner_ink, "inner wall", 2.5}};
+  return chart;
+}
+
 void draw_charts(Canvas& canvas, const PictureContents& c, const PictureLayout& layout) {
   const std::vector<Chart> charts = profile_charts(c, layout);
   for (std::size_t k = 0; k < charts.size(); ++k) draw(canvas, charts[k], layout.profiles[k]);
-  draw(canvas, heat_flow_chart(c, layout.history), layout.history);
+  draw(canvas, c.state.empty() ? heat_flow_chart(c, layout.history) : wall_chart(c, layout.history),
+       layout.history);
 }
 
 }  // namespace
@@ -270,6 +312,30 @@ void draw_run(const std::string& path, const Snapshot& s, const std::string& his
                                    s.profiles,
                                    heat_flow_history(read_whole_file(history_path)),
                                    units};
+    write_atomically(path, picture(contents));
+  });
+}
+
+void draw_state(const std::string& path, const SteadyState& s, const std::string& at,
+                const std::string& title, const PictureUnits& units) {
+  const Decomposition& d = s.snapshot.temperature.decomposition();
+  std::vector<double> temperature = gather_to_first(s.snapshot.temperature);
+  std::vector<double> stream_function = gather_to_first(s.snapshot.stream_function);
+  on_first_rank<OutputError>(d.comm(), [&] {
+    PictureContents contents{title.empty() ? "Steady convection" : title,
+                             0,
+                             0,
+                             d.geometry(),
+                             std::move(temperature),
+                             std::move(stream_function),
+                             s.snapshot.profiles,
+                             {},
+                             units};
+    contents.history.temperature_inner = {s.row.temperature_inner};
+    contents.history.temperature_outer = {s.row.temperature_outer};
+    contents.state = state_heading(s, at, units);
+    contents.inner = s.snapshot.inner;
+    contents.outer = s.snapshot.outer;
     write_atomically(path, picture(contents));
   });
 }

@@ -6,6 +6,7 @@
 
 #include "mesh/geometry.hpp"
 #include "physics/scales.hpp"
+#include "solver/settle.hpp"
 #include "solver/snapshot.hpp"
 
 /// A run at one look, as a PNG: the temperature and lines of flow in the shell, radial profiles,
@@ -49,6 +50,8 @@ struct PictureContents {
   RadialProfiles profiles;
   HeatFlowHistory history;
   PictureUnits units;
+  std::string state = {};  ///< markup that stands instead of time and step; empty: not a state
+  WallTrace inner = {}, outer = {};  ///< of such a state: their heat flux is shown
 };
 
 /// Temperatures that the colours span: those of all cells and of both walls.
@@ -64,6 +67,11 @@ std::string picture(const PictureContents&);
 /// atomically. Collective; throws OutputError on all ranks.
 void draw_run(const std::string& path, const Snapshot&, const std::string& history_path,
               const std::string& title, const PictureUnits&);
+
+/// Draws a steady state in the same way, with the heat flux along the walls. `at`: what is said of
+/// it beside its numbers, plain text; may be empty.
+void draw_state(const std::string& path, const SteadyState&, const std::string& at,
+                const std::string& title, const PictureUnits&);
 
 /// File of picture n, relative to the run folder.
 std::string picture_name(std::size_t n);

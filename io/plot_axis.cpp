@@ -33,6 +33,13 @@ std::string label(double value, int decimals) {
   return value < 0 && !zero ? minus + digits : digits;
 }
 
+/// factor times ten to the exponent, spelt out where that is short.
+std::string decade_label(int factor, int exponent) {
+  if (exponent >= -2 && exponent <= 3) return fmt::format("{:g}", factor * power(exponent));
+  if (factor == 1) return power_of_ten(exponent);
+  return fmt::format("{} \u00d7 {}", factor, power_of_ten(exponent));
+}
+
 }  // namespace
 
 void Interval::include(double value) {
@@ -75,6 +82,25 @@ Axis logarithmic_axis(Interval range, int most) {
   Axis axis{{power(low), power(high)}, Spacing::Logarithmic, {}, ""};
   for (int k = low; k <= high; ++k)
     if (k % stride == 0) axis.ticks.push_back({power(k), power_of_ten(k)});
+  return axis;
+}
+
+Axis logarithmic_axis_within(Interval range, int most) {
+  const double decades = std::log10(range.high / range.low);
+  const int stride = std::max(1, static_cast<int>(std::ceil(decades / std::max(most, 1))));
+  const bool between = 3 * decades <= most;
+  Axis axis{range, Spacing::Logarithmic, {}, ""};
+  const auto mark = [&](int factor, int exponent) {
+    const double value = factor * power(exponent);
+    if (value >= range.low && value <= range.high)
+      axis.ticks.push_back({value, decade_label(factor, exponent)});
+  };
+  for (int k = static_cast<int>(std::floor(std::log10(range.low))); power(k) <= range.high; ++k) {
+    if (k % stride != 0) continue;
+    mark(1, k);
+    if (between) mark(2, k);
+    if (between) mark(5, k);
+  }
   return axis;
 }
 

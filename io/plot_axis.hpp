@@ -36,6 +36,9 @@ struct Axis {
 Axis linear_axis(Interval, int most);
 /// Decades, some left out when there are many; the range is widened to whole decades.
 Axis logarithmic_axis(Interval, int most);
+/// The range stays as it is; marks at 1, 2 and 5 times powers of ten where there is room, else at
+/// decades.
+Axis logarithmic_axis_within(Interval, int most);
 /// With some air at both ends; an empty range becomes a small one around its value.
 Interval with_margin(Interval, double share);
 

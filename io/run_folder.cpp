@@ -44,9 +44,10 @@ bool own_name(std::string_view name) {
     name.remove_suffix(partial_suffix.size());
     if (name == "provenance.toml") return true;
   }
-  static constexpr std::array<std::string_view, 7> plain{
-      "case_as_read.toml", "summary.toml", "history.csv", "fields.pvd",
-      "walls.pvd",         "onset.csv",    "onset.png"};
+  static constexpr std::array<std::string_view, 12> plain{
+      "case_as_read.toml", "summary.toml",   "history.csv",      "fields.pvd",
+      "walls.pvd",         "onset.csv",      "onset.png",        "newton.csv",
+      "branch.csv",        "error_bars.csv", "growth_rates.csv", "branch.png"};
   const auto of_snapshot = [&](std::string_view before, std::string_view after) {
     return numbered(name, before, snapshot_digits, after).has_value();
   };
@@ -170,6 +171,10 @@ std::optional<long> numbered(std::string_view name, std::string_view before, std
 bool holds_run(const std::string& folder) {
   const std::string path = RunPaths{folder}.provenance();
   return fs::is_regular_file(path) && read_whole_file(path).starts_with(provenance_mark);
+}
+
+bool holds_steady_states(const std::string& folder) {
+  return fs::is_regular_file(RunPaths{folder}.newton());
 }
 
 void RunFolder::lock() {

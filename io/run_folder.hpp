@@ -21,6 +21,11 @@ struct RunPaths {
   std::string provenance() const { return folder + "/provenance.toml"; }
   std::string summary() const { return folder + "/summary.toml"; }
   std::string history() const { return folder + "/history.csv"; }
+  std::string newton() const { return folder + "/newton.csv"; }
+  std::string error_bars() const { return folder + "/error_bars.csv"; }
+  std::string growth_rates() const { return folder + "/growth_rates.csv"; }
+  std::string branch() const { return folder + "/branch.csv"; }
+  std::string branch_picture() const { return folder + "/branch.png"; }
   std::string fields_collection() const { return folder + "/fields.pvd"; }
   std::string walls_collection() const { return folder + "/walls.pvd"; }
   std::string fields() const { return folder + "/fields"; }
@@ -58,6 +63,9 @@ class RunFolder {
   RunPaths paths_;
   Descriptor lock_;  ///< first rank only
 };
+
+/// Does the folder hold steady states, which do not go on in time? Not collective.
+bool holds_steady_states(const std::string& folder);
 
 /// Does the folder hold a run of this program (a provenance.toml that it wrote)? Not collective.
 bool holds_run(const std::string& folder);

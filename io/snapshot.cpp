@@ -54,8 +54,8 @@ std::vector<PieceExtent> extents_of_ranks(const Decomposition& d) {
   return all;
 }
 
-std::string title_of(std::string_view subject, double time, long step) {
-  return fmt::format("lidwright {} at time {} d^2/kappa, step {}", subject, time, step);
+std::string title_of(std::string_view subject, const std::string& state) {
+  return fmt::format("lidwright {} {}", subject, state);
 }
 
 }  // namespace
@@ -86,7 +86,7 @@ std::vector<CollectionEntry> read_collection(const std::string& text) {
   return entries;
 }
 
-std::string profiles_table(const RadialProfiles& p, double time, long step) {
+std::string profiles_table(const RadialProfiles& p, const std::string& state) {
   static constexpr std::array<Column, 8> columns{{
       {"radius", "d", "middle of the cells; height above the inner wall in the box"},
       {"temperature", "DeltaT", "mean over the surface"},
@@ -107,10 +107,10 @@ std::string profiles_table(const RadialProfiles& p, double time, long step) {
                                                    p.viscosity,
                                                    p.heat_conducted,
                                                    p.heat_advected};
-  return table(title_of("radial profiles", time, step), columns, numbers);
+  return table(title_of("radial profiles", state), columns, numbers);
 }
 
-std::string walls_table(const WallTrace& inner, const WallTrace& outer, double time, long step) {
+std::string walls_table(const WallTrace& inner, const WallTrace& outer, const std::string& state) {
   std::vector<Column> columns{
       {"lateral", "d or rad",
        "middle of the column: x in the box, longitude in the annuli, colatitude in the shell"},
@@ -128,7 +128,7 @@ std::string walls_table(const WallTrace& inner, const WallTrace& outer, double t
     numbers.push_back(inner.normal_stress);
     numbers.push_back(outer.normal_stress);
   }
-  return table(title_of("walls", time, step), columns, numbers);
+  return table(title_of("walls", state), columns, numbers);
 }
 
 SnapshotWriter::SnapshotWriter(MPI_Comm comm, RunPaths paths, std::optional<double> resumed_time)
@@ -168,7 +168,11 @@ std::size_t SnapshotWriter::number_for(double time) const {
   return !times_.empty() && times_.back() == time ? times_.size() - 1 : times_.size();
 }
 
-void SnapshotWriter::write(const Snapshot& s) {
+std::string SnapshotWriter::moment(const Snapshot& s) {
+  return fmt::format("at time {} d^2/kappa, step {}", s.time, s.step);
+}
+
+void SnapshotWriter::write(const Snapshot& s, const std::string& state) {
   const Decomposition& d = s.temperature.decomposition();
   const std::size_t n = number_for(s.time);
   const std::vector<PieceExtent> extents = extents_of_ranks(d);
@@ -186,9 +190,9 @@ void SnapshotWriter::write(const Snapshot& s) {
     for (int rank = 0; rank < d.ranks(); ++rank) pieces.push_back(piece_name(n, rank));
     const std::string folder = paths_.folder + "/";
     write_atomically(folder + fields_name(n), structured_index(s, extents, pieces));
-    write_atomically(folder + walls_name(n, "csv"), walls_table(s.inner, s.outer, s.time, s.step));
+    write_atomically(folder + walls_name(n, "csv"), walls_table(s.inner, s.outer, state));
     write_atomically(folder + walls_name(n, "vtp"), wall_lines(s, d.geometry()));
-    write_atomically(folder + profiles_name(n), profiles_table(s.profiles, s.time, s.step));
+    write_atomically(folder + profiles_name(n), profiles_table(s.profiles, state));
     write_collections(times);
   });
   times_ = std::move(times);

@@ -33,12 +33,15 @@ class SnapshotWriter {
 
   /// A second snapshot of the same time replaces the first (a run resumed at the time of a
   /// snapshot).
-  void write(const Snapshot&);
+  void write(const Snapshot& s) { write(s, moment(s)); }
+  /// `state`: what the tables are headed with instead of time and step.
+  void write(const Snapshot&, const std::string& state);
 
   /// Snapshots listed.
   std::size_t count() const { return times_.size(); }
 
  private:
+  static std::string moment(const Snapshot&);
   std::size_t number_for(double time) const;
   void drop_from(std::size_t first) const;
   void write_collections(const std::vector<double>& times) const;
@@ -49,7 +52,8 @@ class SnapshotWriter {
 };
 
 /// Radial profiles and wall traces as the CSV text of their files.
-std::string profiles_table(const RadialProfiles&, double time, long step);
-std::string walls_table(const WallTrace& inner, const WallTrace& outer, double time, long step);
+/// `state`: "at time 0.25 d^2/kappa, step 9".
+std::string profiles_table(const RadialProfiles&, const std::string& state);
+std::string walls_table(const WallTrace& inner, const WallTrace& outer, const std::string& state);
 
 }  // namespace lidwright

@@ -50,7 +50,10 @@ class Walk {
   double to_p(double value) const {
     return request_.logarithmic ? std::log(std::abs(value)) : value;
   }
+  /// A value asked for comes back to the last bit.
   double to_value(double p) const {
+    for (const double value : request_.values)
+      if (to_p(value) == p) return value;
     return request_.logarithmic ? std::copysign(std::exp(p), request_.values.front()) : p;
   }
   std::unique_ptr<SteadyEquations> equations_at(const Place&);
@@ -91,13 +94,20 @@ std::unique_ptr<SteadyEquations> Walk::equations_at(const Place& place) {
   return made;
 }
 
-/// d(gain)/dp at one temperature, its flow included.
+/// d(gain)/dp at one temperature, its flow included; one-sided where the model ends.
 Eigen::VectorXd Walk::gain_by_p(const Place& place) {
   const double h = difference * (request_.logarithmic ? 1.0 : range_);
-  Place above = place, below = place;
-  above.p += h;
-  below.p -= h;
-  return (equations_at(above)->gain() - equations_at(below)->gain()) / (2 * h);
+  const auto shifted = [&](double by) {
+    try {
+      return equations_at({place.temperature, place.p + by});
+    } catch (const SolveError&) {
+      return std::unique_ptr<SteadyEquations>();
+    }
+  };
+  const auto above = shifted(h), below = shifted(-h);
+  const auto here = above && below ? nullptr : equations_at(place);
+  const double width = (above ? h : 0) + (below ? h : 0);
+  return ((above ? above : here)->gain() - (below ? below : here)->gain()) / width;
 }
 
 /// Unit tangent: J T' = (gain by p) p'. Its sense is that of the former one, at first towards the

@@ -121,14 +121,18 @@ std::vector<Found> Ladder::climb(int grids) {
 
 }  // namespace
 
-std::vector<SteadyState> settle(const Model& model, const InitialSettings& initial,
-                                const StoredTemperature& start, const SettleSettings& settings,
-                                int grids, MPI_Comm comm, const SettleObserver& observer) {
-  if (halvings(model.grid, 4) < grids - 1)
+void refuse_unhalvable(const Grid& grid, int grids) {
+  if (halvings(grid, 4) < grids - 1)
     throw std::invalid_argument(fmt::format(
         "a grid of {} x {} cells cannot be halved {} times; error bars need a multiple of {} "
         "cells each way, at least {} of them radial",
-        model.grid.radial, model.grid.lateral, grids - 1, 1 << (grids - 1), 4 << (grids - 1)));
+        grid.radial, grid.lateral, grids - 1, 1 << (grids - 1), 4 << (grids - 1)));
+}
+
+std::vector<SteadyState> settle(const Model& model, const InitialSettings& initial,
+                                const StoredTemperature& start, const SettleSettings& settings,
+                                int grids, MPI_Comm comm, const SettleObserver& observer) {
+  refuse_unhalvable(model.grid, grids);
   std::vector<Found> found;
   on_first_rank_or_throw(comm, "not enough memory for this grid; use fewer cells", [&] {
     found = Ladder(model, initial, start, settings, observer).climb(grids);

@@ -6,11 +6,11 @@
 #include <cmath>
 
 #include "solver/march.hpp"
-#include "solver/settle.hpp"
 #include "solver/solve_error.hpp"
 #include "study/cycle.hpp"
 #include "study/onset_values.hpp"
 #include "study/quantities.hpp"
+#include "study/steady_grids.hpp"
 
 namespace lidwright {
 namespace {
@@ -30,17 +30,6 @@ Measured with_bars(const Values& values, const std::vector<std::string>& wanted,
   return m;
 }
 
-/// All of a field on one rank.
-StoredTemperature stored(const CellField& t) {
-  const Geometry& g = t.decomposition().geometry();
-  StoredTemperature s;
-  s.shell = g.shell();
-  for (int i = 0; i <= g.radial_cells(); ++i) s.face_radius.push_back(g.face_radius(i));
-  for (int j = 0; j <= g.lateral_cells(); ++j) s.face_lateral.push_back(g.face_lateral(j));
-  s.values.assign(t.owned_data(), t.owned_data() + t.owned_size());
-  return s;
-}
-
 void append(Values& values, const std::map<std::string, double>& of_a_grid) {
   for (const auto& [name, value] : of_a_grid) values[name].push_back(value);
 }
@@ -55,25 +44,6 @@ Measured measure_flow(const Problem& p, int grids, const std::vector<std::string
     if (watch.stop()) throw Stopped{};
   }
   return with_bars(values, wanted, flow_floor);
-}
-
-/// Steady states from coarse to fine. Grids too coarse to be reached from the start are reached
-/// from the finer state instead, if there is a steady state on them.
-std::vector<SteadyState> steady_states(const Problem& p, int grids, const SettleObserver& observe) {
-  std::vector<SteadyState> states =
-      settle(p.model, p.initial, p.start, p.settle, grids, PETSC_COMM_SELF, observe);
-  while (!states.empty() && states.front().converged && static_cast<int>(states.size()) < grids) {
-    Model model = p.model;
-    model.grid = coarsened(model.grid, static_cast<int>(states.size()));
-    SettleSettings settings = p.settle;
-    settings.coarsest = model.grid.radial;
-    std::vector<SteadyState> coarser =
-        settle(model, p.initial, stored(states.front().snapshot.temperature), settings, 1,
-               PETSC_COMM_SELF, observe);
-    if (coarser.empty() || !coarser.front().converged) break;
-    states.insert(states.begin(), coarser.front());
-  }
-  return states;
 }
 
 /// Throws SolveError when there are too few for an error bar.
@@ -94,7 +64,8 @@ Measured measure_settled(const Problem& p, int grids, const std::vector<std::str
     stopped = stopped || watch.stop();
     return !stopped;
   };
-  const std::vector<SteadyState> states = steady_states(p, grids, observe);
+  const std::vector<SteadyState> states =
+      settle_on_grids(p.model, p.initial, p.start, p.settle, grids, PETSC_COMM_SELF, observe);
   if (stopped) throw Stopped{};
   check_converged(states);
   Values values;
@@ -210,12 +181,6 @@ std::vector<std::string> measurable_names(How how) {
   if (how == How::March) return cycle_names();
   if (how == How::Onset) return {critical_name, std::string(mode_prefix) + "N"};
   return steady_quantity_names();
-}
-
-Grid coarsened(Grid grid, int times) {
-  grid.radial >>= times;
-  grid.lateral >>= times;
-  return grid;
 }
 
 }  // namespace lidwright

@@ -33,7 +33,4 @@ Measured measured(How, const Problem&, int grids, const std::vector<std::string>
 bool measurable(How, const std::string& quantity);
 std::vector<std::string> measurable_names(How);
 
-/// The grid that is `times` times twice as coarse.
-Grid coarsened(Grid, int times);
-
 }  // namespace lidwright

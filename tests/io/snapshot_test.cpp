@@ -198,13 +198,13 @@ TEST(ParallelSnapshot, AFailureIsThrownOnAllRanksAndNothingIsListed) {
 
 TEST(SnapshotTables, WallsWithAndWithoutStress) {
   const WallTrace full{{0.5, 1.5}, {1, 2}, {3, 4}, {5, 6}};
-  const std::string with = walls_table(full, full, 0.25, 9);
+  const std::string with = walls_table(full, full, "at time 0.25 d^2/kappa, step 9");
   EXPECT_THAT(with,
               AllOf(HasSubstr("time 0.25"), HasSubstr("step 9"),
                     HasSubstr("# inner_heat_flux [k DeltaT/d]"), HasSubstr("\n1.5,2,4,2,4,6,6\n")));
   WallTrace bare = full;
   bare.normal_stress.clear();
-  EXPECT_THAT(walls_table(bare, bare, 0.25, 9),
+  EXPECT_THAT(walls_table(bare, bare, "at time 0.25 d^2/kappa, step 9"),
               AllOf(HasSubstr("\n1.5,2,4,2,4\n"), testing::Not(HasSubstr("stress"))));
 }
 

@@ -1,0 +1,24 @@
+#pragma once
+
+#include <vector>
+
+#include "mesh/geometry.hpp"
+#include "solver/stability.hpp"
+
+/// What growth rates say about a steady state.
+namespace lidwright {
+
+struct StabilityVerdict {
+  std::vector<GrowthRate> rates;  ///< fastest growing first
+  int turning = -1;  ///< which of them is that of turning a pattern round the circle, neutral; -1:
+                     ///< none
+  int leading = -1;  ///< the fastest growing one apart from it; -1: none was found
+
+  const GrowthRate& leader() const { return rates[static_cast<std::size_t>(leading)]; }
+  bool unstable() const { return leading >= 0 && leader().growth > 0; }
+};
+
+/// `patterned`: the state varies along the shell, so that on a periodic one it may be turned.
+StabilityVerdict judge_stability(std::vector<GrowthRate>, Sides, bool patterned);
+
+}  // namespace lidwright
