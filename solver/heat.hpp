@@ -21,16 +21,6 @@ namespace lidwright {
 struct WallHeat {
   double inner = 0, outer = 0;
 };
-/// Mean heat flows of a step.
-struct StepHeat {
-  WallHeat through;
-  double viscous = 0;    ///< heating
-  double adiabatic = 0;  ///< work done, > 0 cools
-  double carried = 0;    ///< gained by advection; 0 by conservation where cp is uniform
-  /// Without sources.
-  double gain() const { return through.inner - through.outer + viscous - adiabatic + carried; }
-};
-
 class HeatOperator {
  public:
   HeatOperator(std::shared_ptr<const Decomposition>, const Walls&, const HeatSources&, HeatFlux,
@@ -110,63 +100,6 @@ class HeatOperator {
                                              ///< factor; 0 at the wall
   std::vector<double> lateral_conductance_;  ///< of each row, without its lateral factor
   double total_source_ = 0, total_capacity_ = 0;
-};
-
-/// (V rho cp - tau * conduction) T = right, by conjugate gradients with exact radial lines as
-/// preconditioner.
-class ImplicitConduction {
- public:
-  ImplicitConduction(const HeatOperator&);
-  /// `right` at owned cells holds V rho cp * (what T would be without implicit conduction); walls
-  /// included here. T: start in, solution out, with ghosts. Throws SolveError when it does not
-  /// converge. Collective.
-  void solve(double tau, const CellField& right, CellField& temperature);
-
- private:
-  void set_lines(double tau);
-  void solve_lines(const std::vector<double>& r, std::vector<double>& z) const;
-  template <std::size_t lines>
-  void solve_together(std::size_t first, const double* r, double* z) const;
-  void apply(double tau, CellField& x, std::vector<double>& y) const;
-
-  const HeatOperator& heat_;
-  HeatOperator homogeneous_;
-  double lines_for_ = -1;
-  std::vector<double> inverse_pivot_, above_;  ///< of the lines' factors, owned cells
-  CellField direction_;
-};
-
-/// One step of the three-stage IMEX scheme ARK2 of Giraldo, Kelly & Constantinescu 2013 (SIAM J.
-/// Sci. Comput. 35, B1162; coefficients from memory, order tested): TR-BDF2 for conduction
-/// (L-stable), an explicit scheme with non-negative weights for advection. Second order,
-/// conservative to round-off, and a steady state of the space-discrete equations is one of the
-/// scheme, whatever the step.
-class HeatStepper {
- public:
-  HeatStepper(std::shared_ptr<const Decomposition>, const Walls&, const HeatSources&, HeatFlux,
-              const ReferenceProfiles& = {});
-
-  /// Flow and viscous heating of cells (empty: none) at one time.
-  struct Forcing {
-    CornerField psi;
-    CellField viscous;
-  };
-  /// T(t + dt) from T(t), the flow at t and the flow foreseen at t + dt (straight line between);
-  /// all with ghosts. Returns the mean heat flows over the step. Collective.
-  StepHeat step(const CellField& temperature, const Forcing& now, const Forcing& then, double dt,
-                CellField& next);
-
-  HeatStepper(const HeatStepper&) = delete;
-  HeatStepper& operator=(const HeatStepper&) = delete;
-
-  const HeatOperator& heat() const { return heat_; }
-
- private:
-  struct Stage;
-  Stage stage(const CellField& temperature, const Forcing&) const;
-
-  HeatOperator heat_;
-  ImplicitConduction implicit_;
 };
 
 }  // namespace lidwright

@@ -6,7 +6,7 @@
 
 #include "solver/diagnostics.hpp"
 #include "solver/flow.hpp"
-#include "solver/heat.hpp"
+#include "solver/heat_stepper.hpp"
 #include "solver/initial.hpp"
 #include "solver/measure.hpp"
 #include "solver/settings.hpp"

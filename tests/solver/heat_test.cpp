@@ -1,4 +1,4 @@
-#include "solver/heat.hpp"
+#include "solver/heat_stepper.hpp"
 
 #include <gtest/gtest.h>
 
