@@ -20,6 +20,7 @@ constexpr double infinity = std::numeric_limits<double>::infinity();
 constexpr int most_corrections = 7;
 constexpr double far = 30;  ///< a residual from which no correction is tried
 constexpr double shortest_step = 1e-7;
+constexpr double at_rest = 0.3;  ///< rms velocity, kappa/d: hardly any heat is carried
 constexpr int most_steps_per_value = 40;
 /// Relative change of the parameter by which its effect on the residual is told.
 constexpr double difference = 1e-5;
@@ -83,6 +84,7 @@ class Walk {
   CoupledSolver solver_;
   Eigen::VectorXd weight_;  ///< of temperatures in the product
   bool backwards_ = false;
+  double fastest_ = 0;  ///< rms velocity of all points
 };
 
 std::unique_ptr<SteadyEquations> Walk::equations_at(const Place& place) {
@@ -265,7 +267,13 @@ void Walk::go(const std::vector<double>& start) {
     if ((next.p - first) * sense() <= 0) remark = "the branch folds back beyond the first value";
     if (!remark.empty()) return;
     const int corrections = end->point.newton_steps;
+    const double velocity = end->point.state.row.velocity_rms;
+    fastest_ = std::max(fastest_, velocity);
+    // Beyond it lies the branch's own mirror image.
+    const bool comes_to_rest = velocity < at_rest && fastest_ > 3 * at_rest;
     keep(std::move(*end));
+    if (comes_to_rest && remark.empty())
+      remark = fmt::format("it ends in the state at rest near {:.6g}", to_value(next.p));
     direction = tangent(next, &direction);
     length = next_length(length, corrections, direction);
     here = next;

@@ -35,9 +35,9 @@ struct Branch {
 using BranchObserver = std::function<bool(const BranchPoint&)>;
 
 /// Starts from the steady state at the first value. Where the branch folds back it is followed
-/// until it passes the first value again or the steps run out; every value is met each time it is
-/// passed. Computed on the first rank. Collective; throws SolveError when not even the start can be
-/// refined.
+/// until it passes the first value again, comes to rest, or the steps run out; every value is met
+/// each time it is passed. Computed on the first rank. Collective; throws SolveError when not even
+/// the start can be refined.
 Branch follow_branch(const BranchRequest&, const CellField& start, const SettleSettings&, MPI_Comm,
                      const BranchObserver& = {});
 

@@ -109,7 +109,10 @@ Found Ladder::first(int coarsest) {
 }
 
 std::vector<Found> Ladder::climb(int grids) {
-  const int coarsest = std::max(halvings(model_.grid, settings_.coarsest), grids - 1);
+  // A stored start is near already: coarser grids than asked for might lead away from it.
+  const int coarsest = start_.values.empty()
+                           ? std::max(halvings(model_.grid, settings_.coarsest), grids - 1)
+                           : grids - 1;
   std::vector<Found> found{first(coarsest)};
   while (reached_ > 0 && found.back().converged && !stopped_)
     found.push_back(solve(reached_ - 1, found.back().temperature));
