@@ -50,7 +50,6 @@ class Ladder {
 
  private:
   Found solve(int halved, const StoredTemperature& from);
-  Found first(int coarsest);
   Model halved_model(int times) const {
     Model m = model_;
     m.grid = halved(m.grid, times);
@@ -63,7 +62,6 @@ class Ladder {
   const SettleSettings& settings_;
   const SettleObserver& observer_;
   bool stopped_ = false;
-  int reached_ = 0;  ///< how often the grid of the last result is halved
 };
 
 /// From a temperature near by, else by marching on from it.
@@ -92,33 +90,36 @@ Found Ladder::solve(int times, const StoredTemperature& from) {
     take(settle_by_marching(equations, solver, settings_, start, from,
                             times > 0 ? steps_on_coarse_grids : steps_on_the_grid, observer_));
   found.keep(equations);
-  reached_ = times;
   return found;
 }
 
-/// On the coarsest grid, or where that fails to find a steady state, as it may when it is too
-/// coarse for the flow, on a finer one.
-Found Ladder::first(int coarsest) {
-  Found found = solve(coarsest, start_);
-  while (!found.converged && !stopped_ && reached_ > 0) {
-    Found finer = solve(reached_ - 1, found.temperature);
-    finer.steps.insert(finer.steps.begin(), found.steps.begin(), found.steps.end());
-    found = std::move(finer);
-  }
-  return found;
-}
-
+/// Grid by grid upwards, each from the one below. A grid may have no steady state, being too coarse
+/// for the flow: the next goes on from where it was left, and what was found below does not count.
 std::vector<Found> Ladder::climb(int grids) {
   // A stored start is near already: coarser grids than asked for might lead away from it.
   const int coarsest = start_.values.empty()
                            ? std::max(halvings(model_.grid, settings_.coarsest), grids - 1)
                            : grids - 1;
-  std::vector<Found> found{first(coarsest)};
-  while (reached_ > 0 && found.back().converged && !stopped_)
-    found.push_back(solve(reached_ - 1, found.back().temperature));
+  std::vector<Found> found;
+  std::vector<NewtonStep> in_vain;
+  StoredTemperature from = start_;
+  for (int times = coarsest; times >= 0 && !stopped_; --times) {
+    Found here = solve(times, from);
+    from = here.temperature;
+    if (stopped_) here.remark = "stopped";
+    const bool last = times == 0 || stopped_;
+    if (!here.converged && !last) {
+      in_vain.insert(in_vain.end(), here.steps.begin(), here.steps.end());
+      found.clear();
+      continue;
+    }
+    here.steps.insert(here.steps.begin(), in_vain.begin(), in_vain.end());
+    in_vain.clear();
+    if (!here.converged) found.clear();
+    found.push_back(std::move(here));
+  }
   if (found.size() > static_cast<std::size_t>(grids))
     found.erase(found.begin(), found.end() - grids);
-  if (!found.back().converged && stopped_) found.back().remark = "stopped";
   return found;
 }
 
