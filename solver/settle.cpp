@@ -18,6 +18,7 @@ namespace lidwright {
 namespace {
 
 constexpr double infinity = std::numeric_limits<double>::infinity();
+constexpr double start_tolerance = 1e-4;
 /// Of a march to a first guess: where a coarse grid has no steady state, a finer one goes on.
 constexpr long steps_on_coarse_grids = 3000, steps_on_the_grid = 20000;
 
@@ -49,7 +50,7 @@ class Ladder {
   std::vector<Found> climb(int grids);
 
  private:
-  Found solve(int halved, const StoredTemperature& from);
+  Found solve(int times, const StoredTemperature& from, bool passing);
   Model halved_model(int times) const {
     Model m = model_;
     m.grid = halved(m.grid, times);
@@ -65,10 +66,13 @@ class Ladder {
 };
 
 /// From a temperature near by, else by marching on from it.
-Found Ladder::solve(int times, const StoredTemperature& from) {
+Found Ladder::solve(int times, const StoredTemperature& from, bool passing) {
   const Model model = halved_model(times);
   SteadyEquations equations(model, settings_.flux);
   CoupledSolver solver(settings_.linear);
+  SettleSettings settings = settings_;
+  // What only serves as a start need not be exact.
+  if (passing) settings.tolerance = std::max(settings.tolerance, start_tolerance);
   Found found;
   InitialSettings start;
   if (from.values.empty()) start = initial_;
@@ -82,12 +86,12 @@ Found Ladder::solve(int times, const StoredTemperature& from) {
   // A start that is far away, like a disturbed conductive one, must not fall back on an unstable
   // state near by: it is marched first.
   if (!from.values.empty() || equations.residual() <= settings_.tolerance) {
-    SettleSettings few = settings_;
-    few.most_steps = std::min(settings_.most_steps, 25);
+    SettleSettings few = settings;
+    few.most_steps = std::min(settings.most_steps, 25);
     take(newton(equations, solver, few, infinity, observer_));
   }
   if (!found.converged && !stopped_)
-    take(settle_by_marching(equations, solver, settings_, start, from,
+    take(settle_by_marching(equations, solver, settings, start, from,
                             times > 0 ? steps_on_coarse_grids : steps_on_the_grid, observer_));
   found.keep(equations);
   return found;
@@ -104,7 +108,7 @@ std::vector<Found> Ladder::climb(int grids) {
   std::vector<NewtonStep> in_vain;
   StoredTemperature from = start_;
   for (int times = coarsest; times >= 0 && !stopped_; --times) {
-    Found here = solve(times, from);
+    Found here = solve(times, from, times >= grids);
     from = here.temperature;
     if (stopped_) here.remark = "stopped";
     const bool last = times == 0 || stopped_;
