@@ -202,8 +202,8 @@ ExitCode run(const Session& session, int argc, char** argv) {
   app.formatter(std::make_shared<PlainHelp>());
   app.footer(
       "Exit codes: 0 done, 1 fault of the program, 2 bad input, 3 not solved,\n"
-      "4 not written, 5 interrupted with a checkpoint written (go on with --resume),\n"
-      "6 a published benchmark disagrees (verify).");
+      "4 not written, 5 interrupted, what was found is written (march goes on with\n"
+      "--resume), 6 a published benchmark disagrees (verify).");
   Requests asked;
   add_march(app, asked.march);
   add_settle(app, asked.settle);

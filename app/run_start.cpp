@@ -18,6 +18,14 @@ StoredTemperature stored_start(MPI_Comm comm, const Case& c) {
   return read_temperature(comm, c.initial.from);
 }
 
+bool same_place(const std::string& path, const std::string& folder) {
+  namespace fs = std::filesystem;
+  std::error_code unused;
+  const fs::path inside = fs::weakly_canonical(path, unused);
+  const fs::path relative = inside.lexically_relative(fs::weakly_canonical(folder, unused));
+  return !relative.empty() && *relative.begin() != "..";
+}
+
 std::string fingerprint(Case c) {
   c.title.clear();
   c.march = MarchSettings{};

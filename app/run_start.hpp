@@ -23,6 +23,9 @@ inline ExistingRun existing_run(bool overwrite) {
 /// ranks.
 StoredTemperature stored_start(MPI_Comm, const Case&);
 
+/// Is a path the folder, or a file in it?
+bool same_place(const std::string& path, const std::string& folder);
+
 /// What two sessions of one run must share: everything but how long it goes and what it writes.
 std::string fingerprint(Case);
 

@@ -81,10 +81,13 @@ BranchRow BranchWalk::row_of(const BranchPoint& p) {
                 .row = p.state.row};
   if (!p.asked_for || !job_.request.stability) return row;
   const Case c = cases_.at(p.parameter);
-  const StabilityVerdict verdict = judge_stability(
-      growth_rates(c.model, c.settle.flux, p.state.snapshot.temperature, growth_rates_of_a_point),
-      c.model.shell.sides, convects(p.state.row));
-  if (verdict.leading >= 0) row.leading = verdict.leader();
+  try {
+    const StabilityVerdict verdict = judge_stability(growth_rates(
+        c.model, c.settle.flux, p.state.snapshot.temperature, growth_rates_of_a_point));
+    if (verdict.leading >= 0) row.leading = verdict.leader();
+  } catch (const SolveError&) {
+    // The state is found all the same: its growth rate stays nan.
+  }
   return row;
 }
 

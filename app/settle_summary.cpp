@@ -118,7 +118,7 @@ std::string stability_for_people(const StabilityVerdict& v) {
   for (std::size_t k = 0; k < v.rates.size(); ++k)
     fmt::format_to(
         out, "    {:>14.6g} {:>14.6g}{}\n", v.rates[k].growth, v.rates[k].frequency,
-        static_cast<int>(k) == v.turning ? "   turning the pattern round the circle, neutral" : "");
+        static_cast<int>(k) == v.turning ? "   turning the pattern round, neutral but for the mesh" : "");
   return text;
 }
 
@@ -138,10 +138,13 @@ std::vector<SummaryEntry> branch_entries(const Case& c, const BranchParameter& p
 std::string branch_for_people(const Case& c, const BranchParameter& p,
                               const std::vector<BranchRow>& rows, const std::string& end,
                               double seconds) {
+  const auto asked =
+      std::count_if(rows.begin(), rows.end(), [](const BranchRow& r) { return r.asked_for; });
   const bool growth = std::any_of(rows.begin(), rows.end(),
                                   [](const BranchRow& r) { return !std::isnan(r.leading.growth); });
-  std::string text = fmt::format("{}{}: {} steady states along {} in {}\n", heading(c), end,
-                                 rows.size(), p.key, duration_text(seconds));
+  std::string text = fmt::format(
+      "{}{}: steady states along {}, {} asked for and {} on the way, in {}\n", heading(c), end,
+      p.key, asked, static_cast<long>(rows.size()) - asked, duration_text(seconds));
   auto out = std::back_inserter(text);
   fmt::format_to(out, "  {:>14} {:>12} {:>12} {:>12} {:>12}{}\n",
                  p.unit.empty() ? "value" : "value, " + p.unit, "Nu outer", "Nu inner", "v_rms",

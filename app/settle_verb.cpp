@@ -43,7 +43,7 @@ void refuse_unfit(const SettleRequest& request, const Case& c, const StoredTempe
     refuse_unhalvable(c.model.grid, grids_for(request));
     for (int times = 1; times < grids_for(request); ++times) {
       Model coarse = c.model;
-      coarse.grid = coarsened(c.model.grid, times);
+      coarse.grid = halved(c.model.grid, times);
       decompose(coarse, comm);
     }
     const Model& m = c.model;
@@ -94,8 +94,7 @@ void Extras::add_bars(const std::vector<SteadyState>& states) {
 
 void Extras::add_stability(const SteadyState& s) {
   const StabilityVerdict verdict = judge_stability(
-      growth_rates(job_.c.model, job_.c.settle.flux, s.snapshot.temperature, growth_rates_shown),
-      job_.c.model.shell.sides, convects(s.row));
+      growth_rates(job_.c.model, job_.c.settle.flux, s.snapshot.temperature, growth_rates_shown));
   write_text(job_.session.comm(), paths_.growth_rates(), growth_table(verdict));
   entries_ = stability_entries(verdict);
   text_ += stability_for_people(verdict);
@@ -114,12 +113,21 @@ ExitCode settle_one(const SettleJob& job, const RunPaths& paths, SettleWatch& wa
   write_found(job, paths, found, watch);
   Extras extras(job, paths);
   if (found.converged && states.size() > 1) extras.add_bars(states);
+  std::string no_rates;
   if (found.converged && job.request.stability) {
     watch.say("growth of disturbances");
-    extras.add_stability(found);
+    try {
+      extras.add_stability(found);
+    } catch (const SolveError& e) {
+      no_rates = e.what();  // after what was found is written and told
+    }
   }
   watch.finish();
   end_with(job, paths, found, watch, extras.entries(), extras.text());
+  if (!no_rates.empty())
+    throw SolveError(fmt::format("{}. The steady state itself is in {}", no_rates, paths.folder));
+  if (found.converged && job.request.error_bars && states.size() == 1 && stop_requested(comm))
+    return ExitCode::Interrupted;
   if (found.converged && job.request.error_bars && states.size() == 1)
     throw SolveError(fmt::format(
         "no error bars: there is no steady state of this kind on the grid of {} x {} cells; take a "
@@ -156,6 +164,11 @@ ExitCode settle(const Session& session, const SettleRequest& request) {
   const ExistingRun existing = existing_run(request.overwrite);
   RunFolder::refuse_taken(comm, path, existing);
   const StoredTemperature stored = stored_start(comm, c);
+  if (!c.initial.from.empty() && same_place(c.initial.from, path))
+    throw InputError(
+        fmt::format("initial.from = \"{}\" lies in the folder of the results, {}; write into "
+                    "another one (--into)",
+                    c.initial.from, path));
   refuse_unfit(request, c, stored, comm);
   const RunFolder folder = start_folder(comm, path, existing, c);
   Provenance provenance(comm, folder.paths().provenance(), 0);

@@ -185,6 +185,17 @@ std::vector<Benchmark> chosen(const VerifyRequest& request, const std::string& f
   return all;
 }
 
+/// Only a table of an earlier verify may be replaced.
+void refuse_to_replace(const std::string& csv) {
+  std::error_code unused;
+  if (csv.empty() || !fs::is_regular_file(csv, unused)) return;
+  const std::string mark = "# lidwright verify";
+  if (read_whole_file(csv).substr(0, mark.size()) != mark)
+    throw InputError(fmt::format(
+        "--csv {}: the file is there and is no table of verify; give another name, or remove it",
+        csv));
+}
+
 }  // namespace
 
 ExitCode verify(const Session& session, const VerifyRequest& request) {
@@ -200,7 +211,11 @@ ExitCode verify(const Session& session, const VerifyRequest& request) {
     print_list(folder, names);
     return ExitCode::Done;
   }
-  return Verification(request)(chosen(request, folder, names));
+  const std::vector<Benchmark> benchmarks = chosen(request, folder, names);
+  if (benchmarks.empty())
+    throw InputError(folder + ": none of these benchmarks is a quick one; use --all");
+  refuse_to_replace(request.csv);
+  return Verification(request)(benchmarks);
 }
 
 }  // namespace lidwright

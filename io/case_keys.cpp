@@ -165,7 +165,7 @@ std::vector<Key> settle_keys() {
        .access = at(&S::most_time),
        .quantity = Quantity::Time,
        .range = positive,
-       .help = "longest march to a first guess, on the coarsest grid"},
+       .help = "longest march to a first guess, on each grid that needs one"},
       {.path = "settle.flux",
        .access = at(&S::flux),
        .words = {"central", "limited"},

@@ -21,7 +21,8 @@ struct Seen {
 };
 
 /// What the second half of a march looked like.
-std::string account(const std::vector<Seen>& seen, int attempts) {
+std::string account(const std::vector<Seen>& seen, bool keeps_changing, int attempts,
+                    const std::string& newton) {
   const double middle = (seen.front().time + seen.back().time) / 2;
   double low = std::numeric_limits<double>::infinity(), high = -low;
   for (const Seen& s : seen)
@@ -30,10 +31,10 @@ std::string account(const std::vector<Seen>& seen, int attempts) {
       high = std::max(high, s.heat_flow);
     }
   return fmt::format(
-      "time-dependent flow: from time {:.3g} to {:.3g} of a march the surface heat flow went from "
-      "{:.4g} to {:.4g}, its relative rate of change at the end is {:.1e}, and Newton's method "
-      "failed {} times",
-      middle, seen.back().time, low, high, seen.back().change, attempts);
+      "{}: from time {:.3g} to {:.3g} of a march the surface heat flow went from {:.4g} to {:.4g}, "
+      "its relative rate of change at the end is {:.1e}, and Newton's method failed {} times{}",
+      keeps_changing ? "time-dependent flow" : "not settled", middle, seen.back().time, low, high,
+      seen.back().change, attempts, newton.empty() ? "" : " (" + newton + ")");
 }
 
 class Guess {
@@ -65,19 +66,9 @@ class Guess {
   }
   const CellField& temperature() const { return march_.temperature(); }
   const std::vector<Seen>& seen() const { return seen_; }
-
   /// In the last third of a long record the slowest change is hardly slower than in the third
   /// before.
-  bool keeps_changing() const {
-    const std::size_t n = seen_.size();
-    if (n < 60) return false;
-    const auto slowest = [&](std::size_t from, std::size_t to) {
-      double least = seen_[from].change;
-      for (std::size_t k = from; k < to; ++k) least = std::min(least, seen_[k].change);
-      return least;
-    };
-    return slowest(2 * n / 3, n) > std::max(0.7 * slowest(n / 3, 2 * n / 3), near);
-  }
+  bool keeps_changing() const;
 
  private:
   static HeatSettings heat(const SettleSettings& settings) {
@@ -92,6 +83,17 @@ class Guess {
   March march_;
   std::vector<Seen> seen_;
 };
+
+bool Guess::keeps_changing() const {
+  const std::size_t n = seen_.size();
+  if (n < 60) return false;
+  const auto slowest = [&](std::size_t from, std::size_t to) {
+    double least = seen_[from].change;
+    for (std::size_t k = from; k < to; ++k) least = std::min(least, seen_[k].change);
+    return least;
+  };
+  return slowest(2 * n / 3, n) > std::max(0.7 * slowest(n / 3, 2 * n / 3), near);
+}
 
 }  // namespace
 
@@ -112,13 +114,13 @@ NewtonOutcome settle_by_marching(SteadyEquations& equations, CoupledSolver& solv
     few.most_steps = std::min(settings.most_steps, 20);
     outcome = newton(equations, solver, few, std::numeric_limits<double>::infinity(), observer);
     if (outcome.converged || outcome.stopped) return outcome;
-    outcome.remark = account(guess.seen(), ++attempts);
+    outcome.remark = account(guess.seen(), guess.keeps_changing(), ++attempts, outcome.remark);
     equations.set_temperature(guess.temperature());
     // As steady as it will be, yet Newton's method finds nothing: the grid is too coarse.
     if (now.change < 1e-3) return outcome;
     below = now.change / 3;
   }
-  if (outcome.remark.empty()) outcome.remark = account(guess.seen(), 0);
+  if (outcome.remark.empty()) outcome.remark = account(guess.seen(), guess.keeps_changing(), 0, "");
   return outcome;
 }
 

@@ -1,12 +1,11 @@
 #include "solver/found.hpp"
 
+#include <algorithm>
 #include <cmath>
 
 #include "mesh/gather.hpp"
 
 namespace lidwright {
-namespace {
-
 StoredTemperature stored(const CellField& t) {
   const Geometry& g = t.decomposition().geometry();
   StoredTemperature s;
@@ -16,6 +15,8 @@ StoredTemperature stored(const CellField& t) {
   s.values = gather_to_first(t);
   return s;
 }
+
+namespace {
 
 /// Plain data of what the first rank found, on all ranks (fields stay on the first).
 void broadcast(Found& f, MPI_Comm comm) {
@@ -39,6 +40,29 @@ void Found::keep(const SteadyEquations& equations) {
   psi = gather_to_first(equations.view().psi);
 }
 
+namespace {
+
+/// What does not close in the budget of heat, over the largest of its terms. Advection counts where
+/// the heat capacity varies, as it is no divergence then.
+double net_heat(const StateView& view, const HistoryRow& row) {
+  double carried = 0;
+  if (!view.heat.mantle().uniform_heat_capacity) {
+    CellField gain(view.temperature.decomposition_pointer());
+    view.heat.add_advection(view.temperature, view.psi, gain);
+    for (std::size_t k = 0; k < gain.owned_size(); ++k) carried += gain.owned_data()[k];
+    carried = view.heat.decomposition().sum(carried);
+  }
+  double net = 0, largest = 0;
+  for (const double term : {row.heat_flow_inner, -row.heat_flow_outer, row.heat_source,
+                            row.viscous_heating, -row.adiabatic_cooling, carried}) {
+    net += term;
+    largest = std::max(largest, std::abs(term));
+  }
+  return largest > 0 ? net / largest : 0;
+}
+
+}  // namespace
+
 SteadyState share(const Model& model, HeatFlux flux, const Found& found, MPI_Comm comm) {
   Model on_grid = model;
   on_grid.grid = found.grid;
@@ -53,10 +77,7 @@ SteadyState share(const Model& model, HeatFlux flux, const Found& found, MPI_Com
   const StateView view{power, heat, temperature, psi, model.rayleigh};
   SteadyState s{found.grid,    found.converged,      found.residual, found.remark,
                 measure(view), snapshot(view, true), found.steps};
-  const double passing = std::abs(s.row.heat_flow_outer);
-  const double net = s.row.heat_flow_inner - s.row.heat_flow_outer + s.row.heat_source +
-                     s.row.viscous_heating - s.row.adiabatic_cooling;
-  s.row.heat_budget_residual = passing > 0 ? net / passing : 0;
+  s.row.heat_budget_residual = net_heat(view, s.row);
   return s;
 }
 

@@ -9,6 +9,9 @@
 /// A state found on the first rank, on its way to all.
 namespace lidwright {
 
+/// The whole field on the first rank, where it can start another one.
+StoredTemperature stored(const CellField&);
+
 struct Found {
   Grid grid;
   bool converged = false;

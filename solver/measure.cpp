@@ -130,10 +130,16 @@ void add_column(const StateView& s, int j, std::vector<double>& sums) {
 }
 
 /// The adiabat that passes through the mean temperature at mid-depth.
-std::vector<double> adiabat(const MantleRows& mantle, const std::vector<double>& mean) {
-  const std::size_t middle = mean.size() / 2;
-  const double surface =
-      (mean[middle] + mantle.surface_temperature) / mantle.adiabatic_rise[middle];
+std::vector<double> adiabat(const Geometry& g, const MantleRows& mantle,
+                            const std::vector<double>& mean) {
+  std::size_t above = 1;
+  while (g.depth(static_cast<int>(above)) > 0.5) ++above;
+  const auto at_surface = [&](std::size_t row) {
+    return (mean[row] + mantle.surface_temperature) / mantle.adiabatic_rise[row];
+  };
+  const double deep = g.depth(static_cast<int>(above) - 1), high = g.depth(static_cast<int>(above));
+  const double share = (deep - 0.5) / (deep - high);
+  const double surface = (1 - share) * at_surface(above - 1) + share * at_surface(above);
   std::vector<double> t;
   for (const double rise : mantle.adiabatic_rise)
     t.push_back(surface * rise - mantle.surface_temperature);
@@ -239,7 +245,7 @@ RadialProfiles profiles(const StateView& s) {
     p.heat_conducted.push_back(sums[4 * rows + i]);
     p.heat_advected.push_back(sums[5 * rows + i]);
   }
-  p.temperature_adiabatic = adiabat(s.heat.mantle(), p.temperature);
+  p.temperature_adiabatic = adiabat(g, s.heat.mantle(), p.temperature);
   return p;
 }
 

@@ -22,14 +22,6 @@ constexpr double start_tolerance = 1e-4;
 /// Of a march to a first guess: where a coarse grid has no steady state, a finer one goes on.
 constexpr long steps_on_coarse_grids = 3000, steps_on_the_grid = 20000;
 
-Grid halved(Grid grid, int times) {
-  for (int k = 0; k < times; ++k) {
-    grid.radial /= 2;
-    grid.lateral /= 2;
-  }
-  return grid;
-}
-
 /// How often the grid can be halved without fewer than `coarsest` radial cells.
 int halvings(const Grid& grid, int coarsest) {
   int times = 0;
@@ -51,6 +43,7 @@ class Ladder {
 
  private:
   Found solve(int times, const StoredTemperature& from, bool passing);
+  void on_the_models_grid(Found&) const;
   Model halved_model(int times) const {
     Model m = model_;
     m.grid = halved(m.grid, times);
@@ -85,7 +78,7 @@ Found Ladder::solve(int times, const StoredTemperature& from, bool passing) {
   equations.set_temperature(initial_temperature(equations.heat(), start, from));
   // A start that is far away, like a disturbed conductive one, must not fall back on an unstable
   // state near by: it is marched first.
-  if (!from.values.empty() || equations.residual() <= settings_.tolerance) {
+  if (!from.values.empty() || equations.residual() <= settings.tolerance) {
     SettleSettings few = settings;
     few.most_steps = std::min(settings.most_steps, 25);
     take(newton(equations, solver, few, infinity, observer_));
@@ -95,6 +88,14 @@ Found Ladder::solve(int times, const StoredTemperature& from, bool passing) {
                             times > 0 ? steps_on_coarse_grids : steps_on_the_grid, observer_));
   found.keep(equations);
   return found;
+}
+
+/// What was found before a search was stopped on a coarse grid, interpolated: that grid may be too
+/// small for the ranks.
+void Ladder::on_the_models_grid(Found& found) const {
+  SteadyEquations equations(model_, settings_.flux);
+  equations.set_temperature(initial_temperature(equations.heat(), {}, found.temperature));
+  found.keep(equations);
 }
 
 /// Grid by grid upwards, each from the one below. A grid may have no steady state, being too coarse
@@ -119,7 +120,10 @@ std::vector<Found> Ladder::climb(int grids) {
     }
     here.steps.insert(here.steps.begin(), in_vain.begin(), in_vain.end());
     in_vain.clear();
-    if (!here.converged) found.clear();
+    if (!here.converged) {
+      found.clear();
+      if (times > 0) on_the_models_grid(here);
+    }
     found.push_back(std::move(here));
   }
   if (found.size() > static_cast<std::size_t>(grids))
@@ -128,6 +132,14 @@ std::vector<Found> Ladder::climb(int grids) {
 }
 
 }  // namespace
+
+Grid halved(Grid grid, int times) {
+  for (int k = 0; k < times; ++k) {
+    grid.radial /= 2;
+    grid.lateral /= 2;
+  }
+  return grid;
+}
 
 void refuse_unhalvable(const Grid& grid, int grids) {
   if (halvings(grid, 4) < grids - 1)
@@ -141,6 +153,14 @@ std::vector<SteadyState> settle(const Model& model, const InitialSettings& initi
                                 const StoredTemperature& start, const SettleSettings& settings,
                                 int grids, MPI_Comm comm, const SettleObserver& observer) {
   refuse_unhalvable(model.grid, grids);
+  int ranks = 1;
+  MPI_Comm_size(comm, &ranks);
+  const int columns = halved(model.grid, grids - 1).lateral;
+  if (columns / ranks < Decomposition::least_columns)
+    throw std::invalid_argument(fmt::format(
+        "{} lateral cells on {} ranks: each rank needs {} or more; use fewer ranks or more lateral "
+        "cells",
+        columns, ranks, Decomposition::least_columns));
   std::vector<Found> found;
   on_first_rank_or_throw(comm, "not enough memory for this grid; use fewer cells", [&] {
     found = Ladder(model, initial, start, settings, observer).climb(grids);

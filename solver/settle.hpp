@@ -35,6 +35,9 @@ struct SteadyState {
 /// Throws std::invalid_argument when a grid cannot be halved grids - 1 times.
 void refuse_unhalvable(const Grid&, int grids);
 
+/// The grid that is `times` times twice as coarse.
+Grid halved(Grid, int times);
+
 /// Told after every Newton step (and every stretch of the march to a first guess, with step -1);
 /// returns false to stop.
 using SettleObserver = std::function<bool(const NewtonStep&)>;

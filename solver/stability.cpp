@@ -3,6 +3,7 @@
 #include <algorithm>
 #include <cmath>
 #include <complex>
+#include <exception>
 
 #include "mesh/gather.hpp"
 #include "solver/eigenvalue_library.hpp"
@@ -26,7 +27,10 @@ class ShiftInvert {
   void apply(const Eigen::Map<const Eigen::VectorXd>& theta, Eigen::Map<Eigen::VectorXd> y) {
     Eigen::VectorXd right = Eigen::VectorXd::Zero(unknowns_.size()), x;
     right.tail(unknowns_.cells()) = capacity_.cwiseProduct(theta);
-    (void)solver_.solve(right, 1e-10, x);
+    if (solver_.solve(right, 1e-10, x).residual > 1e-7)
+      throw SolveError(
+          "the growth rates cannot be told: the linearised equations are solved too inaccurately; "
+          "narrow the viscosity with viscosity.lowest and viscosity.highest, or refine the grid");
     y = x.tail(unknowns_.cells());
   }
   long size() const { return unknowns_.cells(); }
@@ -38,19 +42,31 @@ class ShiftInvert {
     double* y = nullptr;
     PetscCall(VecGetArrayRead(in, &x));
     PetscCall(VecGetArray(out, &y));
-    self->apply({x, self->size()}, {y, self->size()});
+    // No exception may pass through the library: it waits until the library has returned.
+    try {
+      if (!self->failure_) self->apply({x, self->size()}, {y, self->size()});
+    } catch (...) {
+      self->failure_ = std::current_exception();
+    }
     PetscCall(VecRestoreArray(out, &y));
     PetscCall(VecRestoreArrayRead(in, &x));
-    return 0;
+    return self->failure_ ? PETSC_ERR_LIB : 0;
+  }
+  void rethrow() const {
+    if (failure_) std::rethrow_exception(failure_);
   }
 
  private:
   const Unknowns& unknowns_;
   const Eigen::VectorXd& capacity_;
   CoupledSolver solver_;
+  std::exception_ptr failure_;
 };
 
-using Growth = std::complex<double>;
+struct Growth {
+  std::complex<double> rate;
+  bool turning;
+};
 constexpr int most_restarts = 60;
 
 /// A start with a share in every eigenvector, the same in every run.
@@ -61,6 +77,17 @@ void fill_start(Vec v) {
   check(VecGetArrayWrite(v, &x));
   for (PetscInt k = 0; k < n; ++k) x[k] = std::fmod(0.5 + 0.6180339887498949 * k, 1.0) - 0.5;
   check(VecRestoreArrayWrite(v, &x));
+}
+
+/// Is a disturbance that of turning, v with v . M v = 1 (empty: nothing can turn), to 90 %?
+bool turns(const Eigen::VectorXd& v, const Eigen::VectorXd& capacity, Vec disturbance) {
+  if (v.size() == 0) return false;
+  const double* raw = nullptr;
+  check(VecGetArrayRead(disturbance, &raw));
+  const Eigen::VectorXd x = Eigen::Map<const Eigen::VectorXd>(raw, v.size());
+  check(VecRestoreArrayRead(disturbance, &raw));
+  const Eigen::VectorXd weighted = capacity.cwiseProduct(x);
+  return std::abs(v.dot(weighted)) > 0.9 * std::sqrt(x.dot(weighted));
 }
 
 /// The growth rates nearest to a real shift, as far as they converge. All that grow without
@@ -84,14 +111,19 @@ std::vector<Growth> nearest_to(const SteadyEquations& equations, const Linearise
   fill_start(start);
   Vec starts[] = {start};
   check(EPSSetInitialSpace(eps, 1, starts));
-  check(EPSSolve(eps));
+  check(PetscPushErrorHandler(PetscIgnoreErrorHandler, nullptr));
+  const PetscErrorCode solved = EPSSolve(eps);
+  check(PetscPopErrorHandler());
+  inverse.rethrow();
+  check(solved);
   PetscInt found = 0;
   check(EPSGetConverged(eps, &found));
   std::vector<Growth> rates;
   for (PetscInt k = 0; k < found; ++k) {
     double re = 0, im = 0;
-    check(EPSGetEigenvalue(eps, k, &re, &im));
-    rates.push_back(shift - 1.0 / Growth(re, im));
+    check(EPSGetEigenpair(eps, k, &re, &im, start, nullptr));
+    rates.push_back({shift - 1.0 / std::complex<double>(re, im),
+                     turns(equations.turning(), jacobian.capacity, start)});
   }
   return rates;
 }
@@ -100,12 +132,15 @@ std::vector<Growth> nearest_to(const SteadyEquations& equations, const Linearise
 std::vector<GrowthRate> leading(const std::vector<Growth>& all, int count) {
   std::vector<GrowthRate> rates;
   for (const Growth& g : all) {
+    const double size = 1 + std::abs(g.rate);
+    // Equal eigenvalues come out as a pair, by round-off.
+    const double frequency = std::abs(g.rate.imag()) < 1e-5 * size ? 0 : std::abs(g.rate.imag());
     const auto same = [&](const GrowthRate& r) {
-      return std::abs(Growth(r.growth, r.frequency) - Growth(g.real(), std::abs(g.imag()))) <
-             1e-5 * (1 + std::abs(g));
+      return std::hypot(r.growth - g.rate.real(), r.frequency - frequency) < 1e-5 * size &&
+             r.turning == g.turning;
     };
     if (std::none_of(rates.begin(), rates.end(), same))
-      rates.push_back({g.real(), std::abs(g.imag())});
+      rates.push_back({g.rate.real(), frequency, g.turning});
   }
   std::sort(rates.begin(), rates.end(),
             [](const GrowthRate& a, const GrowthRate& b) { return a.growth > b.growth; });
@@ -156,7 +191,7 @@ std::vector<GrowthRate> growth_rates(const Model& model, HeatFlux flux,
   auto found = static_cast<int>(rates.size());
   MPI_Bcast(&found, 1, MPI_INT, 0, comm);
   rates.resize(static_cast<std::size_t>(found));
-  MPI_Bcast(rates.data(), 2 * found, MPI_DOUBLE, 0, comm);
+  MPI_Bcast(rates.data(), found * static_cast<int>(sizeof(GrowthRate)), MPI_BYTE, 0, comm);
   return rates;
 }
 

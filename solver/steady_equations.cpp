@@ -42,7 +42,9 @@ void SteadyEquations::set_temperature(const CellField& t) {
   const double passing = (std::abs(row.heat_flow_inner) + std::abs(row.heat_flow_outer) +
                           std::abs(row.heat_source) + 2 * std::abs(row.viscous_heating)) /
                          2;
-  heat_rate_ = passing / heat_.total_capacity();
+  // Where no heat passes, a temperature of one unit would be a thousandth of what conduction needs.
+  const double least = 1e-3 * heat_.mantle().conductive_heat_flow;
+  heat_rate_ = std::max(passing, least) / heat_.total_capacity();
   double sum = 0;
   const Geometry& g = decomposition_->geometry();
   for (int j = 0; j < g.lateral_cells(); ++j)

@@ -5,6 +5,7 @@
 #include <algorithm>
 #include <cmath>
 
+#include "solver/found.hpp"
 #include "solver/march.hpp"
 #include "solver/solve_error.hpp"
 #include "study/cycle.hpp"
@@ -38,7 +39,7 @@ Measured measure_flow(const Problem& p, int grids, const std::vector<std::string
                       const Watch& watch) {
   Values values;
   for (int n = grids - 1; n >= 0; --n) {
-    const Grid grid = coarsened(p.model.grid, n);
+    const Grid grid = halved(p.model.grid, n);
     watch.say(fmt::format("{} x {}", grid.radial, grid.lateral));
     append(values, prescribed_flow(p.model, p.forcing, flow_tolerance, grid));
     if (watch.stop()) throw Stopped{};
@@ -124,7 +125,7 @@ Measured measure_march(const Problem& p, int grids, const std::vector<std::strin
   Marched last;
   Beats heat, flow;
   for (int n = grids - 1; n >= 0; --n) {
-    const Grid grid = coarsened(p.model.grid, n);
+    const Grid grid = halved(p.model.grid, n);
     last = march_on(p, grid, last.end, watch);
     heat = beats(last.time, last.nusselt, p.cycles);
     flow = beats(last.time, last.velocity, p.cycles);

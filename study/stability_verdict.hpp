@@ -2,7 +2,6 @@
 
 #include <vector>
 
-#include "mesh/geometry.hpp"
 #include "solver/stability.hpp"
 
 /// What growth rates say about a steady state.
@@ -18,7 +17,6 @@ struct StabilityVerdict {
   bool unstable() const { return leading >= 0 && leader().growth > 0; }
 };
 
-/// `patterned`: the state varies along the shell, so that on a periodic one it may be turned.
-StabilityVerdict judge_stability(std::vector<GrowthRate>, Sides, bool patterned);
+StabilityVerdict judge_stability(std::vector<GrowthRate>);
 
 }  // namespace lidwright
