@@ -116,9 +116,10 @@ std::string stability_for_people(const StabilityVerdict& v) {
   auto out = std::back_inserter(text);
   fmt::format_to(out, "    {:>14} {:>14}   [kappa/d^2]\n", "growth", "frequency");
   for (std::size_t k = 0; k < v.rates.size(); ++k)
-    fmt::format_to(
-        out, "    {:>14.6g} {:>14.6g}{}\n", v.rates[k].growth, v.rates[k].frequency,
-        static_cast<int>(k) == v.turning ? "   turning the pattern round, neutral but for the mesh" : "");
+    fmt::format_to(out, "    {:>14.6g} {:>14.6g}{}\n", v.rates[k].growth, v.rates[k].frequency,
+                   static_cast<int>(k) == v.turning
+                       ? "   turning the pattern round, neutral but for the mesh"
+                       : "");
   return text;
 }
 

@@ -6,9 +6,6 @@
 #include "solver/solve_error.hpp"
 
 namespace lidwright {
-namespace {
-
-/// Walls with the same kind of condition and all values zero: the linear part of conduction.
 Walls homogeneous(Walls walls) {
   for (Wall* wall : {&walls.inner, &walls.outer}) {
     if (std::holds_alternative<FixedTemperature>(wall->thermal))
@@ -18,8 +15,6 @@ Walls homogeneous(Walls walls) {
   }
   return walls;
 }
-
-}  // namespace
 
 ImplicitConduction::ImplicitConduction(const HeatOperator& heat)
     : heat_(heat),

@@ -6,6 +6,10 @@
 
 namespace lidwright {
 
+/// Walls with the same kind of condition and all values zero: those of a disturbance, and of the
+/// linear part of conduction.
+Walls homogeneous(Walls);
+
 /// (V rho cp - tau * conduction) T = right, by conjugate gradients with exact radial lines as
 /// preconditioner.
 class ImplicitConduction {

@@ -2,6 +2,7 @@
 #include <cmath>
 #include <numbers>
 
+#include "solver/implicit_conduction.hpp"
 #include "solver/measure.hpp"
 #include "solver/onset.hpp"
 
@@ -49,17 +50,6 @@ double largest(const std::vector<double>& values) {
   return most;
 }
 
-/// The walls as a disturbance sees them.
-Walls undisturbed(Walls walls) {
-  for (Wall* wall : {&walls.inner, &walls.outer}) {
-    if (std::holds_alternative<FixedTemperature>(wall->thermal))
-      wall->thermal = FixedTemperature{0};
-    else
-      wall->thermal = FixedHeatFlux{0};
-  }
-  return walls;
-}
-
 }  // namespace
 
 /// Read off the disturbance as off any state.
@@ -72,7 +62,7 @@ Snapshot onset_snapshot(const Model& m, const NeutralShape& shape, MPI_Comm comm
   Power power(d, m.walls);
   const HeatOperator at_rest(d, m.walls, m.heat, HeatFlux::Central, m.reference);
   power.set_viscosity(viscosity_of(m.viscosity, temperature_at_rest(at_rest)));
-  const HeatOperator heat(d, undisturbed(m.walls), HeatSources{}, HeatFlux::Central, m.reference);
+  const HeatOperator heat(d, homogeneous(m.walls), HeatSources{}, HeatFlux::Central, m.reference);
   Snapshot s = snapshot({power, heat, t, psi, shape.rayleigh}, false);
   s.step = shape.number;
   return s;

@@ -78,8 +78,7 @@ class FlowIdentities : public testing::TestWithParam<std::tuple<NamedShell, Slip
     return psi;
   }
 
-  std::shared_ptr<const Decomposition> d =
-      decompose(std::get<0>(GetParam()).shell, std::get<0>(GetParam()).grid);
+  std::shared_ptr<const Decomposition> d = decompose(std::get<0>(GetParam()));
   const Geometry& g = d->geometry();
   Walls walls = walls_of(std::get<1>(GetParam()));
   CellField eta{d};
@@ -204,6 +203,11 @@ INSTANTIATE_TEST_SUITE_P(All, FlowIdentities,
                                           testing::Values(Slips{"SlipSlip", Slip::Free, Slip::Free},
                                                           Slips{"GripGrip", Slip::None, Slip::None},
                                                           Slips{"SlipGrip", Slip::Free,
+                                                                Slip::None})),
+                         case_name);
+INSTANTIATE_TEST_SUITE_P(Compressed, FlowIdentities,
+                         testing::Combine(testing::ValuesIn(compressed(all_shells(8, 12))),
+                                          testing::Values(Slips{"SlipGrip", Slip::Free,
                                                                 Slip::None})),
                          case_name);
 

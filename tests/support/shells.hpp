@@ -2,6 +2,7 @@
 
 #include <gtest/gtest.h>
 
+#include <cmath>
 #include <functional>
 #include <memory>
 #include <numbers>
@@ -17,6 +18,7 @@ struct NamedShell {
   std::string name;
   Shell shell;
   Grid grid;
+  double density_rise = 1;  ///< density at the inner wall over that at the outer, exponential
 };
 inline void PrintTo(const NamedShell& s, std::ostream* out) { *out << s.name; }
 
@@ -53,6 +55,21 @@ inline std::vector<NamedShell> all_shells(int radial, int lateral) {
 inline std::shared_ptr<const Decomposition> decompose(const Shell& shell, const Grid& grid,
                                                       MPI_Comm comm = PETSC_COMM_SELF) {
   return std::make_shared<Decomposition>(std::make_shared<Geometry>(shell, grid), comm);
+}
+
+inline std::shared_ptr<const Decomposition> decompose(const NamedShell& s) {
+  const auto density = [&](double depth) { return std::pow(s.density_rise, depth); };
+  return std::make_shared<Decomposition>(std::make_shared<Geometry>(s.shell, s.grid, density),
+                                         PETSC_COMM_SELF);
+}
+
+/// The same shells, three times as dense at the inner wall as at the outer.
+inline std::vector<NamedShell> compressed(std::vector<NamedShell> shells) {
+  for (NamedShell& s : shells) {
+    s.name = "Compressed" + s.name;
+    s.density_rise = 3;
+  }
+  return shells;
 }
 
 /// Sets every number held, ghosts included.
