@@ -65,7 +65,7 @@ std::vector<SummaryEntry> settle_entries(const Case& c, const SteadyState& s, st
       state = state_entries(s.row),
       last{
           {"heat_budget_residual", s.row.heat_budget_residual, "",
-           "what flows in and is produced less what flows out, over the heat flow out"},
+           "what flows in and is produced less what flows out, over the largest of these"},
           {"residual", s.residual, "",
            "rms of dT/dt, over heat flow through heat capacity of the shell"},
           {"newton_steps", static_cast<long>(steps), "", "on all grids"},

@@ -34,8 +34,9 @@ std::vector<Column> columns_for(const BranchParameter& p, const std::string& mea
       {"snapshot", "1", "number of its snapshot, picture and checkpoint; -1: none"}};
   for (const Column& c : history_columns())
     if (of_a_state(c)) columns.push_back(c);
-  columns.push_back({"heat_budget_residual", "1",
-                     "what flows in and is produced less what flows out, over the heat flow out"});
+  columns.push_back(
+      {"heat_budget_residual", "1",
+       "what flows in and is produced less what flows out, over the largest of these"});
   columns.push_back(
       {"residual", "1",
        "root mean square of dT/dt, over heat flow through heat capacity of the shell"});
