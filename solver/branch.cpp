@@ -4,7 +4,6 @@
 
 #include <algorithm>
 #include <cmath>
-#include <limits>
 #include <memory>
 #include <optional>
 
@@ -16,7 +15,6 @@
 namespace lidwright {
 namespace {
 
-constexpr double infinity = std::numeric_limits<double>::infinity();
 constexpr int most_corrections = 7;
 constexpr double far = 30;  ///< a residual from which no correction is tried
 constexpr double shortest_step = 1e-7;
@@ -116,14 +114,9 @@ Eigen::VectorXd Walk::gain_by_p(const Place& place) {
 /// last value.
 Place Walk::tangent(const Place& at, const Place* former) {
   const auto equations = equations_at(at);
-  const Unknowns& u = equations->unknowns();
-  Eigen::VectorXd right = Eigen::VectorXd::Zero(u.size()), x;
-  right.tail(u.cells()) = gain_by_p(at);
-  solver_.set_matrix(equations->linearise(), 0);
-  solver_.hold(equations->turning(), equations->holding_rate());
+  set_jacobian(solver_, *equations, 0);
   solver_.drop_factor();
-  (void)solver_.solve(right, 1e-8, x);
-  Place t{x.tail(u.cells()), 1};
+  Place t{temperature_change(solver_, *equations, gain_by_p(at), 1e-8), 1};
   double scale = 1 / std::sqrt(product(t, t));
   if ((former ? product(t, *former) : sense()) < 0) scale = -scale;
   t.temperature *= scale;
@@ -140,14 +133,9 @@ std::optional<Walk::Kept> Walk::correct(Place& trial, const Place& direction) {
     if (equations->residual() <= settings_.tolerance)
       return state_of(*equations, trial.p, false, n);
     if (n == most_corrections || equations->residual() > far) break;
-    const Unknowns& u = equations->unknowns();
-    solver_.set_matrix(equations->linearise(), 0);
-    solver_.hold(equations->turning(), equations->holding_rate());
+    set_jacobian(solver_, *equations, 0);
     const auto response = [&](const Eigen::VectorXd& gain) {
-      Eigen::VectorXd right = Eigen::VectorXd::Zero(u.size()), x;
-      right.tail(u.cells()) = gain;
-      (void)solver_.solve(right, 1e-9, x);
-      return Eigen::VectorXd(x.tail(u.cells()));
+      return temperature_change(solver_, *equations, gain, 1e-9);
     };
     const Place a{response(equations->gain()), 0}, b{response(by_p), 1};
     const Place off{trial.temperature - start.temperature, trial.p - start.p};
@@ -186,7 +174,7 @@ bool Walk::meet(const Place& from, const Place& to, double value) {
   const double share = (to_p(value) - from.p) / (to.p - from.p);
   const Place between{from.temperature + share * (to.temperature - from.temperature), to_p(value)};
   const auto equations = equations_at(between);
-  const NewtonOutcome outcome = newton(*equations, solver_, settings_, infinity, {});
+  const NewtonOutcome outcome = newton(*equations, solver_, settings_, {});
   if (!outcome.converged) return false;
   keep(state_of(*equations, between.p, true, static_cast<int>(outcome.steps.size()) - 1));
   return true;
@@ -208,7 +196,7 @@ Place Walk::begin(const std::vector<double>& start) {
       Eigen::Map<const Eigen::VectorXd>(start.data(), static_cast<long>(start.size())),
       to_p(request_.values.front())};
   const auto equations = equations_at(guess);
-  const NewtonOutcome outcome = newton(*equations, solver_, settings_, infinity, {});
+  const NewtonOutcome outcome = newton(*equations, solver_, settings_, {});
   if (!outcome.converged)
     throw SolveError("the branch's start is not a steady state: " + outcome.remark);
   Place here{equations->unknowns().temperature_vector(equations->temperature()), guess.p};

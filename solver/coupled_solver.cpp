@@ -272,7 +272,6 @@ LinearReport CoupledSolver::solve(const Eigen::VectorXd& b, double tolerance, Ei
     return report;
   }
   factorise();
-  report.new_factor = true;
   // What round-off leaves is good enough for an inexact Newton step.
   if (!attempt() && !(report.residual <= 1e-2))
     throw SolveError("the linear equations of a Newton step could not be solved");

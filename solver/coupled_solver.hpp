@@ -16,7 +16,6 @@ namespace lidwright {
 
 struct LinearReport {
   int iterations = 0;
-  bool new_factor = false;
   double residual = 0;  ///< relative, in the Euclidean norm
 };
 
@@ -36,13 +35,12 @@ class CoupledSolver {
   void hold(const Eigen::VectorXd& v, double rate);
   /// Makes the next solve factorise anew, whatever the old factor would do.
   void drop_factor() { ready_ = false; }
-  /// x with |b - A x| <= tolerance |b|. Throws SolveError when that is not reached, even with a new
-  /// factor.
+  /// x with |b - A x| <= tolerance |b|, or what round-off leaves of it: the report says. Throws
+  /// SolveError when even a new factor does not reach 1e-2.
   LinearReport solve(const Eigen::VectorXd& b, double tolerance, Eigen::VectorXd& x);
 
   /// y = A x.
   Eigen::VectorXd multiply(const Eigen::VectorXd& x) const;
-  bool direct() const { return kind_ == LinearSolver::Direct; }
 
  private:
   struct Preconditioner;

@@ -112,7 +112,7 @@ NewtonOutcome settle_by_marching(SteadyEquations& equations, CoupledSolver& solv
     if (!guess.near_steady(below)) continue;
     SettleSettings few = settings;
     few.most_steps = std::min(settings.most_steps, 20);
-    outcome = newton(equations, solver, few, std::numeric_limits<double>::infinity(), observer);
+    outcome = newton(equations, solver, few, observer);
     if (outcome.converged || outcome.stopped) return outcome;
     outcome.remark = account(guess.seen(), guess.keeps_changing(), ++attempts, outcome.remark);
     equations.set_temperature(guess.temperature());

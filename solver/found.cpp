@@ -6,16 +6,6 @@
 #include "mesh/gather.hpp"
 
 namespace lidwright {
-StoredTemperature stored(const CellField& t) {
-  const Geometry& g = t.decomposition().geometry();
-  StoredTemperature s;
-  s.shell = g.shell();
-  for (int i = 0; i <= g.radial_cells(); ++i) s.face_radius.push_back(g.face_radius(i));
-  for (int j = 0; j <= g.lateral_cells(); ++j) s.face_lateral.push_back(g.face_lateral(j));
-  s.values = gather_to_first(t);
-  return s;
-}
-
 namespace {
 
 /// Plain data of what the first rank found, on all ranks (fields stay on the first).
@@ -30,17 +20,6 @@ void broadcast(Found& f, MPI_Comm comm) {
   MPI_Bcast(f.remark.data(), numbers[3], MPI_CHAR, 0, comm);
   MPI_Bcast(&f.residual, 1, MPI_DOUBLE, 0, comm);
 }
-
-}  // namespace
-
-void Found::keep(const SteadyEquations& equations) {
-  grid = equations.model().grid;
-  residual = equations.residual();
-  temperature = stored(equations.temperature());
-  psi = gather_to_first(equations.view().psi);
-}
-
-namespace {
 
 /// What does not close in the budget of heat, over the largest of its terms. Advection counts where
 /// the heat capacity varies, as it is no divergence then.
@@ -62,6 +41,23 @@ double net_heat(const StateView& view, const HistoryRow& row) {
 }
 
 }  // namespace
+
+StoredTemperature stored(const CellField& t) {
+  const Geometry& g = t.decomposition().geometry();
+  StoredTemperature s;
+  s.shell = g.shell();
+  for (int i = 0; i <= g.radial_cells(); ++i) s.face_radius.push_back(g.face_radius(i));
+  for (int j = 0; j <= g.lateral_cells(); ++j) s.face_lateral.push_back(g.face_lateral(j));
+  s.values = gather_to_first(t);
+  return s;
+}
+
+void Found::keep(const SteadyEquations& equations) {
+  grid = equations.model().grid;
+  residual = equations.residual();
+  temperature = stored(equations.temperature());
+  psi = gather_to_first(equations.view().psi);
+}
 
 SteadyState share(const Model& model, HeatFlux flux, const Found& found, MPI_Comm comm) {
   Model on_grid = model;

@@ -16,13 +16,19 @@ constexpr double infinity = std::numeric_limits<double>::infinity();
 /// Largest change of a cell's temperature in one step, in units of the temperatures' range.
 constexpr double largest_change = 0.5;
 
+/// A pseudo time in which no cell's temperature changes by more than `change`.
+double cautious_pseudo_time(const SteadyEquations& equations, double change) {
+  const double fastest = equations.fastest_change();
+  return fastest > 0 ? change / fastest : infinity;
+}
+
 class Newton {
  public:
   Newton(SteadyEquations& equations, CoupledSolver& solver, const SettleSettings& settings,
          const SettleObserver& observer)
       : equations_(equations), solver_(solver), settings_(settings), observer_(observer) {}
 
-  NewtonOutcome run(double pseudo_time);
+  NewtonOutcome run();
 
  private:
   bool report(double pseudo_time, int linear_iterations);
@@ -52,16 +58,10 @@ bool Newton::report(double pseudo_time, int linear_iterations) {
 /// (Dembo, Eisenstat & Steihaug 1982, SIAM J. Numer. Anal. 19, 400).
 double Newton::forcing_term() const { return std::clamp(0.03 * equations_.residual(), 1e-9, 1e-4); }
 
-/// The flow's residual is zero, so its rows carry none: what changes psi follows from the change of
-/// T, and only that is used.
 Eigen::VectorXd Newton::change_of_temperature(double pseudo_time) {
-  const Unknowns& u = equations_.unknowns();
-  solver_.set_matrix(equations_.linearise(), std::isinf(pseudo_time) ? 0 : 1 / pseudo_time);
-  solver_.hold(equations_.turning(), equations_.holding_rate());
-  Eigen::VectorXd right = Eigen::VectorXd::Zero(u.size()), x;
-  right.tail(u.cells()) = equations_.gain();
-  linear_iterations_ = solver_.solve(right, forcing_term(), x).iterations;
-  return x.tail(u.cells());
+  set_jacobian(solver_, equations_, std::isinf(pseudo_time) ? 0 : 1 / pseudo_time);
+  return temperature_change(solver_, equations_, equations_.gain(), forcing_term(),
+                            &linear_iterations_);
 }
 
 double Newton::longest_fraction(const Eigen::VectorXd& change) const {
@@ -109,7 +109,8 @@ double Newton::next_pseudo_time(double pseudo_time, double before) const {
   return next * equations_.heat_rate() > 30 && equations_.residual() < 0.05 ? infinity : next;
 }
 
-NewtonOutcome Newton::run(double pseudo_time) {
+NewtonOutcome Newton::run() {
+  double pseudo_time = infinity;
   solver_.drop_factor();
   int failures = 0;
   if (!report(infinity, 0)) return outcome_;
@@ -142,15 +143,25 @@ NewtonOutcome Newton::run(double pseudo_time) {
 
 }  // namespace
 
-double cautious_pseudo_time(const SteadyEquations& equations, double change) {
-  const double fastest = equations.fastest_change();
-  return fastest > 0 ? change / fastest : infinity;
+void set_jacobian(CoupledSolver& solver, const SteadyEquations& equations, double shift) {
+  solver.set_matrix(equations.linearise(), shift);
+  solver.hold(equations.turning(), equations.holding_rate());
+}
+
+Eigen::VectorXd temperature_change(CoupledSolver& solver, const SteadyEquations& equations,
+                                   const Eigen::VectorXd& gain, double tolerance,
+                                   int* linear_iterations) {
+  const Unknowns& u = equations.unknowns();
+  Eigen::VectorXd right = Eigen::VectorXd::Zero(u.size()), x;
+  right.tail(u.cells()) = gain;
+  const LinearReport report = solver.solve(right, tolerance, x);
+  if (linear_iterations) *linear_iterations = report.iterations;
+  return x.tail(u.cells());
 }
 
 NewtonOutcome newton(SteadyEquations& equations, CoupledSolver& solver,
-                     const SettleSettings& settings, double pseudo_time,
-                     const SettleObserver& observer) {
-  return Newton(equations, solver, settings, observer).run(pseudo_time);
+                     const SettleSettings& settings, const SettleObserver& observer) {
+  return Newton(equations, solver, settings, observer).run();
 }
 
 }  // namespace lidwright

@@ -14,12 +14,18 @@ struct NewtonOutcome {
   std::vector<NewtonStep> steps;
 };
 
-/// `pseudo_time`: of the first step; infinity tries full Newton steps at once. The equations hold
-/// the best state found. Throws SolveError only for a fault of the linear algebra.
-NewtonOutcome newton(SteadyEquations&, CoupledSolver&, const SettleSettings&, double pseudo_time,
+/// Full steps as long as they lower the residual. The equations hold the best state found. Throws
+/// SolveError only for a fault of the linear algebra.
+NewtonOutcome newton(SteadyEquations&, CoupledSolver&, const SettleSettings&,
                      const SettleObserver&);
 
-/// A pseudo time in which no cell's temperature changes by more than `change`.
-double cautious_pseudo_time(const SteadyEquations&, double change);
+/// The Jacobian at the equations' state as the solver's matrix, with a pattern's turning held;
+/// `shift` is 1/(pseudo time), 0 for none.
+void set_jacobian(CoupledSolver&, const SteadyEquations&, double shift);
+/// The change of temperature that answers to a gain of heat of the cells. The flow's residual is
+/// zero, so its rows carry none; its own change follows from that of temperature.
+Eigen::VectorXd temperature_change(CoupledSolver&, const SteadyEquations&,
+                                   const Eigen::VectorXd& gain, double tolerance,
+                                   int* linear_iterations = nullptr);
 
 }  // namespace lidwright

@@ -4,7 +4,6 @@
 
 #include <algorithm>
 #include <cmath>
-#include <limits>
 #include <memory>
 #include <stdexcept>
 
@@ -17,7 +16,6 @@
 namespace lidwright {
 namespace {
 
-constexpr double infinity = std::numeric_limits<double>::infinity();
 constexpr double start_tolerance = 1e-4;
 /// Of a march to a first guess: where a coarse grid has no steady state, a finer one goes on.
 constexpr long steps_on_coarse_grids = 3000, steps_on_the_grid = 20000;
@@ -81,7 +79,7 @@ Found Ladder::solve(int times, const StoredTemperature& from, bool passing) {
   if (!from.values.empty() || equations.residual() <= settings.tolerance) {
     SettleSettings few = settings;
     few.most_steps = std::min(settings.most_steps, 25);
-    take(newton(equations, solver, few, infinity, observer_));
+    take(newton(equations, solver, few, observer_));
   }
   if (!found.converged && !stopped_)
     take(settle_by_marching(equations, solver, settings, start, from,

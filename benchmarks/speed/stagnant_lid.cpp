@@ -5,33 +5,21 @@
 ///
 ///     build/release/speed_stagnant_lid [steps of the long run, 2000] [finest radial cells, 256]
 #include <fmt/format.h>
-#include <sys/resource.h>
 #include <unistd.h>
 
 #include <algorithm>
-#include <chrono>
 #include <cstdio>
 #include <cstdlib>
 #include <numbers>
 #include <vector>
 
-#include "io/provenance.hpp"
+#include "benchmarks/speed/measuring.hpp"
 #include "mesh/gather.hpp"
 #include "mesh/session.hpp"
 #include "solver/march.hpp"
 
 namespace lidwright {
 namespace {
-
-double now() {
-  return std::chrono::duration<double>(std::chrono::steady_clock::now().time_since_epoch()).count();
-}
-
-void line(const std::string& fields) {
-  fmt::print("{{\"program\": \"{}\", \"commit\": \"{}\", {}}}\n", program_version(),
-             program_commit(), fields);
-  std::fflush(stdout);
-}
 
 Model shell(int radial) {
   Model m;
@@ -63,12 +51,6 @@ double triad_bandwidth() {
   }
   if (a[n / 2] < 0) std::abort();  // keeps the loop
   return 24.0 * static_cast<double>(n) / best;
-}
-
-double peak_memory() {
-  rusage use{};
-  getrusage(RUSAGE_SELF, &use);
-  return 1024.0 * static_cast<double>(use.ru_maxrss);
 }
 
 struct StepCost {

@@ -5,37 +5,19 @@
 ///
 ///     build/release/speed_steady_states [radial cells of the large grid, 256; 0: leave it out]
 #include <fmt/format.h>
-#include <sys/resource.h>
 
-#include <chrono>
 #include <cmath>
 #include <cstdio>
 #include <cstdlib>
 #include <numbers>
 
-#include "io/provenance.hpp"
+#include "benchmarks/speed/measuring.hpp"
 #include "mesh/session.hpp"
 #include "solver/march.hpp"
 #include "solver/settle.hpp"
 
 namespace lidwright {
 namespace {
-
-double now() {
-  return std::chrono::duration<double>(std::chrono::steady_clock::now().time_since_epoch()).count();
-}
-
-void line(const std::string& fields) {
-  fmt::print("{{\"program\": \"{}\", \"commit\": \"{}\", {}}}\n", program_version(),
-             program_commit(), fields);
-  std::fflush(stdout);
-}
-
-double peak_memory() {
-  rusage use{};
-  getrusage(RUSAGE_SELF, &use);
-  return 1024.0 * static_cast<double>(use.ru_maxrss);
-}
 
 struct Problem {
   const char* name;

@@ -40,9 +40,20 @@ never io 'CLI'
 never study 'slepc|hdf5|H5|vtk|toml|CLI'
 never app 'slepc|vtk|toml|hdf5|H5'
 
-# The cases live in an invented planetary system.
-bodies='Mercury|Venus|Earth|Moon|Mars|Ceres|Vesta|Europa|Ganymede|Callisto|Titan|Enceladus|Triton|Pluto'
-report 'no real body in cases/ and README.md' "$(grep -rnwE "$bodies" cases README.md 2>/dev/null || true)"
+# The cases live in an invented planetary system. Real bodies are known here by the beginning of their
+# names' SHA-256 only, so that no name of one stands in the project.
+bodies="
+19af4cac544f 4046c0daccd1 4c35576f2c58 4e1fadbd8485 4f1c63f9aba8 5fc165254f4f 6a7367ef7970
+7bce8b3948f4 8dad5f6a7dd2 a0a6ca091c70 b7c9b5ccd3e3 cc423fd8544c d43a7b01f357 fc30e2a579cd
+"
+names_of_bodies() {
+  local word hash
+  grep -ohE '\b[A-Z][a-z]+\b' -r cases README.md | sort -u | while read -r word; do
+    hash=$(printf %s "$word" | sha256sum)
+    if [[ $bodies =~ ${hash:0:12} ]]; then printf '%s\n' "$word"; fi
+  done
+}
+report 'no real body in cases/ and README.md' "$(names_of_bodies)"
 
 if [[ $broken -gt 0 ]]; then echo "$broken rules broken"; exit 1; fi
 echo "All layers are in order."
