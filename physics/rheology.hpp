@@ -77,22 +77,50 @@ struct ViscosityLaw {
   double lowest = 0;
   double highest = std::numeric_limits<double>::infinity();
 
-  double operator()(const Point& p) const { return std::clamp(uncut(p), lowest, highest); }
+  double operator()(const Point& p) const { return std::clamp(without_cuts(p), lowest, highest); }
   /// d(ln eta)/dT; 0 where a cut-off holds.
   double log_slope(const Point& p) const {
-    const double eta = uncut(p);
+    const double eta = without_cuts(p);
     if (eta <= lowest || eta >= highest) return 0;
     return (exponential ? exponential->log_slope(p) : 0) +
            (arrhenius ? arrhenius->log_slope(p) : 0);
   }
-
- private:
-  double uncut(const Point& p) const {
+  double without_cuts(const Point& p) const {
     double eta = constant * layered(p);
     if (exponential) eta *= (*exponential)(p);
     if (arrhenius) eta *= (*arrhenius)(p);
     return eta;
   }
+};
+
+/// Dislocation creep, a power law of the stress (second invariant tau of its deviator):
+///     e_II = tau / (2 A) (tau / tau_ref)^(n - 1),   A the viscosity at the reference stress.
+/// Its rate adds to that of diffusion creep, or it creeps alone.
+struct DislocationCreep {
+  ViscosityLaw viscosity;       ///< A; its cut-offs are not used
+  double exponent = 3.5;        ///< n >= 1
+  double reference_stress = 1;  ///< tau_ref > 0, eta kappa/d^2
+  bool alone = false;           ///< no diffusion creep beside it
+};
+
+/// How a rock that may yield joins creep and plastic flow, eta_p = floor + tau_y / (2 e_II):
+/// the smaller viscosity, or 2 / (1/eta_creep + 1/eta_p) (Tosi et al. 2015, Geochem. Geophys.
+/// Geosyst. 16, 2175, whose yield stress is tau_y / sqrt 2 as they divide it by sqrt(e : e)).
+enum class YieldingLaw { Minimum, HarmonicMean };
+
+/// Plastic yielding at tau_y = min(cohesion + friction * lithostatic pressure, ceiling), stresses
+/// in eta kappa/d^2.
+struct Yielding {
+  YieldingLaw law = YieldingLaw::Minimum;
+  double cohesion = 0;     ///< >= 0
+  double friction = 0;     ///< coefficient, >= 0
+  double lithostatic = 0;  ///< pressure at depth 1 were density and gravity uniform, >= 0:
+                           ///< rho g d^3/(eta kappa) = Ra/(alpha DeltaT)
+  double ceiling = std::numeric_limits<double>::infinity();  ///< > 0
+  double floor = 0;  ///< viscosity of fast plastic flow, >= 0
+
+  /// tau_y at a lithostatic pressure in eta kappa/d^2.
+  double stress(double pressure) const { return std::min(cohesion + friction * pressure, ceiling); }
 };
 
 }  // namespace lidwright

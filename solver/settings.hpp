@@ -1,6 +1,7 @@
 #pragma once
 
 #include <cstdint>
+#include <optional>
 #include <string>
 #include <vector>
 
@@ -22,9 +23,15 @@ struct Model {
   Walls walls;
   double rayleigh =
       1e4;  ///< rho alpha g DeltaT d^3/(kappa eta), eta where the viscosity law gives 1; >= 0
+  /// Of diffusion creep; its cut-offs hold for the effective viscosity of all that follows.
   ViscosityLaw viscosity;
+  std::optional<DislocationCreep> dislocation;
+  std::optional<Yielding> yielding;
   HeatSources heat;
   ReferenceProfiles reference;
+
+  /// Does the viscosity depend on the rate of strain?
+  bool nonlinear() const { return dislocation || yielding; }
 };
 
 /// T = base + modes + noise, clipped nowhere.
@@ -51,6 +58,9 @@ struct FlowSettings {
   int most_iterations = 200;  ///< of CG with a fresh factor, >= 1
   int memory = 4;             ///< former flows from which a solve starts, 1 to 8
   double refactor_cost = 20;  ///< cost of a factorisation in applications of the factor, >= 0
+  /// Of a viscosity that depends on the rate of strain: Newton steps before the flow is given up,
+  /// >= 1.
+  int most_newton_steps = 60;
 };
 
 enum class HeatFlux { Central, Limited };
