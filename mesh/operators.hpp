@@ -147,5 +147,20 @@ void add_to_corners(const Geometry& g, Force& force, LateralFace f, double face_
   force[inner(f)] += push;
   force[outer(f)] -= push;
 }
+template <class Force>
+void add_to_corners(const Geometry& g, Force& force, Cell c, const OnFaces& face_forces) {
+  add_to_corners(g, force, inner(c), face_forces.inner);
+  add_to_corners(g, force, outer(c), face_forces.outer);
+  add_to_corners(g, force, left(c), face_forces.left);
+  add_to_corners(g, force, right(c), face_forces.right);
+}
+/// Transpose of `shear`.
+template <class Force>
+void add_to_corners(const Geometry& g, Force& force, const ShearRow& row, double stress) {
+  add_to_corners(g, force, row.before, row.before_weight * stress);
+  add_to_corners(g, force, row.behind, row.behind_weight * stress);
+  add_to_corners(g, force, row.near, row.near_weight * stress);
+  add_to_corners(g, force, row.far, row.far_weight * stress);
+}
 
 }  // namespace lidwright

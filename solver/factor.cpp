@@ -93,10 +93,8 @@ struct Factor::Impl {
   }
 
   /// Empty when done, else what is wrong and the remedy.
-  std::string factorise(const std::vector<double>& viscosity) {
-    CellField eta(mesh);
-    scatter_from_first(viscosity, eta);
-    serial.set_viscosity(eta);
+  std::string factorise(const std::vector<std::vector<double>>& viscosity) {
+    serial.set_viscosity(scatter_from_first(viscosity, mesh));
     stencil.assemble(serial);
     cholmod_l_factorize(&matrix, factor, &common);
     if (common.status < CHOLMOD_OK) return no_memory;
@@ -156,10 +154,10 @@ double Factor::stored_bytes() const {
 
 void Factor::factorise(const Power& power) {
   const Stopwatch watch(seconds_factorising_);
-  const std::vector<double> viscosity = gather_to_first(power.viscosity());
+  const std::vector<std::vector<double>> viscosity = gather_to_first(power.viscosity_field());
   on_first_rank_or_throw(decomposition_->comm(), no_memory,
                          [&] { refuse(impl_->factorise(viscosity)); });
-  viscosity_ = power.viscosity();
+  viscosity_ = power.viscosity_field();
 }
 
 void Factor::apply(Vec r, Vec z) {

@@ -28,7 +28,7 @@ class Factor {
   void apply(Vec r, Vec z);
 
   /// Viscosity at the last factorisation.
-  const CellField& viscosity() const { return viscosity_; }
+  const ViscosityField& viscosity() const { return viscosity_; }
   bool ready() const { return !viscosity_.empty(); }
   /// Bytes of the factor as stored (with the zeros that make its columns into dense blocks), on
   /// rank 0.
@@ -42,7 +42,7 @@ class Factor {
   struct Impl;
   std::shared_ptr<const Decomposition> decomposition_;
   std::unique_ptr<Impl> impl_;  ///< rank 0 only
-  CellField viscosity_;
+  ViscosityField viscosity_;
   double seconds_factorising_ = 0, seconds_applying_ = 0;
 };
 

@@ -1,13 +1,11 @@
 #pragma once
 
-#include <petscksp.h>
-
-#include <deque>
 #include <memory>
 
 #include "solver/archive.hpp"
-#include "solver/factor.hpp"
-#include "solver/power.hpp"
+#include "solver/conjugate_gradients.hpp"
+#include "solver/factor_age.hpp"
+#include "solver/former_flows.hpp"
 #include "solver/settings.hpp"
 
 /// The flow of a given temperature: the minimum of the power functional (solver/power.hpp) by
@@ -19,6 +17,10 @@ struct [[nodiscard]] FlowReport {
   int iterations = 0;
   int applications = 0;  ///< of the factor
   double error = 0;      ///< relative velocity error in the dissipation norm, estimated
+  // Where viscosity depends on the rate of strain:
+  int newton_steps = 0;       ///< fixed-point steps among them
+  int fixed_point_steps = 0;  ///< where Newton's method made no way
+  double yielding_share = 0;  ///< of the volume
 };
 
 class FlowSolver {
@@ -31,7 +33,7 @@ class FlowSolver {
   FlowReport solve(const CellField& eta, const RadialFaceField& b, CornerField& psi);
 
   const Power& power() const { return power_; }
-  long applications() const { return applications_; }
+  long applications() const { return gradients_.applications(); }
   long factorisations() const { return factorisations_; }
   const Factor& factor() const { return factor_; }
   /// Estimated error of the last solve: FlowReport::error.
@@ -43,30 +45,19 @@ class FlowSolver {
 
  private:
   void refactor();
-  bool factor_is_stale() const;
-  void start_from_former_flows(Vec f, CornerField& psi);
-  void remember(const CornerField& psi);
   FlowReport conjugate_gradients(Vec f, CornerField& psi);
   void apply_operator(Vec x, Vec y);
   void scale_to_least_power(Vec f, Vec x);
-  static PetscErrorCode operator_callback(Mat, Vec, Vec);
-  static PetscErrorCode factor_callback(PC, Vec, Vec);
-  static PetscErrorCode convergence_callback(KSP, PetscInt, PetscReal, KSPConvergedReason*, void*);
 
   FlowSettings settings_;
   Power power_;
   Factor factor_;
-  Handle<Mat, MatDestroy> operator_;
-  Handle<KSP, KSPDestroy> ksp_;
+  ConjugateGradients gradients_;
   CornerField work_psi_, work_force_;
-  std::deque<CornerField> former_;  ///< newest first
-  bool viscosity_changed_ = true;
-  long applications_ = 0, factorisations_ = 0;
-  // Since the last factorisation, in applications: what decides when a new one pays.
-  double spent_ = 0, last_cost_ = 0;
-  long solves_ = 0;
-  // For the convergence test of the running solve.
-  double reference_ = 0, error_ = 0;
+  FormerFlows former_;
+  FactorAge age_;
+  long factorisations_ = 0;
+  double error_ = 0;
 };
 
 }  // namespace lidwright

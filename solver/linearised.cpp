@@ -177,10 +177,7 @@ void Assembly::add_normal_strain(Cell c) {
   const Normal e = deviatoric_strain(g_, face_velocities(g_, psi_, c), c);
   const OnFaces f = deviatoric_forces(g_, {w * e.rr, w * e.tt, w * e.pp}, c);
   AtCorners force;
-  add_to_corners(g_, force, inner(c), f.inner);
-  add_to_corners(g_, force, outer(c), f.outer);
-  add_to_corners(g_, force, left(c), f.left);
-  add_to_corners(g_, force, right(c), f.right);
+  add_to_corners(g_, force, c, f);
   for (int n = 0; n < force.count; ++n) {
     const Corner k = force.corner[static_cast<std::size_t>(n)];
     const double x = force.value[static_cast<std::size_t>(n)];
@@ -198,10 +195,7 @@ void Assembly::add_shear(Corner k) {
   const ShearRow row = power_.shear_row(k);
   const double e = shear(g_, psi_, row), stress = power_.corner_weight(k) * e;
   AtCorners force;
-  add_to_corners(g_, force, row.before, row.before_weight * stress);
-  add_to_corners(g_, force, row.behind, row.behind_weight * stress);
-  add_to_corners(g_, force, row.near, row.near_weight * stress);
-  add_to_corners(g_, force, row.far, row.far_weight * stress);
+  add_to_corners(g_, force, row, stress);
   const auto shares = power_.shares(k);
   for (const Power::Share& p : shares) {
     if (p.share == 0) continue;

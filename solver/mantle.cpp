@@ -49,6 +49,21 @@ std::shared_ptr<const Decomposition> decompose(const Model& model, MPI_Comm comm
   return std::make_shared<Decomposition>(make_geometry(model), comm);
 }
 
+std::vector<double> lithostatic_pressure(const Geometry& g, const ReferenceProfiles& profiles) {
+  const double outer = g.outer_radius();
+  const auto weight = [&](double r) {
+    return profiles.density(outer - r, outer) * profiles.gravity(outer - r, outer);
+  };
+  std::vector<double> pressure(static_cast<std::size_t>(g.radial_cells()));
+  double above = outer, sum = 0;
+  for (int i = g.radial_cells() - 1; i >= 0; --i) {
+    sum += integral(weight, g.cell_radius(i), above);
+    above = g.cell_radius(i);
+    pressure[static_cast<std::size_t>(i)] = sum;
+  }
+  return pressure;
+}
+
 MantleRows::MantleRows(const Geometry& g, const ReferenceProfiles& profiles)
     : dissipation_number(profiles.dissipation_number),
       surface_temperature(profiles.surface_temperature),

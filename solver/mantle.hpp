@@ -31,4 +31,8 @@ struct MantleRows {
   double conductive_heat_flow;
 };
 
+/// Lithostatic pressure at rows of cells, the integral of rho g over depth in units of the values
+/// that the dimensionless numbers are made with.
+std::vector<double> lithostatic_pressure(const Geometry&, const ReferenceProfiles&);
+
 }  // namespace lidwright

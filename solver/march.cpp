@@ -27,7 +27,7 @@ March::March(const Model& model, const FlowSettings& flow, const HeatSettings& h
     : model_(model),
       heat_settings_(heat),
       decomposition_(decompose(model, comm)),
-      flow_(decomposition_, model.walls, flow),
+      flow_(decomposition_, model, flow),
       stepper_(decomposition_, model.walls, model.heat, heat.flux, model.reference),
       temperature_(decomposition_),
       psi_(decomposition_),
@@ -45,20 +45,24 @@ March::March(const Model& model, const InitialSettings& initial, const StoredTem
 }
 
 void March::solve_flow() {
-  const FlowReport report =
-      flow_.solve(viscosity_of(model_.viscosity, temperature_),
-                  buoyancy(stepper_.heat(), temperature_, model_.rayleigh), psi_);
+  const FlowReport report = flow_.solve(
+      temperature_, buoyancy(stepper_.heat(), temperature_, model_.rayleigh), psi_);
   if (report.converged) {
     viscous_ = viscous_heating(view());
     return;
   }
-  throw SolveError(
-      fmt::format("the flow did not converge at step {} (time {:.6g}): relative error {:.2e} after "
-                  "{} iterations with a fresh "
-                  "factor. Raise flow.most_iterations, loosen flow.tolerance, narrow the viscosity "
-                  "with viscosity.lowest and "
-                  "viscosity.highest, or refine the grid",
-                  steps_, time_, report.error, report.iterations));
+  const std::string when = fmt::format("the flow did not converge at step {} (time {:.6g}): "
+                                       "relative error {:.2e} after ",
+                                       steps_, time_, report.error);
+  if (model_.nonlinear())
+    throw SolveError(fmt::format(
+        "{}{} Newton steps. Raise flow.most_newton_steps, loosen flow.tolerance, raise "
+        "viscosity.lowest or viscosity.yielding.floor, or refine the grid",
+        when, report.newton_steps));
+  throw SolveError(fmt::format(
+      "{}{} iterations with a fresh factor. Raise flow.most_iterations, loosen flow.tolerance, "
+      "narrow the viscosity with viscosity.lowest and viscosity.highest, or refine the grid",
+      when, report.iterations));
 }
 
 /// Flow and viscous heating at t + dt on the straight line through the last two.
@@ -158,7 +162,7 @@ HistoryRow March::row() const {
   row.step = steps_;
   row.time = time_;
   row.time_step = last_step_;
-  row.flow_error = flow_.last_error();
+  row.flow_error = flow_.last_report().error;
   row.heat_budget_residual = budget_residual_;
   row.temperature_change_rate = steps_ > 0 ? change_rate_ : 0;
   row.applications = flow_.applications();

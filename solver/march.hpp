@@ -5,7 +5,7 @@
 #include <string>
 
 #include "solver/diagnostics.hpp"
-#include "solver/flow.hpp"
+#include "solver/mantle_flow.hpp"
 #include "solver/heat_stepper.hpp"
 #include "solver/initial.hpp"
 #include "solver/measure.hpp"
@@ -46,7 +46,7 @@ class March {
   const Power& power() const { return flow_.power(); }
   const HeatOperator& heat() const { return stepper_.heat(); }
   std::shared_ptr<const Decomposition> decomposition() const { return decomposition_; }
-  const FlowSolver& flow() const { return flow_; }
+  const MantleFlow& flow() const { return flow_; }
 
  private:
   struct Former {
@@ -65,7 +65,7 @@ class March {
   Model model_;
   HeatSettings heat_settings_;
   std::shared_ptr<const Decomposition> decomposition_;
-  FlowSolver flow_;
+  MantleFlow flow_;
   HeatStepper stepper_;
   CellField temperature_;
   CornerField psi_, former_psi_;

@@ -23,7 +23,6 @@ Power::Power(std::shared_ptr<const Decomposition> d, const Walls& walls)
       outer_slip_(walls.outer.slip),
       through_flow_(geometry().periodic() &&
                     (inner_slip_ == Slip::None || outer_slip_ == Slip::None)),
-      eta_(decomposition_, 1.0),
       cell_weight_(decomposition_),
       corner_weight_(decomposition_),
       table_(geometry()) {
@@ -54,8 +53,9 @@ bool Power::fixed(Corner k) const {
   return g.on_side(k.j) || k.i == 0 || (k.i == g.radial_cells() && !through_flow_);
 }
 
-void Power::set_viscosity(const CellField& eta) {
-  eta_ = eta;
+void Power::set_viscosity(ViscosityField viscosity) {
+  eta_ = std::move(viscosity);
+  const CellField& eta = eta_.cells;
   const Geometry& g = geometry();
   for (int j = eta.held().begin; j < eta.held().end; ++j)
     for (int i = 0; i < eta.rows(); ++i) cell_weight_[{i, j}] = 2 * g.volume({i, j}) * eta[{i, j}];
@@ -65,28 +65,11 @@ void Power::set_viscosity(const CellField& eta) {
 /// V eta_k with V / eta_k = sum over the quarters q of V_q / eta_q, summed volumes V.
 double Power::corner_viscosity_volume(Corner k) const {
   double volume = 0, compliance = 0;
-  visit_quarters(k, [&](Cell c, double v) {
+  visit_quarters(k, [&](Cell c, std::size_t q, double v) {
     volume += v;
-    compliance += v / eta_[c];
+    compliance += v / eta_.of(c, q);
   });
   return volume * volume / compliance;
-}
-
-/// Calls visit(cell, volume of its quarter) for the cells that meet in a corner off the sides.
-template <class Visit>
-void Power::visit_quarters(Corner k, Visit&& visit) const {
-  const Geometry& g = geometry();
-  const auto quarter = [&](Cell c, bool upper, bool right) {
-    visit(c, g.quarter_volume(c, upper, right));
-  };
-  if (k.i > 0) {
-    quarter({k.i - 1, k.j - 1}, true, true);
-    quarter({k.i - 1, k.j}, true, false);
-  }
-  if (k.i < g.radial_cells()) {
-    quarter({k.i, k.j - 1}, false, true);
-    quarter({k.i, k.j}, false, false);
-  }
 }
 
 std::array<Power::Share, 4> Power::shares(Corner k) const {
@@ -95,9 +78,9 @@ std::array<Power::Share, 4> Power::shares(Corner k) const {
   all.fill({{row, k.j}, 0});
   std::size_t n = 0;
   double compliance = 0;
-  visit_quarters(k, [&](Cell c, double v) {
-    all[n++] = {c, v / eta_[c]};
-    compliance += v / eta_[c];
+  visit_quarters(k, [&](Cell c, std::size_t q, double v) {
+    all[n++] = {c, v / eta_.of(c, q)};
+    compliance += v / eta_.of(c, q);
   });
   for (Share& s : all) s.share /= compliance;
   return all;
@@ -143,7 +126,7 @@ void Power::apply(const CornerField& psi, CornerField& force) const {
 
 void Power::apply_normal(const CornerField& psi, CornerField& force) const {
   const Geometry& g = geometry();
-  const Range cells = cells_touching(force, eta_.held());
+  const Range cells = cells_touching(force, cell_weight_.held());
   const int n = g.radial_cells();
   // Of one column: u on its radial faces; forces of each cell on its inner and outer face and on
   // its sides, at places 1 to n, with zeros around, so that every loop gathers.
@@ -275,6 +258,13 @@ void Power::to_unknowns(CornerField& force, Vec out) const {
     if (force.owned().begin == 0) force[{geometry().radial_cells(), 0}] = on_wall;
   }
   force.to_global(out);
+}
+
+void Power::flow_to_unknowns(CornerField psi, Vec out) const {
+  // `to_unknowns` sums the outer wall: leave the common value in one place only.
+  for (int j = psi.owned().begin; j < psi.owned().end; ++j)
+    if (through_flow_ && j != 0) psi[{psi.rows() - 1, j}] = 0;
+  to_unknowns(psi, out);
 }
 
 void Power::from_unknowns(Vec in, CornerField& psi) const {

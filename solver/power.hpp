@@ -3,9 +3,9 @@
 #include <array>
 #include <vector>
 
-#include "mesh/field.hpp"
 #include "mesh/operators.hpp"
 #include "physics/walls.hpp"
+#include "solver/viscosity_field.hpp"
 
 /// The discrete power functional of a linear viscous shell,
 ///     J(psi) = sum_cells V eta (e_rr^2 + e_tt^2 + e_pp^2) + sum_corners V eta_k 2 e_rt^2 -
@@ -42,8 +42,10 @@ class Power {
   Power(std::shared_ptr<const Decomposition>, const Walls&);
 
   /// Viscosity at cells, ghosts up to date; > 0.
-  void set_viscosity(const CellField& eta);
-  const CellField& viscosity() const { return eta_; }
+  void set_viscosity(const CellField& eta) { set_viscosity(ViscosityField{eta, {}}); }
+  void set_viscosity(ViscosityField);
+  const CellField& viscosity() const { return eta_.cells; }
+  const ViscosityField& viscosity_field() const { return eta_; }
   Slip inner_slip() const { return inner_slip_; }
   Slip outer_slip() const { return outer_slip_; }
 
@@ -60,6 +62,8 @@ class Power {
   /// 0 at fixed corners, and the sum over the outer wall in the place (radial_cells, 0) for the
   /// common value.
   void to_unknowns(CornerField& force, Vec) const;
+  /// The unknowns of a flow; the other way round than `from_unknowns`.
+  void flow_to_unknowns(CornerField psi, Vec) const;
   /// psi with ghosts, walls set.
   void from_unknowns(Vec, CornerField& psi) const;
 
@@ -79,6 +83,10 @@ class Power {
     double share;
   };
   std::array<Share, 4> shares(Corner k) const;
+  /// Calls visit(cell, place in ViscosityField::quarters, volume of that quarter) for the cells
+  /// that meet in a corner off the sides.
+  template <class Visit>
+  void visit_quarters(Corner, Visit&&) const;
   ShearRow shear_row(Corner k) const;
   /// Corners whose shear the held columns determine.
   Range shear_columns() const;
@@ -89,8 +97,6 @@ class Power {
 
  private:
   void set_corner_weights();
-  template <class Visit>
-  void visit_quarters(Corner, Visit&&) const;
   double corner_viscosity_volume(Corner) const;
   void apply_normal(const CornerField& psi, CornerField& force) const;
   void apply_shear_inside(const CornerField& psi, CornerField& force) const;
@@ -99,10 +105,27 @@ class Power {
   std::shared_ptr<const Decomposition> decomposition_;
   Slip inner_slip_, outer_slip_;
   bool through_flow_;
-  CellField eta_, cell_weight_;
+  ViscosityField eta_;
+  CellField cell_weight_;
   CornerField corner_weight_;
   RadialTable table_;
 };
+
+template <class Visit>
+void Power::visit_quarters(Corner k, Visit&& visit) const {
+  const Geometry& g = geometry();
+  const auto quarter = [&](Cell c, bool upper, bool right) {
+    visit(c, ViscosityField::quarter(upper, right), g.quarter_volume(c, upper, right));
+  };
+  if (k.i > 0) {
+    quarter({k.i - 1, k.j - 1}, true, true);
+    quarter({k.i - 1, k.j}, true, false);
+  }
+  if (k.i < g.radial_cells()) {
+    quarter({k.i, k.j - 1}, false, true);
+    quarter({k.i, k.j}, false, false);
+  }
+}
 
 /// Integral of tau : e over the shell. Collective.
 double dissipation(const Power&, const CornerField& psi);

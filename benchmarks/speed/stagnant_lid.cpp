@@ -59,7 +59,7 @@ struct StepCost {
 };
 
 StepCost measure(March& march, int steps) {
-  const FlowSolver& flow = march.flow();
+  const MantleFlow& flow = march.flow();
   const auto applications = flow.applications();
   const auto factorisations = flow.factorisations();
   const double applying = flow.factor().seconds_applying(),

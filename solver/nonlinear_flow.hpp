@@ -1,0 +1,57 @@
+#pragma once
+
+#include "solver/flow.hpp"
+#include "solver/nonlinear_power.hpp"
+
+namespace lidwright {
+
+/// The flow of a rock whose viscosity depends on its rate of strain: Newton's method on the power
+/// functional (solver/nonlinear_power.hpp). Each step is solved by conjugate gradients with the
+/// tangent, preconditioned by a factor of an earlier secant operator, and shortened or lengthened
+/// until the power is near its least along it. Where such a step makes no way, a step of fixed-point
+/// iteration (the secant operator instead of the tangent) takes its place; that one always goes
+/// downhill where viscosity falls with the rate.
+class NonlinearFlow {
+ public:
+  NonlinearFlow(std::shared_ptr<const Decomposition>, const Walls&, const FlowSettings&);
+
+  /// Flow of the buoyancy b of a unit mass at radial faces and of the laws of held cells, with
+  /// ghosts. Starts from psi. psi holds the best flow found whether or not it converged.
+  /// Collective; same report on all ranks.
+  FlowReport solve(std::vector<LocalFlowLaw>, const RadialFaceField& b, CornerField& psi);
+
+  /// With the secant viscosity of the last flow.
+  const Power& power() const { return power_; }
+  const Factor& factor() const { return factor_; }
+  long applications() const { return gradients_.applications(); }
+  long factorisations() const { return factorisations_; }
+  const FlowReport& last_report() const { return last_; }
+
+  void save(Archive&) const;
+  void restore(const Archive&);
+
+ private:
+  void refactor();
+  void gradient(Vec f, Vec downhill);
+  ConjugateGradients::Report direction(Vec downhill, double forcing, double absolute, Vec change);
+  double work(Vec f, const CornerField& psi) const;
+  double line_search(double force_along);
+  double go_down(Vec f, const CornerField& direction, CornerField& psi);
+  void step_among_former_flows(Vec f, CornerField& psi);
+  bool step(Vec f, CornerField& psi);
+
+  FlowSettings settings_;
+  Power power_;
+  NonlinearPower functional_;
+  Factor factor_;
+  ConjugateGradients gradients_;
+  CornerField work_psi_, work_force_;
+  FormerFlows former_;
+  FactorAge age_;
+  bool factor_fresh_ = false;
+  double former_norm_ = 0;
+  long factorisations_ = 0;
+  FlowReport last_;
+};
+
+}  // namespace lidwright
