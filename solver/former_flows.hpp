@@ -17,9 +17,10 @@ class FormerFlows {
   FormerFlows(std::shared_ptr<const Decomposition> d, int memory)
       : decomposition_(std::move(d)), memory_(static_cast<std::size_t>(memory)) {}
 
-  /// The combination of former flows that minimises psi . K psi / 2 - f . psi: a Galerkin projection
-  /// on their span (after Fischer 1998, Comput. Methods Appl. Mech. Eng. 163, 193), at one product
-  /// with K each and no application of the factor. At rest if there is no former flow. Collective.
+  /// The combination of former flows that minimises psi . K psi / 2 - f . psi: a Galerkin
+  /// projection on their span (after Fischer 1998, Comput. Methods Appl. Mech. Eng. 163, 193), at
+  /// one product with K each and no application of the factor. At rest if there is no former flow.
+  /// Collective.
   CornerField combine(const Product&, Vec f) const;
   void remember(const CornerField& psi);
 

@@ -23,8 +23,9 @@ std::vector<LocalFlowLaw> MantleFlow::laws(const CellField& t) const {
   all.reserve(t.values().size());
   for (int j = t.held().begin; j < t.held().end; ++j)
     for (int i = 0; i < t.rows(); ++i) {
-      const double yield_stress =
-          yielding_ ? yielding_->stress(pressure_[static_cast<std::size_t>(i)]) : LocalFlowLaw::none;
+      const double yield_stress = yielding_
+                                      ? yielding_->stress(pressure_[static_cast<std::size_t>(i)])
+                                      : LocalFlowLaw::none;
       all.push_back(local_flow_law(creep_, dislocation_ ? &*dislocation_ : nullptr,
                                    yielding_ ? &*yielding_ : nullptr, {t[{i, j}], g.depth(i)},
                                    yield_stress));

@@ -45,20 +45,21 @@ March::March(const Model& model, const InitialSettings& initial, const StoredTem
 }
 
 void March::solve_flow() {
-  const FlowReport report = flow_.solve(
-      temperature_, buoyancy(stepper_.heat(), temperature_, model_.rayleigh), psi_);
+  const FlowReport report =
+      flow_.solve(temperature_, buoyancy(stepper_.heat(), temperature_, model_.rayleigh), psi_);
   if (report.converged) {
     viscous_ = viscous_heating(view());
     return;
   }
-  const std::string when = fmt::format("the flow did not converge at step {} (time {:.6g}): "
-                                       "relative error {:.2e} after ",
-                                       steps_, time_, report.error);
+  const std::string when = fmt::format(
+      "the flow did not converge at step {} (time {:.6g}): "
+      "relative error {:.2e} after ",
+      steps_, time_, report.error);
   if (model_.nonlinear())
-    throw SolveError(fmt::format(
-        "{}{} Newton steps. Raise flow.most_newton_steps, loosen flow.tolerance, raise "
-        "viscosity.lowest or viscosity.yielding.floor, or refine the grid",
-        when, report.newton_steps));
+    throw SolveError(
+        fmt::format("{}{} Newton steps. Raise flow.most_newton_steps, loosen flow.tolerance, raise "
+                    "viscosity.lowest or viscosity.yielding.floor, or refine the grid",
+                    when, report.newton_steps));
   throw SolveError(fmt::format(
       "{}{} iterations with a fresh factor. Raise flow.most_iterations, loosen flow.tolerance, "
       "narrow the viscosity with viscosity.lowest and viscosity.highest, or refine the grid",

@@ -5,9 +5,9 @@
 #include <string>
 
 #include "solver/diagnostics.hpp"
-#include "solver/mantle_flow.hpp"
 #include "solver/heat_stepper.hpp"
 #include "solver/initial.hpp"
+#include "solver/mantle_flow.hpp"
 #include "solver/measure.hpp"
 #include "solver/settings.hpp"
 #include "solver/snapshot.hpp"

@@ -102,9 +102,9 @@ void NonlinearFlow::step_among_former_flows(Vec f, CornerField& psi) {
   const Handle<Vec, VecDestroy> downhill = unknown_vector(power_.decomposition());
   gradient(f, downhill);
   go_down(f,
-          former_.combine([this](const CornerField& x, CornerField& force) {
-            functional_.tangent(x, force);
-          }, downhill),
+          former_.combine(
+              [this](const CornerField& x, CornerField& force) { functional_.tangent(x, force); },
+              downhill),
           psi);
 }
 
@@ -121,13 +121,11 @@ bool NonlinearFlow::step(Vec f, CornerField& psi) {
   last_.error = scale > 0 ? report.first_norm / scale : 0;
   last_.iterations += report.iterations;
   age_.used(report.iterations + 1);
-  if (std::getenv("TRACE")) printf("  newton %d err %.3e ref %.3e cg %d norm ratio %.2e shear %.2e yield %.3f fact %ld\n", last_.newton_steps, last_.error, reference, report.iterations, report.norm / report.first_norm, functional_.unbalanced_shear()/scale, functional_.yielding_share(), factorisations_);
   if (last_.error <= settings_.tolerance) return true;
 
   power_.from_unknowns(change, work_psi_);
   const double length = go_down(f, CornerField(work_psi_), psi);
   ++last_.newton_steps;
-  if (std::getenv("TRACE")) printf("     length %.4f\n", length);
   const bool stuck = length < 0.02;
   if (stuck) ++last_.fixed_point_steps;
   functional_.use_secant(stuck);
@@ -139,18 +137,25 @@ FlowReport NonlinearFlow::solve(std::vector<LocalFlowLaw> laws, const RadialFace
   last_ = {};
   functional_.set_laws(std::move(laws));
   functional_.use_secant(false);
-  functional_.begin(psi, factor_.ready() ? power_.viscosity_field() : ViscosityField{});
+  bool shear_shared = factor_.ready();
+  functional_.begin(psi, shear_shared ? power_.viscosity_field() : ViscosityField{});
   if (!factor_.ready() || age_.stale()) refactor();
   const Handle<Vec, VecDestroy> f = unknown_vector(power_.decomposition());
   std::fill(work_force_.values().begin(), work_force_.values().end(), 0.0);
   power_.add_buoyancy(b, work_force_);
   power_.to_unknowns(work_force_, f);
-  for (int n = 0; n < (getenv("NSPAN") ? atoi(getenv("NSPAN")) : 1); ++n) step_among_former_flows(f, psi);
+  step_among_former_flows(f, psi);
   const long before = applications();
   while (!last_.converged && last_.newton_steps <= settings_.most_newton_steps) {
     last_.converged = step(f, psi);
     factor_fresh_ = false;
     if (age_.stale()) refactor();
+    if (!shear_shared && last_.error < 1e-2) {
+      // The first flow's own viscosities: by these shares, the power falls again.
+      functional_.begin(psi, functional_.viscosity());
+      shear_shared = true;
+      last_.converged = false;
+    }
   }
   power_.set_viscosity(functional_.viscosity());
   former_.remember(psi);

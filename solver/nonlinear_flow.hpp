@@ -8,9 +8,9 @@ namespace lidwright {
 /// The flow of a rock whose viscosity depends on its rate of strain: Newton's method on the power
 /// functional (solver/nonlinear_power.hpp). Each step is solved by conjugate gradients with the
 /// tangent, preconditioned by a factor of an earlier secant operator, and shortened or lengthened
-/// until the power is near its least along it. Where such a step makes no way, a step of fixed-point
-/// iteration (the secant operator instead of the tangent) takes its place; that one always goes
-/// downhill where viscosity falls with the rate.
+/// until the power is near its least along it. Where such a step makes no way, a step of
+/// fixed-point iteration (the secant operator instead of the tangent) takes its place; that one
+/// always goes downhill where viscosity falls with the rate.
 class NonlinearFlow {
  public:
   NonlinearFlow(std::shared_ptr<const Decomposition>, const Walls&, const FlowSettings&);

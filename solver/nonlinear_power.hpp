@@ -8,23 +8,21 @@
 
 /// The power functional of a rock whose viscosity depends on its rate of strain,
 ///
-///     J(psi, x) = sum over quarter cells V_q Pi_q(|s_q| / sqrt 2) - f . psi,
-///     s_q = (e_rr, e_tt, e_pp of the cell, x_q),
-///     sum over the quarters at a corner V_q x_q = V sqrt 2 e_rt,
+///     J(psi) = sum over quarter cells V_q Pi_q(|s_q| / sqrt 2) - f . psi,
+///     s_q = (e_rr, e_tt, e_pp of the cell, sqrt 2 c_q e_rt of the corner),
 ///
-/// with dPi/d e_II = 2 tau: convex, as stress never falls with the rate. Each quarter has its share
-/// x_q / sqrt 2 of the shear rate of its corner, and J is the least over all shares. At the minimum
-/// the quarters of a corner bear one shear stress; where viscosity does not depend on the rate, J
-/// is the functional of solver/power.hpp with its harmonic corners.
+/// with dPi/d e_II = 2 tau: convex, as stress never falls with the rate. The quarters at a corner
+/// share its shear, sum V_q c_q = sum V_q; with c_q in inverse proportion to viscosity they bear
+/// one stress, and where viscosity does not depend on the rate, J is the functional of
+/// solver/power.hpp (docs/decisions/split-of-shear.md).
 ///
-/// Newton's method works on psi and x together; x is eliminated corner by corner. The tangent of a
-/// quarter's stress t = 2 eta s is
+/// The tangent of a quarter's stress t = 2 eta s is
 ///
 ///     D = 2 eta [1 + slope sym(s/|s| dual^T)],   slope = d ln eta / d ln e_II in [-1, 0],
 ///
 /// with the normalised stress `dual` as a variable of its own (primal-dual Newton: Rudi, Shih &
 /// Stadler 2020, Geochem. Geophys. Geosyst. 21, e2020GC009059); dual = s/|s| gives the plain
-/// tangent.
+/// tangent. With |dual| <= 1 it is positive semi-definite.
 namespace lidwright {
 
 class NonlinearPower {
@@ -34,18 +32,18 @@ class NonlinearPower {
 
   /// One law for each held cell, column by column, radial index fastest.
   void set_laws(std::vector<LocalFlowLaw> laws) { laws_ = std::move(laws); }
-  /// Makes psi (with ghosts) the state; shear is split as viscosities `split` have it (empty: of
-  /// the laws at rest).
-  void begin(const CornerField& psi, const ViscosityField& split);
+  /// Shares shear as quarters of the viscosities given have it (empty: of the laws at rest), and
+  /// makes psi (with ghosts) the state. Collective.
+  void begin(const CornerField& psi, const ViscosityField&);
 
-  /// Gradient of J on psi without f, x eliminated, at owned corners.
+  /// Gradient of J on psi without f, at owned corners.
   void gradient(CornerField& force) const;
   /// Tangent of `gradient` times a change of psi (with ghosts).
   void tangent(const CornerField& change, CornerField& force) const;
-  /// For the next steps the tangent is the secant operator: fixed-point iteration.
-  void use_secant(bool on) { secant_ = on; }
+  /// Is the tangent to be the secant operator, as in fixed-point iteration?
+  void use_secant(bool on);
 
-  /// Newton's direction whose psi is given (with ghosts).
+  /// The direction of the next steps (with ghosts).
   void set_direction(const CornerField& change);
   /// Goes to state + step * direction, and returns what J without f changes there per unit step.
   /// Collective.
@@ -53,35 +51,34 @@ class NonlinearPower {
   /// Makes the place last gone to the state.
   void accept();
 
-  /// Of the state (secant).
+  /// Of the place last gone to (secant), with the shares of shear. Collective.
   ViscosityField viscosity() const;
   /// Share of the volume. Collective.
   double yielding_share() const;
-  /// Quarters at a corner whose shear stresses differ, as a norm: sqrt(sum V (sigma - tau)^2 / 2
-  /// eta). Collective.
-  double unbalanced_shear() const;
 
  private:
-  using Four = Eigen::Array4d;  ///< the quarters at a corner: below left and right, above left and right
+  using Four = Eigen::Array4d;  ///< the quarters at a corner
+  /// Normal strains or stresses (the third is -rr - tt) and sqrt 2 times the shear.
+  struct Vector {
+    Four rr = Four::Zero(), tt = Four::Zero(), x = Four::Zero();
+  };
   struct Strains {
     CellField rr, tt;
     CornerField shear;
   };
-  struct Vector {
-    Four rr = Four::Zero(), tt = Four::Zero(), x = Four::Zero();
-  };
   struct Corner4 {
     Four volume = Four::Zero();  ///< 0: beyond walls and sides
     std::array<Cell, 4> cell;    ///< one inside the mesh for those
-    bool shears = false;
-    Four viscosity = Four::Ones(), slope = Four::Zero(), yields = Four::Zero();  ///< where last gone
-    Four size = Four::Zero();  ///< |s| there
+    Four share = Four::Zero();   ///< sqrt 2 c_q; 0 where there is no shear
+    Four viscosity = Four::Ones(), slope = Four::Zero(), yields = Four::Zero();
+    Four size = Four::Zero();  ///< |s|
     Vector unit, dual, dual_change;
-    Four x = Four::Zero(), x_change = Four::Zero();
+    Four weight, half_slope;  ///< 2 V eta and slope / 2 of the tangent
   };
 
-  static Four dot(const Vector& a, const Vector& b);
-  void set_corner(Corner);
+  static Four dot(const Vector& a, const Vector& b) {
+    return a.rr * b.rr + a.tt * b.tt + (a.rr + a.tt) * (b.rr + b.tt) + a.x * b.x;
+  }
   const LocalFlowLaw& law(Cell c) const {
     const Range held = state_.rr.held();
     return laws_[static_cast<std::size_t>(c.j - held.begin) *
@@ -93,21 +90,19 @@ class NonlinearPower {
   std::size_t place(Corner k) const;
   template <class Self, class Visit>
   static void for_corners(Self& self, Visit&& visit) {
+    std::size_t n = 0;
     for (int j = self.columns_.begin; j < self.columns_.end; ++j)
       for (int i = 0; i <= self.shape_.geometry().radial_cells(); ++i)
-        visit(Corner{i, j}, self.at({i, j}));
+        visit(Corner{i, j}, self.corners_[n++]);
   }
+  void set_corner(Corner);
+  void set_share(Corner4&, const ViscosityField&);
+  void set_tangent();
   void strains_of(const CornerField& psi, Strains&) const;
-  Vector normals(const Strains&, const Corner4&) const;
+  Vector strains_at(const Strains&, Corner, const Corner4&) const;
   void respond(Corner4&, const Vector& s) const;
-  Four slope(const Corner4&) const;
-  Four shear_stiffness(const Corner4&) const;
-  Vector tangent_stress(const Corner4&, const Vector& s) const;
-  double share(const Corner4&, const Four& rest, double shear_change, Four& x_change) const;
   template <class StressAt>
   void push(StressAt&&, CornerField& force) const;
-  template <class Of>
-  double owned_sum(Of&&) const;
 
   const Power& shape_;
   Range columns_;  ///< of corners whose quarters are followed: owned and one on either side

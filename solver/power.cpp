@@ -62,35 +62,55 @@ void Power::set_viscosity(ViscosityField viscosity) {
   set_corner_weights();
 }
 
-/// V eta_k with V / eta_k = sum over the quarters q of V_q / eta_q, summed volumes V.
-double Power::corner_viscosity_volume(Corner k) const {
+Power::Quarters Power::quarters(Corner k) const {
+  const Geometry& g = geometry();
+  Quarters q;
   double volume = 0, compliance = 0;
-  visit_quarters(k, [&](Cell c, std::size_t q, double v) {
+  const auto add = [&](Cell c, bool upper, bool right) {
+    const std::size_t place = ViscosityField::quarter(upper, right);
+    const double v = g.quarter_volume(c, upper, right), eta = eta_.of(c, place);
+    q.all[q.count++] = {c, eta, v, eta_.uniform_in_cells() ? 0 : eta_.shares[place][c]};
     volume += v;
-    compliance += v / eta_.of(c, q);
-  });
-  return volume * volume / compliance;
+    compliance += v / eta;
+  };
+  if (k.i > 0) {
+    add({k.i - 1, k.j - 1}, true, true);
+    add({k.i - 1, k.j}, true, false);
+  }
+  if (k.i < g.radial_cells()) {
+    add({k.i, k.j - 1}, false, true);
+    add({k.i, k.j}, false, false);
+  }
+  // One stress at the corner's mean rate: V / eta_k = sum of V_q / eta_q.
+  if (eta_.uniform_in_cells())
+    for (std::size_t n = 0; n < q.count; ++n)
+      q.all[n].share = volume / (q.all[n].viscosity * compliance);
+  return q;
 }
 
 std::array<Power::Share, 4> Power::shares(Corner k) const {
-  const int row = std::min(k.i, geometry().radial_cells() - 1);
   std::array<Share, 4> all;
-  all.fill({{row, k.j}, 0});
+  all.fill({{std::min(k.i, geometry().radial_cells() - 1), k.j}, 0});
+  double sum = 0;
   std::size_t n = 0;
-  double compliance = 0;
-  visit_quarters(k, [&](Cell c, std::size_t q, double v) {
-    all[n++] = {c, v / eta_.of(c, q)};
-    compliance += v / eta_.of(c, q);
-  });
-  for (Share& s : all) s.share /= compliance;
+  for (const Quarter& q : quarters(k)) {
+    all[n] = {q.cell, q.volume * q.viscosity * q.share * q.share};
+    sum += all[n++].share;
+  }
+  for (Share& s : all) s.share /= sum;
   return all;
 }
 
 void Power::set_corner_weights() {
   const Range columns = shear_columns();
   for (int j = columns.begin; j < columns.end; ++j)
-    for (int i = 0; i < corner_weight_.rows(); ++i)
-      if (has_shear({i, j})) corner_weight_[{i, j}] = 4 * corner_viscosity_volume({i, j});
+    for (int i = 0; i < corner_weight_.rows(); ++i) {
+      if (!has_shear({i, j})) continue;
+      double& weight = corner_weight_[{i, j}];
+      weight = 0;
+      for (const Quarter& q : quarters({i, j}))
+        weight += 4 * q.volume * q.viscosity * q.share * q.share;
+    }
 }
 
 RadialTable::RadialTable(const Geometry& g) {

@@ -42,7 +42,7 @@ class Power {
   Power(std::shared_ptr<const Decomposition>, const Walls&);
 
   /// Viscosity at cells, ghosts up to date; > 0.
-  void set_viscosity(const CellField& eta) { set_viscosity(ViscosityField{eta, {}}); }
+  void set_viscosity(const CellField& eta) { set_viscosity(ViscosityField{eta, {}, {}}); }
   void set_viscosity(ViscosityField);
   const CellField& viscosity() const { return eta_.cells; }
   const ViscosityField& viscosity_field() const { return eta_; }
@@ -83,10 +83,6 @@ class Power {
     double share;
   };
   std::array<Share, 4> shares(Corner k) const;
-  /// Calls visit(cell, place in ViscosityField::quarters, volume of that quarter) for the cells
-  /// that meet in a corner off the sides.
-  template <class Visit>
-  void visit_quarters(Corner, Visit&&) const;
   ShearRow shear_row(Corner k) const;
   /// Corners whose shear the held columns determine.
   Range shear_columns() const;
@@ -97,7 +93,19 @@ class Power {
 
  private:
   void set_corner_weights();
-  double corner_viscosity_volume(Corner) const;
+  /// The quarters that meet in a corner off the sides: cell, its viscosity there, volume, and shear
+  /// rate over the corner's.
+  struct Quarter {
+    Cell cell;
+    double viscosity, volume, share;
+  };
+  struct Quarters {
+    std::array<Quarter, 4> all;
+    std::size_t count = 0;
+    const Quarter* begin() const { return all.data(); }
+    const Quarter* end() const { return all.data() + count; }
+  };
+  Quarters quarters(Corner) const;
   void apply_normal(const CornerField& psi, CornerField& force) const;
   void apply_shear_inside(const CornerField& psi, CornerField& force) const;
   void apply_shear_at_walls(const CornerField& psi, CornerField& force) const;
@@ -110,22 +118,6 @@ class Power {
   CornerField corner_weight_;
   RadialTable table_;
 };
-
-template <class Visit>
-void Power::visit_quarters(Corner k, Visit&& visit) const {
-  const Geometry& g = geometry();
-  const auto quarter = [&](Cell c, bool upper, bool right) {
-    visit(c, ViscosityField::quarter(upper, right), g.quarter_volume(c, upper, right));
-  };
-  if (k.i > 0) {
-    quarter({k.i - 1, k.j - 1}, true, true);
-    quarter({k.i - 1, k.j}, true, false);
-  }
-  if (k.i < g.radial_cells()) {
-    quarter({k.i, k.j - 1}, false, true);
-    quarter({k.i, k.j}, false, false);
-  }
-}
 
 /// Integral of tau : e over the shell. Collective.
 double dissipation(const Power&, const CornerField& psi);

@@ -19,45 +19,54 @@ void set_cell_means(ViscosityField& eta) {
 }
 
 namespace {
-std::string quarter_name(const std::string& name, std::size_t q) {
-  return name + ".quarter." + std::to_string(q);
+
+/// Calls visit(field, its name) for all that a viscosity has beside the cells' own.
+template <class Viscosity, class Visit>
+void for_quarters(Viscosity& eta, Visit&& visit) {
+  for (std::size_t q = 0; q < 4; ++q) {
+    visit(eta.quarters[q], ".quarter." + std::to_string(q));
+    visit(eta.shares[q], ".share." + std::to_string(q));
+  }
 }
+
 }  // namespace
 
 void store_viscosity(const ViscosityField& eta, const std::string& name, Archive& archive) {
   archive.cells[name] = eta.cells;
   if (eta.uniform_in_cells()) return;
-  for (std::size_t q = 0; q < 4; ++q) archive.cells[quarter_name(name, q)] = eta.quarters[q];
+  for_quarters(
+      eta, [&](const CellField& f, const std::string& part) { archive.cells[name + part] = f; });
 }
 
 ViscosityField restore_viscosity(const std::string& name, const Archive& archive) {
   ViscosityField eta;
-  if (const auto cells = archive.cells.find(name); cells != archive.cells.end())
-    eta.cells = cells->second;
-  for (std::size_t q = 0; q < 4; ++q)
-    if (const auto f = archive.cells.find(quarter_name(name, q)); f != archive.cells.end())
-      eta.quarters[q] = f->second;
+  const auto adopt = [&](CellField& f, const std::string& part) {
+    if (const auto stored = archive.cells.find(name + part); stored != archive.cells.end())
+      f = stored->second;
+  };
+  adopt(eta.cells, "");
+  for_quarters(eta, adopt);
   return eta;
 }
 
 std::vector<std::vector<double>> gather_to_first(const ViscosityField& eta) {
   std::vector<std::vector<double>> all{gather_to_first(eta.cells)};
   if (!eta.uniform_in_cells())
-    for (const CellField& q : eta.quarters) all.push_back(gather_to_first(q));
+    for_quarters(
+        eta, [&](const CellField& f, const std::string&) { all.push_back(gather_to_first(f)); });
   return all;
 }
 
 ViscosityField scatter_from_first(const std::vector<std::vector<double>>& all,
                                   const std::shared_ptr<const Decomposition>& d) {
   ViscosityField eta;
-  const auto field = [&](std::size_t n) {
-    CellField f(d);
-    scatter_from_first(all[n], f);
-    return f;
+  std::size_t next = 0;
+  const auto scatter = [&](CellField& f, const std::string&) {
+    f = CellField(d);
+    scatter_from_first(all[next++], f);
   };
-  eta.cells = field(0);
-  if (all.size() > 1)
-    for (std::size_t q = 0; q < 4; ++q) eta.quarters[q] = field(q + 1);
+  scatter(eta.cells, "");
+  if (all.size() > 1) for_quarters(eta, scatter);
   return eta;
 }
 

@@ -12,6 +12,9 @@ namespace lidwright {
 struct ViscosityField {
   CellField cells;                    ///< mean over the volume
   std::array<CellField, 4> quarters;  ///< place: `quarter`; empty: uniform in each cell
+  /// With quarters: the shear rate of each over that of its corner. Their mean at a corner is 1.
+  /// Otherwise a corner's shear is shared so that its quarters bear one stress.
+  std::array<CellField, 4> shares;
 
   static std::size_t quarter(bool upper, bool right) {
     return 2 * static_cast<std::size_t>(upper) + static_cast<std::size_t>(right);
