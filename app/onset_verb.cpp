@@ -12,6 +12,7 @@
 #include "app/shared_case.hpp"
 #include "app/stop_signals.hpp"
 #include "io/collective.hpp"
+#include "io/linear_rules.hpp"
 #include "io/onset_table.hpp"
 #include "io/provenance.hpp"
 #include "io/run_folder.hpp"
@@ -125,6 +126,7 @@ ExitCode onset(const Session& session, const OnsetRequest& request) {
     throw InputError("onset: name a case file; see `lidwright onset --help`");
   const OnsetSettings settings = settings_of(request);
   const Case c = shared_case(session.comm(), request.case_file, request.settings);
+  refuse_nonlinear(c.model, Linearised::Onset, request.case_file);
   refuse_coarse(c, settings.error_bars);
   or_bad_input([&] { return decompose(c.model, session.comm()); });
   const std::string path = folder_for(request.into, request.case_file, "_onset");

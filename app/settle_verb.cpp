@@ -11,6 +11,7 @@
 #include "app/shared_case.hpp"
 #include "app/stop_signals.hpp"
 #include "io/collective.hpp"
+#include "io/linear_rules.hpp"
 #include "io/provenance.hpp"
 #include "solver/initial.hpp"
 #include "solver/solve_error.hpp"
@@ -160,6 +161,7 @@ ExitCode settle(const Session& session, const SettleRequest& request) {
   if (request.along) along = shared_along(comm, request);
   const Case c = along ? along->at(along->along().values.front())
                        : shared_case(comm, request.case_file, request.settings);
+  refuse_nonlinear(c.model, Linearised::SteadyState, request.case_file);
   const std::string path = folder_for(request.into, request.case_file, "_settle");
   const ExistingRun existing = existing_run(request.overwrite);
   RunFolder::refuse_taken(comm, path, existing);

@@ -14,6 +14,7 @@
 #include "io/case_entries.hpp"
 #include "io/case_file.hpp"
 #include "io/csv_table.hpp"
+#include "io/linear_rules.hpp"
 #include "study/measured.hpp"
 
 namespace lidwright {
@@ -136,6 +137,8 @@ Problem problem(const BenchmarkFile& head, const std::string& case_path, const T
     refuse(row.place, fmt::format("settings: {}", e.what()));
   }
   check_grids(p.model.grid, head.grids, row.place);
+  if (head.how == How::Settle) refuse_nonlinear(p.model, Linearised::SteadyState, row.place);
+  if (head.how == How::Onset) refuse_nonlinear(p.model, Linearised::Onset, row.place);
   return p;
 }
 

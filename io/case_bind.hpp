@@ -49,11 +49,6 @@ Access item(Member member, M... chain) {
   return [=](Draft& d, std::size_t k) { return target((d.*....*chain).at(k).*member); };
 }
 template <class Member>
-Access viscosity_layer(Member member) {
-  return item(member, &Draft::made, &Case::model, &Model::viscosity, &ViscosityLaw::layered,
-              &LayeredViscosity::layers);
-}
-template <class Member>
 Access heat_layer(Member member) {
   return item(member, &Draft::made, &Case::model, &Model::heat, &HeatSources::layers);
 }
@@ -66,6 +61,8 @@ Access mode(Member member) {
   return item(member, &Draft::made, &Case::initial, &InitialSettings::modes);
 }
 
+inline constexpr Condition numbers = {"with [numbers]", [](const Draft& d) { return !d.si; }};
+
 inline constexpr Range positive = {.low = 0, .low_open = true};
 inline constexpr Range not_negative = {.low = 0};
 inline constexpr Range ratio = {.low = 1e-6, .high = 1e6};
@@ -74,6 +71,10 @@ inline constexpr Range cells = {.low = 4, .high = 100000};
 inline constexpr Range refinement = {.low = 1, .high = 1000};
 inline constexpr Range depths = {.low = 0, .high = 1, .high_open = true};
 inline constexpr Range share = {.low = 0, .high = 1, .low_open = true};
+
+inline void append(std::vector<Key>& keys, std::vector<Key> more) {
+  for (Key& key : more) keys.push_back(std::move(key));
+}
 
 std::vector<Key> scale_keys();  ///< title, [numbers], [body]
 std::vector<Key> body_used_keys();

@@ -140,6 +140,55 @@ void take_apart_reference(Draft& draft, const Model& model) {
     draft.reference.surface_temperature = profiles.surface_temperature;
   else if (model.viscosity.arrhenius)
     draft.arrhenius_surface = model.viscosity.arrhenius->offset;
+  else if (model.dislocation && model.dislocation->viscosity.arrhenius)
+    draft.reference.surface_temperature = model.dislocation->viscosity.arrhenius->offset;
+}
+
+void set_product(ViscosityLaw& law, const ProductDraft& draft, double offset) {
+  law.constant = draft.constant;
+  law.layered = draft.layered;
+  if (draft.has_exponential) law.exponential = draft.exponential;
+  if (!draft.has_arrhenius) return;
+  law.arrhenius = draft.arrhenius;
+  law.arrhenius->offset = offset;
+}
+
+void set_rheology(Model& model, const Draft& draft) {
+  constexpr double infinity = std::numeric_limits<double>::infinity();
+  const double offset = draft.absolute_surface();
+  set_product(model.viscosity, draft.diffusion, offset);
+  model.viscosity.highest = draft.highest_viscosity.value_or(infinity);
+  if (draft.has_dislocation) {
+    model.dislocation = draft.dislocation;
+    set_product(model.dislocation->viscosity, draft.dislocation_viscosity, offset);
+  }
+  if (!draft.has_yielding) return;
+  model.yielding = draft.yielding;
+  model.yielding->ceiling = draft.yield_ceiling.value_or(infinity);
+  model.yielding->lithostatic =
+      draft.si ? lithostatic_number(draft.body) : draft.lithostatic.value_or(0);
+}
+
+ProductDraft take_apart(const ViscosityLaw& law) {
+  return {law.constant,
+          law.layered,
+          law.exponential.has_value(),
+          law.arrhenius.has_value(),
+          law.exponential.value_or(ExponentialViscosity{}),
+          law.arrhenius.value_or(ArrheniusViscosity{})};
+}
+
+void take_apart_rheology(Draft& draft, const Model& model) {
+  draft.diffusion = take_apart(model.viscosity);
+  if (std::isfinite(model.viscosity.highest)) draft.highest_viscosity = model.viscosity.highest;
+  draft.has_dislocation = model.dislocation.has_value();
+  draft.dislocation = model.dislocation.value_or(DislocationCreep{});
+  draft.dislocation_viscosity = take_apart(draft.dislocation.viscosity);
+  draft.has_yielding = model.yielding.has_value();
+  if (!model.yielding) return;
+  draft.yielding = *model.yielding;
+  draft.lithostatic = model.yielding->lithostatic;
+  if (std::isfinite(model.yielding->ceiling)) draft.yield_ceiling = model.yielding->ceiling;
 }
 
 }  // namespace
@@ -188,12 +237,8 @@ Case assemble(Draft draft) {
   set_lateral_range(model.shell, draft);
   set_wall(model.walls.inner, draft.inner);
   set_wall(model.walls.outer, draft.outer);
-  if (draft.has_exponential) model.viscosity.exponential = draft.exponential;
-  draft.arrhenius.offset = draft.absolute_surface();
-  if (draft.has_arrhenius) model.viscosity.arrhenius = draft.arrhenius;
+  set_rheology(model, draft);
   set_reference(model.reference, draft);
-  model.viscosity.highest =
-      draft.highest_viscosity.value_or(std::numeric_limits<double>::infinity());
   if (draft.si || draft.body_used) draft.made.body = draft.body;
   return draft.made;
 }
@@ -205,12 +250,8 @@ Draft take_apart(const Case& from) {
   take_apart_shell(draft, model.shell);
   draft.inner = take_apart(model.walls.inner);
   draft.outer = take_apart(model.walls.outer);
-  draft.has_exponential = model.viscosity.exponential.has_value();
-  draft.has_arrhenius = model.viscosity.arrhenius.has_value();
-  draft.exponential = model.viscosity.exponential.value_or(ExponentialViscosity{});
-  draft.arrhenius = model.viscosity.arrhenius.value_or(ArrheniusViscosity{});
+  take_apart_rheology(draft, model);
   take_apart_reference(draft, model);
-  if (std::isfinite(model.viscosity.highest)) draft.highest_viscosity = model.viscosity.highest;
   draft.body_used = from.body.has_value();
   draft.body = from.body.value_or(Body{});
   return draft;

@@ -44,6 +44,15 @@ struct TabulatedProperty {
 const std::vector<TabulatedProperty>& tabulated_properties();
 bool tabulated(const ReferenceDraft&, const TabulatedProperty&);
 
+/// The factors of a creep's viscosity; a table that is there makes its factor.
+struct ProductDraft {
+  double constant = ViscosityLaw{}.constant;
+  LayeredViscosity layered;
+  bool has_exponential = false, has_arrhenius = false;
+  ExponentialViscosity exponential;
+  ArrheniusViscosity arrhenius;  ///< but for its offset
+};
+
 struct Draft {
   Case made;
   std::optional<double> radius_ratio;
@@ -52,12 +61,15 @@ struct Draft {
   std::optional<double> opening;  ///< degrees
   double width = 1;
   WallDraft inner, outer;
-  bool has_exponential = false, has_arrhenius = false;
-  ExponentialViscosity exponential;
-  ArrheniusViscosity arrhenius;
-  std::optional<double> arrhenius_surface;  ///< its surface_temperature
-  ReferenceDraft reference;
+  ProductDraft diffusion;
+  std::optional<double> arrhenius_surface;  ///< surface_temperature of its Arrhenius factor
   std::optional<double> highest_viscosity;
+  bool has_dislocation = false, has_yielding = false;
+  DislocationCreep dislocation;  ///< but for its viscosity
+  ProductDraft dislocation_viscosity;
+  Yielding yielding;  ///< but for the next two
+  std::optional<double> lithostatic, yield_ceiling;
+  ReferenceDraft reference;
   Body body;
   bool si = false;         ///< [body]: values are in SI
   bool body_used = false;  ///< [body_used]: values are dimensionless, the body is kept beside them
@@ -66,6 +78,11 @@ struct Draft {
   bool axisymmetric() const { return made.model.shell.shape == Shape::AxisymmetricShell; }
   bool compressible() const { return reference.approximation != Approximation::Boussinesq; }
   bool anelastic() const { return reference.approximation == Approximation::AnelasticLiquid; }
+  /// Is there no diffusion creep?
+  bool dislocation_alone() const { return has_dislocation && dislocation.alone; }
+  bool any_arrhenius() const {
+    return diffusion.has_arrhenius || (has_dislocation && dislocation_viscosity.has_arrhenius);
+  }
   /// Absolute, where T = 0, in units of the drop; 0 if neither the body nor any key says it.
   double absolute_surface() const;
   double dissipation() const;   ///< Di of a compressible mantle

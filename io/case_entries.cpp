@@ -202,6 +202,15 @@ void Entries::note_table(const std::string& path, const std::string& place) {
   tables_.try_emplace(path, place);
 }
 
+void Entries::note_tables(const std::string& innermost, const std::string& place) {
+  for (std::string table = innermost;;) {
+    note_table(table, place);
+    const auto dot = table.rfind('.');
+    if (dot == std::string::npos) return;
+    table.resize(dot);
+  }
+}
+
 void Entries::set(const std::string& setting, const std::string& place) {
   const auto equals = setting.find('=');
   if (equals == 0 || equals == std::string::npos || equals + 1 == setting.size())
@@ -212,7 +221,7 @@ void Entries::set(const std::string& setting, const std::string& place) {
   const Key& key = key_named(path, place);
   parsed_.push_back(parse_setting(value, takes_text(key)));
   entries_[path] = {parsed_.back().get("value"), place};
-  note_table(key.table(), place);
+  note_tables(key.table(), place);
 }
 
 const Entry* Entries::find(const std::string& path) const {

@@ -42,6 +42,8 @@ class Entries {
  private:
   void collect(const toml::table&, const std::string& path);
   void note_table(const std::string& path, const std::string& place);
+  /// A table and those around it.
+  void note_tables(const std::string& innermost, const std::string& place);
 
   std::string name_;
   std::list<toml::table> parsed_;  ///< owns what the entries point to

@@ -84,6 +84,12 @@ std::vector<Key> flow_keys() {
        .access = at(&F::refactor_cost),
        .range = not_negative,
        .help = "cost of a factorisation in applications of the factor: when a new one pays"},
+      {.path = "flow.most_newton_steps",
+       .access = at(&F::most_newton_steps),
+       .range = {.low = 1, .high = 1e6},
+       .help =
+           "Newton steps of a flow before giving up, where the viscosity depends on the rate of "
+           "strain"},
   };
 }
 
@@ -209,10 +215,6 @@ std::vector<Key> output_keys() {
        .access = at(&O::pictures),
        .help = "a picture of the run with every snapshot"},
   };
-}
-
-void append(std::vector<Key>& keys, std::vector<Key> more) {
-  for (Key& key : more) keys.push_back(std::move(key));
 }
 
 std::vector<Key> list_all() {

@@ -72,7 +72,7 @@ struct Key {
 };
 
 /// In the order of the reference page. A key comes after those its condition asks, where these are
-/// not words of a list: such words are read first.
+/// neither words of a list nor true or false: such choices are read first.
 const std::vector<Key>& all_keys();
 /// Keys of the items of a list.
 std::vector<const Key*> item_keys(const Key& list);

@@ -17,25 +17,15 @@ constexpr Condition sector = {R"(with shell.extent = "sector")", [](const Draft&
 constexpr Condition reflecting_box = {
     R"(in a box with shell.sides = "reflecting")",
     [](const Draft& d) { return d.box() && d.made.model.shell.sides == Sides::Reflecting; }};
-constexpr Condition numbers = {"with [numbers]", [](const Draft& d) { return !d.si; }};
 constexpr Condition body = {"with [body]", [](const Draft& d) { return d.si; }};
 constexpr Condition body_used = {"with [body_used]", [](const Draft& d) { return d.body_used; }};
-constexpr Condition exponential = {"with [viscosity.exponential]",
-                                   [](const Draft& d) { return d.has_exponential; }};
-constexpr Condition arrhenius = {"with [viscosity.arrhenius]",
-                                 [](const Draft& d) { return d.has_arrhenius; }};
 constexpr Condition compressible_numbers = {
     R"(with [numbers] and reference.approximation = "extended-boussinesq" or "anelastic-liquid")",
     [](const Draft& d) { return !d.si && d.compressible(); }};
 constexpr Condition absolute_numbers = {
-    R"(with [numbers], and with [viscosity.arrhenius] or reference.approximation = )"
-    R"("extended-boussinesq" or "anelastic-liquid")",
-    [](const Draft& d) { return !d.si && (d.compressible() || d.has_arrhenius); }};
-constexpr Condition offset_free = {
-    "in [viscosity.arrhenius] with [numbers] (with [body] it follows from body.surface_temperature "
-    "and "
-    "body.temperature_drop)",
-    [](const Draft& d) { return d.has_arrhenius && !d.si; }};
+    R"(with [numbers], and with [viscosity.arrhenius], [viscosity.dislocation.arrhenius] or )"
+    R"(reference.approximation = "extended-boussinesq" or "anelastic-liquid")",
+    [](const Draft& d) { return !d.si && (d.compressible() || d.any_arrhenius()); }};
 }  // namespace
 
 std::vector<Key> scale_keys() {
@@ -204,92 +194,6 @@ std::vector<Key> wall_keys(const std::string& table, WallDraft Draft::*wall) {
        .access = said(wall, &WallDraft::flow),
        .words = {"free-slip", "no-slip"},
        .help = "does the mantle slide along the wall or stick to it"},
-  };
-}
-
-std::vector<Key> viscosity_keys() {
-  using E = ExponentialViscosity;
-  using A = ArrheniusViscosity;
-  const auto law = [](auto... chain) { return of_model(&Model::viscosity, chain...); };
-  return {
-      {.path = "viscosity.constant",
-       .access = law(&ViscosityLaw::constant),
-       .unit = "eta_ref",
-       .range = positive,
-       .help = "constant factor"},
-      {.path = "viscosity.lowest",
-       .access = law(&ViscosityLaw::lowest),
-       .quantity = Quantity::Viscosity,
-       .range = not_negative,
-       .help = "viscosity is cut off here from below"},
-      {.path = "viscosity.highest",
-       .access = said(&Draft::highest_viscosity),
-       .default_text = "no cut-off",
-       .quantity = Quantity::Viscosity,
-       .range = positive,
-       .help = "viscosity is cut off here from above"},
-      {.path = "viscosity.layers",
-       .access = list(&Draft::made, &Case::model, &Model::viscosity, &ViscosityLaw::layered,
-                      &LayeredViscosity::layers),
-       .help = "factors by depth, shallowest first; each holds down to the next"},
-      {.path = "viscosity.layers[].below",
-       .access = viscosity_layer(&ViscosityLayer::below),
-       .need = Need::Required,
-       .quantity = Quantity::Length,
-       .range = depths,
-       .help = "depth of the layer's top below the outer wall"},
-      {.path = "viscosity.layers[].factor",
-       .access = viscosity_layer(&ViscosityLayer::factor),
-       .need = Need::Required,
-       .range = positive,
-       .help = "factor of the viscosity in the layer"},
-      {.path = "viscosity.exponential.thermal_contrast",
-       .access = said(&Draft::exponential, &E::thermal_contrast),
-       .range = positive,
-       .only = exponential,
-       .help = "viscosity at the surface temperature over that one drop hotter"},
-      {.path = "viscosity.exponential.depth_contrast",
-       .access = said(&Draft::exponential, &E::depth_contrast),
-       .range = positive,
-       .only = exponential,
-       .help = "viscosity at the inner wall over that at the outer, by depth alone"},
-      {.path = "viscosity.exponential.unity_at",
-       .access = said(&Draft::exponential, &E::unity_at),
-       .quantity = Quantity::Temperature,
-       .only = exponential,
-       .help = "temperature at which the thermal factor is 1"},
-      {.path = "viscosity.arrhenius.activation_energy",
-       .access = said(&Draft::arrhenius, &A::energy),
-       .need = Need::Required,
-       .quantity = Quantity::ActivationEnergy,
-       .range = not_negative,
-       .only = arrhenius,
-       .help = "energy E in exp[(E + p V)/(R T)]"},
-      {.path = "viscosity.arrhenius.activation_volume",
-       .access = said(&Draft::arrhenius, &A::volume),
-       .quantity = Quantity::ActivationVolume,
-       .range = not_negative,
-       .only = arrhenius,
-       .help = "volume V in exp[(E + p V)/(R T)], p = rho g depth"},
-      {.path = "viscosity.arrhenius.surface_temperature",
-       .access = said(&Draft::arrhenius_surface),
-       .default_text = "numbers.surface_temperature; required without",
-       .unit = "DeltaT",
-       .range = positive,
-       .only = offset_free,
-       .help = "absolute temperature where T = 0; equal to numbers.surface_temperature if both are "
-               "given"},
-      {.path = "viscosity.arrhenius.unity_at",
-       .access = said(&Draft::arrhenius, &A::unity_at),
-       .quantity = Quantity::Temperature,
-       .only = arrhenius,
-       .help = "temperature at which the factor is 1; above absolute zero"},
-      {.path = "viscosity.arrhenius.unity_at_depth",
-       .access = said(&Draft::arrhenius, &A::unity_at_depth),
-       .quantity = Quantity::Length,
-       .range = {.low = 0, .high = 1},
-       .only = arrhenius,
-       .help = "depth at which the factor is 1"},
   };
 }
 

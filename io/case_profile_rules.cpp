@@ -139,19 +139,26 @@ void check_surface_given(const Draft& draft, const Entries& entries) {
     refuse(entries.place("numbers"),
            "numbers.surface_temperature is missing and has no default: give number (absolute "
            "temperature where T = 0, in units of the temperature drop)");
-  if (draft.has_arrhenius && !of_numbers && !of_arrhenius)
+  if (draft.diffusion.has_arrhenius && !of_numbers && !of_arrhenius)
     refuse(entries.place("viscosity.arrhenius"),
            "viscosity.arrhenius.surface_temperature is missing and has no default: give number "
            "(absolute temperature where T = 0, in units of the temperature drop)");
+  if (draft.any_arrhenius() && !of_numbers && !of_arrhenius)
+    refuse(entries.place("viscosity.dislocation.arrhenius"),
+           "numbers.surface_temperature is missing and has no default, and [viscosity.arrhenius] "
+           "does not say it either: give number (absolute temperature where T = 0, in units of the "
+           "temperature drop)");
   if (of_numbers && of_arrhenius && *of_numbers != *of_arrhenius)
     refuse(entries.place("viscosity.arrhenius.surface_temperature"),
            fmt::format("viscosity.arrhenius.surface_temperature = {}: must equal "
                        "numbers.surface_temperature = {}; remove one of them, it serves for both",
                        *of_arrhenius, *of_numbers));
-  if (draft.has_arrhenius && draft.absolute_surface() <= 0)
+  if (draft.any_arrhenius() && draft.absolute_surface() <= 0)
     refuse(entries.place("numbers.surface_temperature"),
-           "numbers.surface_temperature = 0: must be greater than 0 with [viscosity.arrhenius], "
-           "whose viscosity is infinite at absolute zero");
+           fmt::format("numbers.surface_temperature = 0: must be greater than 0 with [{}], whose "
+                       "viscosity is infinite at absolute zero",
+                       draft.diffusion.has_arrhenius ? "viscosity.arrhenius"
+                                                     : "viscosity.dislocation.arrhenius"));
 }
 
 void check_walls_above_zero(const Draft& draft, const Entries& entries) {

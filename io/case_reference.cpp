@@ -19,7 +19,8 @@ constexpr const char* introduction =
     "is in the "
     "unit given second and is converted on reading; defaults stay what they are in dimensionless "
     "terms. "
-    "Factors of the viscosity that are present multiply; the cut-offs come last. Keys of a list "
+    "Factors of the viscosity that are present multiply; the rates of the two creeps add; the "
+    "cut-offs come last (docs/rheology.md). Keys of a list "
     "are written "
     "list[].key. On the command line, --set table.key=value replaces what the file says.";
 

@@ -77,34 +77,9 @@ void check_walls(const Draft& draft, const Entries& entries) {
            "there is no steady state; give walls.outer.temperature or walls.inner.temperature");
 }
 
-template <class Layer>
-void check_sorted(const std::vector<Layer>& layers, const char* list, const Entries& entries) {
-  for (std::size_t k = 1; k < layers.size(); ++k) {
-    if (layers[k].below > layers[k - 1].below) continue;
-    const std::string path = fmt::format("{}[{}].below", list, k + 1);
-    refuse(entries.place(path), fmt::format("{}: must be deeper than the layer before it; sort the "
-                                            "layers by depth, shallowest first",
-                                            path));
-  }
-}
-
-void check_viscosity(const Draft& draft, const Entries& entries) {
-  const ViscosityLaw& law = draft.made.model.viscosity;
-  check_sorted(law.layered.layers, "viscosity.layers", entries);
-  if (draft.highest_viscosity && *draft.highest_viscosity < law.lowest)
-    refuse(entries.place("viscosity.highest"),
-           "viscosity.highest is less than viscosity.lowest; the upper cut-off must be the larger");
-  if (!draft.has_arrhenius) return;
-  const double offset = draft.absolute_surface();
-  if (draft.arrhenius.unity_at + offset <= 0)
-    refuse(entries.place("viscosity.arrhenius.unity_at"),
-           "viscosity.arrhenius.unity_at must be above absolute zero");
-  for (const WallDraft* wall : {&draft.inner, &draft.outer})
-    if (wall->temperature && *wall->temperature + offset <= 0)
-      refuse(entries.place(wall == &draft.inner ? "walls.inner.temperature"
-                                                : "walls.outer.temperature"),
-             "the wall's temperature must be above absolute zero, where an Arrhenius viscosity is "
-             "infinite; raise it or the absolute surface temperature");
+void choose_factors(ProductDraft& product, const std::string& table, const Entries& entries) {
+  product.has_exponential = entries.has_table(table + ".exponential");
+  product.has_arrhenius = entries.has_table(table + ".arrhenius");
 }
 
 void check_initial(const Draft& draft, const Entries& entries) {
@@ -133,8 +108,10 @@ void check_steps(const Draft& draft, const Entries& entries) {
 void choose_tables(Draft& draft, const Entries& entries) {
   draft.si = entries.has_table("body");
   draft.body_used = entries.has_table("body_used");
-  draft.has_exponential = entries.has_table("viscosity.exponential");
-  draft.has_arrhenius = entries.has_table("viscosity.arrhenius");
+  choose_factors(draft.diffusion, "viscosity", entries);
+  choose_factors(draft.dislocation_viscosity, "viscosity.dislocation", entries);
+  draft.has_dislocation = entries.has_table("viscosity.dislocation");
+  draft.has_yielding = entries.has_table("viscosity.yielding");
   const bool numbers = entries.has_table("numbers");
   if (numbers && draft.si)
     refuse(entries.place("body"),
@@ -159,8 +136,8 @@ void check_body(const Draft& draft, const Entries& entries) {
   const Scales scales = scales_of(draft.body);
   for (const double derived :
        {rayleigh_number(draft.body), radius_ratio(draft.body), scales.time, scales.heat_source,
-        scales.activation_volume, absolute_surface_temperature(draft.body),
-        dissipation_number(draft.body)})
+        scales.activation_volume, scales.stress, lithostatic_number(draft.body),
+        absolute_surface_temperature(draft.body), dissipation_number(draft.body)})
     if (!std::isnormal(derived))
       refuse(entries.place(table),
              fmt::format("[{}]: its scales overflow or vanish, so its numbers are far from any "
@@ -173,7 +150,7 @@ void check_together(const Draft& draft, const Entries& entries) {
   check_grid(draft, entries);
   check_walls(draft, entries);
   check_reference(draft, entries);
-  check_viscosity(draft, entries);
+  check_rheology(draft, entries);
   check_sorted(draft.made.model.heat.layers, "heat.layers", entries);
   check_initial(draft, entries);
   check_steps(draft, entries);

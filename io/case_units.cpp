@@ -22,6 +22,8 @@ Units units_of(Quantity quantity) {
       return {"DeltaT kappa/d^2", "K/Myr"};
     case Quantity::Viscosity:
       return {"eta_ref", "Pa s"};
+    case Quantity::Stress:
+      return {"eta_ref kappa/d^2", "MPa"};
     case Quantity::ActivationEnergy:
       return {"R DeltaT", "J/mol"};
     case Quantity::ActivationVolume:
@@ -71,6 +73,8 @@ Conversion conversion(Quantity quantity, const std::optional<Body>& body) {
       return {.unit = 1 / million_years, .scale = s.temperature / s.time};
     case Quantity::Viscosity:
       return {.scale = s.viscosity};
+    case Quantity::Stress:
+      return {.unit = 1e6, .scale = s.stress};
     case Quantity::ActivationEnergy:
       return {.scale = s.activation_energy};
     case Quantity::ActivationVolume:

@@ -21,6 +21,7 @@ enum class Quantity {
   Time,
   TemperatureRate,
   Viscosity,
+  Stress,
   ActivationEnergy,
   ActivationVolume,
   Density,  ///< this and the following: 1, or with a body over the body's value

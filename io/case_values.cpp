@@ -168,6 +168,11 @@ void read_key(const Key& key, Draft& draft, Entries& entries) {
 
 bool is_body_key(const Key& key) { return key.table().starts_with("body"); }
 
+/// One of a list of words, or true or false.
+bool is_choice(const Key& key, Draft& draft) {
+  return !key.words.empty() || std::holds_alternative<bool*>(key.access(draft, 0));
+}
+
 /// Value as TOML; "" for what is not there.
 struct Write {
   const Key& key;
@@ -208,9 +213,9 @@ void read_body_keys(Draft& draft, Entries& entries) {
 }
 
 void read_other_keys(Draft& draft, Entries& entries) {
-  for (const bool words : {true, false})  // conditions ask words of keys further down the list
+  for (const bool choices : {true, false})  // conditions ask choices further down the list
     for (const Key& key : all_keys())
-      if (!is_body_key(key) && !key.in_list() && words != key.words.empty())
+      if (!is_body_key(key) && !key.in_list() && choices == is_choice(key, draft))
         read_key(key, draft, entries);
 }
 

@@ -2,49 +2,60 @@
 
 namespace lidwright {
 
-/// Solves e = tau / (2 eta_d) + tau^n / (2 B). Either mechanism alone would need a higher stress,
-/// so that Newton's method comes down to the root from the smaller of the two without overshooting:
-/// the right-hand side is convex.
-double LocalFlowLaw::creep_stress(double rate) const {
-  if (dislocation == none) return 2 * diffusion * rate;
-  const double by_dislocation = std::pow(2 * dislocation * rate, 1 / exponent);
-  if (diffusion == none) return by_dislocation;
-  double tau = std::min(2 * diffusion * rate, by_dislocation);
-  for (int n = 0; n < 60 && tau > 0; ++n) {
-    const double linear = tau / (2 * diffusion);
-    const double power = std::pow(tau, exponent) / (2 * dislocation);
-    const double down = (linear + power - rate) / (linear + exponent * power);
-    tau *= 1 - down;
-    if (down < 1e-14) break;
+/// Solves x/q + x^n = 1 for x = tau/by_dislocation, where q = by_diffusion/by_dislocation is the
+/// ratio of the stresses at which either mechanism alone would creep at this rate: that is
+/// e = tau/(2 eta_d) + tau^n/(2 B). Newton's method comes down to the root without overshooting, as
+/// the left-hand side is convex and either mechanism alone needs the higher stress.
+LocalFlowLaw::Shares LocalFlowLaw::shares(double by_diffusion, double by_dislocation) const {
+  constexpr double last_step = 1e-8;  // the error left is less than exponent * last_step^2
+  constexpr int most_steps = 60;
+  const double q = by_diffusion / by_dislocation;
+  if (q == 0) return {1, 0};
+  double x = std::min(1., q);
+  for (int k = 0; k < most_steps; ++k) {
+    const double linear = x / q, power = std::pow(x, exponent);
+    const double down = (linear + power - 1) / (linear + exponent * power);
+    x -= down * x;
+    if (down < last_step) break;
   }
-  return tau;
+  return {std::min(x / q, 1.), x};
 }
 
 LocalFlowLaw::Response LocalFlowLaw::creep(double rate) const {
   if (dislocation == none) return {diffusion, 0, false};
-  const double tau = creep_stress(rate);
-  if (!(tau > 0)) return {diffusion, diffusion == none ? 1 / exponent - 1 : 0, false};
-  const double linear = tau / (2 * diffusion), power = std::pow(tau, exponent) / (2 * dislocation);
-  return {tau / (2 * rate), (linear + power) / (linear + exponent * power) - 1, false};
+  if (exponent == 1) return {1 / (1 / diffusion + 1 / dislocation), 0, false};
+  const double power_law = 1 / exponent - 1;  // slope where dislocations alone creep
+  if (rate == 0) return {diffusion, diffusion == none ? power_law : 0, false};
+  const double by_dislocation = std::pow(2 * dislocation * rate, 1 / exponent);
+  if (by_dislocation == 0) return {0, power_law, false};
+  if (by_dislocation == none) return {diffusion, 0, false};  // beyond the largest number
+  if (diffusion == none) return {by_dislocation / (2 * rate), power_law, false};
+  const auto [linear, stress] = shares(2 * diffusion * rate, by_dislocation);
+  // The first form does not lose a viscosity at rates that underflow.
+  const double eta = linear > 0.5 ? diffusion * linear : stress * by_dislocation / (2 * rate);
+  return {eta, 1 / (linear + exponent * (1 - linear)) - 1, false};
+}
+
+double LocalFlowLaw::creep_stress(double rate) const {
+  return rate > 0 ? 2 * creep(rate).viscosity * rate : 0;
+}
+
+LocalFlowLaw::Response LocalFlowLaw::with_yielding(const Response& creep, double rate) const {
+  const double plastic = floor + (yield_stress > 0 ? yield_stress / (2 * rate) : 0);
+  const double plastic_slope = plastic > 0 ? floor / plastic - 1 : 0;
+  const bool yields = plastic < creep.viscosity;
+  if (yielding == YieldingLaw::Minimum)
+    return yields ? Response{plastic, plastic_slope, true} : creep;
+  const double softness = 1 / creep.viscosity + 1 / plastic;
+  if (softness == 0) return creep;  // both rigid
+  if (softness == none) return {0, 0, yields};
+  const double plastic_share = 1 / plastic / softness;
+  return {2 / softness, plastic_share * plastic_slope + (1 - plastic_share) * creep.slope, yields};
 }
 
 LocalFlowLaw::Response LocalFlowLaw::operator()(double rate) const {
   Response r = creep(rate);
-  if (yield_stress < none && rate > 0) {
-    const double plastic = floor + yield_stress / (2 * rate);
-    const double plastic_slope = plastic > 0 ? floor / plastic - 1 : 0;
-    r.yields = plastic < r.viscosity;
-    if (yielding == YieldingLaw::HarmonicMean) {
-      const double creep_share = r.viscosity == none ? 1 : r.viscosity / (r.viscosity + plastic);
-      r.slope = creep_share * plastic_slope + (1 - creep_share) * r.slope;
-      r.viscosity = 2 * creep_share * plastic;
-    } else if (r.yields) {
-      r.viscosity = plastic;
-      r.slope = plastic_slope;
-    }
-  } else if (yield_stress < none && yielding == YieldingLaw::HarmonicMean) {
-    r.viscosity *= 2;  // Plastic viscosity grows without bound.
-  }
+  if (yield_stress < none) r = with_yielding(r, rate);
   if (r.viscosity < lowest) return {lowest, 0, r.yields};
   if (r.viscosity > highest) return {highest, 0, false};
   return r;

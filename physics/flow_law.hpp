@@ -34,7 +34,14 @@ struct LocalFlowLaw {
   double creep_stress(double rate) const;
 
  private:
+  /// What diffusion creep carries of the rate at which both mechanisms creep together, and the
+  /// stress of both over that of dislocation creep alone.
+  struct Shares {
+    double diffusion, stress;
+  };
+  Shares shares(double by_diffusion, double by_dislocation) const;
   Response creep(double rate) const;
+  Response with_yielding(const Response& creep, double rate) const;
 };
 
 /// Of creep at T and depth, and of yielding at the stress given.

@@ -16,6 +16,10 @@ double rayleigh_number(const Body& body) {
          (diffusivity(body) * body.reference_viscosity);
 }
 
+double lithostatic_number(const Body& body) {
+  return body.density * body.gravity * thickness(body) / scales_of(body).stress;
+}
+
 double dissipation_number(const Body& body) {
   return body.expansivity * body.gravity * thickness(body) / body.heat_capacity;
 }

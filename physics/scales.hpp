@@ -44,6 +44,9 @@ double diffusivity(const Body&);   ///< k/(rho cp), m^2/s
 double radius_ratio(const Body&);  ///< inner over outer radius
 /// rho alpha g DeltaT d^3/(kappa eta).
 double rayleigh_number(const Body&);
+/// rho g d^3/(kappa eta): pressure at the inner wall, were density and gravity uniform in a layer
+/// of thickness d, in units of the stress.
+double lithostatic_number(const Body&);
 /// Di = alpha g d/cp, the adiabatic rise of temperature over the shell in units of the temperature.
 double dissipation_number(const Body&);
 /// Absolute surface temperature in units of the temperature drop.

@@ -100,6 +100,9 @@ def refusals(scratch):
     wrong(bad, ["case file", "onset --help"])
     wrong(bad, ["missing.toml", "check the path"], "missing.toml")
     wrong(bad, ["found", "holds a run", "--overwrite"], case, "--into", "found")
+    creep = ["--set", "viscosity.dislocation.reference_stress=9"]
+    wrong(bad, [case, "[viscosity.dislocation]", "remove the table"], case, *creep)
+    wrong(bad, ["[viscosity.yielding]", "remove the table"], case, "--set", "viscosity.yielding.cohesion=9")
     wrong(bad, ["grid.radial = 28", ">= 32", "--no-error-bars"], case, "--set", "grid.radial=28")
     wrong(bad, ["grid.radial = 6", ">= 8"], case, "--set", "grid.radial=6", "--no-error-bars")
     for modes in ("3", "3:", ":3", "0:3", "5:3", "a:b", "1:2:3", "-1:4", "1:99999"):

@@ -196,6 +196,9 @@ def refusals(scratch):
     wrong(["34 x 128", "halved 2 times", "multiple of 4"], "box.toml", "--error-bars", "--set", "grid.radial=34")
     wrong(["--along and --error-bars"], "box.toml", "--error-bars", "--along", "numbers.rayleigh=1e4:1e5:3")
     wrong(["settle.tolerance = -1"], "box.toml", "--set", "settle.tolerance=-1")
+    yielding = "viscosity.yielding.cohesion"
+    wrong(["box.toml", "[viscosity.yielding]", "march it instead"], "box.toml", "--set", f"{yielding}=9", ranks=3)
+    wrong(["[viscosity.yielding]", "march it instead"], "box.toml", "--along", f"{yielding}=1:2:3")
     wrong(["initial.from", "another region"], "box.toml", "--set", f"initial.from={scratch.path('annulus')}")
     wrong(["--wander"], "box.toml", "--wander")
     wrong(["8 lateral cells on 3 ranks", "fewer ranks"], "box.toml", *runs.settings(grid__lateral=8), ranks=3)

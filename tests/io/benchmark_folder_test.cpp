@@ -133,6 +133,18 @@ TEST_F(BenchmarkFolder, RefusesRowsThatCannotBeMeant) {
   expect_refused("", "holds no values");
 }
 
+TEST_F(BenchmarkFolder, RefusesToLineariseWhatYields) {
+  const auto expect = [this](const std::string& how, const std::string& quantity,
+                             const std::string& message) {
+    put("benchmark.toml",
+        "title = \"x\"\nreference = \"y\"\nhow = \"" + how + "\"\ngrids = 2\nquick = true\n");
+    expect_refused(quantity + ",viscosity.yielding.cohesion=3,1,,published,,own\n",
+                   "expected.csv:2: [viscosity.yielding]: " + message);
+  };
+  expect("settle", "nusselt_outer", "the viscosity depends on the rate of strain");
+  expect("onset", "rayleigh_critical", "at rest nothing yields");
+}
+
 TEST_F(BenchmarkFolder, RefusesATableWithOtherColumns) {
   put("expected.csv", "quantity,value,mark\nvelocity_rms,1,analytic\n");
   EXPECT_THAT(refusal(), HasSubstr("the column 'source' is missing"));

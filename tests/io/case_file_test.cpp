@@ -235,6 +235,7 @@ TEST(CaseFile, RoundTripOfEverythingAtOnce) {
                                 "initial.seed=9223372036854775807",
                                 "initial.from=/old/run",
                                 "flow.memory=2",
+                                "flow.most_newton_steps=8",
                                 "transport.flux=central",
                                 "march.most_steps=2147483648",
                                 "settle.tolerance=1e-7",

@@ -35,7 +35,7 @@ inline auto parts(const RadialProfile& p) {
 inline auto parts(const HeatLayer& l) { return std::tie(l.below, l.source); }
 inline auto parts(const TemperatureMode& m) { return std::tie(m.lateral, m.radial, m.amplitude); }
 inline auto parts(const FlowSettings& f) {
-  return std::tie(f.tolerance, f.most_iterations, f.memory, f.refactor_cost);
+  return std::tie(f.tolerance, f.most_iterations, f.memory, f.refactor_cost, f.most_newton_steps);
 }
 inline auto parts(const HeatSettings& h) {
   return std::tie(h.flux, h.courant, h.accuracy, h.first_step, h.largest_step, h.growth);
@@ -54,6 +54,13 @@ inline auto parts(const Body& b) {
   return std::tie(b.radius, b.core_radius, b.gravity, b.density, b.expansivity, b.conductivity,
                   b.heat_capacity, b.surface_temperature, b.temperature_drop,
                   b.reference_viscosity);
+}
+
+inline auto parts(const Yielding& y) {
+  return std::tie(y.law, y.cohesion, y.friction, y.lithostatic, y.ceiling, y.floor);
+}
+inline auto parts(const DislocationCreep& d) {
+  return std::tie(d.exponent, d.reference_stress, d.alone);
 }
 
 template <class T>
@@ -79,6 +86,15 @@ inline void expect_same(const ReferenceProfiles& a, const ReferenceProfiles& b) 
   EXPECT_TRUE(parts(a.heat_capacity) == parts(b.heat_capacity));
 }
 
+inline void expect_same(const ViscosityLaw& a, const ViscosityLaw& b) {
+  EXPECT_EQ(a.constant, b.constant);
+  EXPECT_EQ(a.lowest, b.lowest);
+  EXPECT_EQ(a.highest, b.highest);
+  expect_same(a.exponential, b.exponential);
+  expect_same(a.arrhenius, b.arrhenius);
+  expect_same(a.layered.layers, b.layered.layers);
+}
+
 inline void expect_same(const Model& a, const Model& b) {
   EXPECT_TRUE(parts(a.shell) == parts(b.shell));
   EXPECT_EQ(a.grid.radial, b.grid.radial);
@@ -88,12 +104,11 @@ inline void expect_same(const Model& a, const Model& b) {
   EXPECT_TRUE(parts(a.walls.inner) == parts(b.walls.inner));
   EXPECT_TRUE(parts(a.walls.outer) == parts(b.walls.outer));
   EXPECT_EQ(a.rayleigh, b.rayleigh);
-  EXPECT_EQ(a.viscosity.constant, b.viscosity.constant);
-  EXPECT_EQ(a.viscosity.lowest, b.viscosity.lowest);
-  EXPECT_EQ(a.viscosity.highest, b.viscosity.highest);
-  expect_same(a.viscosity.exponential, b.viscosity.exponential);
-  expect_same(a.viscosity.arrhenius, b.viscosity.arrhenius);
-  expect_same(a.viscosity.layered.layers, b.viscosity.layered.layers);
+  expect_same(a.viscosity, b.viscosity);
+  expect_same(a.dislocation, b.dislocation);
+  if (a.dislocation && b.dislocation)
+    expect_same(a.dislocation->viscosity, b.dislocation->viscosity);
+  expect_same(a.yielding, b.yielding);
   EXPECT_EQ(a.heat.uniform, b.heat.uniform);
   expect_same(a.heat.layers, b.heat.layers);
   expect_same(a.reference, b.reference);

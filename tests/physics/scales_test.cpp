@@ -38,6 +38,11 @@ TEST(Scales, RayleighNumberByHand) {
   EXPECT_NEAR(rayleigh_number(round_body()) / 3.6e6, 1, 1e-15);
 }
 
+TEST(Scales, LithostaticNumberByHand) {
+  // 3000 * 4 * 1e18/(1e-6 * 1e20) = 1.2e8; in Pa, rho g d = 1.2e10 over a stress of 100
+  EXPECT_NEAR(lithostatic_number(round_body()) / 1.2e8, 1, 1e-15);
+}
+
 TEST(Scales, DissipationNumberByHand) {
   EXPECT_DOUBLE_EQ(dissipation_number(round_body()), 0.12);  // 3e-5 * 4 * 1e6/1000
 }
