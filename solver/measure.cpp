@@ -6,37 +6,12 @@
 
 #include "mesh/gather.hpp"
 #include "mesh/operators.hpp"
+#include "solver/lid_row.hpp"
 #include "solver/pressure.hpp"
+#include "solver/wall_motion.hpp"
 
 namespace lidwright {
 namespace {
-
-/// Velocity along a wall at a lateral face: v/h continued to the wall as an even parabola where it
-/// slips freely (its radial derivative is 0 there), 0 where it grips.
-double wall_velocity(const Power& power, const CornerField& psi, int face, int j) {
-  const Geometry& g = power.geometry();
-  const bool at_inner = face == 0;
-  if ((at_inner ? power.inner_slip() : power.outer_slip()) == Slip::None) return 0;
-  const int near = at_inner ? 0 : face - 1, far = at_inner ? 1 : face - 2;
-  const double near2 = std::pow(g.cell_radius(near) - g.face_radius(face), 2);
-  const double far2 = std::pow(g.cell_radius(far) - g.face_radius(face), 2);
-  const double near_rate = velocity(g, psi, LateralFace{near, j}) / g.stretch(near);
-  const double far_rate = velocity(g, psi, LateralFace{far, j}) / g.stretch(far);
-  return g.face_stretch(face) * (far2 * near_rate - near2 * far_rate) / (far2 - near2);
-}
-
-/// Mean square over a wall: lateral faces weighted by half their neighbours' areas.
-double wall_velocity_rms(const Power& power, const CornerField& psi, int face) {
-  const Geometry& g = power.geometry();
-  const Range columns = power.decomposition().owned(At::Cell);
-  double sum = 0;
-  for (int j = columns.begin; j < columns.end; ++j) {
-    const double left = wall_velocity(power, psi, face, j),
-                 right = wall_velocity(power, psi, face, j + 1);
-    sum += g.area(RadialFace{face, j}) * (left * left + right * right) / 2;
-  }
-  return std::sqrt(power.decomposition().sum(sum) / g.wall_area(face));
-}
 
 /// Mean square velocity over the volume: each component squared on its own faces and staggered
 /// volumes.
@@ -222,6 +197,7 @@ HistoryRow measure(const StateView& s) {
   if (s.rayleigh > 0)
     row.viscous_heating = s.heat.mantle().dissipation_number / s.rayleigh * row.dissipation;
   row.adiabatic_cooling = adiabatic_cooling(s);
+  set_lid(s, row);
   return row;
 }
 
