@@ -83,24 +83,40 @@ void set_temperatures(const CellField& t, HistoryRow& row) {
   row.temperature_max = t.decomposition().max(most);
 }
 
-/// Adds one column's contributions to the surface sums of profiles: columns of `sums` are the
-/// quantities.
-void add_column(const StateView& s, int j, std::vector<double>& sums) {
+/// Surface sums of profiles: of cells, then of radial faces; velocities and viscosities by their
+/// share of the surface, heat as it flows.
+struct SurfaceSums {
+  explicit SurfaceSums(int cells)
+      : rows(static_cast<std::size_t>(cells)), numbers(6 * rows + 3, 0.0) {}
+  double* temperature() { return numbers.data(); }
+  double* lateral_square() { return numbers.data() + rows; }
+  double* log_viscosity() { return numbers.data() + 2 * rows; }
+  double* radial_square() { return numbers.data() + 3 * rows; }
+  double* conducted() { return radial_square() + rows + 1; }
+  double* advected() { return conducted() + rows + 1; }
+
+  std::size_t rows;
+  std::vector<double> numbers;
+};
+
+void add_column(const StateView& s, int j, SurfaceSums& sums) {
   const Geometry& g = s.power.geometry();
-  const CellField& t = s.temperature;
-  const auto rows = static_cast<std::size_t>(g.radial_cells());
+  const double share = g.lateral_measure(j);
+  const double* t = s.temperature.column(j);
+  const double* eta = s.power.viscosity().column(j);
   for (int i = 0; i < g.radial_cells(); ++i) {
-    const Cell c{i, j};
-    const double share = g.volume(c);
-    const OnFaces w = face_velocities(g, s.psi, c);
-    const auto n = static_cast<std::size_t>(i);
-    sums[n] += share * t[c];
-    sums[rows + n] += share * (w.inner * w.inner + w.outer * w.outer) / 2;
-    sums[2 * rows + n] += share * (w.left * w.left + w.right * w.right) / 2;
-    sums[3 * rows + n] += share * std::log(s.power.viscosity()[c]);
-    sums[4 * rows + n] += (s.heat.conducted(t, inner(c)) + s.heat.conducted(t, outer(c))) / 2;
-    sums[5 * rows + n] +=
-        (s.heat.advected(t, s.psi, inner(c)) + s.heat.advected(t, s.psi, outer(c))) / 2;
+    const double left_speed = velocity(g, s.psi, LateralFace{i, j}),
+                 right_speed = velocity(g, s.psi, LateralFace{i, j + 1});
+    sums.temperature()[i] += share * t[i];
+    sums.lateral_square()[i] += share * (left_speed * left_speed + right_speed * right_speed) / 2;
+    sums.log_viscosity()[i] += share * std::log(eta[i]);
+  }
+  for (int i = 0; i <= g.radial_cells(); ++i) {
+    const RadialFace f{i, j};
+    const double speed = velocity(g, s.psi, f);
+    sums.radial_square()[i] += share * speed * speed;
+    sums.conducted()[i] += s.heat.conducted(s.temperature, f);
+    sums.advected()[i] += s.heat.advected(s.temperature, s.psi, f);
   }
 }
 
@@ -203,23 +219,22 @@ HistoryRow measure(const StateView& s) {
 
 RadialProfiles profiles(const StateView& s) {
   const Geometry& g = s.power.geometry();
-  const auto rows = static_cast<std::size_t>(g.radial_cells());
-  std::vector<double> sums(6 * rows, 0.0);
+  SurfaceSums sums(g.radial_cells());
   const Range columns = s.temperature.owned();
   for (int j = columns.begin; j < columns.end; ++j) add_column(s, j, sums);
-  s.power.decomposition().sum_in_place(sums);
+  s.power.decomposition().sum_in_place(sums.numbers);
+  double whole = 0;
+  for (int j = 0; j < g.lateral_cells(); ++j) whole += g.lateral_measure(j);
+  const auto at_middle = [](const double* faces, int i) { return (faces[i] + faces[i + 1]) / 2; };
   RadialProfiles p;
-  for (std::size_t i = 0; i < rows; ++i) {
-    const int row = static_cast<int>(i);
-    double volume = 0;
-    for (int j = 0; j < g.lateral_cells(); ++j) volume += g.volume({row, j});
-    p.radius.push_back(g.cell_radius(row));
-    p.temperature.push_back(sums[i] / volume);
-    p.velocity_radial_rms.push_back(std::sqrt(sums[rows + i] / volume));
-    p.velocity_lateral_rms.push_back(std::sqrt(sums[2 * rows + i] / volume));
-    p.viscosity.push_back(std::exp(sums[3 * rows + i] / volume));
-    p.heat_conducted.push_back(sums[4 * rows + i]);
-    p.heat_advected.push_back(sums[5 * rows + i]);
+  for (int i = 0; i < g.radial_cells(); ++i) {
+    p.radius.push_back(g.cell_radius(i));
+    p.temperature.push_back(sums.temperature()[i] / whole);
+    p.velocity_radial_rms.push_back(std::sqrt(at_middle(sums.radial_square(), i) / whole));
+    p.velocity_lateral_rms.push_back(std::sqrt(sums.lateral_square()[i] / whole));
+    p.viscosity.push_back(std::exp(sums.log_viscosity()[i] / whole));
+    p.heat_conducted.push_back(at_middle(sums.conducted(), i));
+    p.heat_advected.push_back(at_middle(sums.advected(), i));
   }
   p.temperature_adiabatic = adiabat(g, s.heat.mantle(), p.temperature);
   return p;
