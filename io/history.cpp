@@ -74,7 +74,7 @@ constexpr std::array<Column, 45> columns{{
     {"rheological_temperature", "DeltaT", "|eta/(d eta/dT)| at temperature_internal"},
     {"frank_kamenetskii", "1", "(temperature_inner - temperature_outer) / rheological_temperature"},
     {"stress_rms_outer", "eta kappa/d^2",
-     "root mean square of the stress's second invariant in the outermost cells"},
+     "root mean square of the stress's second invariant, continued to the outer wall"},
     {"topography_rms_outer", "eta kappa/d^2",
      "root mean square of the normal stress on the outer wall, less its mean"},
     {"plumes", "1", "hot currents upwards in the middle of the interior"},

@@ -47,7 +47,7 @@ struct HistoryRow {
   double rayleigh_internal = 0;         ///< with the mean viscosity there
   double rheological_temperature = 0;   ///< |eta/(d eta/dT)| there
   double frank_kamenetskii = 0;         ///< drop from wall to wall over rheological_temperature
-  double stress_rms_outer = 0;          ///< second invariant in the outermost cells, eta kappa/d^2
+  double stress_rms_outer = 0;          ///< second invariant at the outer wall, eta kappa/d^2
   double topography_rms_outer = 0;      ///< of -sigma_rr at the outer wall, eta kappa/d^2
   long plumes = 0;                      ///< hot currents upwards
   long downwellings = 0;                ///< cold currents downwards

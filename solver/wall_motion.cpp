@@ -25,6 +25,20 @@ double strain_rate_of_column(const Power& power, const CornerField& psi, int fac
   return std::sqrt((along * along + out_of_plane * out_of_plane) / 2) / g.face_stretch(face);
 }
 
+/// Over one row of cells.
+double stress_rms(const Power& power, const CornerField& psi, int row) {
+  const Geometry& g = power.geometry();
+  const Range columns = power.decomposition().owned(At::Cell);
+  std::vector<double> sums(2, 0.0);
+  for (int j = columns.begin; j < columns.end; ++j) {
+    const Cell c{row, j};
+    sums[0] += g.volume(c) * std::pow(2 * power.viscosity()[c] * strain_rate(power, psi, c), 2);
+    sums[1] += g.volume(c);
+  }
+  power.decomposition().sum_in_place(sums);
+  return std::sqrt(sums[0] / sums[1]);
+}
+
 }  // namespace
 
 double wall_velocity(const Power& power, const CornerField& psi, int face, int j) {
@@ -87,16 +101,11 @@ double plateness(const Power& power, const CornerField& psi) {
 
 double surface_stress_rms(const Power& power, const CornerField& psi) {
   const Geometry& g = power.geometry();
-  const Range columns = power.decomposition().owned(At::Cell);
   const int top = g.radial_cells() - 1;
-  std::vector<double> sums(2, 0.0);
-  for (int j = columns.begin; j < columns.end; ++j) {
-    const Cell c{top, j};
-    sums[0] += g.volume(c) * std::pow(2 * power.viscosity()[c] * strain_rate(power, psi, c), 2);
-    sums[1] += g.volume(c);
-  }
-  power.decomposition().sum_in_place(sums);
-  return std::sqrt(sums[0] / sums[1]);
+  const double at_top = stress_rms(power, psi, top), below = stress_rms(power, psi, top - 1);
+  if (at_top == 0 || below == 0) return at_top;
+  const double steps = g.depth(top) / (g.depth(top - 1) - g.depth(top));
+  return at_top * std::pow(at_top / below, steps);
 }
 
 }  // namespace lidwright

@@ -31,8 +31,9 @@ inline constexpr double isoviscous_deforming_share = 0.6;
 /// where the wall does not deform. Collective.
 double plateness(const Power&, const CornerField& psi);
 
-/// Root mean square of the second invariant sqrt(tau : tau / 2) of stress over the outermost cells,
-/// by their volumes; eta kappa/d^2. Collective.
+/// Root mean square over the outer wall of the second invariant sqrt(tau : tau / 2) of stress, from
+/// the two outermost rows of cells, between and beyond which its logarithm is straight in depth (as
+/// that of the viscosity nearly is); eta kappa/d^2. Collective.
 double surface_stress_rms(const Power&, const CornerField& psi);
 
 }  // namespace lidwright

@@ -68,6 +68,11 @@ TEST(WallMotion, SurfaceStressIsTwiceViscosityTimesRate) {
     for (int i = 0; i <= 8; ++i)
       psi[{i, j}] = -3 * d->geometry().face_lateral(j) * d->geometry().face_radius(i);
   EXPECT_NEAR(surface_stress_rms(power, psi), 2 * 5 * 3, 1e-12);
+  // Stiffest at the wall: exp(-8 depth) is continued there without error.
+  CellField eta(d);
+  fill(eta, [&](Cell c) { return 5 * std::exp(-8 * d->geometry().depth(c.i)); });
+  power.set_viscosity(eta);
+  EXPECT_NEAR(surface_stress_rms(power, psi), 2 * 5 * 3, 1e-12);
 }
 
 /// T = T0 + cos(k x) rising where it is hot (or sinking, for a flow of the other sign).
