@@ -22,6 +22,14 @@ std::vector<SummaryEntry> state_entries(const HistoryRow& r) {
        "over the volume, above the surface temperature"},
       {"velocity_rms", r.velocity_rms, "kappa/d", "over the volume"},
       {"velocity_rms_outer", r.velocity_rms_outer, "kappa/d", "along the outer wall"},
+      {"mobility", r.mobility, "", "velocity_rms_outer / velocity_rms"},
+      {"lid_thickness_velocity", r.lid_thickness_velocity, "d",
+       "by the tangent to the velocity profile at its inflection point"},
+      {"lid_thickness_isotherm", r.lid_thickness_isotherm, "d",
+       "to temperature_internal - 2.2 rheological_temperature"},
+      {"temperature_internal", r.temperature_internal, "DeltaT",
+       "between the thermal boundary layers"},
+      {"rayleigh_internal", r.rayleigh_internal, "", "with the mean viscosity there"},
       {"work_mismatch", r.work_mismatch, "", "(dissipation - buoyancy work) / work"},
   };
 }

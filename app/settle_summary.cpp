@@ -88,13 +88,13 @@ std::string settle_for_people(const Case& c, const SteadyState& s, std::size_t s
 }
 
 std::string bars_for_people(const std::vector<QuantityBar>& bars, const std::vector<Grid>& grids) {
-  std::string text = fmt::format("  {:<20}", "error bars");
+  std::string text = fmt::format("  {:<26}", "error bars");
   auto out = std::back_inserter(text);
   for (const Grid& g : grids)
     fmt::format_to(out, " {:>13}", fmt::format("{} x {}", g.radial, g.lateral));
   fmt::format_to(out, " {:>13} {:>9} {:>6}  {}\n", "extrapolated", "+-", "order", "convergence");
   for (const QuantityBar& b : bars) {
-    fmt::format_to(out, "    {:<18}", b.name);
+    fmt::format_to(out, "    {:<24}", b.name);
     for (const double v : b.values) fmt::format_to(out, " {:>13.8g}", v);
     const std::string order = std::isnan(b.bar.order) ? "-" : fmt::format("{:.2f}", b.bar.order);
     fmt::format_to(out, " {:>13.8g} {:>9.2g} {:>6}  {}\n", b.bar.value, b.bar.half_width, order,

@@ -12,15 +12,16 @@ namespace lidwright {
 namespace {
 
 /// Columns of the history that mean nothing, or something else, in a steady state.
-constexpr std::array<std::string_view, 9> of_marches{"step",
-                                                     "time",
-                                                     "time_step",
-                                                     "flow_error",
-                                                     "heat_budget_residual",
-                                                     "temperature_change_rate",
-                                                     "applications",
-                                                     "factorisations",
-                                                     "wall_time"};
+constexpr std::array<std::string_view, 10> of_marches{"step",
+                                                      "time",
+                                                      "time_step",
+                                                      "flow_error",
+                                                      "heat_budget_residual",
+                                                      "temperature_change_rate",
+                                                      "flow_iterations",
+                                                      "applications",
+                                                      "factorisations",
+                                                      "wall_time"};
 
 bool of_a_state(const Column& c) {
   return std::find(of_marches.begin(), of_marches.end(), c.name) == of_marches.end();

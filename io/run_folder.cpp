@@ -53,8 +53,8 @@ bool own_name(std::string_view name) {
   };
   return std::find(plain.begin(), plain.end(), name) != plain.end() || piece_name(name) ||
          of_snapshot("fields/fields_", ".pvts") || of_snapshot("walls/walls_", ".csv") ||
-         of_snapshot("walls/walls_", ".vtp") || of_snapshot("profiles/profiles_", ".csv") ||
-         of_snapshot("pictures/picture_", ".png") ||
+         of_snapshot("walls/walls_", ".vtp") || of_snapshot("walls/topography_", ".csv") ||
+         of_snapshot("profiles/profiles_", ".csv") || of_snapshot("pictures/picture_", ".png") ||
          numbered(name, "checkpoints/step_", checkpoint_digits, ".h5");
 }
 

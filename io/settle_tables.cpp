@@ -14,11 +14,28 @@ namespace lidwright {
 namespace {
 
 /// Columns of the history that get an error bar.
-constexpr std::array<std::string_view, 13> with_bars{
-    "nusselt_outer",      "nusselt_inner",      "heat_flow_outer",   "heat_flow_inner",
-    "temperature_mean",   "temperature_inner",  "temperature_outer", "velocity_rms",
-    "velocity_rms_outer", "velocity_rms_inner", "dissipation",       "viscous_heating",
-    "adiabatic_cooling"};
+constexpr std::array<std::string_view, 22> with_bars{"nusselt_outer",
+                                                     "nusselt_inner",
+                                                     "heat_flow_outer",
+                                                     "heat_flow_inner",
+                                                     "temperature_mean",
+                                                     "temperature_inner",
+                                                     "temperature_outer",
+                                                     "velocity_rms",
+                                                     "velocity_rms_outer",
+                                                     "velocity_rms_inner",
+                                                     "dissipation",
+                                                     "viscous_heating",
+                                                     "adiabatic_cooling",
+                                                     "mobility",
+                                                     "lid_thickness_velocity",
+                                                     "lid_thickness_isotherm",
+                                                     "lid_thickness_advection",
+                                                     "lid_thickness_conduction",
+                                                     "boundary_layer_inner",
+                                                     "temperature_internal",
+                                                     "rayleigh_internal",
+                                                     "topography_rms_outer"};
 
 /// By more than round-off.
 bool differ(const std::vector<double>& values) {

@@ -26,12 +26,13 @@ std::string piece_name(std::size_t n, int rank) {
 std::string walls_name(std::size_t n, std::string_view kind) {
   return fmt::format("walls/walls_{:04}.{}", n, kind);
 }
+std::string topography_name(std::size_t n) { return fmt::format("walls/topography_{:04}.csv", n); }
 std::string profiles_name(std::size_t n) { return fmt::format("profiles/profiles_{:04}.csv", n); }
 
 /// The number of the snapshot that one of the run's files belongs to, nothing for other files.
 std::optional<long> snapshot_of(std::string_view file) {
-  for (const std::string_view stem :
-       {"fields/fields_", "walls/walls_", "profiles/profiles_", "pictures/picture_"}) {
+  for (const std::string_view stem : {"fields/fields_", "walls/walls_", "walls/topography_",
+                                      "profiles/profiles_", "pictures/picture_"}) {
     const std::size_t end = file.find_first_of("_.", std::min(stem.size(), file.size()));
     if (const auto number = numbered(file.substr(0, end), stem, snapshot_digits, "")) return number;
   }
@@ -131,6 +132,17 @@ std::string walls_table(const WallTrace& inner, const WallTrace& outer, const st
   return table(title_of("walls", state), columns, numbers);
 }
 
+std::string topography_table(const TopographySpectrum& spectrum, const std::string& state) {
+  static constexpr std::array<Column, 2> columns{{
+      {"wave_number", "1/d or 1/rad",
+       "of cos and sin of the lateral coordinate (walls' tables); between reflecting sides of cos "
+       "alone"},
+      {"amplitude", "eta kappa/d^2", "of dynamic topography, -sigma_rr at the outer wall"},
+  }};
+  const std::array<std::vector<double>, 2> numbers{spectrum.wave_number, spectrum.amplitude};
+  return table(title_of("dynamic topography", state), columns, numbers);
+}
+
 SnapshotWriter::SnapshotWriter(MPI_Comm comm, RunPaths paths, std::optional<double> resumed_time)
     : comm_(comm), paths_(std::move(paths)) {
   on_first_rank<OutputError>(comm_, [&] {
@@ -192,6 +204,10 @@ void SnapshotWriter::write(const Snapshot& s, const std::string& state) {
     write_atomically(folder + fields_name(n), structured_index(s, extents, pieces));
     write_atomically(folder + walls_name(n, "csv"), walls_table(s.inner, s.outer, state));
     write_atomically(folder + walls_name(n, "vtp"), wall_lines(s, d.geometry()));
+    if (!s.outer.normal_stress.empty())
+      write_atomically(
+          folder + topography_name(n),
+          topography_table(topography_spectrum(d.geometry(), s.outer.normal_stress), state));
     write_atomically(folder + profiles_name(n), profiles_table(s.profiles, state));
     write_collections(times);
   });

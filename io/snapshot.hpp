@@ -8,8 +8,10 @@
 
 #include "io/run_folder.hpp"
 #include "solver/snapshot.hpp"
+#include "solver/topography.hpp"
 
-/// Snapshots for general viewers: fields as VTK, the walls as VTK and CSV, radial profiles as CSV;
+/// Snapshots for general viewers: fields as VTK, the walls as VTK and CSV, radial profiles and the
+/// spectrum of topography as CSV;
 /// each listed by time in fields.pvd and walls.pvd. Names, arrays and units: docs/run_folder.md.
 namespace lidwright {
 
@@ -55,5 +57,7 @@ class SnapshotWriter {
 /// `state`: "at time 0.25 d^2/kappa, step 9".
 std::string profiles_table(const RadialProfiles&, const std::string& state);
 std::string walls_table(const WallTrace& inner, const WallTrace& outer, const std::string& state);
+/// The spectrum of dynamic topography as the CSV text of its file.
+std::string topography_table(const TopographySpectrum&, const std::string& state);
 
 }  // namespace lidwright

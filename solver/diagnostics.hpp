@@ -34,9 +34,28 @@ struct HistoryRow {
   double heat_budget_residual =
       0;  ///< of the last step: (change of content - flows - all that heats) / largest of them
   double temperature_change_rate = 0;  ///< volume rms of dT/dt over the last step
-  long applications = 0;               ///< of the factor, since the start
-  long factorisations = 0;             ///< since the start
-  double wall_time = 0;                ///< s, since the start, over all sessions
+  // Of the lid and what is below it, docs/diagnostics.md; nan where not defined.
+  double mobility = 0;                  ///< velocity_rms_outer / velocity_rms
+  double plateness = 0;                 ///< 1 for rigid plates, about 0 for isoviscous flow
+  double velocity_rms_lid_base = 0;     ///< at the depth lid_thickness_isotherm
+  double lid_thickness_velocity = 0;    ///< by the tangent to the velocity profile, d
+  double lid_thickness_isotherm = 0;    ///< by the rheological temperature scale, d
+  double lid_thickness_advection = 0;   ///< where advection carries a tenth of the heat, d
+  double lid_thickness_conduction = 0;  ///< the outer thermal boundary layer's, d
+  double boundary_layer_inner = 0;      ///< the inner thermal boundary layer's, d
+  double temperature_internal = 0;      ///< between the thermal boundary layers
+  double rayleigh_internal = 0;         ///< with the mean viscosity there
+  double rheological_temperature = 0;   ///< |eta/(d eta/dT)| there
+  double frank_kamenetskii = 0;         ///< drop from wall to wall over rheological_temperature
+  double stress_rms_outer = 0;          ///< second invariant at the outer wall, eta kappa/d^2
+  double topography_rms_outer = 0;      ///< of -sigma_rr at the outer wall, eta kappa/d^2
+  long plumes = 0;                      ///< hot currents upwards
+  long downwellings = 0;                ///< cold currents downwards
+  double yielding_share = 0;            ///< of the volume, 0 to 1
+  long flow_iterations = 0;             ///< Newton iterations of the last flow; 0: linear rheology
+  long applications = 0;                ///< of the factor, since the start
+  long factorisations = 0;              ///< since the start
+  double wall_time = 0;                 ///< s, since the start, over all sessions
 };
 
 /// Means over spherical (cylindrical, horizontal) surfaces; cells, from the inner wall outwards.

@@ -70,7 +70,7 @@ SteadyState share(const Model& model, HeatFlux flux, const Found& found, MPI_Com
   scatter_from_first(found.temperature.values, temperature);
   scatter_from_first(found.psi, psi);
   power.set_viscosity(viscosity_of(model.viscosity, temperature));
-  const StateView view{power, heat, temperature, psi, model.rayleigh};
+  const StateView view{power, heat, temperature, psi, model.rayleigh, model.viscosity};
   SteadyState s{found.grid,    found.converged,      found.residual, found.remark,
                 measure(view), snapshot(view, true), found.steps};
   s.row.heat_budget_residual = net_heat(view, s.row);

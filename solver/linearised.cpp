@@ -345,7 +345,8 @@ CellField heat_gain(const Model& model, const Power& power, const HeatOperator& 
   heat.add_adiabatic_work(temperature, psi, gain);
   heat.add_sources(gain);
   (void)heat.add_conduction(temperature, gain);
-  const CellField viscous = viscous_heating({power, heat, temperature, psi, model.rayleigh});
+  const CellField viscous =
+      viscous_heating({power, heat, temperature, psi, model.rayleigh, model.viscosity});
   for (std::size_t k = 0; k < viscous.owned_size(); ++k)
     gain.owned_data()[k] += viscous.owned_data()[k];
   return gain;

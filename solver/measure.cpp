@@ -6,37 +6,12 @@
 
 #include "mesh/gather.hpp"
 #include "mesh/operators.hpp"
+#include "solver/lid_row.hpp"
 #include "solver/pressure.hpp"
+#include "solver/wall_motion.hpp"
 
 namespace lidwright {
 namespace {
-
-/// Velocity along a wall at a lateral face: v/h continued to the wall as an even parabola where it
-/// slips freely (its radial derivative is 0 there), 0 where it grips.
-double wall_velocity(const Power& power, const CornerField& psi, int face, int j) {
-  const Geometry& g = power.geometry();
-  const bool at_inner = face == 0;
-  if ((at_inner ? power.inner_slip() : power.outer_slip()) == Slip::None) return 0;
-  const int near = at_inner ? 0 : face - 1, far = at_inner ? 1 : face - 2;
-  const double near2 = std::pow(g.cell_radius(near) - g.face_radius(face), 2);
-  const double far2 = std::pow(g.cell_radius(far) - g.face_radius(face), 2);
-  const double near_rate = velocity(g, psi, LateralFace{near, j}) / g.stretch(near);
-  const double far_rate = velocity(g, psi, LateralFace{far, j}) / g.stretch(far);
-  return g.face_stretch(face) * (far2 * near_rate - near2 * far_rate) / (far2 - near2);
-}
-
-/// Mean square over a wall: lateral faces weighted by half their neighbours' areas.
-double wall_velocity_rms(const Power& power, const CornerField& psi, int face) {
-  const Geometry& g = power.geometry();
-  const Range columns = power.decomposition().owned(At::Cell);
-  double sum = 0;
-  for (int j = columns.begin; j < columns.end; ++j) {
-    const double left = wall_velocity(power, psi, face, j),
-                 right = wall_velocity(power, psi, face, j + 1);
-    sum += g.area(RadialFace{face, j}) * (left * left + right * right) / 2;
-  }
-  return std::sqrt(power.decomposition().sum(sum) / g.wall_area(face));
-}
 
 /// Mean square velocity over the volume: each component squared on its own faces and staggered
 /// volumes.
@@ -108,24 +83,40 @@ void set_temperatures(const CellField& t, HistoryRow& row) {
   row.temperature_max = t.decomposition().max(most);
 }
 
-/// Adds one column's contributions to the surface sums of profiles: columns of `sums` are the
-/// quantities.
-void add_column(const StateView& s, int j, std::vector<double>& sums) {
+/// Surface sums of profiles: of cells, then of radial faces; velocities and viscosities by their
+/// share of the surface, heat as it flows.
+struct SurfaceSums {
+  explicit SurfaceSums(int cells)
+      : rows(static_cast<std::size_t>(cells)), numbers(6 * rows + 3, 0.0) {}
+  double* temperature() { return numbers.data(); }
+  double* lateral_square() { return numbers.data() + rows; }
+  double* log_viscosity() { return numbers.data() + 2 * rows; }
+  double* radial_square() { return numbers.data() + 3 * rows; }
+  double* conducted() { return radial_square() + rows + 1; }
+  double* advected() { return conducted() + rows + 1; }
+
+  std::size_t rows;
+  std::vector<double> numbers;
+};
+
+void add_column(const StateView& s, int j, SurfaceSums& sums) {
   const Geometry& g = s.power.geometry();
-  const CellField& t = s.temperature;
-  const auto rows = static_cast<std::size_t>(g.radial_cells());
+  const double share = g.lateral_measure(j);
+  const double* t = s.temperature.column(j);
+  const double* eta = s.power.viscosity().column(j);
   for (int i = 0; i < g.radial_cells(); ++i) {
-    const Cell c{i, j};
-    const double share = g.volume(c);
-    const OnFaces w = face_velocities(g, s.psi, c);
-    const auto n = static_cast<std::size_t>(i);
-    sums[n] += share * t[c];
-    sums[rows + n] += share * (w.inner * w.inner + w.outer * w.outer) / 2;
-    sums[2 * rows + n] += share * (w.left * w.left + w.right * w.right) / 2;
-    sums[3 * rows + n] += share * std::log(s.power.viscosity()[c]);
-    sums[4 * rows + n] += (s.heat.conducted(t, inner(c)) + s.heat.conducted(t, outer(c))) / 2;
-    sums[5 * rows + n] +=
-        (s.heat.advected(t, s.psi, inner(c)) + s.heat.advected(t, s.psi, outer(c))) / 2;
+    const double left_speed = velocity(g, s.psi, LateralFace{i, j}),
+                 right_speed = velocity(g, s.psi, LateralFace{i, j + 1});
+    sums.temperature()[i] += share * t[i];
+    sums.lateral_square()[i] += share * (left_speed * left_speed + right_speed * right_speed) / 2;
+    sums.log_viscosity()[i] += share * std::log(eta[i]);
+  }
+  for (int i = 0; i <= g.radial_cells(); ++i) {
+    const RadialFace f{i, j};
+    const double speed = velocity(g, s.psi, f);
+    sums.radial_square()[i] += share * speed * speed;
+    sums.conducted()[i] += s.heat.conducted(s.temperature, f);
+    sums.advected()[i] += s.heat.advected(s.temperature, s.psi, f);
   }
 }
 
@@ -222,28 +213,28 @@ HistoryRow measure(const StateView& s) {
   if (s.rayleigh > 0)
     row.viscous_heating = s.heat.mantle().dissipation_number / s.rayleigh * row.dissipation;
   row.adiabatic_cooling = adiabatic_cooling(s);
+  set_lid(s, row);
   return row;
 }
 
 RadialProfiles profiles(const StateView& s) {
   const Geometry& g = s.power.geometry();
-  const auto rows = static_cast<std::size_t>(g.radial_cells());
-  std::vector<double> sums(6 * rows, 0.0);
+  SurfaceSums sums(g.radial_cells());
   const Range columns = s.temperature.owned();
   for (int j = columns.begin; j < columns.end; ++j) add_column(s, j, sums);
-  s.power.decomposition().sum_in_place(sums);
+  s.power.decomposition().sum_in_place(sums.numbers);
+  double whole = 0;
+  for (int j = 0; j < g.lateral_cells(); ++j) whole += g.lateral_measure(j);
+  const auto at_middle = [](const double* faces, int i) { return (faces[i] + faces[i + 1]) / 2; };
   RadialProfiles p;
-  for (std::size_t i = 0; i < rows; ++i) {
-    const int row = static_cast<int>(i);
-    double volume = 0;
-    for (int j = 0; j < g.lateral_cells(); ++j) volume += g.volume({row, j});
-    p.radius.push_back(g.cell_radius(row));
-    p.temperature.push_back(sums[i] / volume);
-    p.velocity_radial_rms.push_back(std::sqrt(sums[rows + i] / volume));
-    p.velocity_lateral_rms.push_back(std::sqrt(sums[2 * rows + i] / volume));
-    p.viscosity.push_back(std::exp(sums[3 * rows + i] / volume));
-    p.heat_conducted.push_back(sums[4 * rows + i]);
-    p.heat_advected.push_back(sums[5 * rows + i]);
+  for (int i = 0; i < g.radial_cells(); ++i) {
+    p.radius.push_back(g.cell_radius(i));
+    p.temperature.push_back(sums.temperature()[i] / whole);
+    p.velocity_radial_rms.push_back(std::sqrt(at_middle(sums.radial_square(), i) / whole));
+    p.velocity_lateral_rms.push_back(std::sqrt(sums.lateral_square()[i] / whole));
+    p.viscosity.push_back(std::exp(sums.log_viscosity()[i] / whole));
+    p.heat_conducted.push_back(at_middle(sums.conducted(), i));
+    p.heat_advected.push_back(at_middle(sums.advected(), i));
   }
   p.temperature_adiabatic = adiabat(g, s.heat.mantle(), p.temperature);
   return p;

@@ -1,5 +1,6 @@
 #pragma once
 
+#include "physics/rheology.hpp"
 #include "solver/heat.hpp"
 #include "solver/power.hpp"
 #include "solver/snapshot.hpp"
@@ -14,6 +15,7 @@ struct StateView {
   const CellField& temperature;
   const CornerField& psi;
   double rayleigh;
+  const ViscosityLaw& law;
 };
 
 /// Buoyancy of a unit mass, Ra alpha g T, at radial faces, ghosts included; next to a wall, T is

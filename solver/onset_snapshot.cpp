@@ -63,7 +63,7 @@ Snapshot onset_snapshot(const Model& m, const NeutralShape& shape, MPI_Comm comm
   const HeatOperator at_rest(d, m.walls, m.heat, HeatFlux::Central, m.reference);
   power.set_viscosity(viscosity_of(m.viscosity, temperature_at_rest(at_rest)));
   const HeatOperator heat(d, homogeneous(m.walls), HeatSources{}, HeatFlux::Central, m.reference);
-  Snapshot s = snapshot({power, heat, t, psi, shape.rayleigh}, false);
+  Snapshot s = snapshot({power, heat, t, psi, shape.rayleigh, m.viscosity}, false);
   s.step = shape.number;
   return s;
 }

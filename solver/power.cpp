@@ -334,20 +334,22 @@ CellField dissipation_of_cells(const Power& power, const CornerField& psi) {
   return work;
 }
 
-CellField strain_rate(const Power& power, const CornerField& psi) {
+double strain_rate(const Power& power, const CornerField& psi, Cell c) {
   const Geometry& g = power.geometry();
-  CellField rate(power.decomposition_pointer());
-  const auto squared_shear = [&](Corner k) {
-    return power.has_shear(k) ? std::pow(shear(g, psi, power.shear_row(k)), 2) : 0.0;
+  const auto squared_shear = [&](int i, int j) {
+    return power.has_shear({i, j}) ? std::pow(shear(g, psi, power.shear_row({i, j})), 2) : 0.0;
   };
+  const Normal e = deviatoric_strain(g, face_velocities(g, psi, c), c);
+  const double shear2 = (squared_shear(c.i, c.j) + squared_shear(c.i + 1, c.j) +
+                         squared_shear(c.i, c.j + 1) + squared_shear(c.i + 1, c.j + 1)) /
+                        4;
+  return std::sqrt((e.rr * e.rr + e.tt * e.tt + e.pp * e.pp + 2 * shear2) / 2);
+}
+
+CellField strain_rate(const Power& power, const CornerField& psi) {
+  CellField rate(power.decomposition_pointer());
   for (int j = rate.owned().begin; j < rate.owned().end; ++j)
-    for (int i = 0; i < rate.rows(); ++i) {
-      const Normal e = deviatoric_strain(g, face_velocities(g, psi, Cell{i, j}), {i, j});
-      const double shear2 = (squared_shear({i, j}) + squared_shear({i + 1, j}) +
-                             squared_shear({i, j + 1}) + squared_shear({i + 1, j + 1})) /
-                            4;
-      rate[{i, j}] = std::sqrt((e.rr * e.rr + e.tt * e.tt + e.pp * e.pp + 2 * shear2) / 2);
-    }
+    for (int i = 0; i < rate.rows(); ++i) rate[{i, j}] = strain_rate(power, psi, {i, j});
   return rate;
 }
 

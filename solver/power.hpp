@@ -124,7 +124,9 @@ double dissipation(const Power&, const CornerField& psi);
 /// Its parts: integral of tau : e over each owned cell. What a corner dissipates goes to its
 /// quarter cells in inverse proportion to their viscosities, as they bear one stress.
 CellField dissipation_of_cells(const Power&, const CornerField& psi);
-/// Second invariant sqrt(e : e / 2) at owned cells, shear averaged over the cell's corners.
+/// Second invariant sqrt(e : e / 2), shear averaged over the cell's corners: of an owned cell, and
+/// of all of them.
+double strain_rate(const Power&, const CornerField& psi, Cell);
 CellField strain_rate(const Power&, const CornerField& psi);
 
 }  // namespace lidwright

@@ -40,7 +40,9 @@ class SteadyEquations {
   const Model& model() const { return model_; }
   const Unknowns& unknowns() const { return unknowns_; }
   const HeatOperator& heat() const { return heat_; }
-  StateView view() const { return {flow_.power(), heat_, temperature_, psi_, model_.rayleigh}; }
+  StateView view() const {
+    return {flow_.power(), heat_, temperature_, psi_, model_.rayleigh, model_.viscosity};
+  }
   std::shared_ptr<const Decomposition> decomposition() const { return decomposition_; }
   double flow_error() const { return flow_.last_error(); }
 

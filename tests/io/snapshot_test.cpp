@@ -172,6 +172,8 @@ TEST(ParallelSnapshot, ResumingDropsLaterOnes) {
   EXPECT_FALSE(fs::exists(run.paths().fields() + "/fields_0002.pvts"));
   EXPECT_FALSE(fs::exists(run.paths().fields() + "/fields_0003_piece_0.vts"));
   EXPECT_FALSE(fs::exists(run.paths().walls() + "/walls_0002.csv"));
+  EXPECT_FALSE(fs::exists(run.paths().walls() + "/topography_0002.csv"));
+  EXPECT_TRUE(fs::exists(run.paths().walls() + "/topography_0001.csv"));
   EXPECT_FALSE(fs::exists(run.paths().profiles() + "/profiles_0003.csv"));
   second.write(example(d, 0.1 / 3));  // the same time again replaces
   second.write(example(d, 0.25));
@@ -206,6 +208,12 @@ TEST(SnapshotTables, WallsWithAndWithoutStress) {
   bare.normal_stress.clear();
   EXPECT_THAT(walls_table(bare, bare, "at time 0.25 d^2/kappa, step 9"),
               AllOf(HasSubstr("\n1.5,2,4,2,4\n"), testing::Not(HasSubstr("stress"))));
+}
+
+TEST(SnapshotTables, TopographyByWaveNumber) {
+  EXPECT_THAT(topography_table({{2, 4}, {0.5, 0.25}}, "at time 0.25 d^2/kappa, step 9"),
+              AllOf(HasSubstr("step 9"), HasSubstr("# amplitude [eta kappa/d^2]"),
+                    HasSubstr("\nwave_number,amplitude\n2,0.5\n4,0.25\n")));
 }
 
 TEST(SnapshotTables, CollectionsReadBack) {

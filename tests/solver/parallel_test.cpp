@@ -93,6 +93,7 @@ TEST_P(ParallelMarch, GivesTheSameOnAnyNumberOfRanks) {
   EXPECT_LT(difference(p, gather_to_first(a.pressure)), 100 * agreement);
   EXPECT_LT(difference(s.outer.heat_flux, a.outer.heat_flux), agreement);
   EXPECT_LT(difference(s.profiles.temperature, a.profiles.temperature), agreement);
+  EXPECT_LT(difference(s.profiles.heat_advected, a.profiles.heat_advected), agreement);
   EXPECT_LT(difference(s.profiles.viscosity, a.profiles.viscosity), agreement);
 }
 
