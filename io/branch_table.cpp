@@ -12,13 +12,14 @@ namespace lidwright {
 namespace {
 
 /// Columns of the history that mean nothing, or something else, in a steady state.
-constexpr std::array<std::string_view, 10> of_marches{"step",
+constexpr std::array<std::string_view, 11> of_marches{"step",
                                                       "time",
                                                       "time_step",
                                                       "flow_error",
                                                       "heat_budget_residual",
                                                       "temperature_change_rate",
                                                       "flow_iterations",
+                                                      "fixed_point_steps",
                                                       "applications",
                                                       "factorisations",
                                                       "wall_time"};

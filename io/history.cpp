@@ -18,7 +18,7 @@ namespace {
 
 constexpr std::string_view title = "lidwright history";
 
-constexpr std::array<Column, 45> columns{{
+constexpr std::array<Column, 46> columns{{
     {"step", "1", "number of the time step; 0 is the start"},
     {"time", "d^2/kappa", "time at the end of the step"},
     {"time_step", "d^2/kappa", "length of the step"},
@@ -82,6 +82,8 @@ constexpr std::array<Column, 45> columns{{
     {"yielding_share", "1", "share of the volume that yields"},
     {"flow_iterations", "1",
      "Newton iterations of the flow at this step; 0: viscosity does not depend on it"},
+    {"fixed_point_steps", "1",
+     "steps of fixed-point iteration that stood in for Newton's, since the start"},
     {"applications", "1", "applications of the factor since the start"},
     {"factorisations", "1", "factorisations since the start"},
     {"wall_time", "s",
@@ -153,6 +155,7 @@ std::vector<double> history_numbers(const HistoryRow& r) {
           static_cast<double>(r.downwellings),
           r.yielding_share,
           static_cast<double>(r.flow_iterations),
+          static_cast<double>(r.fixed_point_steps),
           static_cast<double>(r.applications),
           static_cast<double>(r.factorisations),
           r.wall_time};

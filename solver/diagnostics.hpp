@@ -53,6 +53,7 @@ struct HistoryRow {
   long downwellings = 0;                ///< cold currents downwards
   double yielding_share = 0;            ///< of the volume, 0 to 1
   long flow_iterations = 0;             ///< Newton iterations of the last flow; 0: linear rheology
+  long fixed_point_steps = 0;           ///< that stood in for Newton's, since the start
   long applications = 0;                ///< of the factor, since the start
   long factorisations = 0;              ///< since the start
   double wall_time = 0;                 ///< s, since the start, over all sessions

@@ -37,6 +37,7 @@ FlowReport MantleFlow::solve(const CellField& temperature, const RadialFaceField
                              CornerField& psi) {
   last_ = linear_ ? linear_->solve(viscosity_of(creep_, temperature), b, psi)
                   : nonlinear_->solve(laws(temperature), b, psi);
+  fixed_point_steps_ += last_.fixed_point_steps;
   return last_;
 }
 
@@ -54,7 +55,7 @@ long MantleFlow::factorisations() const {
 void MantleFlow::save(Archive& archive) const {
   linear_ ? linear_->save(archive) : nonlinear_->save(archive);
   archive.numbers["flow.newton_steps"] = last_.newton_steps;
-  archive.numbers["flow.fixed_point_steps"] = last_.fixed_point_steps;
+  archive.numbers["flow.fixed_point_steps"] = static_cast<double>(fixed_point_steps_);
   archive.numbers["flow.yielding_share"] = last_.yielding_share;
   archive.numbers["flow.error"] = last_.error;
 }
@@ -62,7 +63,7 @@ void MantleFlow::save(Archive& archive) const {
 void MantleFlow::restore(const Archive& archive) {
   linear_ ? linear_->restore(archive) : nonlinear_->restore(archive);
   last_.newton_steps = static_cast<int>(archive.numbers.at("flow.newton_steps"));
-  last_.fixed_point_steps = static_cast<int>(archive.numbers.at("flow.fixed_point_steps"));
+  fixed_point_steps_ = static_cast<long>(archive.numbers.at("flow.fixed_point_steps"));
   last_.yielding_share = archive.numbers.at("flow.yielding_share");
   last_.error = archive.numbers.at("flow.error");
 }

@@ -18,8 +18,9 @@ class MantleFlow {
   const Power& power() const;
   const Factor& factor() const;
   const FlowReport& last_report() const { return last_; }
-  long applications() const;    ///< of the factor, so far
-  long factorisations() const;  ///< so far
+  long applications() const;                                     ///< of the factor, so far
+  long factorisations() const;                                   ///< so far
+  long fixed_point_steps() const { return fixed_point_steps_; }  ///< so far
 
   /// Everything the next solve depends on, so that a restart goes on bit for bit.
   void save(Archive&) const;
@@ -36,6 +37,7 @@ class MantleFlow {
   std::unique_ptr<FlowSolver> linear_;
   std::unique_ptr<NonlinearFlow> nonlinear_;
   FlowReport last_;
+  long fixed_point_steps_ = 0;
 };
 
 }  // namespace lidwright

@@ -164,6 +164,9 @@ HistoryRow March::row() const {
   row.time = time_;
   row.time_step = last_step_;
   row.flow_error = flow_.last_report().error;
+  row.flow_iterations = flow_.last_report().newton_steps;
+  row.fixed_point_steps = flow_.fixed_point_steps();
+  row.yielding_share = flow_.last_report().yielding_share;
   row.heat_budget_residual = budget_residual_;
   row.temperature_change_rate = steps_ > 0 ? change_rate_ : 0;
   row.applications = flow_.applications();

@@ -134,6 +134,13 @@ bool NonlinearFlow::step(Vec f, CornerField& psi) {
 
 FlowReport NonlinearFlow::solve(std::vector<LocalFlowLaw> laws, const RadialFaceField& b,
                                 CornerField& psi) {
+  CornerField force(power_.decomposition_pointer());
+  power_.add_buoyancy(b, force);
+  return solve(std::move(laws), force, psi);
+}
+
+FlowReport NonlinearFlow::solve(std::vector<LocalFlowLaw> laws, const CornerField& force,
+                                CornerField& psi) {
   last_ = {};
   functional_.set_laws(std::move(laws));
   functional_.use_secant(false);
@@ -141,8 +148,7 @@ FlowReport NonlinearFlow::solve(std::vector<LocalFlowLaw> laws, const RadialFace
   functional_.begin(psi, shear_shared ? power_.viscosity_field() : ViscosityField{});
   if (!factor_.ready() || age_.stale()) refactor();
   const Handle<Vec, VecDestroy> f = unknown_vector(power_.decomposition());
-  std::fill(work_force_.values().begin(), work_force_.values().end(), 0.0);
-  power_.add_buoyancy(b, work_force_);
+  work_force_ = force;
   power_.to_unknowns(work_force_, f);
   step_among_former_flows(f, psi);
   const long before = applications();

@@ -20,6 +20,21 @@ class NonlinearFlow {
   /// Collective; same report on all ranks.
   FlowReport solve(std::vector<LocalFlowLaw>, const RadialFaceField& b, CornerField& psi);
 
+  /// The same for any force on psi at owned corners (rank's parts not yet summed up on walls).
+  FlowReport solve(std::vector<LocalFlowLaw>, const CornerField& force, CornerField& psi);
+
+  /// What a Newton step left behind.
+  struct Step {
+    int number;         ///< from 1
+    double error;       ///< before it, FlowReport::error
+    int iterations;     ///< of conjugate gradients
+    double length;      ///< of the step; 1: Newton's own
+    double force_work;  ///< f . psi after it
+    const NonlinearPower& functional;
+  };
+  /// Calls `on_step` after every step.
+  void watch(std::function<void(const Step&)> on_step) { on_step_ = std::move(on_step); }
+
   /// With the secant viscosity of the last flow.
   const Power& power() const { return power_; }
   const Factor& factor() const { return factor_; }
@@ -49,9 +64,9 @@ class NonlinearFlow {
   FormerFlows former_;
   FactorAge age_;
   bool factor_fresh_ = false;
-  double former_norm_ = 0;
   long factorisations_ = 0;
   FlowReport last_;
+  std::function<void(const Step&)> on_step_;
 };
 
 }  // namespace lidwright

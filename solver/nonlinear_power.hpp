@@ -53,6 +53,8 @@ class NonlinearPower {
 
   /// Of the place last gone to (secant), with the shares of shear. Collective.
   ViscosityField viscosity() const;
+  /// J without f of the place last gone to, by quadrature of the law: slow, for checks. Collective.
+  double potential() const;
   /// Share of the volume. Collective.
   double yielding_share() const;
 
@@ -101,6 +103,8 @@ class NonlinearPower {
   void strains_of(const CornerField& psi, Strains&) const;
   Vector strains_at(const Strains&, Corner, const Corner4&) const;
   void respond(Corner4&, const Vector& s) const;
+  template <class Of>
+  double owned_sum(Of&&) const;
   template <class StressAt>
   void push(StressAt&&, CornerField& force) const;
 

@@ -31,7 +31,7 @@ inline void march_to_steady(March& march, double rate, long most_steps) {
 /// Numbers of a row that do not depend on the way to the result: all but residuals of it and what
 /// the solver spent. What is not defined (nan) is the largest number, so that it equals itself.
 inline std::vector<double> physics_of(HistoryRow r) {
-  r.step = r.applications = r.factorisations = r.flow_iterations = 0;
+  r.step = r.applications = r.factorisations = r.flow_iterations = r.fixed_point_steps = 0;
   r.work_mismatch = r.flow_error = r.heat_budget_residual = r.wall_time = 0;
   std::vector<double> numbers = history_numbers(r);
   for (double& x : numbers)
