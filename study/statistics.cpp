@@ -202,6 +202,14 @@ double effective_number(const Series& part, double standard_error, double mean) 
   return variance / (standard_error * standard_error);
 }
 
+/// Against noise as it is beside the line, which would itself pass for correlation.
+double drift_chance(const Settled& s) {
+  if (std::isfinite(s.period)) return slope_chance(s.x, s.ordinates);
+  const double correlation = correlation_time(without_line(s.x));
+  const double times = static_cast<double>(s.x.size()) / std::max(correlation, 0.5);
+  return slope_chance(s.x, std::max<std::size_t>(ordinates_for(times), 1), correlation);
+}
+
 void judge(RecordSummary& r, const Settled& settled, const StatisticsSettings& settings) {
   if (settled.slow) {
     r.finding = Finding::SlowPeriod;
@@ -218,7 +226,7 @@ void judge(RecordSummary& r, const Settled& settled, const StatisticsSettings& s
   const double false_drift =
       settled.start_up ? settings.false_drift_after_start_up : settings.false_drift;
   if (std::abs(change) > negligible_change(r.mean, settings) &&
-      slope_chance(settled.x, settled.ordinates, settled.correlation_time) < false_drift) {
+      drift_chance(settled) < false_drift) {
     r.finding = Finding::Drifting;
     r.words = fmt::format("drifting: by {:.2g} over the settled part", change);
     return;
