@@ -100,6 +100,16 @@ const std::vector<double>& column_of(const HistoryTable& t, const std::string& n
       "{}: has no column '{}'; march the case with this version of the program", path, name));
 }
 
+std::vector<std::string> names_in(const std::string& list) {
+  std::vector<std::string> names = parts_of(list);
+  for (std::string& name : names) {
+    const std::size_t first = name.find_first_not_of(' ');
+    name = first == std::string::npos ? ""
+                                      : name.substr(first, name.find_last_not_of(' ') - first + 1);
+  }
+  return names;
+}
+
 bool is_bookkeeping(const std::string& column) {
   constexpr std::array<std::string_view, 6> names{"step",         "time",           "time_step",
                                                   "applications", "factorisations", "wall_time"};

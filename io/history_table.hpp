@@ -25,6 +25,9 @@ HistoryTable parse_history(const std::string& text, const std::string& path);
 const std::vector<double>& column_of(const HistoryTable&, const std::string& name,
                                      const std::string& path);
 
+/// The names in a list with commas between, without the blanks about them.
+std::vector<std::string> names_in(const std::string& list);
+
 /// Numbers that say how the computation went, not what the mantle does: step, time, wall time.
 bool is_bookkeeping(const std::string& column);
 
