@@ -38,8 +38,8 @@ void KnownWatch::add(const std::vector<double>& numbers) {
     records_[k].push_back(numbers[place_of(names_[k])]);
 }
 
-void KnownWatch::take_up(const std::string& history_path) {
-  if (!wanted_) return;
+bool KnownWatch::take_up(const std::string& history_path) {
+  if (!wanted_) return false;
   on_first_rank<InputError>(comm_, [&] {
     const HistoryTable t = parse_history(read_whole_file(history_path), history_path);
     time_ = column_of(t, "time", history_path);
@@ -49,14 +49,23 @@ void KnownWatch::take_up(const std::string& history_path) {
     rows_ = static_cast<long>(t.rows());
   });
   MPI_Bcast(&rows_, 1, MPI_LONG, 0, comm_);
-  while (next_ <= rows_) next_ = judgement_after(next_);
+  while (next_ < rows_) next_ = judgement_after(next_);
+  if (next_ > rows_) return false;
+  next_ = judgement_after(rows_);
+  return judge();
 }
 
-bool KnownWatch::known() const {
-  const StatisticsSettings settings = settings_for(time_, velocity_);
-  return std::all_of(records_.begin(), records_.end(), [&](const std::vector<double>& record) {
-    return why_not_known(summarise(time_, record, settings), relative_error_).empty();
-  });
+bool KnownWatch::judge() const {
+  int rank = 0, all = 0;
+  MPI_Comm_rank(comm_, &rank);
+  if (rank == 0) {
+    const StatisticsSettings settings = settings_for(time_, velocity_);
+    all = std::all_of(records_.begin(), records_.end(), [&](const std::vector<double>& record) {
+      return why_not_known(summarise(time_, record, settings), relative_error_).empty();
+    });
+  }
+  MPI_Bcast(&all, 1, MPI_INT, 0, comm_);
+  return all != 0;
 }
 
 bool KnownWatch::known_after(const HistoryRow& row) {
@@ -66,9 +75,7 @@ bool KnownWatch::known_after(const HistoryRow& row) {
   if (rank == 0) add(history_numbers(row));
   if (++rows_ < next_) return false;
   next_ = judgement_after(rows_);
-  int all = rank == 0 && known() ? 1 : 0;
-  MPI_Bcast(&all, 1, MPI_INT, 0, comm_);
-  return all != 0;
+  return judge();
 }
 
 }  // namespace lidwright

@@ -19,15 +19,15 @@ class KnownWatch {
  public:
   KnownWatch(MPI_Comm, const MarchSettings&);
 
-  /// Takes the rows that a resumed run finds in its history.
-  void take_up(const std::string& history_path);
+  /// Takes the rows that a resumed run finds in its history; were the means known after the last?
+  bool take_up(const std::string& history_path);
 
   /// After a row was written: are the means known now? The same on all ranks.
   bool known_after(const HistoryRow&);
 
  private:
   void add(const std::vector<double>& numbers);
-  bool known() const;
+  bool judge() const;
 
   MPI_Comm comm_;
   bool wanted_ = false;

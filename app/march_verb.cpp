@@ -51,7 +51,7 @@ class Run {
                    resumed_ ? std::optional(march_->time()) : std::nullopt),
         known_watch_(session.comm(), case_.march),
         progress_(request.progress, session.first()) {
-    if (resumed_) known_watch_.take_up(folder_.paths().history());
+    if (resumed_) known_ = known_watch_.take_up(folder_.paths().history());
   }
 
   ExitCode go();

@@ -19,14 +19,14 @@ const NamedSummary* find(const RunStatistics& s, const std::string& name) {
 }
 
 std::string what_is_not_known(const RunStatistics& s, const MarchSettings& m) {
-  std::string why;
+  std::vector<Reason> reasons;
   for (const std::string& name : names_in(m.known_quantities)) {
     const NamedSummary* r = find(s, name);
-    const std::string reason =
+    const std::string why =
         r ? why_not_known(r->record, m.known_error) : "not a column of this history";
-    if (!reason.empty()) why += fmt::format("{}{}: {}", why.empty() ? "" : "; ", name, reason);
+    if (!why.empty()) reasons.push_back({name, why});
   }
-  return why;
+  return joined(reasons);
 }
 
 std::string mean_text(const RecordSummary& r) {
@@ -81,8 +81,8 @@ std::vector<SummaryEntry> statistics_entries(const RunStatistics& s, const March
     if (!r || !r->record.enough()) continue;
     const std::string unit = r->unit == "1" ? "" : r->unit;
     entries.push_back(
-        {fmt::format("{}_mean", name), r->record.mean, unit, "over the time of the settled part"});
-    entries.push_back({fmt::format("{}_error", name), r->record.error, unit,
+        {fmt::format("mean_{}", name), r->record.mean, unit, "over the time of the settled part"});
+    entries.push_back({fmt::format("error_{}", name), r->record.error, unit,
                        "of this mean, half width of the 95 % interval"});
   }
   entries.push_back({"regime", word(s.lid.regime), "", "of the lid"});

@@ -111,12 +111,11 @@ std::string with_error(const RecordSummary& r) {
 std::string mobility_words(const RecordSummary& m, const RegimeThresholds& t) {
   const auto where = [&] {
     if (m.max < t.strictly_stagnant)
-      return fmt::format("below {:g} (strictly stagnant) for the whole settled record",
+      return fmt::format("below {:g} (strictly stagnant) for the whole record",
                          t.strictly_stagnant);
     if (m.max < t.stagnant)
-      return fmt::format("below {:g} (stagnant) for the whole settled record", t.stagnant);
-    if (m.min > t.mobile)
-      return fmt::format("above {:g} (mobile) for the whole settled record", t.mobile);
+      return fmt::format("below {:g} (stagnant) for the whole record", t.stagnant);
+    if (m.min > t.mobile) return fmt::format("above {:g} (mobile) for the whole record", t.mobile);
     return fmt::format("between {:.3g} and {:.3g}; stagnant is below {:g}, mobile above {:g}",
                        m.min, m.max, t.stagnant, t.mobile);
   };
@@ -182,10 +181,11 @@ void give_evidence(RegimeVerdict& v, const RegimeRecords& r, const Judged& j,
   v.evidence.push_back(fmt::format("rms velocity {}", with_error(j.of_velocity)));
   const RecordSummary surface = summarise(r.time, r.surface_velocity, j.settings);
   const double travel = surface.mean / (j.of_nusselt.mean * j.of_nusselt.mean);
-  v.evidence.push_back(
-      fmt::format("Nusselt number {}; the surface moves {:.2g} d while heat diffuses through a lid "
-                  "of 1/Nu, a stagnant one less than {:g} d",
-                  with_error(j.of_nusselt), travel, t.lid_travel));
+  v.evidence.push_back(fmt::format("Nusselt number {}", with_error(j.of_nusselt)));
+  v.evidence.push_back(fmt::format(
+      "while heat diffuses through a lid of 1/Nu the surface moves {:.2g} d, a stagnant "
+      "one less than {:g} d",
+      travel, t.lid_travel));
   if (r.lid_thickness.empty()) return;
   const RecordSummary lid = summarise(r.time, r.lid_thickness, j.settings);
   if (std::isfinite(lid.mean))
@@ -198,11 +198,10 @@ std::string not_settled(const Judged& j) {
       {{"mobility", &j.of_mobility},
        {"rms velocity", &j.of_velocity},
        {"Nusselt number", &j.of_nusselt}}};
-  std::string why;
+  std::vector<Reason> reasons;
   for (const auto& [name, record] : all)
-    if (!record->enough())
-      why += fmt::format("{}{}: {}", why.empty() ? "" : "; ", name, record->words);
-  return why;
+    if (!record->enough()) reasons.push_back({name, record->words});
+  return joined(reasons);
 }
 
 /// Of the time from which all three records are settled, or of the last half.

@@ -184,7 +184,7 @@ RecordSummary of_part(const Series& part) {
 RecordSummary transient(const Series& s) {
   RecordSummary r = of_part(after(s, s.middle()));
   r.finding = Finding::Transient;
-  r.words = "still a transient: the start-up is not over in the first half of the record";
+  r.words = "still a transient";
   return r;
 }
 
@@ -200,6 +200,14 @@ double effective_number(const Series& part, double standard_error, double mean) 
   for (double& v : squares.value) v = (v - mean) * (v - mean);
   const double variance = interval_means(squares, part.time.front(), part.time.back(), 1).front();
   return variance / (standard_error * standard_error);
+}
+
+/// Too short for what it would be otherwise.
+RecordSummary hasty(RecordSummary r, const StatisticsSettings& settings) {
+  r.finding = Finding::TooShort;
+  r.words = fmt::format("too short: the settled part lasts {:.2g} of {:.2g}", r.length,
+                        settings.least_time);
+  return r;
 }
 
 /// Against noise as it is beside the line, which would itself pass for correlation.
@@ -232,9 +240,7 @@ void judge(RecordSummary& r, const Settled& settled, const StatisticsSettings& s
     return;
   }
   if (r.length < settings.least_time) {
-    r.finding = Finding::TooShort;
-    r.words = fmt::format("too short: the settled part lasts {:.2g} of {:.2g}", r.length,
-                          settings.least_time);
+    r = hasty(r, settings);
     return;
   }
   r.finding = Finding::Sound;
@@ -278,7 +284,8 @@ RecordSummary summarise(std::span<const double> time, std::span<const double> va
   const bool long_enough = flat && flat->length >= settings.least_time;
   if (long_enough && flat->max - flat->min <= 1e-12 * std::abs(flat->mean)) return *flat;
   r = varying(s, settings);
-  return !r.enough() && long_enough ? *flat : r;
+  if (r.enough() || !flat) return r;
+  return long_enough ? *flat : hasty(*flat, settings);
 }
 
 const char* word(Finding f) {
@@ -299,6 +306,22 @@ const char* word(Finding f) {
       return "drifting";
   }
   return "";
+}
+
+std::string joined(const std::vector<Reason>& reasons) {
+  std::vector<Reason> merged;
+  for (const Reason& r : reasons) {
+    const auto same = std::find_if(merged.begin(), merged.end(),
+                                   [&](const Reason& m) { return m.words == r.words; });
+    if (same == merged.end())
+      merged.push_back(r);
+    else
+      same->name += ", " + r.name;
+  }
+  std::string text;
+  for (const auto& [name, words] : merged)
+    text += fmt::format("{}{}: {}", text.empty() ? "" : "; ", name, words);
+  return text;
 }
 
 std::string why_not_known(const RecordSummary& r, double relative_error) {

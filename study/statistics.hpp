@@ -59,4 +59,11 @@ const char* word(Finding);
 /// Is the mean known to a relative error? Empty: yes. Else why not, in words.
 std::string why_not_known(const RecordSummary&, double relative_error);
 
+/// Something that was found out about a quantity.
+struct Reason {
+  std::string name, words;
+};
+/// "a, b: too short; c: drifting"; quantities with the same reason together.
+std::string joined(const std::vector<Reason>&);
+
 }  // namespace lidwright
