@@ -141,7 +141,7 @@ std::vector<double> mobility_of(const RegimeRecords& r) {
 Judged judge_records(const RegimeRecords& r, const RegimeThresholds& t) {
   Judged j;
   j.mobility = mobility_of(r);
-  j.settings.negligible = negligible;
+  j.settings.negligible = j.settings.steady = negligible;
   j.of_velocity = summarise(r.time, r.velocity, j.settings);
   j.settings.least_time = least_settled_time(j.of_velocity.mean);
   j.of_velocity = summarise(r.time, r.velocity, j.settings);

@@ -23,7 +23,7 @@ constexpr std::size_t most_ordinates = 4;
 /// 1/(1 + (2 pi/16)^2) = 0.87 of its value at zero.
 constexpr double times_an_ordinate = 16;
 /// Batches of the search for the settled part, each a fiftieth of the record.
-constexpr std::size_t most_batches = 50;
+constexpr std::size_t most_batches = 50, fewest_batches = 5;
 /// Least part of the record that may be the settled one: a shorter quiet stretch at the end says
 /// nothing. Two periods too.
 constexpr double least_share = 0.2, least_periods = 2;
@@ -131,7 +131,7 @@ std::optional<Part> without_start_up(const Series& s, std::size_t most_intervals
   const double least = least_settled(s, most_intervals) * static_cast<double>(batches);
   const std::size_t found =
       settled_from(interval_means(s, s.time.front(), s.time.back(), batches * values_a_batch),
-                   static_cast<std::size_t>(std::ceil(least)));
+                   std::max(fewest_batches, static_cast<std::size_t>(std::ceil(least))));
   if (found == 0) return Part{s, settled_part(s, most_intervals)};
   const double share = static_cast<double>(found) / static_cast<double>(batches);
   const auto at = [&](double part) { return s.time.front() + std::min(part, 0.5) * s.length(); };
@@ -146,8 +146,9 @@ std::optional<Part> without_start_up(const Series& s, std::size_t most_intervals
   return p;
 }
 
-double negligible_change(double mean, const StatisticsSettings& s) {
-  return s.negligible * std::max(std::abs(mean), s.scale);
+/// The larger of the mean and the scale, by which changes are measured.
+double size_of(double mean, const StatisticsSettings& s) {
+  return std::max(std::abs(mean), s.scale);
 }
 
 /// The last half of the record, or what stays as near to its mean as that half must.
@@ -156,11 +157,11 @@ std::optional<RecordSummary> steady(const Series& s, const StatisticsSettings& s
   if (half.size() < 2) return std::nullopt;
   const Extrema e = extrema(half.value);
   const double mean = interval_means(half, half.time.front(), half.time.back(), 1).front();
-  if (e.range() > negligible_change(mean, settings)) return std::nullopt;
+  if (e.range() > settings.steady * size_of(mean, settings)) return std::nullopt;
   RecordSummary r;
   r.finding = Finding::Steady;
   r.mean = mean;
-  r.error = e.range() / 2;
+  r.error = e.range();
   r.min = e.low;
   r.max = e.high;
   r.discarded_until = half.time.front();
@@ -233,8 +234,8 @@ void judge(RecordSummary& r, const Settled& settled, const StatisticsSettings& s
   const double change = line_slope(settled.x) * static_cast<double>(settled.x.size());
   const double false_drift =
       settled.start_up ? settings.false_drift_after_start_up : settings.false_drift;
-  if (std::abs(change) > negligible_change(r.mean, settings) &&
-      drift_chance(settled) < false_drift) {
+  const bool drifts = drift_chance(settled) < false_drift;
+  if (drifts && std::abs(change) > settings.negligible * size_of(r.mean, settings)) {
     r.finding = Finding::Drifting;
     r.words = fmt::format("drifting: by {:.2g} over the settled part", change);
     return;
@@ -243,6 +244,7 @@ void judge(RecordSummary& r, const Settled& settled, const StatisticsSettings& s
     r = hasty(r, settings);
     return;
   }
+  if (drifts) r.error += std::abs(change) / 2;
   r.finding = Finding::Sound;
   r.words = sound_words(r);
 }
