@@ -25,8 +25,7 @@ std::size_t place_of(const std::string& name) {
 
 KnownWatch::KnownWatch(MPI_Comm comm, const MarchSettings& m)
     : comm_(comm),
-      wanted_(m.until == MarchUntil::Known),
-      relative_error_(m.known_error),
+      settings_(m),
       names_(names_in(m.known_quantities)),
       next_(first_judgement),
       records_(names_.size()) {}
@@ -39,7 +38,7 @@ void KnownWatch::add(const std::vector<double>& numbers) {
 }
 
 bool KnownWatch::take_up(const std::string& history_path) {
-  if (!wanted_) return false;
+  if (settings_.until != MarchUntil::Known) return false;
   on_first_rank<InputError>(comm_, [&] {
     const HistoryTable t = parse_history(read_whole_file(history_path), history_path);
     time_ = column_of(t, "time", history_path);
@@ -59,9 +58,9 @@ bool KnownWatch::judge() const {
   int rank = 0, all = 0;
   MPI_Comm_rank(comm_, &rank);
   if (rank == 0) {
-    const StatisticsSettings settings = settings_for(time_, velocity_);
+    const StatisticsSettings settings = settings_for(time_, velocity_, settings_);
     all = std::all_of(records_.begin(), records_.end(), [&](const std::vector<double>& record) {
-      return why_not_known(summarise(time_, record, settings), relative_error_).empty();
+      return why_not_known(summarise(time_, record, settings), settings_.known_error).empty();
     });
   }
   MPI_Bcast(&all, 1, MPI_INT, 0, comm_);
@@ -69,7 +68,7 @@ bool KnownWatch::judge() const {
 }
 
 bool KnownWatch::known_after(const HistoryRow& row) {
-  if (!wanted_) return false;
+  if (settings_.until != MarchUntil::Known) return false;
   int rank = 0;
   MPI_Comm_rank(comm_, &rank);
   if (rank == 0) add(history_numbers(row));

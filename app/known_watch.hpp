@@ -30,8 +30,7 @@ class KnownWatch {
   bool judge() const;
 
   MPI_Comm comm_;
-  bool wanted_ = false;
-  double relative_error_ = 0;
+  MarchSettings settings_;
   std::vector<std::string> names_;
   long rows_ = 0, next_ = 0;
   std::vector<double> time_, velocity_;       ///< first rank only

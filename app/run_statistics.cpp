@@ -54,8 +54,9 @@ RegimeRecords regime_records(const HistoryTable& t, const std::string& path) {
 }
 
 StatisticsSettings settings_for(const std::vector<double>& time,
-                                const std::vector<double>& velocity_rms) {
+                                const std::vector<double>& velocity_rms, const MarchSettings& m) {
   StatisticsSettings settings;
+  if (m.until == MarchUntil::Known) settings.steady = std::max(settings.steady, m.known_error / 2);
   settings.least_time = least_settled_time(summarise(time, velocity_rms).mean);
   return settings;
 }
@@ -64,7 +65,7 @@ RunStatistics run_statistics(const HistoryTable& t, const std::string& path,
                              const MarchSettings& m) {
   RunStatistics s;
   const RegimeRecords records = regime_records(t, path);
-  s.records = summarise_history(t, settings_for(records.time, records.velocity));
+  s.records = summarise_history(t, settings_for(records.time, records.velocity, m));
   s.lid = judge_regime(records);
   s.not_known = what_is_not_known(s, m);
   return s;

@@ -23,9 +23,10 @@ struct RunStatistics {
 };
 RunStatistics run_statistics(const HistoryTable&, const std::string& path, const MarchSettings&);
 
-/// How a settled part must be for its mean to be known: long enough for this flow.
+/// How a settled part must be for its mean to be known: long enough for this flow, and steady
+/// enough for the error that is asked for.
 StatisticsSettings settings_for(const std::vector<double>& time,
-                                const std::vector<double>& velocity_rms);
+                                const std::vector<double>& velocity_rms, const MarchSettings&);
 
 /// For summary.toml and for standard output.
 std::vector<SummaryEntry> statistics_entries(const RunStatistics&, const MarchSettings&);
