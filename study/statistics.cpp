@@ -118,6 +118,26 @@ bool differs(const Series& s, double until, const Settled& settled, double settl
   return std::abs(before - m.mean) > start_up_stands_out * m.standard_error * std::sqrt(1 + ratio);
 }
 
+/// Does the part before `until` go beyond the range of the rest by more than that range?
+bool overshoots(const Series& s, double until) {
+  const Series rest = after(s, until);
+  if (rest.size() < 2) return false;
+  const Extrema inside = extrema(rest.value), all = extrema(s.value);
+  return all.high > inside.high + inside.range() || all.low < inside.low - inside.range();
+}
+
+/// Without a first overshoot, which may be too short to move a mean; nothing: it lasts beyond half
+/// of the record.
+std::optional<Series> without_overshoot(const Series& s) {
+  const double step = s.length() / static_cast<double>(most_batches);
+  Series rest = s;
+  while (overshoots(rest, rest.time.front() + step)) {
+    rest = after(rest, rest.time.front() + step);
+    if (rest.length() < s.length() / 2 || rest.size() < least_rows) return std::nullopt;
+  }
+  return rest;
+}
+
 /// The settled part of a record; nothing: its start-up may not be over. A start-up that noise
 /// explains is none: leaving it out would favour quiet records. One that is none is left out twice
 /// over: the point found weighs the start-up's share in the mean against the noise, and is too
@@ -251,7 +271,9 @@ void judge(RecordSummary& r, const Settled& settled, const StatisticsSettings& s
 
 /// What a march that varies says, whether or not it may be used.
 RecordSummary varying(const Series& s, const StatisticsSettings& settings) {
-  const std::optional<Part> found = without_start_up(s, settings.intervals);
+  const std::optional<Series> rest = without_overshoot(s);
+  if (!rest) return transient(s);
+  const std::optional<Part> found = without_start_up(*rest, settings.intervals);
   if (!found) return transient(s);
   const auto& [part, settled] = *found;
   RecordSummary r = of_part(part);

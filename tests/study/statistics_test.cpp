@@ -281,6 +281,19 @@ TEST(Periods, AreRarelySeenInNoise) {
   EXPECT_LE(found, 6);
 }
 
+/// One row of a thousand, 20 standard deviations high: the mean over the first fiftieth is 1
+/// higher, no more than noise makes it.
+TEST(StartUp, AShortOvershootIsLeftOut) {
+  for (int k = 0; k < 20; ++k) {
+    Dice dice(static_cast<std::uint64_t>(k));
+    Series s = red_noise(dice, 1000, 5).series;
+    s.value[1] = 25;
+    const RecordSummary r = summary_of(s);
+    EXPECT_GT(r.discarded_until, s.time[1]);
+    EXPECT_LT(r.max, 20);
+  }
+}
+
 /// A step after two of ten batches: the best point is where it ends.
 TEST(StartUp, OfAStepEndsWithIt) {
   std::vector<double> x(50);
