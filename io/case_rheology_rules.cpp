@@ -54,11 +54,12 @@ void check_strength(const Draft& draft, const Entries& entries) {
            "[viscosity.yielding]: viscosity.yielding.cohesion and viscosity.yielding.friction are "
            "both 0, so that the rock has no strength at all; give one of them, greater than 0, or "
            "remove the table");
-  if (yielding.cohesion == 0 && yielding.floor == 0 && draft.made.model.viscosity.lowest == 0)
-    refuse(entries.place("viscosity.yielding"),
-           "viscosity.yielding.cohesion = 0: nothing resists flow at the surface, where the yield "
-           "stress is 0; give a cohesion, viscosity.yielding.floor or viscosity.lowest, greater "
-           "than 0");
+  if (yielding.floor == 0 && draft.made.model.viscosity.lowest == 0)
+    refuse(
+        entries.place("viscosity.yielding"),
+        "[viscosity.yielding]: viscosity.yielding.floor and viscosity.lowest are both 0, so that "
+        "under a load above the yield stress nothing bounds the velocity; give one of them, "
+        "greater than 0 (1e-5 to 1e-3 of the coldest rock's viscosity is usual)");
 }
 
 void check_yielding(const Draft& draft, const Entries& entries) {

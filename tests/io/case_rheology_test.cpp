@@ -116,7 +116,7 @@ TEST(CaseRheology, OneSurfaceTemperatureServesBothCreeps) {
 }
 
 TEST(CaseRheology, YieldingAndItsDefaults) {
-  const Yielding plain = *with(yield).model.yielding;
+  const Yielding plain = *with(yield, {"viscosity.lowest=1e-6"}).model.yielding;
   EXPECT_EQ(plain.law, YieldingLaw::Minimum);
   EXPECT_EQ(plain.cohesion, 5);
   EXPECT_EQ(plain.friction, 0);
@@ -329,15 +329,18 @@ TEST(BadRheology, YieldingWithoutStrength) {
   const Settings loose = {"viscosity.yielding.friction=0.2", "viscosity.yielding.lithostatic=1e7"};
   expect_all_wrong({
       {empty, {}, "c.toml:16:12", "both 0, so that the rock has no strength at all"},
-      {empty, loose, "c.toml:16:12", "nothing resists flow at the surface"},
+      {yield, {}, "c.toml:16:12", "nothing bounds the velocity"},
+      {empty, loose, "c.toml:16:12", "nothing bounds the velocity"},
       {yield + "friction = 0.2\n",
-       {},
+       {"viscosity.yielding.floor=1e-3"},
        "c.toml:18:1",
        "viscosity.yielding.friction = 0.2: needs viscosity.yielding.lithostatic"},
-      {yield + "friction = 0.2\nlithostatic = 0\n", {}, "c.toml:19:1", "must be greater than 0"},
+      {yield + "friction = 0.2\nlithostatic = 0\n",
+       {"viscosity.lowest=1e-3"},
+       "c.toml:19:1",
+       "must be greater than 0"},
   });
-  for (const char* remedy :
-       {"viscosity.yielding.floor=1e-3", "viscosity.lowest=1e-3", "viscosity.yielding.cohesion=1"})
+  for (const char* remedy : {"viscosity.yielding.floor=1e-3", "viscosity.lowest=1e-3"})
     EXPECT_EQ(message_of(good_case + empty, {loose[0], loose[1], remedy}), "accepted") << remedy;
 }
 
