@@ -102,7 +102,8 @@ def refusals(scratch):
     wrong(bad, ["found", "holds a run", "--overwrite"], case, "--into", "found")
     creep = ["--set", "viscosity.dislocation.reference_stress=9"]
     wrong(bad, [case, "[viscosity.dislocation]", "remove the table"], case, *creep)
-    wrong(bad, ["[viscosity.yielding]", "remove the table"], case, "--set", "viscosity.yielding.cohesion=9")
+    yielding = ["--set", "viscosity.yielding.cohesion=9", "--set", "viscosity.yielding.floor=1"]
+    wrong(bad, ["[viscosity.yielding]", "remove the table"], case, *yielding)
     wrong(bad, ["grid.radial = 28", ">= 32", "--no-error-bars"], case, "--set", "grid.radial=28")
     wrong(bad, ["grid.radial = 6", ">= 8"], case, "--set", "grid.radial=6", "--no-error-bars")
     for modes in ("3", "3:", ":3", "0:3", "5:3", "a:b", "1:2:3", "-1:4", "1:99999"):

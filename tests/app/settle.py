@@ -197,8 +197,9 @@ def refusals(scratch):
     wrong(["--along and --error-bars"], "box.toml", "--error-bars", "--along", "numbers.rayleigh=1e4:1e5:3")
     wrong(["settle.tolerance = -1"], "box.toml", "--set", "settle.tolerance=-1")
     yielding = "viscosity.yielding.cohesion"
-    wrong(["box.toml", "[viscosity.yielding]", "march it instead"], "box.toml", "--set", f"{yielding}=9", ranks=3)
-    wrong(["[viscosity.yielding]", "march it instead"], "box.toml", "--along", f"{yielding}=1:2:3")
+    floor = ["--set", "viscosity.yielding.floor=1"]
+    wrong(["box.toml", "[viscosity.yielding]", "march it instead"], "box.toml", "--set", f"{yielding}=9", *floor, ranks=3)
+    wrong(["[viscosity.yielding]", "march it instead"], "box.toml", "--along", f"{yielding}=1:2:3", *floor)
     wrong(["initial.from", "another region"], "box.toml", "--set", f"initial.from={scratch.path('annulus')}")
     wrong(["--wander"], "box.toml", "--wander")
     wrong(["8 lateral cells on 3 ranks", "fewer ranks"], "box.toml", *runs.settings(grid__lateral=8), ranks=3)

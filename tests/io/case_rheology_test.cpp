@@ -25,7 +25,8 @@ using test::Settings;
 constexpr double infinity = std::numeric_limits<double>::infinity();
 
 const std::string creep = "[viscosity.dislocation]\nreference_stress = 300\n";  // from line 16
-const std::string yield = "[viscosity.yielding]\ncohesion = 5\n";               // from line 16
+const std::string yield =
+    "[viscosity.yielding]\nfloor = 1e-6\ncohesion = 5\n";  // from line 16
 
 Case with(const std::string& tables, const Settings& settings = {}) {
   return parse_case(good_case + tables, "c.toml", settings);
@@ -116,7 +117,7 @@ TEST(CaseRheology, OneSurfaceTemperatureServesBothCreeps) {
 }
 
 TEST(CaseRheology, YieldingAndItsDefaults) {
-  const Yielding plain = *with(yield, {"viscosity.lowest=1e-6"}).model.yielding;
+  const Yielding plain = *with("[viscosity.yielding]\ncohesion = 5\n", {"viscosity.lowest=1e-6"}).model.yielding;
   EXPECT_EQ(plain.law, YieldingLaw::Minimum);
   EXPECT_EQ(plain.cohesion, 5);
   EXPECT_EQ(plain.friction, 0);
@@ -266,18 +267,18 @@ TEST(BadRheology, ValuesOfDislocationCreep) {
 TEST(BadRheology, ValuesOfYielding) {
   expect_all(std::string(good_case) + yield,
              {
-                 {"= 5", "= -5", "c.toml:17:1", "cohesion = -5: must be at least 0"},
-                 {"= 5", "= nan", "c.toml:17:1", "must be a finite number"},
-                 {"= 5", "= [5]", "c.toml:17:1", "must be a number"},
-                 {"", "friction = -0.1\n", "c.toml:18:1", "at least 0"},
-                 {"", "friction = inf\n", "c.toml:18:1", "must be a finite number"},
-                 {"", "lithostatic = -1\n", "c.toml:18:1", "at least 0"},
-                 {"", "ceiling = 0\n", "c.toml:18:1", "greater than 0"},
-                 {"", "ceiling = inf\n", "c.toml:18:1", "must be a finite number"},
-                 {"", "floor = -1\n", "c.toml:18:1", "at least 0"},
-                 {"", "law = \"minimal\"\n", "c.toml:18:1", "did you mean 'minimum'"},
-                 {"", "law = 2\n", "c.toml:18:1", "\"minimum\", \"harmonic-mean\""},
-                 {"", "cohesoin = 3\n", "c.toml:18:1", "did you mean 'cohesion'"},
+                 {"= 5", "= -5", "c.toml:18:1", "cohesion = -5: must be at least 0"},
+                 {"= 5", "= nan", "c.toml:18:1", "must be a finite number"},
+                 {"= 5", "= [5]", "c.toml:18:1", "must be a number"},
+                 {"", "friction = -0.1\n", "c.toml:19:1", "at least 0"},
+                 {"", "friction = inf\n", "c.toml:19:1", "must be a finite number"},
+                 {"", "lithostatic = -1\n", "c.toml:19:1", "at least 0"},
+                 {"", "ceiling = 0\n", "c.toml:19:1", "greater than 0"},
+                 {"", "ceiling = inf\n", "c.toml:19:1", "must be a finite number"},
+                 {"= 1e-6", "= -1", "c.toml:17:1", "floor = -1: must be at least 0"},
+                 {"", "law = \"minimal\"\n", "c.toml:19:1", "did you mean 'minimum'"},
+                 {"", "law = 2\n", "c.toml:19:1", "\"minimum\", \"harmonic-mean\""},
+                 {"", "cohesoin = 3\n", "c.toml:19:1", "did you mean 'cohesion'"},
              });
 }
 
@@ -329,15 +330,15 @@ TEST(BadRheology, YieldingWithoutStrength) {
   const Settings loose = {"viscosity.yielding.friction=0.2", "viscosity.yielding.lithostatic=1e7"};
   expect_all_wrong({
       {empty, {}, "c.toml:16:12", "both 0, so that the rock has no strength at all"},
-      {yield, {}, "c.toml:16:12", "nothing bounds the velocity"},
+      {yield, {"viscosity.yielding.floor=0"}, "c.toml:16:12", "nothing bounds the velocity"},
       {empty, loose, "c.toml:16:12", "nothing bounds the velocity"},
       {yield + "friction = 0.2\n",
-       {"viscosity.yielding.floor=1e-3"},
-       "c.toml:18:1",
+       {},
+       "c.toml:19:1",
        "viscosity.yielding.friction = 0.2: needs viscosity.yielding.lithostatic"},
       {yield + "friction = 0.2\nlithostatic = 0\n",
-       {"viscosity.lowest=1e-3"},
-       "c.toml:19:1",
+       {},
+       "c.toml:20:1",
        "must be greater than 0"},
   });
   for (const char* remedy : {"viscosity.yielding.floor=1e-3", "viscosity.lowest=1e-3"})
@@ -346,13 +347,13 @@ TEST(BadRheology, YieldingWithoutStrength) {
 
 TEST(BadRheology, WithABody) {
   const std::string tables =
-      "[viscosity.yielding]\ncohesion = 5\nfriction = 0.1\n";  // from line 21
+      "[viscosity.yielding]\nfloor = 1e15\ncohesion = 5\nfriction = 0.1\n";  // from line 21
   expect_all(std::string(good_body) + tables,
              {
-                 {"= 5", "= -5", "c.toml:22:1", "at least 0 MPa"},
-                 {"", "lithostatic = 1e8\n", "c.toml:24:1", "with [body] it follows from the body"},
-                 {"", "ceiling = 0\n", "c.toml:24:1", "greater than 0 MPa"},
-                 {"", "[viscosity.dislocation]\nreference_stress = 0\n", "c.toml:25:1",
+                 {"= 5", "= -5", "c.toml:23:1", "at least 0 MPa"},
+                 {"", "lithostatic = 1e8\n", "c.toml:25:1", "with [body] it follows from the body"},
+                 {"", "ceiling = 0\n", "c.toml:25:1", "greater than 0 MPa"},
+                 {"", "[viscosity.dislocation]\nreference_stress = 0\n", "c.toml:26:1",
                   "greater than 0 MPa"},
              });
 }
