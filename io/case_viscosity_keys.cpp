@@ -224,7 +224,8 @@ std::vector<Key> yielding_keys() {
        .quantity = Quantity::Viscosity,
        .range = not_negative,
        .only = yielding,
-       .help = "viscosity of fast plastic flow, added to yield stress/(2 rate of strain)"},
+       .help = "viscosity of fast plastic flow, added to yield stress/(2 rate of strain); this or "
+               "viscosity.lowest must be greater than 0"},
   };
 }
 

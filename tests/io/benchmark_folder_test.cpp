@@ -138,8 +138,9 @@ TEST_F(BenchmarkFolder, RefusesToLineariseWhatYields) {
                              const std::string& message) {
     put("benchmark.toml",
         "title = \"x\"\nreference = \"y\"\nhow = \"" + how + "\"\ngrids = 2\nquick = true\n");
-    expect_refused(quantity + ",viscosity.yielding.cohesion=3;viscosity.yielding.floor=1,1,,published,,own\n",
-                   "expected.csv:2: [viscosity.yielding]: " + message);
+    expect_refused(
+        quantity + ",viscosity.yielding.cohesion=3;viscosity.yielding.floor=1,1,,published,,own\n",
+        "expected.csv:2: [viscosity.yielding]: " + message);
   };
   expect("settle", "nusselt_outer", "the viscosity depends on the rate of strain");
   expect("onset", "rayleigh_critical", "at rest nothing yields");

@@ -24,9 +24,8 @@ using test::Settings;
 
 constexpr double infinity = std::numeric_limits<double>::infinity();
 
-const std::string creep = "[viscosity.dislocation]\nreference_stress = 300\n";  // from line 16
-const std::string yield =
-    "[viscosity.yielding]\nfloor = 1e-6\ncohesion = 5\n";  // from line 16
+const std::string creep = "[viscosity.dislocation]\nreference_stress = 300\n";   // from line 16
+const std::string yield = "[viscosity.yielding]\nfloor = 1e-6\ncohesion = 5\n";  // from line 16
 
 Case with(const std::string& tables, const Settings& settings = {}) {
   return parse_case(good_case + tables, "c.toml", settings);
@@ -117,7 +116,8 @@ TEST(CaseRheology, OneSurfaceTemperatureServesBothCreeps) {
 }
 
 TEST(CaseRheology, YieldingAndItsDefaults) {
-  const Yielding plain = *with("[viscosity.yielding]\ncohesion = 5\n", {"viscosity.lowest=1e-6"}).model.yielding;
+  const Yielding plain =
+      *with("[viscosity.yielding]\ncohesion = 5\n", {"viscosity.lowest=1e-6"}).model.yielding;
   EXPECT_EQ(plain.law, YieldingLaw::Minimum);
   EXPECT_EQ(plain.cohesion, 5);
   EXPECT_EQ(plain.friction, 0);
@@ -336,10 +336,7 @@ TEST(BadRheology, YieldingWithoutStrength) {
        {},
        "c.toml:19:1",
        "viscosity.yielding.friction = 0.2: needs viscosity.yielding.lithostatic"},
-      {yield + "friction = 0.2\nlithostatic = 0\n",
-       {},
-       "c.toml:20:1",
-       "must be greater than 0"},
+      {yield + "friction = 0.2\nlithostatic = 0\n", {}, "c.toml:20:1", "must be greater than 0"},
   });
   for (const char* remedy : {"viscosity.yielding.floor=1e-3", "viscosity.lowest=1e-3"})
     EXPECT_EQ(message_of(good_case + empty, {loose[0], loose[1], remedy}), "accepted") << remedy;
