@@ -265,11 +265,11 @@ double simpson(const F& f, double a, double fa, double b, double fb, double erro
          simpson(f, m, fm, b, fb, error / 2, halvings - 1);
 }
 
-/// Pi(e) = integral of 4 eta e de, on intervals that shrink towards 0, down to what is round-off:
+/// Pi(e) = integral of 4 eta e de, on intervals that shrink towards 0, down to what is negligible:
 /// as the stress never falls with the rate, the rest is no more than rate * slope.
 double dissipation_potential(const LocalFlowLaw& law, double rate) {
   const auto slope = [&](double e) { return 4 * law(e).viscosity * e; };
-  const double error = 1e-13 * rate * slope(rate);
+  const double error = 1e-11 * rate * slope(rate);
   double sum = 0;
   for (double top = rate; top * slope(top) > error; top /= 2)
     sum += simpson(slope, top / 2, slope(top / 2), top, slope(top), error, 20);
