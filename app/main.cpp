@@ -9,6 +9,7 @@
 #include "app/exit_code.hpp"
 #include "app/march_verb.hpp"
 #include "app/onset_verb.hpp"
+#include "app/regime_verb.hpp"
 #include "app/settle_verb.hpp"
 #include "app/verify_verb.hpp"
 #include "io/atomic_file.hpp"
@@ -39,6 +40,7 @@ class PlainHelp : public CLI::Formatter {
              "       lidwright march --resume FOLDER [OPTIONS]\n";
     if (app->get_name() == "onset" || app->get_name() == "settle")
       return fmt::format("Usage: lidwright {} CASE [OPTIONS]\n", app->get_name());
+    if (app->get_name() == "regime") return "Usage: lidwright regime RUN [OPTIONS]\n";
     return CLI::Formatter::make_usage(app, std::move(name));
   }
 };
@@ -139,6 +141,15 @@ void add_verify(CLI::App& app, VerifyRequest& request) {
       "--no-progress", [&] { request.progress = ProgressMode::Never; }, "Show no progress");
 }
 
+void add_regime(CLI::App& app, RegimeRequest& request) {
+  CLI::App* verb = app.add_subcommand("regime", "Say how the lid of a run moves")->group("Verbs");
+  verb->add_option("RUN", request.run, "Run folder of a march");
+  verb->add_option("--threshold", request.thresholds, "Change a threshold; may be repeated")
+      ->allow_extra_args(false)
+      ->type_name("NAME=VALUE");
+  verb->add_flag("--thresholds", request.list, "List the thresholds with their sources");
+}
+
 void print_help(const CLI::App& app, const CLI::ParseError& e) {
   std::ostringstream text;
   app.exit(e, text, text);
@@ -148,10 +159,10 @@ void print_help(const CLI::App& app, const CLI::ParseError& e) {
 
 /// CLI11 reports a misspelt verb as a missing one.
 std::string command_line_message(const CLI::ParseError& e, int argc, char** argv) {
-  if (argc < 2) return "name a verb: march, settle, onset, verify or keys";
+  if (argc < 2) return "name a verb: march, settle, onset, regime, verify or keys";
   if (e.get_name() == "RequiredError")
-    return fmt::format("'{}' is not a verb of this program (march, settle, onset, verify, keys)",
-                       argv[1]);
+    return fmt::format(
+        "'{}' is not a verb of this program (march, settle, onset, regime, verify, keys)", argv[1]);
   return e.what();
 }
 
@@ -160,6 +171,7 @@ struct Requests {
   MarchRequest march;
   SettleRequest settle;
   OnsetRequest onset;
+  RegimeRequest regime;
   VerifyRequest verify;
   bool markdown = false;
 };
@@ -171,6 +183,7 @@ ExitCode run_verb(const Session& session, const CLI::App& app, const Requests& a
   }
   if (app.got_subcommand("onset")) return onset(session, asked.onset);
   if (app.got_subcommand("settle")) return settle(session, asked.settle);
+  if (app.got_subcommand("regime")) return regime(session, asked.regime);
   if (app.got_subcommand("verify")) return verify(session, asked.verify);
   if (asked.march.case_file.empty() && asked.march.resume.empty())
     throw InputError(
@@ -208,6 +221,7 @@ ExitCode run(const Session& session, int argc, char** argv) {
   add_march(app, asked.march);
   add_settle(app, asked.settle);
   add_onset(app, asked.onset);
+  add_regime(app, asked.regime);
   add_verify(app, asked.verify);
   app.add_subcommand("keys", "Print the reference of all case keys")
       ->group("Verbs")

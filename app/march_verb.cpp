@@ -6,7 +6,9 @@
 #include <cmath>
 #include <optional>
 
+#include "app/known_watch.hpp"
 #include "app/run_start.hpp"
+#include "app/run_statistics.hpp"
 #include "app/run_summary.hpp"
 #include "app/shared_case.hpp"
 #include "app/stop_signals.hpp"
@@ -47,12 +49,15 @@ class Run {
                      : History::start(session.comm(), folder_.paths().history())),
         snapshots_(session.comm(), folder_.paths(),
                    resumed_ ? std::optional(march_->time()) : std::nullopt),
-        progress_(request.progress, session.first()) {}
+        known_watch_(session.comm(), case_.march),
+        progress_(request.progress, session.first()) {
+    if (resumed_) known_ = known_watch_.take_up(folder_.paths().history());
+  }
 
   ExitCode go();
 
  private:
-  enum class End { None, Time, Steps, Steady, WallClock, Signal };
+  enum class End { None, Time, Steps, Steady, Known, WallClock, Signal };
 
   ExitCode go_on();
   HistoryRow row() const;
@@ -64,9 +69,10 @@ class Run {
   void write_checkpoint_now();
   void checkpoint_if_due();
   void finish(End);
+  RunStatistics write_statistics() const;
   static std::string reason(End);
   static bool complete(End end) {
-    return end == End::Time || end == End::Steps || end == End::Steady;
+    return end == End::Time || end == End::Steps || end == End::Steady || end == End::Known;
   }
 
   const Session& session_;
@@ -79,6 +85,8 @@ class Run {
   Provenance provenance_;
   History history_;
   SnapshotWriter snapshots_;
+  KnownWatch known_watch_;
+  bool known_ = false;
   Progress progress_;
   long last_checkpoint_ = -1;
 };
@@ -99,6 +107,8 @@ std::string Run::reason(End end) {
       return "number of steps reached";
     case End::Steady:
       return "steady";
+    case End::Known:
+      return "means known";
     case End::WallClock:
       return "wall-clock limit reached";
     case End::Signal:
@@ -109,6 +119,7 @@ std::string Run::reason(End end) {
 
 Run::End Run::end_reached() const {
   const MarchSettings& m = case_.march;
+  if (known_) return End::Known;
   if (march_->time() >= m.end_time) return End::Time;
   if (m.most_steps > 0 && march_->steps() >= m.most_steps) return End::Steps;
   if (m.steady > 0 && march_->temperature_change_rate() < m.steady) return End::Steady;
@@ -169,8 +180,21 @@ void Run::record_step() {
   if (step % case_.output.history_every == 0) {
     const HistoryRow r = row();
     history_.append(r);
+    known_ = known_watch_.known_after(r);
     progress_.show(r, share_done());
   }
+}
+
+/// Of the whole history; on the first rank.
+RunStatistics Run::write_statistics() const {
+  RunStatistics statistics;
+  const RunPaths& paths = folder_.paths();
+  on_first_rank<OutputError>(session_.comm(), [&] {
+    const HistoryTable table = parse_history(read_whole_file(paths.history()), paths.history());
+    statistics = run_statistics(table, paths.history(), case_.march);
+    write_atomically(paths.statistics(), statistics_table(statistics.records));
+  });
+  return statistics;
 }
 
 void Run::finish(End end) {
@@ -180,11 +204,16 @@ void Run::finish(End end) {
   if (complete(end)) write_snapshot();
   write_checkpoint_now();
   provenance_.end_session(march_->steps(), reason(end));
-  const std::vector<SummaryEntry> entries = summary_entries(case_, last, reason(end));
+  const RunStatistics statistics = write_statistics();
+  std::vector<SummaryEntry> entries = summary_entries(case_, last, reason(end));
+  if (session_.first())
+    for (SummaryEntry& e : statistics_entries(statistics, case_.march))
+      entries.push_back(std::move(e));
   write_summary(session_.comm(), folder_.paths().summary(), entries);
   if (!session_.first()) return;
   const std::string& folder = folder_.paths().folder;
-  fmt::print("{}\n", summary_for_people(case_, last, reason(end), folder));
+  fmt::print("{}\n", summary_for_people(case_, last, reason(end),
+                                        statistics_for_people(statistics, case_.march), folder));
   if (!complete(end)) fmt::print("  to go on              lidwright march --resume {}\n", folder);
 }
 

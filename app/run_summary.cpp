@@ -73,13 +73,13 @@ std::vector<SummaryEntry> summary_entries(const Case& c, const HistoryRow& r,
 }
 
 std::string summary_for_people(const Case& c, const HistoryRow& r, const std::string& end,
-                               const std::string& folder) {
+                               const std::string& statistics, const std::string& folder) {
   return fmt::format(
-      "{}{}: {} steps to time {:.6g} in {}\n{}"
+      "{}{}: {} steps to time {:.6g} in {}\n{}{}"
       "  flow solver           {:.2f} applications a step, {} factorisations\n"
       "  results in            {}",
       c.title.empty() ? "" : c.title + "\n", end, r.step, r.time, duration_text(r.wall_time),
-      state_lines(r),
+      state_lines(r), statistics,
       r.step > 0 ? static_cast<double>(r.applications) / static_cast<double>(r.step) : 0.0,
       r.factorisations, folder);
 }

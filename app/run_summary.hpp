@@ -17,7 +17,8 @@ std::string state_lines(const HistoryRow&);
 /// `end`: why the run stopped.
 std::vector<SummaryEntry> summary_entries(const Case&, const HistoryRow& last,
                                           const std::string& end);
+/// `statistics`: lines about the run as a whole.
 std::string summary_for_people(const Case&, const HistoryRow& last, const std::string& end,
-                               const std::string& folder);
+                               const std::string& statistics, const std::string& folder);
 
 }  // namespace lidwright

@@ -11,6 +11,10 @@ constexpr Condition layered_start = {
     R"(with initial.base = "boundary-layers")",
     [](const Draft& d) { return d.made.initial.base == InitialBase::BoundaryLayers; }};
 
+constexpr Condition until_known = {R"(with march.until = "known")", [](const Draft& d) {
+                                     return d.made.march.until == MarchUntil::Known;
+                                   }};
+
 std::vector<Key> initial_keys() {
   using I = InitialSettings;
   const auto at = [](auto member) { return of_case(&Case::initial, member); };
@@ -136,6 +140,11 @@ std::vector<Key> march_keys() {
        .quantity = Quantity::Time,
        .range = positive,
        .help = "time at which the run ends"},
+      {.path = "march.until",
+       .access = at(&M::until),
+       .words = {"time", "known"},
+       .help = "\"known\": the run ends as soon as the means of march.known are known, at "
+               "march.end_time at the latest"},
       {.path = "march.most_steps",
        .access = at(&M::most_steps),
        .range = not_negative,
@@ -151,6 +160,15 @@ std::vector<Key> march_keys() {
        .range = not_negative,
        .help = "the run ends when the root mean square of dT/dt falls below; 0: never. A start "
                "without disturbance is steady at once"},
+      {.path = "march.known.quantities",
+       .access = at(&M::known_quantities),
+       .only = until_known,
+       .help = "columns of history.csv whose means are to be known, with commas between"},
+      {.path = "march.known.relative_error",
+       .access = at(&M::known_error),
+       .range = {.low = 1e-6, .high = 1, .high_open = true},
+       .only = until_known,
+       .help = "half width of the 95 % interval of such a mean, over the mean"},
   };
 }
 

@@ -2,9 +2,12 @@
 
 #include <fmt/format.h>
 
+#include <algorithm>
 #include <cmath>
 
 #include "io/case_values.hpp"
+#include "io/history.hpp"
+#include "io/history_table.hpp"
 
 namespace lidwright::case_text {
 namespace {
@@ -103,6 +106,21 @@ void check_steps(const Draft& draft, const Entries& entries) {
            "transport.first_step is longer than transport.largest_step; make it at most as long");
 }
 
+/// Each name a column whose mean says something.
+void check_known(const Draft& draft, const Entries& entries) {
+  if (draft.made.march.until != MarchUntil::Known) return;
+  std::vector<std::string> columns;
+  for (const Column& c : history_columns())
+    if (!is_bookkeeping(std::string(c.name))) columns.emplace_back(c.name);
+  for (const std::string& name : names_in(draft.made.march.known_quantities)) {
+    if (std::find(columns.begin(), columns.end(), name) != columns.end()) continue;
+    refuse(entries.place("march.known.quantities"),
+           fmt::format("march.known.quantities: '{}' is no column of history.csv with a mean{}; "
+                       "take some of {}, with commas between",
+                       name, nearest(name, columns), fmt::join(columns, ", ")));
+  }
+}
+
 }  // namespace
 
 void choose_tables(Draft& draft, const Entries& entries) {
@@ -154,6 +172,7 @@ void check_together(const Draft& draft, const Entries& entries) {
   check_sorted(draft.made.model.heat.layers, "heat.layers", entries);
   check_initial(draft, entries);
   check_steps(draft, entries);
+  check_known(draft, entries);
 }
 
 }  // namespace lidwright::case_text

@@ -21,6 +21,7 @@ struct RunPaths {
   std::string provenance() const { return folder + "/provenance.toml"; }
   std::string summary() const { return folder + "/summary.toml"; }
   std::string history() const { return folder + "/history.csv"; }
+  std::string statistics() const { return folder + "/statistics.csv"; }
   std::string newton() const { return folder + "/newton.csv"; }
   std::string error_bars() const { return folder + "/error_bars.csv"; }
   std::string growth_rates() const { return folder + "/growth_rates.csv"; }

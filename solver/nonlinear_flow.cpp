@@ -62,10 +62,13 @@ ConjugateGradients::Report NonlinearFlow::direction(Vec downhill, double forcing
 }
 
 /// The length of a step for which the change of power along it has all but vanished, from below: as
-/// the functional is convex, it then falls all the way. 0 if it does not fall at all.
-double NonlinearFlow::line_search(double force_along) {
-  const double start = functional_.go(0) - force_along;
-  if (!(start < 0)) return 0;
+/// the functional is convex, it then falls all the way. `start` is its change at the state; where
+/// it does not fall there, the length is 0.
+double NonlinearFlow::line_search(double start, double force_along) {
+  if (!(start < 0)) {
+    functional_.go(0);
+    return 0;
+  }
   const auto at = [&](double s) { return (functional_.go(s) - force_along) / -start; };
   double low = 0, at_low = -1, high = 1, at_high = at(1);
   while (at_high < -0.5 && high < 64) {
@@ -86,10 +89,10 @@ double NonlinearFlow::line_search(double force_along) {
   return low;
 }
 
-/// Along the direction that was set, and no way at all where the power does not fall.
-double NonlinearFlow::go_down(Vec f, const CornerField& direction, CornerField& psi) {
+/// A step along a direction; downhill is f less the gradient.
+double NonlinearFlow::go_down(Vec f, Vec downhill, const CornerField& direction, CornerField& psi) {
   functional_.set_direction(direction);
-  const double length = line_search(work(f, direction));
+  const double length = line_search(-work(downhill, direction), work(f, direction));
   functional_.accept();
   for (std::size_t k = 0; k < psi.values().size(); ++k)
     psi.values()[k] += length * direction.values()[k];
@@ -101,7 +104,7 @@ double NonlinearFlow::go_down(Vec f, const CornerField& direction, CornerField& 
 void NonlinearFlow::step_among_former_flows(Vec f, CornerField& psi) {
   const Handle<Vec, VecDestroy> downhill = unknown_vector(power_.decomposition());
   gradient(f, downhill);
-  go_down(f,
+  go_down(f, downhill,
           former_.combine(
               [this](const CornerField& x, CornerField& force) { functional_.tangent(x, force); },
               downhill),
@@ -124,7 +127,7 @@ bool NonlinearFlow::step(Vec f, CornerField& psi) {
   if (last_.error <= settings_.tolerance) return true;
 
   power_.from_unknowns(change, work_psi_);
-  const double length = go_down(f, CornerField(work_psi_), psi);
+  const double length = go_down(f, downhill, CornerField(work_psi_), psi);
   ++last_.newton_steps;
   const bool stuck = length < 0.02;
   if (stuck) ++last_.fixed_point_steps;

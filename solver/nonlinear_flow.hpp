@@ -50,8 +50,8 @@ class NonlinearFlow {
   void gradient(Vec f, Vec downhill);
   ConjugateGradients::Report direction(Vec downhill, double forcing, double absolute, Vec change);
   double work(Vec f, const CornerField& psi) const;
-  double line_search(double force_along);
-  double go_down(Vec f, const CornerField& direction, CornerField& psi);
+  double line_search(double start, double force_along);
+  double go_down(Vec f, Vec downhill, const CornerField& direction, CornerField& psi);
   void step_among_former_flows(Vec f, CornerField& psi);
   bool step(Vec f, CornerField& psi);
 

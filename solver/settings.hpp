@@ -84,8 +84,15 @@ struct SettleSettings {
   LinearSolver linear = LinearSolver::Automatic;
 };
 
+/// When a march has found out what it was for.
+enum class MarchUntil { Time, Known };
 struct MarchSettings {
-  double end_time = 0.1;  ///< > 0
+  double end_time = 0.1;  ///< > 0; the latest end, whatever `until` says
+  MarchUntil until = MarchUntil::Time;
+  std::string known_quantities =
+      "nusselt_outer, velocity_rms, temperature_mean";  ///< columns of the history
+  double known_error =
+      0.02;               ///< relative half width of the 95 % interval of their means, in (0, 1)
   long most_steps = 0;    ///< 0: no limit
   double wall_clock = 0;  ///< s; 0: no limit
   double steady = 0;      ///< rms of dT/dt below which the run is steady; 0: never

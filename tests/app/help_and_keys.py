@@ -23,7 +23,7 @@ def expect_narrow(text, what):
 
 
 def help_texts():
-    for arguments in (["--help"], ["settle", "--help"], ["march", "--help"], ["keys", "--help"], ["-h"], ["march", "-h"]):
+    for arguments in (["--help"], ["settle", "--help"], ["regime", "--help"], ["march", "--help"], ["keys", "--help"], ["-h"], ["march", "-h"]):
         text = text_of(*arguments)
         expect_narrow(text, " ".join(arguments))
         assert "Exit codes" in text or "exit codes" in text.lower(), text
@@ -32,7 +32,7 @@ def help_texts():
     text = text_of("settle", "--help")
     for option in ("--set", "--into", "--overwrite", "--along", "--stability", "--error-bars", "--progress", "--no-progress"):
         assert option in text, option
-    for verb in ("march", "settle", "onset", "verify", "keys"):
+    for verb in ("march", "settle", "onset", "regime", "verify", "keys"):
         assert verb in text_of("--help")
 
 

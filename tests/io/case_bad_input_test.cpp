@@ -221,6 +221,25 @@ TEST(BadCase, WithABody) {
       });
 }
 
+TEST(BadCase, KnownMeans) {
+  expect_all(
+      good_case,
+      {
+          {"", "[march.known]\nrelative_error = 0.1\n", "c.toml:17:1",
+           "applies only with march.until = \"known\""},
+          {"[march]", "[march]\nuntil = \"bored\"", "c.toml:15:1",
+           "must be one of \"time\", \"known\""},
+          {"[march]", "[march]\nuntil = \"known\"\nknown.relative_error = 1", "c.toml:16:7",
+           "less than 1"},
+          {"[march]", "[march]\nuntil = \"known\"\nknown.quantities = \"nusselt_ouer\"",
+           "c.toml:16:7", "did you mean 'nusselt_outer'"},
+          {"[march]", "[march]\nuntil = \"known\"\nknown.quantities = \"velocity_rms, wall_time\"",
+           "c.toml:16:7", "'wall_time' is no column of history.csv with a mean"},
+          {"[march]", "[march]\nuntil = \"known\"\nknown.quantities = \"\"", "c.toml:16:7",
+           "'' is no column"},
+      });
+}
+
 TEST(BadCase, Settings) {
   const auto expect_setting = [](const std::string& setting, const std::string& words) {
     expect_message(message_of(good_case, {"title=fine", setting}), "--set 2", words);

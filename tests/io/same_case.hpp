@@ -41,7 +41,8 @@ inline auto parts(const HeatSettings& h) {
   return std::tie(h.flux, h.courant, h.accuracy, h.first_step, h.largest_step, h.growth);
 }
 inline auto parts(const MarchSettings& m) {
-  return std::tie(m.end_time, m.most_steps, m.wall_clock, m.steady);
+  return std::tie(m.end_time, m.most_steps, m.wall_clock, m.steady, m.until, m.known_quantities,
+                  m.known_error);
 }
 inline auto parts(const SettleSettings& s) {
   return std::tie(s.tolerance, s.most_steps, s.most_time, s.flux, s.coarsest, s.linear);
