@@ -132,6 +132,9 @@ bool NonlinearFlow::step(Vec f, CornerField& psi) {
   const bool stuck = length < 0.02;
   if (stuck) ++last_.fixed_point_steps;
   functional_.use_secant(stuck);
+  if (on_step_)
+    on_step_(
+        {last_.newton_steps, last_.error, report.iterations, length, work(f, psi), functional_});
   return false;
 }
 

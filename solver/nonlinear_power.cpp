@@ -253,14 +253,14 @@ double NonlinearPower::yielding_share() const {
 
 namespace {
 
-/// Simpson's rule on [a, b], halved until that changes less than `error`: laws bend where they
+/// Simpson's rule on [a, b], halved until its error is about `error`: laws bend where they
 /// yield or are cut off.
 template <class F>
 double simpson(const F& f, double a, double fa, double b, double fb, double error, int halvings) {
   const double m = (a + b) / 2, fm = f(m), left = f((a + m) / 2), right = f((m + b) / 2);
   const double once = (b - a) * (fa + 4 * fm + fb) / 6,
                twice = (b - a) * (fa + 4 * left + 2 * fm + 4 * right + fb) / 12;
-  if (halvings == 0 || std::abs(twice - once) <= error) return twice + (twice - once) / 15;
+  if (halvings == 0 || std::abs(twice - once) <= 15 * error) return twice + (twice - once) / 15;
   return simpson(f, a, fa, m, fm, error / 2, halvings - 1) +
          simpson(f, m, fm, b, fb, error / 2, halvings - 1);
 }

@@ -14,7 +14,7 @@
 /// with dPi/d e_II = 2 tau: convex, as stress never falls with the rate. The quarters at a corner
 /// share its shear, sum V_q c_q = sum V_q; with c_q in inverse proportion to viscosity they bear
 /// one stress, and where viscosity does not depend on the rate, J is the functional of
-/// solver/power.hpp (docs/decisions/split-of-shear.md).
+/// solver/power.hpp (docs/decisions/nonlinear-flow.md).
 ///
 /// The tangent of a quarter's stress t = 2 eta s is
 ///
