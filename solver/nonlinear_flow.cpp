@@ -162,8 +162,9 @@ FlowReport NonlinearFlow::solve(std::vector<LocalFlowLaw> laws, const CornerFiel
     last_.converged = step(f, psi);
     factor_fresh_ = false;
     if (age_.stale()) refactor();
-    if (!shear_shared && last_.error < 1e-2) {
-      // The first flow's own viscosities: by these shares, the power falls again.
+    if (!shear_shared && last_.converged) {
+      // The first flow's own viscosities: by these shares, the power falls again. On the way there
+      // the flow depends on round-off, and the shares would keep that.
       functional_.begin(psi, functional_.viscosity());
       shear_shared = true;
       last_.converged = false;
