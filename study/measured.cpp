@@ -177,9 +177,15 @@ Marched march_on(const Problem& p, const Grid& grid, const StoredTemperature& st
   return m;
 }
 
-/// The source of case 3 lists minima of the velocity by size, not by what they follow.
+/// The source of Blankenbach's case 3 lists minima of the velocity by size, not by what they follow.
+/// Where all beats are alike, those of one beat are what is meant.
 std::map<std::string, double> cycle_quantities(const Beats& heat, const Beats& flow) {
   return {{"period", heat.period},
+          {"beat", heat.period / 2},
+          {"nusselt_maximum", (heat.maximum_1 + heat.maximum_2) / 2},
+          {"nusselt_minimum", (heat.minimum_1 + heat.minimum_2) / 2},
+          {"velocity_maximum", (flow.maximum_1 + flow.maximum_2) / 2},
+          {"velocity_minimum", (flow.minimum_1 + flow.minimum_2) / 2},
           {"nusselt_maximum_1", heat.maximum_1},
           {"nusselt_minimum_1", heat.minimum_1},
           {"nusselt_maximum_2", heat.maximum_2},
@@ -201,7 +207,7 @@ Measured measure_march(const Problem& p, int grids, const std::vector<std::strin
     heat = beats(last.time, last.nusselt, p.cycles);
     flow = beats(last.time, last.velocity, p.cycles);
     if (heat.cycles < 2 || flow.cycles < 2)
-      throw SolveError(fmt::format("no cycle of two beats on {} x {} by time {:g}", grid.radial,
+      throw SolveError(fmt::format("no cycle of two beats (or of like ones) on {} x {} by time {:g}", grid.radial,
                                    grid.lateral, p.march.end_time));
     append(values, cycle_quantities(heat, flow));
   }

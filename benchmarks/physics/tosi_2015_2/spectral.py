@@ -1,4 +1,4 @@
-"""Steady convection of Tosi et al. (2015), cases 1 to 4, by a method that shares nothing with the program.
+"""Steady convection of Tosi et al. (2015), cases 1 to 4 and 5b where it is steady, by a method that shares nothing with the program.
 
 Chebyshev collocation in x and z of
     4 (eta psi_xz)_xz + (d_zz - d_xx) eta (psi_zz - psi_xx) = Ra T_x,      u = psi_z, w = -psi_x,
@@ -8,7 +8,7 @@ Chebyshev collocation in x and z of
 free slip on all sides (psi = 0 and psi_zz - psi_xx = 0), T = 1 at z = 0, T = 0 at z = 1, T_x = 0 at the sides; Newton on psi and T
 together with dense matrices. It starts from a snapshot of a run (needs VTK to read it), so it confirms a state, it does not find it:
 
-    /usr/bin/python3 spectral.py RUN_FOLDER CASE NX NZ      CASE: 1 2 3 4
+    /usr/bin/python3 spectral.py RUN_FOLDER CASE NX NZ      CASE: 1 2 3 4, or the sigma_Y of case 5b, as in 5b:3.5
 """
 
 import os
@@ -64,7 +64,7 @@ def viscosity(t, square_rate, depth, dz, sigma):
 
 def main():
     folder, case, nx, nz = sys.argv[1], sys.argv[2], int(sys.argv[3]), int(sys.argv[4])
-    contrast, sigma = CASES[case]
+    contrast, sigma = (10.0, float(case[3:])) if case.startswith("5b:") else CASES[case]
     x, dx1, wx = chebyshev(nx, 1.0)
     z, dz1, wz = chebyshev(nz, 1.0)
     shape = (nx + 1, nz + 1)
