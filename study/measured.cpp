@@ -145,7 +145,8 @@ Measured measure_relaxed(const Problem& p, int grids, const std::vector<std::str
     m.end = std::move(r.end);
   }
   for (const std::string& name : wanted)
-    m.bars[name] = error_bar(values[name], *std::max_element(lacks[name].begin(), lacks[name].end()));
+    m.bars[name] =
+        error_bar(values[name], *std::max_element(lacks[name].begin(), lacks[name].end()));
   return m;
 }
 
@@ -177,8 +178,8 @@ Marched march_on(const Problem& p, const Grid& grid, const StoredTemperature& st
   return m;
 }
 
-/// The source of Blankenbach's case 3 lists minima of the velocity by size, not by what they follow.
-/// Where all beats are alike, those of one beat are what is meant.
+/// The source of Blankenbach's case 3 lists minima of the velocity by size, not by what they
+/// follow. Where all beats are alike, those of one beat are what is meant.
 std::map<std::string, double> cycle_quantities(const Beats& heat, const Beats& flow) {
   return {{"period", heat.period},
           {"beat", heat.period / 2},
@@ -207,8 +208,9 @@ Measured measure_march(const Problem& p, int grids, const std::vector<std::strin
     heat = beats(last.time, last.nusselt, p.cycles);
     flow = beats(last.time, last.velocity, p.cycles);
     if (heat.cycles < 2 || flow.cycles < 2)
-      throw SolveError(fmt::format("no cycle of two beats (or of like ones) on {} x {} by time {:g}", grid.radial,
-                                   grid.lateral, p.march.end_time));
+      throw SolveError(
+          fmt::format("no cycle of two beats (or of like ones) on {} x {} by time {:g}",
+                      grid.radial, grid.lateral, p.march.end_time));
     append(values, cycle_quantities(heat, flow));
   }
   Measured m = with_bars(values, wanted, march_floor);

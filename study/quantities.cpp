@@ -61,7 +61,8 @@ TurningPoint midline_extremum(const SteadyView& s, int sign, double from, double
 TurningPoint inner_minimum(const SteadyView& s) { return midline_extremum(s, -1, 0, 0.5); }
 TurningPoint outer_maximum(const SteadyView& s) { return midline_extremum(s, 1, 0.5, 1); }
 
-/// sign * ln(viscosity), line by line from the inner wall to the outer one; each line with its ends.
+/// sign * ln(viscosity), line by line from the inner wall to the outer one; each line with its
+/// ends.
 std::vector<Line> log_viscosity(const SteadyView& s, int sign) {
   const Geometry& g = geometry(s);
   const CellField& eta = s.snapshot.viscosity;
