@@ -1,6 +1,7 @@
 #include "solver/conjugate_gradients.hpp"
 
 #include <cmath>
+#include <limits>
 
 namespace lidwright {
 
@@ -70,6 +71,7 @@ PetscErrorCode ConjugateGradients::convergence_callback(KSP, PetscInt n, PetscRe
 
 ConjugateGradients::Report ConjugateGradients::solve(Vec f, Vec x, const Stop& stop) {
   stop_ = stop;
+  first_norm_ = norm_ = std::numeric_limits<double>::quiet_NaN();  // should PETSc give up before us
   // Our own test decides; PETSc's limit only has to be out of its way.
   check(KSPSetTolerances(ksp_, PETSC_DEFAULT, PETSC_DEFAULT, PETSC_DEFAULT,
                          stop.most_iterations + 1));

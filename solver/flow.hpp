@@ -16,7 +16,9 @@ struct [[nodiscard]] FlowReport {
   bool converged = false;
   int iterations = 0;
   int applications = 0;  ///< of the factor
-  double error = 0;      ///< relative velocity error in the dissipation norm, estimated
+  /// Relative velocity error in the dissipation norm, estimated: by a factor of an earlier secant
+  /// operator, that is, as if the rock were as stiff against changes of flow as against flow.
+  double error = 0;
   // Where viscosity depends on the rate of strain:
   int newton_steps = 0;       ///< fixed-point steps among them
   int fixed_point_steps = 0;  ///< where Newton's method made no way

@@ -47,13 +47,15 @@ double foot_of_tangent(const Slopes& s, std::size_t k) {
 }  // namespace
 
 Interior interior(const DepthProfile& p, const WallGradients& g) {
-  constexpr int most = 200;
+  constexpr int most = 1000;
+  const auto [least, largest] = std::minmax_element(p.temperature.begin(), p.temperature.end());
+  const double tolerance = 1e-13 * (*largest - *least);
   double t = mean_between(p.depth, p.temperature, p.area, p.depth.front(), p.depth.back());
   for (int n = 0; n < most; ++n) {
     const Interior guess = between_layers(p, g, t);
     const double mean = mean_between(p.depth, p.temperature, p.area, guess.begin, guess.end);
     if (std::isnan(mean)) break;
-    if (std::abs(mean - t) <= 1e-13 * std::abs(mean)) return between_layers(p, g, mean);
+    if (std::abs(mean - t) <= tolerance) return between_layers(p, g, mean);
     t = mean;
   }
   return {undefined, undefined, undefined};

@@ -56,10 +56,10 @@ void March::solve_flow() {
       "relative error {:.2e} after ",
       steps_, time_, report.error);
   if (model_.nonlinear())
-    throw SolveError(
-        fmt::format("{}{} Newton steps. Raise flow.most_newton_steps, loosen flow.tolerance, raise "
-                    "viscosity.lowest or viscosity.yielding.floor, or refine the grid",
-                    when, report.newton_steps));
+    throw SolveError(fmt::format(
+        "{}{} Newton steps. Raise flow.most_newton_steps, loosen flow.tolerance, raise "
+        "viscosity.lowest{}, or refine the grid",
+        when, report.newton_steps, model_.yielding ? " or viscosity.yielding.floor" : ""));
   throw SolveError(fmt::format(
       "{}{} iterations with a fresh factor. Raise flow.most_iterations, loosen flow.tolerance, "
       "narrow the viscosity with viscosity.lowest and viscosity.highest, or refine the grid",

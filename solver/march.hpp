@@ -56,7 +56,7 @@ class March {
   March(const Model&, const FlowSettings&, const HeatSettings&, MPI_Comm);
   void solve_flow();
   StateView view() const {
-    return {power(), heat(), temperature_, psi_, model_.rayleigh, model_.viscosity};
+    return {power(), heat(), temperature_, psi_, model_.rayleigh, model_.creep()};
   }
   double content_change(const CellField& next) const;
   HeatStepper::Forcing foreseen(double dt) const;

@@ -45,10 +45,10 @@ double NonlinearFlow::work(Vec f, const CornerField& psi) const {
   return dot(f, x);
 }
 
-/// A Newton step as exact as it pays: the next one starts from about the square of this one's error
-/// (Eisenstat & Walker 1996, SIAM J. Sci. Comput. 17, 16).
-ConjugateGradients::Report NonlinearFlow::direction(Vec downhill, double forcing, double absolute,
-                                                    Vec change) {
+/// A Newton step, inexact (Dembo, Eisenstat & Steihaug 1982, SIAM J. Numer. Anal. 19, 400): solved
+/// to a thirtieth, as the kinks of the laws leave no more to be gained (docs/performance.md).
+ConjugateGradients::Report NonlinearFlow::direction(Vec downhill, double absolute, Vec change) {
+  constexpr double forcing = 0.03;
   check(VecSet(change, 0));
   auto report = gradients_.solve(downhill, change, {forcing, absolute, settings_.most_iterations});
   if (report.iterations > settings_.refactor_cost && !factor_fresh_) {
@@ -111,31 +111,60 @@ void NonlinearFlow::step_among_former_flows(Vec f, CornerField& psi) {
           psi);
 }
 
-/// One Newton step; true when none was needed.
-bool NonlinearFlow::step(Vec f, CornerField& psi) {
+/// Tests the state and takes one step, Newton's or, where the former one made no way, of
+/// fixed-point iteration.
+NonlinearFlow::Progress NonlinearFlow::step(Vec f, bool may_move, CornerField& psi) {
   const Handle<Vec, VecDestroy> downhill = unknown_vector(power_.decomposition()),
                                 change = unknown_vector(power_.decomposition());
   gradient(f, downhill);
   const double reference = std::sqrt(std::max(0.0, work(f, psi)));
-  const double target = settings_.tolerance * reference;
-  const double forcing = 0.03;
-  const auto report = direction(downhill, forcing, 0.3 * target, change);
+  const auto report = direction(downhill, 0.3 * settings_.tolerance * reference, change);
   const double scale = std::max(reference, last_.newton_steps == 0 ? report.first_norm : 0);
-  last_.error = scale > 0 ? report.first_norm / scale : 0;
+  last_.error = report.first_norm == 0 ? 0 : report.first_norm / scale;
   last_.iterations += report.iterations;
   age_.used(report.iterations + 1);
-  if (last_.error <= settings_.tolerance) return true;
+  if (last_.error <= settings_.tolerance) {
+    scale_to_least_power(downhill, psi);
+    return Progress::There;
+  }
+  if (!may_move || !std::isfinite(last_.error)) return Progress::Lost;
 
   power_.from_unknowns(change, work_psi_);
   const double length = go_down(f, downhill, CornerField(work_psi_), psi);
   ++last_.newton_steps;
-  const bool stuck = length < 0.02;
-  if (stuck) ++last_.fixed_point_steps;
-  functional_.use_secant(stuck);
+  if (fixed_point_) ++last_.fixed_point_steps;
+  if (length == 0 && fixed_point_) return Progress::Lost;
+  fixed_point_ = length < 0.02;
+  functional_.use_secant(fixed_point_);
+  const double force_work = work(f, psi);
   if (on_step_)
-    on_step_(
-        {last_.newton_steps, last_.error, report.iterations, length, work(f, psi), functional_});
-  return false;
+    on_step_({last_.newton_steps, last_.error, report.iterations, length, force_work, functional_});
+  return Progress::Moved;
+}
+
+/// The multiple of a flow with the least power, by one Newton step along it: dissipation then
+/// equals the work of the force to the square of the error.
+void NonlinearFlow::scale_to_least_power(Vec downhill, CornerField& psi) {
+  functional_.tangent(psi, work_force_);
+  const Handle<Vec, VecDestroy> stiff = unknown_vector(power_.decomposition());
+  power_.to_unknowns(work_force_, stiff);
+  const double curvature = work(stiff, psi);
+  if (!(curvature > 0)) return;
+  const double length = work(downhill, psi) / curvature;
+  functional_.set_direction(psi);
+  functional_.go(length);
+  functional_.accept();
+  for (double& x : psi.values()) x *= 1 + length;
+}
+
+bool NonlinearFlow::descend(Vec f, CornerField& psi) {
+  Progress progress = Progress::Moved;
+  for (int n = 0; progress == Progress::Moved; ++n) {
+    progress = step(f, n < settings_.most_newton_steps, psi);
+    factor_fresh_ = false;
+    if (age_.stale()) refactor();
+  }
+  return progress == Progress::There;
 }
 
 FlowReport NonlinearFlow::solve(std::vector<LocalFlowLaw> laws, const RadialFaceField& b,
@@ -148,27 +177,23 @@ FlowReport NonlinearFlow::solve(std::vector<LocalFlowLaw> laws, const RadialFace
 FlowReport NonlinearFlow::solve(std::vector<LocalFlowLaw> laws, const CornerField& force,
                                 CornerField& psi) {
   last_ = {};
+  factor_fresh_ = fixed_point_ = false;
   functional_.set_laws(std::move(laws));
   functional_.use_secant(false);
-  bool shear_shared = factor_.ready();
-  functional_.begin(psi, shear_shared ? power_.viscosity_field() : ViscosityField{});
-  if (!factor_.ready() || age_.stale()) refactor();
+  const bool first = !factor_.ready();
+  functional_.begin(psi, first ? ViscosityField{} : power_.viscosity_field());
+  if (first || age_.stale()) refactor();
   const Handle<Vec, VecDestroy> f = unknown_vector(power_.decomposition());
   work_force_ = force;
   power_.to_unknowns(work_force_, f);
   step_among_former_flows(f, psi);
   const long before = applications();
-  while (!last_.converged && last_.newton_steps <= settings_.most_newton_steps) {
-    last_.converged = step(f, psi);
-    factor_fresh_ = false;
-    if (age_.stale()) refactor();
-    if (!shear_shared && last_.converged) {
-      // The first flow's own viscosities: by these shares, the power falls again. On the way there
-      // the flow depends on round-off, and the shares would keep that.
-      functional_.begin(psi, functional_.viscosity());
-      shear_shared = true;
-      last_.converged = false;
-    }
+  last_.converged = descend(f, psi);
+  if (first && last_.converged) {
+    // The first flow's own viscosities: by these shares, the power falls again. On the way there
+    // the flow depends on round-off, and the shares would keep that.
+    functional_.begin(psi, functional_.viscosity());
+    last_.converged = descend(f, psi);
   }
   power_.set_viscosity(functional_.viscosity());
   former_.remember(psi);

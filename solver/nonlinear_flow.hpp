@@ -32,7 +32,7 @@ class NonlinearFlow {
     double force_work;  ///< f . psi after it
     const NonlinearPower& functional;
   };
-  /// Calls `on_step` after every step.
+  /// Calls `on_step` after every step, on all ranks that set it.
   void watch(std::function<void(const Step&)> on_step) { on_step_ = std::move(on_step); }
 
   /// With the secant viscosity of the last flow.
@@ -48,12 +48,15 @@ class NonlinearFlow {
  private:
   void refactor();
   void gradient(Vec f, Vec downhill);
-  ConjugateGradients::Report direction(Vec downhill, double forcing, double absolute, Vec change);
+  ConjugateGradients::Report direction(Vec downhill, double absolute, Vec change);
   double work(Vec f, const CornerField& psi) const;
   double line_search(double start, double force_along);
   double go_down(Vec f, Vec downhill, const CornerField& direction, CornerField& psi);
   void step_among_former_flows(Vec f, CornerField& psi);
-  bool step(Vec f, CornerField& psi);
+  enum class Progress { There, Moved, Lost };
+  Progress step(Vec f, bool may_move, CornerField& psi);
+  void scale_to_least_power(Vec downhill, CornerField& psi);
+  bool descend(Vec f, CornerField& psi);
 
   FlowSettings settings_;
   Power power_;
@@ -63,7 +66,7 @@ class NonlinearFlow {
   CornerField work_psi_, work_force_;
   FormerFlows former_;
   FactorAge age_;
-  bool factor_fresh_ = false;
+  bool factor_fresh_ = false, fixed_point_ = false;
   long factorisations_ = 0;
   FlowReport last_;
   std::function<void(const Step&)> on_step_;

@@ -32,6 +32,11 @@ struct Model {
 
   /// Does the viscosity depend on the rate of strain?
   bool nonlinear() const { return dislocation || yielding; }
+  /// Of the creep that is alone, or of diffusion creep: what the temperature scale of the rheology
+  /// and the Frank-Kamenetskii parameter are of.
+  const ViscosityLaw& creep() const {
+    return dislocation && dislocation->alone ? dislocation->viscosity : viscosity;
+  }
 };
 
 /// T = base + modes + noise, clipped nowhere.
