@@ -4,7 +4,7 @@
    just below it dies, one just above goes on.
 2. Under a stagnant lid it stops at a finite strength, where the branch of steady states folds back, below the Rayleigh number of linear
    onset; a march from convection dies below the fold and goes on above it.
-3. A mantle that cools stops convecting when the Rayleigh number of what moves has fallen to some 1e3.
+3. A mantle whose sources fade, or that cools, stops convecting when the Rayleigh number of what moves has fallen to the critical one.
 4. With the same rock and sources, a smaller body has a lid that is a larger part of its mantle.
 
 Called by ctest with the path of the program.
@@ -21,7 +21,10 @@ sys.path.insert(0, os.path.join(HERE, "..", "support", "python"))
 import runs  # noqa: E402
 
 BOX = os.path.join(runs.SOURCE, "benchmarks", "physics", "blankenbach_1989_1a", "case.toml")
-COARSE = runs.settings(grid__radial=32, grid__lateral=32, output__pictures="false")
+COARSE = runs.settings(grid__radial=16, grid__lateral=16, output__pictures="false")
+# Of the unstable layer under a lid: Breuer & Spohn 2006, PSS 54, 153 (from memory). Whole layers between walls have 657.5 to 1707.8; which one
+# holds under a lid depends on what counts as the lid, so that a factor of three must be left.
+LOCAL_CRITICAL = 450
 RADII = (1900, 2150, 2400)  # km
 
 LID = """\
@@ -46,8 +49,10 @@ interior = 0.8
 modes = [{ lateral = 1, radial = 1, amplitude = 0.2 }]
 [transport]
 flux = "central"               # as the steady states have it
+accuracy = 1e-3
+courant = 1
 [march]
-end_time = 4
+end_time = 3
 [settle]
 coarsest = 24
 [output]
@@ -117,13 +122,23 @@ def stops_at_the_critical_rayleigh_number(scratch):
     ends = {}
     for share in (0.97, 1.05):
         folder = scratch.path(f"march_{share}")
-        lidwright("march", BOX, folder, *COARSE, numbers__rayleigh=share * critical, march__end_time=8, march__steady=0)
+        lidwright("march", BOX, folder, *COARSE, numbers__rayleigh=share * critical, march__end_time=4, march__steady=0)
         history = runs.columns(folder)
         half = len(history["time"]) // 2
         ends[share] = history["velocity_rms"][half], history["velocity_rms"][-1], history["nusselt_outer"][-1]
         print(f"  march at {share} Ra_c: v_rms {ends[share][0]:.3g}, then {ends[share][1]:.3g}, Nu {ends[share][2]:.4f}")
-    assert ends[0.97][1] < 0.5 * ends[0.97][0] and abs(ends[0.97][2] - 1) < 1e-3, "it should have died"
+    assert ends[0.97][1] < 0.7 * ends[0.97][0] and abs(ends[0.97][2] - 1) < 1e-3, "it should have died"
     assert ends[1.05][1] > 0.9 * ends[1.05][0] and ends[1.05][2] > 1.05, "it should convect"
+
+
+def rayleigh_of_what_moves(row):
+    """Ra_i with the drop that drives, 2.2 DT_rh, and the thickness below the lid."""
+    drop, lid = 2.2 * float(row["rheological_temperature"]), float(row["lid_thickness_isotherm"])
+    return float(row["rayleigh_internal"]) * drop * (1 - lid) ** 3
+
+
+def is_critical(number):
+    return LOCAL_CRITICAL / 3 < number < LOCAL_CRITICAL * 3
 
 
 def a_lid_stops_at_the_fold(scratch):
@@ -133,43 +148,51 @@ def a_lid_stops_at_the_fold(scratch):
     rows = table(folder, "branch.csv")
     assert any(row["backwards"] == "1" for row in rows), "the branch should fold back"
     fold = min(rows, key=lambda row: float(row["parameter"]))
-    least, nusselt = float(fold["parameter"]), float(fold["nusselt_outer"])
+    least, nusselt, moving = float(fold["parameter"]), float(fold["nusselt_outer"]), rayleigh_of_what_moves(fold)
     onset = lidwright("onset", case, scratch.path("lid_onset"), "--modes", "1:3", "--no-error-bars")
     linear = min(float(row["rayleigh"]) for row in table(onset, "onset.csv"))
     print(f"stagnant lid: the branch folds back at Ra_1 = {least:.4g} (Nu {nusselt:.3f}); linear onset {linear:.4g}")
+    print(f"  Rayleigh number of what moves at its start {rayleigh_of_what_moves(rows[0]):.4g}, at the fold {moving:.4g}")
     assert nusselt > 1.05 and least < 0.8 * linear, "convection should end at a finite strength, below the onset"
+    assert is_critical(moving) and not is_critical(rayleigh_of_what_moves(rows[0])), moving
     steady = lidwright("settle", case, scratch.path("steady"), numbers__rayleigh=1.1 * least)
     start = {"initial__from": steady, "initial__modes": "[]"}
     ends = {}
     for share in (0.95, 1.05):
         march = lidwright("march", case, scratch.path(f"lid_{share}"), numbers__rayleigh=share * least, **start)
         ends[share] = runs.columns(march)["nusselt_outer"][-1]
-        print(f"  march at {share} of it, from convection: Nu {ends[share]:.4f} after 4 diffusion times")
+        print(f"  march at {share} of it, from convection: Nu {ends[share]:.4f} after 3 diffusion times")
     assert abs(ends[0.95] - 1) < 1e-3 and ends[1.05] > nusselt, ends
 
 
-def a_cooling_mantle_stops(scratch):
-    """Ra_rh (1 - lid)^3: the drop that drives, 2.2 DT_rh, over the thickness that moves.
-
-    Critical numbers of a layer are 657.5 to 1707.8 (bottom heated), those of lids 450 to 1000 and more: "some 1e3" is 300 to 3000.
-    """
+def sources_that_fade(scratch):
+    """So slowly that the mantle is steady all the time."""
     case = scratch.write("cooling.toml", COOLING)
-    folder = lidwright("march", case, scratch.path("cooling"))
-    h = runs.columns(folder)
+    folder = scratch.path("fading")
+    start = {"initial__interior": 0.75, "initial__layer_thickness": 0.4, "initial__noise": 0, "heat__uniform": 1.6}
+    one_cell = {"shell__width": 1, "grid__radial": 24, "grid__lateral": 24, "settle__coarsest": 24}
+    one_cell["initial__modes"] = "[{ lateral = 1, amplitude = 0.05 }]"
+    along = ("--along", "heat.uniform=1.6:0.7:2")
+    lidwright("settle", case, folder, *along, code=runs.NOT_SOLVED, **start, **one_cell)
+    rows = [row for row in table(folder, "branch.csv") if float(row["velocity_rms"]) > 0.1]
+    first, last = (rayleigh_of_what_moves(rows[k]) for k in (0, -1))
+    end = f"the last convection at {float(rows[-1]['parameter']):.3f} (v_rms {float(rows[-1]['velocity_rms']):.2f})"
+    print(f"sources that fade under a lid: from {first:.4g}; {end}: {last:.4g}")
+    assert is_critical(last) and not is_critical(first), (first, last)
 
-    def effective(k):
-        drop = 2.2 * h["rheological_temperature"][k]
-        return h["rayleigh_internal"][k] * drop * (1 - h["lid_thickness_isotherm"][k]) ** 3
 
-    steps = range(len(h["time"]))
-    # Convection has stopped when a tenth of the surface's heat is advected nowhere (nan).
-    last = max(k for k in steps if not math.isnan(h["lid_thickness_advection"][k]))
-    # What marks the number as critical: the speed falls as it does and e times faster below it.
-    start, end = effective(1), effective(last)
-    print(f"cooling under a lid: Ra of what moves {start:.3g} at the start; advection dies at t = {h['time'][last]:.3f}, {end:.4g}")
-    assert last < steps[-1], "it should have stopped"
-    assert start > 1e5 and h["velocity_rms"][1] > 100, "it should have convected"
-    return end
+def a_cooling_mantle_stops(scratch):
+    """It is later than critical: what moves still has to be slowed down while the mantle goes on cooling."""
+    case = scratch.write("cooling.toml", COOLING)
+    h = runs.columns(lidwright("march", case, scratch.path("cooling")))
+    moving = [rayleigh_of_what_moves({name: h[name][k] for name in h}) for k in range(len(h["time"]))]
+    # Stopped: at no depth is a tenth of the surface's heat advected.
+    last = max(k for k, depth in enumerate(h["lid_thickness_advection"]) if not math.isnan(depth))
+    print(f"cooling under a lid: from {moving[1]:.3g} (v_rms {h['velocity_rms'][1]:.3g}); advection stops at t = "
+          f"{h['time'][last]:.3f}: {moving[last]:.4g} (v_rms {h['velocity_rms'][last]:.2g})")
+    assert h["time"][last] < 0.9 * h["time"][-1], "it should have stopped"
+    assert h["velocity_rms"][1] > 100 and moving[1] > 100 * LOCAL_CRITICAL, "it should have convected"
+    assert is_critical(moving[last]), moving[last]
 
 
 def a_smaller_body_has_a_larger_lid(scratch):
@@ -192,6 +215,7 @@ def main():
     with runs.Scratch() as scratch:
         stops_at_the_critical_rayleigh_number(scratch)
         a_lid_stops_at_the_fold(scratch)
+        sources_that_fade(scratch)
         a_cooling_mantle_stops(scratch)
         a_smaller_body_has_a_larger_lid(scratch)
 
