@@ -223,12 +223,6 @@ TEST(SteadyRecords, ACycleIsKnownWhereItsPeriodsAreAlike) {
   EXPECT_TRUE(summary_of(cycle(40)).drifting());
 }
 
-TEST(SteadyRecords, ThreePeriodsMakeNoSteadyCycle) {
-  const RecordSummary s = summary_of(
-      sampled([](double t) { return 5 + std::sin(2 * pi * t) + std::exp(-2 * t); }, 7, 1000));
-  EXPECT_NE(s.finding, Finding::Steady) << s.words;
-}
-
 TEST(UndefinedRecords, AreSkippedRowByRow) {
   Series s = sampled([](double t) { return t < 5 ? 1 : 2; }, 20);
   for (std::size_t k = 0; k < s.size(); k += 3) s.value[k] = nan;
