@@ -17,7 +17,7 @@ struct StatisticsSettings {
                              ///< and is no drift; in (0, 1)
   double steady = 5e-3;  ///< range over the last half, of the mean, that is a steady state; in (0,
                          ///< 1). Of the means over whole periods: a steady cycle
-  double scale = 0;  ///< changes are taken of the mean or of this, whichever is larger; >= 0
+  double scale = 0;      ///< changes are taken of the mean or of this, whichever is larger; >= 0
   double false_drift = 0.01;  ///< share of settled records that may be called drifting, in (0, 1)
   /// The same where a start-up was left out, which may be the first half of a drift.
   double false_drift_after_start_up = 0.05;
