@@ -57,10 +57,14 @@ Setter real(double& target, bool positive = false) {
 
 Setter way(How& target) {
   return [&target](const toml::node& n) {
-    static const std::map<std::string, How> ways{
-        {"settle", How::Settle}, {"march", How::March}, {"onset", How::Onset}, {"flow", How::Flow}};
+    static const std::map<std::string, How> ways{{"settle", How::Settle},
+                                                 {"relax", How::Relax},
+                                                 {"march", How::March},
+                                                 {"onset", How::Onset},
+                                                 {"flow", How::Flow}};
     const auto found = ways.find(n.value_or(std::string()));
-    if (found == ways.end()) return "must be \"settle\", \"march\", \"onset\" or \"flow\"";
+    if (found == ways.end())
+      return "must be \"settle\", \"relax\", \"march\", \"onset\" or \"flow\"";
     target = found->second;
     return "";
   };

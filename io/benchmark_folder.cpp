@@ -137,6 +137,10 @@ Problem problem(const BenchmarkFile& head, const std::string& case_path, const T
     refuse(row.place, fmt::format("settings: {}", e.what()));
   }
   check_grids(p.model.grid, head.grids, row.place);
+  if (head.how == How::Relax && !(p.march.steady > 0))
+    refuse(row.place,
+           "march.steady must be greater than 0: how = \"relax\" marches until the rate of change "
+           "is below it");
   if (head.how == How::Settle) refuse_nonlinear(p.model, Linearised::SteadyState, row.place);
   if (head.how == How::Onset) refuse_nonlinear(p.model, Linearised::Onset, row.place);
   return p;

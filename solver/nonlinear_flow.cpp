@@ -132,6 +132,9 @@ bool NonlinearFlow::step(Vec f, CornerField& psi) {
   const bool stuck = length < 0.02;
   if (stuck) ++last_.fixed_point_steps;
   functional_.use_secant(stuck);
+  if (on_step_)
+    on_step_(
+        {last_.newton_steps, last_.error, report.iterations, length, work(f, psi), functional_});
   return false;
 }
 
@@ -159,8 +162,9 @@ FlowReport NonlinearFlow::solve(std::vector<LocalFlowLaw> laws, const CornerFiel
     last_.converged = step(f, psi);
     factor_fresh_ = false;
     if (age_.stale()) refactor();
-    if (!shear_shared && last_.error < 1e-2) {
-      // The first flow's own viscosities: by these shares, the power falls again.
+    if (!shear_shared && last_.converged) {
+      // The first flow's own viscosities: by these shares, the power falls again. On the way there
+      // the flow depends on round-off, and the shares would keep that.
       functional_.begin(psi, functional_.viscosity());
       shear_shared = true;
       last_.converged = false;

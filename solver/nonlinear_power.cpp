@@ -253,17 +253,26 @@ double NonlinearPower::yielding_share() const {
 
 namespace {
 
-/// Pi(e) = integral of 4 eta e de, by Simpson's rule on intervals that shrink towards 0, where laws
-/// bend.
+/// Simpson's rule on [a, b], halved until its error is about `error`: laws bend where they
+/// yield or are cut off.
+template <class F>
+double simpson(const F& f, double a, double fa, double b, double fb, double error, int halvings) {
+  const double m = (a + b) / 2, fm = f(m), left = f((a + m) / 2), right = f((m + b) / 2);
+  const double once = (b - a) * (fa + 4 * fm + fb) / 6,
+               twice = (b - a) * (fa + 4 * left + 2 * fm + 4 * right + fb) / 12;
+  if (halvings == 0 || std::abs(twice - once) <= 15 * error) return twice + (twice - once) / 15;
+  return simpson(f, a, fa, m, fm, error / 2, halvings - 1) +
+         simpson(f, m, fm, b, fb, error / 2, halvings - 1);
+}
+
+/// Pi(e) = integral of 4 eta e de, on intervals that shrink towards 0, down to what is negligible:
+/// as the stress never falls with the rate, the rest is no more than rate * slope.
 double dissipation_potential(const LocalFlowLaw& law, double rate) {
   const auto slope = [&](double e) { return 4 * law(e).viscosity * e; };
-  double sum = 0, top = rate;
-  for (int n = 0; n < 400 && top > 0; ++n) {
-    const double bottom = n == 399 ? 0 : 0.9 * top;
-    const double middle = (top + bottom) / 2;
-    sum += (top - bottom) * (slope(top) + 4 * slope(middle) + (bottom > 0 ? slope(bottom) : 0)) / 6;
-    top = bottom;
-  }
+  const double error = 1e-11 * rate * slope(rate);
+  double sum = 0;
+  for (double top = rate; top * slope(top) > error; top /= 2)
+    sum += simpson(slope, top / 2, slope(top / 2), top, slope(top), error, 20);
   return sum;
 }
 

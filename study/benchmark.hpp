@@ -13,7 +13,13 @@
 namespace lidwright {
 
 /// By which of the solver's ways a benchmark's quantities are found.
-enum class How { Settle, March, Onset, Flow };
+enum class How {
+  Settle,  ///< a steady state, by Newton's method
+  Relax,   ///< a steady state, by marching until it is one
+  March,   ///< a cycle in time
+  Onset,
+  Flow
+};
 
 /// Where a published value comes from, which says how far it may be trusted.
 enum class Mark {
@@ -44,7 +50,7 @@ struct Problem {
   HeatSettings heat;
   MarchSettings march;
   SettleSettings settle;
-  StoredTemperature start;  ///< How::Settle: a state near by; empty: the initial settings
+  StoredTemperature start;  ///< Settle, Relax: a state near by; empty: the initial settings
   Forcing forcing;          ///< How::Flow
   int cycles = 9;           ///< How::March: the last ones, over which means are taken
 };

@@ -12,7 +12,7 @@ namespace lidwright {
 
 struct Measured {
   std::map<std::string, ErrorBar> bars;
-  StoredTemperature end;  ///< How::Settle: of the steady state on the finest grid
+  StoredTemperature end;  ///< Settle, Relax: of the steady state on the finest grid
 };
 
 /// How the work is watched.

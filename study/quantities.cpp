@@ -61,6 +61,43 @@ TurningPoint midline_extremum(const SteadyView& s, int sign, double from, double
 TurningPoint inner_minimum(const SteadyView& s) { return midline_extremum(s, -1, 0, 0.5); }
 TurningPoint outer_maximum(const SteadyView& s) { return midline_extremum(s, 1, 0.5, 1); }
 
+/// sign * ln(viscosity), line by line from the inner wall to the outer one; each line with its
+/// ends.
+std::vector<Line> log_viscosity(const SteadyView& s, int sign) {
+  const Geometry& g = geometry(s);
+  const CellField& eta = s.snapshot.viscosity;
+  Line height, lateral;
+  for (int i = 0; i < g.radial_cells(); ++i) height.push_back(g.cell_radius(i));
+  for (int j = 0; j < g.lateral_cells(); ++j) lateral.push_back(g.cell_lateral(j));
+  std::vector<Line> rows;
+  for (int i = 0; i < g.radial_cells(); ++i) {
+    Line row;
+    for (int j = 0; j < g.lateral_cells(); ++j) row.push_back(sign * std::log(eta[{i, j}]));
+    if (g.shell().sides == Sides::Reflecting) {
+      const double left = at_left(s, lateral, row), right = at_right(s, lateral, row);
+      row.insert(row.begin(), left);
+      row.push_back(right);
+    }
+    rows.push_back(row);
+  }
+  Line inner, outer, column;
+  for (std::size_t j = 0; j < rows.front().size(); ++j) {
+    column.clear();
+    for (const Line& row : rows) column.push_back(row[j]);
+    inner.push_back(interpolated(height, column, g.inner_radius()));
+    outer.push_back(interpolated(height, column, g.outer_radius()));
+  }
+  rows.insert(rows.begin(), inner);
+  rows.push_back(outer);
+  return rows;
+}
+
+double highest(const std::vector<Line>& lines) {
+  double most = lines.front().front();
+  for (const Line& line : lines) most = std::max(most, *std::max_element(line.begin(), line.end()));
+  return most;
+}
+
 using Quantity = double (*)(const SteadyView&);
 
 template <double HistoryRow::*member>
@@ -95,6 +132,10 @@ const std::map<std::string, Quantity>& table() {
       {"surface_speed_max", surface_speed_max},
       {"surface_flux_mean", surface_flux_mean},
       {"dissipation_mean", dissipation_mean},
+      {"work_over_rayleigh", work_over_rayleigh},
+      {"dissipation_over_rayleigh", dissipation_over_rayleigh},
+      {"viscosity_min", viscosity_min},
+      {"viscosity_max", viscosity_max},
       {"dissipation_heating", dissipation_heating},
       {"adiabatic_cooling", adiabatic_cooling},
   };
@@ -139,6 +180,16 @@ double surface_flux_mean(const SteadyView& s) {
 double dissipation_mean(const SteadyView& s) {
   return s.row.dissipation / geometry(s).total_volume();
 }
+double work_over_rayleigh(const SteadyView& s) {
+  return s.row.buoyancy_work / (s.model.rayleigh * geometry(s).total_volume());
+}
+double dissipation_over_rayleigh(const SteadyView& s) {
+  return s.row.dissipation / (s.model.rayleigh * geometry(s).total_volume());
+}
+
+double viscosity_min(const SteadyView& s) { return std::exp(-highest(log_viscosity(s, -1))); }
+double viscosity_max(const SteadyView& s) { return std::exp(highest(log_viscosity(s, 1))); }
+
 double dissipation_heating(const SteadyView& s) {
   return s.row.viscous_heating / geometry(s).total_volume();
 }

@@ -42,6 +42,15 @@ double surface_speed_max(const SteadyView&);
 double surface_flux_mean(const SteadyView&);
 /// Dissipation over volume, eta kappa^2/d^4.
 double dissipation_mean(const SteadyView&);
+/// <rho alpha g T u_r>: work of the buoyancy over volume and Ra, kappa DeltaT/d. In the steady
+/// Boussinesq box Nu - 1.
+double work_over_rayleigh(const SteadyView&);
+/// <tau : e>/Ra: dissipation over volume and Ra.
+double dissipation_over_rayleigh(const SteadyView&);
+/// Least and largest viscosity, walls and sides included: its logarithm is continued from the cells
+/// to the walls, and to reflecting sides, about which it is even.
+double viscosity_min(const SteadyView&);
+double viscosity_max(const SteadyView&);
 /// (Di/Ra) <tau : e>: heat produced by dissipation, volume mean, k DeltaT/d^2 (phi of King et al.
 /// 2010).
 double dissipation_heating(const SteadyView&);

@@ -146,6 +146,17 @@ TEST_F(BenchmarkFolder, RefusesToLineariseWhatYields) {
   expect("onset", "rayleigh_critical", "at rest nothing yields");
 }
 
+TEST_F(BenchmarkFolder, MarchesWhatYieldsUntilItIsSteady) {
+  put("benchmark.toml",
+      "title = \"x\"\nreference = \"y\"\nhow = \"relax\"\ngrids = 2\nquick = true\n");
+  expect_refused("nusselt_outer,viscosity.yielding.cohesion=3,1,,published,,own\n",
+                 "march.steady must be greater than 0");
+  put("expected.csv",
+      "quantity,settings,value,mark,source\n"
+      "nusselt_outer,viscosity.yielding.cohesion=3; march.steady=1e-3,1,published,own\n");
+  EXPECT_EQ(read().how, How::Relax);
+}
+
 TEST_F(BenchmarkFolder, RefusesATableWithOtherColumns) {
   put("expected.csv", "quantity,value,mark\nvelocity_rms,1,analytic\n");
   EXPECT_THAT(refusal(), HasSubstr("the column 'source' is missing"));

@@ -1,6 +1,7 @@
 #include <gtest/gtest.h>
 
 #include <cmath>
+#include <limits>
 #include <numbers>
 
 #include "mesh/gather.hpp"
@@ -34,12 +35,23 @@ struct NamedModel {
 };
 void PrintTo(const NamedModel& m, std::ostream* out) { *out << m.name; }
 
+/// The lid yields, and hot rock creeps by dislocations too.
+Model yielding_lid(const Shell& shell, YieldingLaw law) {
+  Model m = lid(shell, Slip::Free, Slip::Free);
+  m.viscosity.exponential = ExponentialViscosity{1e5, 1, 1};
+  m.dislocation = DislocationCreep{m.viscosity, 3, 1e4, false};
+  m.yielding = Yielding{law, 1e4, 0.1, 1e5, std::numeric_limits<double>::infinity(), 1e-2};
+  return m;
+}
+
 std::vector<NamedModel> models() {
   const Shell circle{Shape::SphericalAnnulus, 0.55 / 0.45, 0, 2 * pi, Sides::Periodic};
   const Shell meridian{Shape::AxisymmetricShell, 0.55 / 0.45, 0, pi, Sides::Reflecting};
   return {{"CircleSlipping", lid(circle, Slip::Free, Slip::Free)},
           {"CircleGripping", lid(circle, Slip::None, Slip::Free)},
-          {"Meridian", lid(meridian, Slip::Free, Slip::None)}};
+          {"Meridian", lid(meridian, Slip::Free, Slip::None)},
+          {"Yielding", yielding_lid(circle, YieldingLaw::Minimum)},
+          {"YieldingByHarmonicMean", yielding_lid(meridian, YieldingLaw::HarmonicMean)}};
 }
 
 InitialSettings lively() {

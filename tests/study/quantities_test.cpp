@@ -29,6 +29,10 @@ struct MadeUp {
     const Geometry& g = d->geometry();
     snapshot.temperature = CellField(d);
     snapshot.velocity_radial = CellField(d);
+    snapshot.viscosity = CellField(d);
+    fill(snapshot.viscosity, [&](Cell c) {
+      return std::exp(2 * g.cell_radius(c.i) + std::cos(pi * g.cell_lateral(c.j) / 2));
+    });
     fill(snapshot.temperature,
          [&](Cell c) { return temperature(g.cell_lateral(c.j), g.cell_radius(c.i)); });
     fill(snapshot.velocity_radial, [&](Cell c) { return std::cos(pi * g.cell_lateral(c.j)); });
@@ -43,6 +47,8 @@ struct MadeUp {
     }
     row.heat_flow_outer = 6;
     row.dissipation = 8;
+    row.buoyancy_work = 6;
+    model.rayleigh = 100;
   }
   double operator()(const std::string& name) const {
     return steady_quantity(name, {model, row, snapshot}).value();
@@ -79,10 +85,19 @@ TEST(Quantities, AreMeansOverTheShell) {
   MadeUp s(16);
   EXPECT_NEAR(s("surface_flux_mean"), 3, 1e-14);
   EXPECT_NEAR(s("dissipation_mean"), 4, 1e-14);
+  EXPECT_NEAR(s("work_over_rayleigh"), 0.03, 1e-16);
+  EXPECT_NEAR(s("dissipation_over_rayleigh"), 0.04, 1e-16);
   s.row.viscous_heating = 3;
   s.row.adiabatic_cooling = 5;
   EXPECT_NEAR(s("dissipation_heating"), 1.5, 1e-14);
   EXPECT_NEAR(s("adiabatic_cooling"), 2.5, 1e-14);
+}
+
+/// exp(2 z + cos(pi x/2)) has its extremes in corners, which no cell reaches.
+TEST(Quantities, FindTheExtremesOfViscosityInTheCorners) {
+  const MadeUp s(32);
+  EXPECT_NEAR(s("viscosity_min"), std::exp(-1), 1e-7);
+  EXPECT_NEAR(s("viscosity_max"), std::exp(3), 1e-5);
 }
 
 TEST(Quantities, KnowTheirNames) {
