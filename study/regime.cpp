@@ -188,7 +188,9 @@ void give_evidence(RegimeVerdict& v, const RegimeRecords& r, const Judged& j,
       travel, t.lid_travel));
   if (r.lid_thickness.empty()) return;
   const RecordSummary lid = summarise(r.time, r.lid_thickness, j.settings);
-  if (std::isfinite(lid.mean))
+  if (lid.max == 0)
+    v.evidence.push_back("no lid by the profile of velocity: the surface moves along");
+  else if (std::isfinite(lid.mean))
     v.evidence.push_back(fmt::format("lid {} of the shell's thickness", with_error(lid)));
 }
 

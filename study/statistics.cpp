@@ -191,6 +191,9 @@ std::optional<RecordSummary> steady(const Series& s, const StatisticsSettings& s
   return r;
 }
 
+/// Fewest whole periods of which means that agree make a cycle.
+constexpr std::size_t least_cycles = 4;
+
 RecordSummary of_part(const Series& part) {
   RecordSummary r;
   const Extrema e = extrema(part.value);
@@ -199,6 +202,26 @@ RecordSummary of_part(const Series& part) {
   r.discarded_until = part.time.front();
   r.length = part.length();
   r.mean = interval_means(part, part.time.front(), part.time.back(), 1).front();
+  return r;
+}
+
+/// The same of a cycle that repeats itself: of the means over the whole periods in the last half. A
+/// start-up that fades is otherwise a drift of these means for long, as nothing else scatters them.
+std::optional<RecordSummary> steady_cycle(const Series& s, const StatisticsSettings& settings) {
+  const Series half = after(s, s.middle());
+  if (half.size() < least_rows / 2) return std::nullopt;
+  const Settled periods = settled_part(half, settings.intervals);
+  if (!std::isfinite(periods.period) || periods.x.size() < least_cycles) return std::nullopt;
+  const Extrema e = extrema(periods.x);
+  const double mean = mean_of(periods.x);
+  if (e.range() > settings.steady * size_of(mean, settings)) return std::nullopt;
+  RecordSummary r = of_part(half);
+  r.finding = Finding::Steady;
+  r.mean = mean;
+  r.error = e.range();
+  r.period = periods.period;
+  r.words = fmt::format("a steady cycle: the means over its last {} periods of {:.3g} span {:.2g}",
+                        periods.x.size(), r.period, e.range());
   return r;
 }
 
@@ -308,8 +331,10 @@ RecordSummary summarise(std::span<const double> time, std::span<const double> va
   const bool long_enough = flat && flat->length >= settings.least_time;
   if (long_enough && flat->max - flat->min <= 1e-12 * std::abs(flat->mean)) return *flat;
   r = varying(s, settings);
-  if (r.enough() || !flat) return r;
-  return long_enough ? *flat : hasty(*flat, settings);
+  if (r.enough()) return r;
+  if (flat) return long_enough ? *flat : hasty(*flat, settings);
+  const std::optional<RecordSummary> cycle = steady_cycle(s, settings);
+  return cycle && cycle->length >= settings.least_time ? *cycle : r;
 }
 
 const char* word(Finding f) {

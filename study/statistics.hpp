@@ -15,9 +15,9 @@ struct StatisticsSettings {
   std::size_t intervals = 2048;  ///< most equal intervals a record is averaged over, >= 64
   double negligible = 1e-3;  ///< change over the record, of the mean, that only widens the error
                              ///< and is no drift; in (0, 1)
-  double steady =
-      5e-3;          ///< range over the last half, of the mean, that is a steady state; in (0, 1)
-  double scale = 0;  ///< changes are taken of the mean or of this, whichever is larger; >= 0
+  double steady = 5e-3;  ///< range over the last half, of the mean, that is a steady state; in (0,
+                         ///< 1). Of the means over whole periods: a steady cycle
+  double scale = 0;      ///< changes are taken of the mean or of this, whichever is larger; >= 0
   double false_drift = 0.01;  ///< share of settled records that may be called drifting, in (0, 1)
   /// The same where a start-up was left out, which may be the first half of a drift.
   double false_drift_after_start_up = 0.05;
@@ -27,7 +27,8 @@ struct StatisticsSettings {
 /// What the mean is worth.
 enum class Finding {
   Sound,       ///< settled, and long enough
-  Steady,      ///< the range of the last half is small: the error is this range, a bound
+  Steady,      ///< the range of the last half is small, or that of its means over whole periods:
+               ///< the error is this range, a bound
   Undefined,   ///< too few finite values: the quantity is not defined in this run
   TooShort,    ///< too few correlation times, or shorter than `least_time`
   SlowPeriod,  ///< a swing as long as a third of the record or longer

@@ -205,6 +205,24 @@ TEST(SteadyRecords, TheErrorHoldsTheLimitOfAnApproach) {
   EXPECT_LE(s.mean - s.error, 2);
 }
 
+/// 40 periods about 2, and a start-up that adds 0.3 and fades within 4 of them.
+TEST(SteadyRecords, ACycleIsKnownWhereItsPeriodsAreAlike) {
+  const auto cycle = [](double fades_in) {
+    return sampled(
+        [=](double t) {
+          return 2 + std::pow(std::sin(pi * t), 8) - 35.0 / 128 + 0.3 * std::exp(-t / fades_in);
+        },
+        40, 4000);
+  };
+  const RecordSummary s = summary_of(cycle(4));
+  EXPECT_EQ(s.finding, Finding::Steady) << s.words;
+  EXPECT_NEAR(s.period, 1, 1e-3);
+  EXPECT_LE(std::abs(s.mean - 2), s.error);
+  EXPECT_LE(s.error, 0.01);
+  EXPECT_NEAR(s.max - s.min, 1, 0.01);  // of the swing, not of the means
+  EXPECT_TRUE(summary_of(cycle(40)).drifting());
+}
+
 TEST(UndefinedRecords, AreSkippedRowByRow) {
   Series s = sampled([](double t) { return t < 5 ? 1 : 2; }, 20);
   for (std::size_t k = 0; k < s.size(); k += 3) s.value[k] = nan;
