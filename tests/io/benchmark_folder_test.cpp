@@ -149,11 +149,13 @@ TEST_F(BenchmarkFolder, RefusesToLineariseWhatYields) {
 TEST_F(BenchmarkFolder, MarchesWhatYieldsUntilItIsSteady) {
   put("benchmark.toml",
       "title = \"x\"\nreference = \"y\"\nhow = \"relax\"\ngrids = 2\nquick = true\n");
-  expect_refused("nusselt_outer,viscosity.yielding.cohesion=3,1,,published,,own\n",
-                 "march.steady must be greater than 0");
+  expect_refused(
+      "nusselt_outer,viscosity.yielding.cohesion=3;viscosity.yielding.floor=1,1,,published,,own\n",
+      "march.steady must be greater than 0");
   put("expected.csv",
       "quantity,settings,value,mark,source\n"
-      "nusselt_outer,viscosity.yielding.cohesion=3; march.steady=1e-3,1,published,own\n");
+      "nusselt_outer,viscosity.yielding.cohesion=3;viscosity.yielding.floor=1; "
+      "march.steady=1e-3,1,published,own\n");
   EXPECT_EQ(read().how, How::Relax);
 }
 
