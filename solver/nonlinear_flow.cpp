@@ -208,7 +208,6 @@ void NonlinearFlow::save(Archive& archive) const {
   store_viscosity(power_.viscosity_field(), "flow.viscosity", archive);
   archive.numbers["flow.applications"] = static_cast<double>(applications());
   archive.numbers["flow.factorisations"] = static_cast<double>(factorisations_);
-  archive.numbers["flow.error"] = last_.error;
   age_.save(archive);
 }
 
@@ -219,7 +218,6 @@ void NonlinearFlow::restore(const Archive& archive) {
   power_.set_viscosity(restore_viscosity("flow.viscosity", archive));
   gradients_.set_applications(static_cast<long>(archive.numbers.at("flow.applications")));
   factorisations_ = static_cast<long>(archive.numbers.at("flow.factorisations"));
-  last_.error = archive.numbers.at("flow.error");
   age_.restore(archive);
 }
 

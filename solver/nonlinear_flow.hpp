@@ -40,8 +40,8 @@ class NonlinearFlow {
   const Factor& factor() const { return factor_; }
   long applications() const { return gradients_.applications(); }
   long factorisations() const { return factorisations_; }
-  const FlowReport& last_report() const { return last_; }
 
+  /// Everything the next solve depends on, so that a restart goes on bit for bit.
   void save(Archive&) const;
   void restore(const Archive&);
 

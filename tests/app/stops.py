@@ -7,21 +7,7 @@ import tomllib
 sys.path.insert(0, os.path.join(os.path.dirname(os.path.abspath(__file__)), "..", "support", "python"))
 import runs
 
-BOX = """\
-[numbers]
-rayleigh = 2e4
-[shell]
-geometry = "box"
-[grid]
-radial = 12
-lateral = 12
-[walls.inner]
-temperature = 1
-[walls.outer]
-temperature = 0
-[initial]
-modes = [{ lateral = 1, amplitude = 0.1 }]
-"""
+BOX = runs.SETTLING_BOX
 
 
 def summary(folder):

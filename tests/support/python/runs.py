@@ -65,6 +65,23 @@ checkpoint_every = 20
 snapshot_every = 0.002
 """
 
+# Convection that becomes steady in some hundred steps.
+SETTLING_BOX = """\
+[numbers]
+rayleigh = 2e4
+[shell]
+geometry = "box"
+[grid]
+radial = 12
+lateral = 12
+[walls.inner]
+temperature = 1
+[walls.outer]
+temperature = 0
+[initial]
+modes = [{ lateral = 1, amplitude = 0.1 }]
+"""
+
 
 class Result:
     def __init__(self, code, out, err):
