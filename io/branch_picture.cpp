@@ -65,7 +65,7 @@ class Picture {
   void heading(const std::string& title);
   void chart(const Frame&, const std::string& what, const std::string& unit,
              const std::vector<Shown>&);
-  std::string png() { return canvas_.png(); }
+  std::string png() { return canvas_.bytes(); }
 
  private:
   void dots(const Chart&, const Frame&, const Shown&);

@@ -58,7 +58,7 @@ class Picture {
     draw(canvas_, chart_, frame_);
     for (std::size_t k = 0; k < drawn_.x.size(); ++k) draw_point(k);
   }
-  std::string png() { return canvas_.png(); }
+  std::string png() { return canvas_.bytes(); }
 
  private:
   void draw_heading(const std::string& title);

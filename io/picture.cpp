@@ -10,6 +10,7 @@
 #include <string_view>
 
 #include "io/collective.hpp"
+#include "io/field_raster.hpp"
 #include "io/picture_layout.hpp"
 #include "io/plot_chart.hpp"
 #include "io/run_folder.hpp"
@@ -294,7 +295,7 @@ std::string picture(const PictureContents& c) {
   draw_heading(canvas, c);
   draw_shell(canvas, c, layout);
   draw_charts(canvas, c, layout);
-  return canvas.png();
+  return canvas.bytes();
 }
 
 void draw_run(const std::string& path, const Snapshot& s, const std::string& history_path,
