@@ -6,12 +6,10 @@
 namespace lidwright::plot {
 namespace {
 
-/// Dark violet, blue, vermilion, ochre: lightness rises by 0.115 or more from one to the next in
-/// the order of lightness.
-constexpr std::array<OkLab, curve_colours> looks{{{0.44, -0.045, -0.105},
-                                                  {0.56, 0.175, 0.105},
-                                                  {0.28, 0.035, -0.08},
-                                                  {0.68, 0.02, 0.135}}};
+/// Blue, vermilion, dark violet, ochre: equal steps of lightness; the lightest has a contrast of 3
+/// to white.
+constexpr std::array<OkLab, curve_colours> looks{
+    {{0.41, -0.035, -0.1}, {0.54, 0.165, 0.095}, {0.28, 0.05, -0.09}, {0.67, 0, 0.13}}};
 /// Of the colour map: what is lighter fades on white.
 constexpr double lightest_share = 0.78;
 
@@ -37,10 +35,14 @@ Colour graded_colour(std::size_t k, std::size_t count) {
 std::vector<double> dashes(Pattern pattern, double width) {
   const double w = std::max(width, 1.0);
   switch (pattern) {
-    case Pattern::Dashed: return {4 * w, 2.5 * w};
-    case Pattern::Dotted: return {w, 1.8 * w};
-    case Pattern::DashDotted: return {5 * w, 2 * w, w, 2 * w};
-    case Pattern::Solid: break;
+    case Pattern::Dashed:
+      return {4 * w, 2.5 * w};
+    case Pattern::Dotted:
+      return {w, 1.8 * w};
+    case Pattern::DashDotted:
+      return {5 * w, 2 * w, w, 2 * w};
+    case Pattern::Solid:
+      break;
   }
   return {};
 }

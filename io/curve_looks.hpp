@@ -10,7 +10,7 @@
 namespace lidwright::plot {
 
 enum class Pattern { Solid, Dashed, Dotted, DashDotted };
-enum class Symbol { None, Dot, Ring, Square, Diamond, Triangle };
+enum class Symbol { None, Dot, Ring, Square, Diamond, ArrowHead };
 
 struct CurveLook {
   Colour colour;
