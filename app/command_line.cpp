@@ -136,9 +136,13 @@ void add_figure(CLI::App& app, FigureRequest& request) {
                    "temperature, viscosity, speed, strain-rate, stress,\n"
                    "profiles, history, branch, onset [all the run has]");
   verb->add_option("--format", request.format, "png, svg or pdf [png]")->type_name("FORMAT");
-  verb->add_option("--size", request.size, "one-column, two-column or slide [one-column]")
+  verb->add_option("--size", request.size,
+                   "one-column, two-column or slide [one-column; a film:\n"
+                   "slide]")
       ->type_name("SIZE");
-  verb->add_option("--at", request.at, "Snapshot nearest to TIME, or snapshot:N [the last]")
+  verb->add_option("--at", request.at,
+                   "Snapshot nearest to TIME, in the unit that figures\n"
+                   "show, or snapshot:N [the last]")
       ->type_name("TIME");
   verb->add_option("--with", request.with,
                    "Over a field: flow-lines, arrows, lid, isotherms\n"

@@ -19,7 +19,7 @@ namespace {
 using namespace plot;
 
 constexpr Colour start_up_ground{0.72, 0.76, 0.83};
-constexpr double start_up_opacity = 0.45, band_opacity = 0.3, least_panel = 52;
+constexpr double start_up_opacity = 0.3, band_opacity = 0.3, least_panel = 52;
 /// Frank-Kamenetskii parameter from which the temperature makes a lid possible.
 constexpr double lid_possible = 2;
 
@@ -86,7 +86,8 @@ Interval settled_range(const std::vector<double>& time, const std::vector<double
 Interval shown_range(const Interval& all, const Interval& settled) {
   const double span = std::max(settled.high - settled.low, 0.3 * std::abs(settled.high));
   if (all.high - all.low <= 4 * span) return all;
-  return {std::max(all.low, settled.low - span), std::min(all.high, settled.high + span)};
+  const double more = 0.4 * span;
+  return {std::max(all.low, settled.low - more), std::min(all.high, settled.high + more)};
 }
 
 /// The values of one column as they are shown, and what statistics say of them.
@@ -178,7 +179,7 @@ class PanelMaker {
       text = fmt::format("no mean: {}", word(summary_.finding));
     if (left_out_ > 0)
       text += fmt::format("; {} {} not above 0", left_out_, left_out_ == 1 ? "value" : "values");
-    if (cut_) text += "; the start-up leaves the frame";
+    if (cut_) text += "; start-up leaves the frame";
     return text;
   }
 
@@ -200,6 +201,9 @@ struct Layout {
 };
 
 constexpr double gap = 12, panels_gap = 40;
+
+/// Panels are low: marks stand closer than in other charts.
+int ticks_for(double panel) { return std::max(3, static_cast<int>(panel / 28)); }
 
 Layout layout_for(const FigureStyle& style, int panels, double top) {
   const bool slide = style.size == FigureSize::Slide;
@@ -279,8 +283,7 @@ std::string history_figure(const SavedRun& run, const HistoryOptions& options,
   FigurePage page(style, run.settings.title.empty() ? "Convection in time" : run.settings.title);
   const auto count = static_cast<int>(columns_for(history_of(run), options).size());
   const double panel = layout_for(style, count, page.top()).panel;
-  const std::vector<HistoryPanel> panels =
-      history_panels(run, options, ticks_upright({0, 0, 100, 1.2 * panel}));
+  const std::vector<HistoryPanel> panels = history_panels(run, options, ticks_for(panel));
   page.set_key(key_of(panels));
   const Layout l = layout_for(style, count, page.top());
   if (l.panel < least_panel)

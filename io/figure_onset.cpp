@@ -40,7 +40,8 @@ Drawn points_of(const OnsetCurve& curve) {
 /// Modes are whole numbers: no tick between them.
 Axis mode_axis(const Drawn& d, int most) {
   const double air = 0.5 + 0.01 * (d.x.back() - d.x.front());
-  Axis axis = linear_axis({d.x.front() - air, d.x.back() + air}, most);
+  const Interval range{d.x.front() - air, d.x.back() + air};
+  Axis axis = linear_axis(range, std::min(most, static_cast<int>(range.high - range.low)));
   std::erase_if(axis.ticks, [](const Tick& t) { return t.value != std::round(t.value); });
   return axis;
 }

@@ -241,7 +241,7 @@ std::string profiles_figure(const SavedRun& run, const std::vector<std::size_t>&
                             const FigureStyle& style) {
   const std::vector<std::size_t> shown = shown_snapshots(run, snapshots);
   const bool narrow = style.size == FigureSize::OneColumn;
-  Panels p = PanelMaker(run, shown, narrow ? 3 : 4, narrow ? 4 : 7).panels();
+  Panels p = PanelMaker(run, shown, 4, narrow ? 5 : 7).panels();
   FigurePage page(style, run.settings.title.empty() ? "Means at each depth" : run.settings.title);
   page.set_key(p.key);
   Layout l = layout_for(style.size, static_cast<int>(p.charts.size()));

@@ -93,7 +93,12 @@ Shown shown_time(double longest, const Case& c) {
 
 std::string with_error(double value, double error) {
   const page::Stated s = page::stated(value, error);
-  return s.error.empty() ? s.value : fmt::format("{} \u00b1 {}", s.value, s.error);
+  if (s.error.empty()) return s.value;
+  const std::size_t value_power = s.value.find(" \u00d7 "), error_power = s.error.find(" \u00d7 ");
+  if (value_power == std::string::npos || error_power == std::string::npos)
+    return fmt::format("{} \u00b1 {}", s.value, s.error);
+  return fmt::format("({} \u00b1 {}){}", s.value.substr(0, value_power),
+                     s.error.substr(0, error_power), s.value.substr(value_power));
 }
 
 }  // namespace lidwright

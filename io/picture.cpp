@@ -7,7 +7,9 @@
 #include <numbers>
 
 #include "io/collective.hpp"
+#include "io/colour_bar.hpp"
 #include "io/field_raster.hpp"
+#include "io/flow_lines.hpp"
 #include "io/history_table.hpp"
 #include "io/picture_layout.hpp"
 #include "io/plot_chart.hpp"
@@ -24,13 +26,6 @@ using namespace plot;
 constexpr Colour outer_ink{0.05, 0.38, 0.52}, inner_ink{0.83, 0.27, 0.24},
     profile_ink{0.2, 0.2, 0.28};
 
-/// Four digits, as markup.
-std::string digits_of(double value) {
-  if (value == 0 || std::abs(value) >= 1e-3) return fmt::format("{:.4g}", value);
-  const int exponent = static_cast<int>(std::floor(std::log10(std::abs(value))));
-  return fmt::format("{:.4g} \u00d7 {}", value / std::pow(10.0, exponent), power_of_ten(exponent));
-}
-
 std::string state_heading(const SteadyState& s, const std::string& at, const PictureUnits& units) {
   const std::string where = at.empty() ? "" : " at " + as_markup(at);
   return fmt::format(
@@ -44,8 +39,9 @@ std::string state_heading(const SteadyState& s, const std::string& at, const Pic
 void draw_heading(Canvas& canvas, const PictureContents& c) {
   canvas.text(as_markup(c.title.empty() ? "Convection in time" : c.title), {page_border, 20},
               {0, 0}, {27, ink, Weight::Bold, picture_width - 2 * page_border});
-  const std::string moment = fmt::format(
-      "time {} {}   \u00b7   step {}", digits_of(c.units.time(c.time)), c.units.time.unit, c.step);
+  const std::string moment =
+      fmt::format("time {} {}   \u00b7   step {}", four_digits(c.units.time(c.time)),
+                  c.units.time.unit, c.step);
   canvas.text(c.state.empty() ? moment : c.state, {page_border, 58}, {0, 0},
               {18, faint_ink, Weight::Normal, picture_width - 2 * page_border});
 }
@@ -62,8 +58,9 @@ void draw_shell(Canvas& canvas, const PictureContents& c, const PictureLayout& l
   draw_cells(canvas, map, c.temperature, range);
   draw_flow_lines(canvas, map, c.stream_function, c.temperature, range);
   draw_outline(canvas, map);
-  draw_colour_bar(canvas, linear_axis(shown_span(c), 8),
-                  Label{"temperature", c.units.temperature.unit}, layout.colour_bar);
+  draw_upright_bar(canvas,
+                   {linear_axis(shown_span(c), 8), {"temperature", c.units.temperature.unit}},
+                   layout.colour_bar);
 }
 
 std::vector<Chart> charts_of_profiles(const PictureContents& c, const PictureLayout& layout) {

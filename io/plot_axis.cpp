@@ -139,6 +139,13 @@ std::string written(const Label& l, const Axis& axis) {
   return unit.empty() ? l.what : fmt::format("{} ({})", l.what, unit);
 }
 
+std::string four_digits(double value) {
+  const double size = std::abs(value);
+  if (value == 0 || (size >= 1e-3 && size < 1e5)) return fmt::format("{:.4g}", value);
+  const int exponent = static_cast<int>(std::floor(std::log10(size)));
+  return fmt::format("{:.4g} \u00d7 {}", value / power(exponent), power_of_ten(exponent));
+}
+
 std::string power_of_ten(int exponent) {
   if (exponent == 0) return "1";
   if (exponent == 1) return "10";

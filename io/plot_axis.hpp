@@ -55,6 +55,9 @@ struct Label {
 };
 std::string written(const Label&, const Axis&);
 
+/// A number to four digits, as markup.
+std::string four_digits(double);
+
 /// "10<sup>-3</sup>" with a true minus sign.
 std::string power_of_ten(int exponent);
 

@@ -4,58 +4,12 @@
 #include <cmath>
 #include <numbers>
 
-#include "io/contours.hpp"
-#include "io/field_raster.hpp"
 #include "io/plot_chart.hpp"
 
 namespace lidwright::plot {
 namespace {
 
 using std::numbers::pi;
-
-/// Corner radius and lateral coordinate at fractions of an index.
-double radius_at(const Geometry& g, double i) {
-  const int k = std::min(static_cast<int>(i), g.radial_cells() - 1);
-  return g.face_radius(k) + (i - k) * (g.face_radius(k + 1) - g.face_radius(k));
-}
-double lateral_at(const Geometry& g, double j) {
-  const int k = std::min(static_cast<int>(j), g.lateral_cells() - 1);
-  return g.face_lateral(k) + (j - k) * (g.face_lateral(k + 1) - g.face_lateral(k));
-}
-
-/// With the first column once more at the end of a full circle.
-std::vector<double> closed(const Geometry& g, std::vector<double> corners) {
-  const auto rows = static_cast<std::size_t>(g.radial_cells()) + 1;
-  if (g.periodic())
-    for (std::size_t i = 0; i < rows; ++i) corners.push_back(corners[i]);
-  return corners;
-}
-
-/// So that pieces of a line are some pixels long, however fine the grid.
-int stride_for(const ShellMap& map) {
-  const double cell = map.units_per_thickness() / map.geometry().radial_cells();
-  return std::clamp(static_cast<int>(3 / cell), 1, 8);
-}
-
-double share_of(const Interval& range, double value) {
-  return range.empty() ? 0.5 : (value - range.low) / (range.high - range.low);
-}
-
-/// Levels between the extremes, none of them 0: walls are lines of flow already.
-std::vector<double> flow_levels(const Interval& psi) {
-  constexpr int lines = 11;
-  const double step = (psi.high - psi.low) / lines;
-  std::vector<double> levels;
-  const double air = 0.2 * step;  // no specks around an extreme
-  for (double k = std::floor(psi.low / step) + 0.5; k * step < psi.high - air; ++k)
-    if (k * step > psi.low + air) levels.push_back(k * step);
-  return levels;
-}
-
-void add(Canvas& canvas, Place p, Place q) {
-  cairo_move_to(canvas.context(), p.x, p.y);
-  cairo_line_to(canvas.context(), q.x, q.y);
-}
 
 }  // namespace
 
@@ -145,43 +99,9 @@ void ShellMap::trace_outline(Canvas& canvas) const {
   cairo_close_path(cr);
 }
 
-void draw_flow_lines(Canvas& canvas, const ShellMap& map,
-                     const std::vector<double>& stream_function, const std::vector<double>& cells,
-                     const Interval& range) {
-  const Geometry& g = map.geometry();
-  const Interval psi = range_of(stream_function);
-  if (psi.empty()) return;
-  const std::vector<double> corners = closed(g, stream_function);
-  const Lattice lattice{g.radial_cells() + 1, g.lateral_cells() + 1, corners};
-  const CellReader temperature(g, cells);
-  for (const bool on_dark : {false, true}) {
-    for (const double level : flow_levels(psi))
-      for (const Segment& s : contour(lattice, level, stride_for(map))) {
-        const ShellPlace p{radius_at(g, s[0][0]), lateral_at(g, s[0][1])};
-        if ((share_of(range, temperature(p.radius, p.lateral)) < 0.5) != on_dark) continue;
-        add(canvas, map.on_page(p.radius, p.lateral),
-            map.on_page(radius_at(g, s[1][0]), lateral_at(g, s[1][1])));
-      }
-    canvas.stroke({on_dark ? Colour{1, 1, 1} : Colour{0.1, 0.1, 0.15}, 0.9, 0.55});
-  }
-}
-
 void draw_outline(Canvas& canvas, const ShellMap& map) {
   map.trace_outline(canvas);
   canvas.stroke({ink, 1.2});
-}
-
-void draw_colour_bar(Canvas& canvas, const Axis& axis, const Label& label, const Frame& f) {
-  for (int y = 0; y < static_cast<int>(f.height); ++y)
-    canvas.line({{f.left, f.bottom() - y - 0.5}, {f.right(), f.bottom() - y - 0.5}},
-                {colour_at((y + 0.5) / f.height), 1});
-  canvas.frame({f.left + 0.5, f.top + 0.5, f.width, f.height}, {faint_ink, 1});
-  for (const Tick& t : axis.ticks) {
-    const double y = std::round(f.bottom() - f.height * axis.place(t.value)) + 0.5;
-    canvas.line({{f.right(), y}, {f.right() + 5, y}}, {faint_ink, 1});
-    canvas.text(t.label, {f.right() + 9, y}, {0, 0.5}, {14, faint_ink});
-  }
-  canvas.upright_text(written(label, axis), {f.left - 16, f.middle().y}, {15, ink});
 }
 
 }  // namespace lidwright::plot

@@ -50,14 +50,6 @@ class ShellMap {
   Frame frame_;
 };
 
-/// A few lines of flow: equal steps of the stream function, dark on light and light on dark ground.
-/// Numbers at corners, column by column.
-void draw_flow_lines(Canvas&, const ShellMap&, const std::vector<double>& stream_function,
-                     const std::vector<double>& cells, const Interval& range);
-
 void draw_outline(Canvas&, const ShellMap&);
-
-/// An upright bar with the colours of the range, its axis to the right and its title above.
-void draw_colour_bar(Canvas&, const Axis&, const Label&, const Frame&);
 
 }  // namespace lidwright::plot
