@@ -174,7 +174,7 @@ class PanelMaker {
   }
 
   void add_times(Panels& p) const {
-    const Shown time = shown_time(run_.snapshots[snapshots_.back()].time, run_.settings);
+    const Shown time = shown_time(run_.settings);
     for (std::size_t k = 0; k < snapshots_.size(); ++k)
       p.key.push_back({moment(snapshots_[k], time, k == 0), curves_[k].colour, 2});
   }
@@ -241,7 +241,7 @@ std::string profiles_figure(const SavedRun& run, const std::vector<std::size_t>&
                             const FigureStyle& style) {
   const std::vector<std::size_t> shown = shown_snapshots(run, snapshots);
   const bool narrow = style.size == FigureSize::OneColumn;
-  Panels p = PanelMaker(run, shown, 4, narrow ? 5 : 7).panels();
+  Panels p = PanelMaker(run, shown, 5, narrow ? 5 : 7).panels();
   FigurePage page(style, run.settings.title.empty() ? "Means at each depth" : run.settings.title);
   page.set_key(p.key);
   Layout l = layout_for(style.size, static_cast<int>(p.charts.size()));
