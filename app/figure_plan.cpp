@@ -25,6 +25,8 @@ std::string lacking(const SavedRun& run, const std::string& kind) {
                                       : "only a march has a history";
   if (kind == "branch" && !fs::exists(run.paths.branch()))
     return "only `settle --along` writes a branch.csv";
+  if (kind == "profiles" && run.kind == RunKind::Onset)
+    return "the mean of a neutral disturbance is 0 at all depths";
   if (kind == "onset" && run.kind != RunKind::Onset) return "only `onset` writes an onset.csv";
   return {};
 }
@@ -123,22 +125,42 @@ std::size_t nearest_snapshot(const SavedRun& run, double time) {
   return static_cast<std::size_t>(nearest - run.snapshots.begin());
 }
 
-void choose_snapshot(FigurePlan& plan, const std::string& at) {
-  if (plan.run.snapshots.empty()) return;
-  plan.snapshot = plan.run.snapshots.size() - 1;
-  if (at.empty()) return;
-  if (at.starts_with("snapshot:")) {
-    plan.snapshot = numbered_snapshot(plan.run, at);
-    return;
-  }
+/// The snapshot that one time or number means; adds what was taken to `taken`.
+std::size_t snapshot_at(const SavedRun& run, const std::string& at, std::string& taken) {
+  if (at.starts_with("snapshot:")) return numbered_snapshot(run, at);
   const std::optional<double> time = number_in(at);
   if (!time)
     throw InputError(
         fmt::format("--at {}: must be a time, or a snapshot's number as snapshot:12", at));
-  const Shown units = time_units(plan.run);
-  plan.snapshot = nearest_snapshot(plan.run, (*time - units.offset) / units.scale);
-  plan.taken = fmt::format("snapshot {}, {}, is nearest to {}", plan.snapshot,
-                           snapshot_words(plan.run, plan.snapshot), at);
+  const Shown units = time_units(run);
+  const std::size_t n = nearest_snapshot(run, (*time - units.offset) / units.scale);
+  taken += fmt::format("{}snapshot {}, {}, is nearest to {}", taken.empty() ? "" : "\n", n,
+                       snapshot_words(run, n), at);
+  return n;
+}
+
+bool several(const std::string& at) { return at == "all" || at.find(',') != std::string::npos; }
+
+/// "all", or a list with commas: profiles alone show several snapshots.
+void choose_several(FigurePlan& plan, const std::string& at) {
+  if (plan.kinds != std::vector<std::string>{"profiles"})
+    throw InputError(fmt::format(
+        "--at {}: only profiles show several snapshots at once; name that kind alone", at));
+  for (std::size_t n = 0; at == "all" && n < plan.run.snapshots.size(); ++n)
+    plan.profiles.push_back(n);
+  if (at != "all")
+    for (const std::string& one : names_in(at))
+      plan.profiles.push_back(snapshot_at(plan.run, one, plan.taken));
+  std::sort(plan.profiles.begin(), plan.profiles.end());
+  plan.profiles.erase(std::unique(plan.profiles.begin(), plan.profiles.end()), plan.profiles.end());
+}
+
+void choose_snapshot(FigurePlan& plan, const std::string& at) {
+  if (plan.run.snapshots.empty()) return;
+  plan.snapshot = plan.run.snapshots.size() - 1;
+  if (several(at)) return choose_several(plan, at);
+  if (!at.empty()) plan.snapshot = snapshot_at(plan.run, at, plan.taken);
+  plan.profiles = {plan.snapshot};
 }
 
 void check_lid(const FigurePlan& plan) {
@@ -183,8 +205,10 @@ FigurePlan figure_plan(const FigureRequest& r) {
 }
 
 std::string figure_path(const FigurePlan& plan, const std::string& kind) {
+  const bool one = shows_snapshot(kind) && (kind != "profiles" || plan.profiles.size() == 1);
   const std::string number =
-      shows_snapshot(kind) ? fmt::format("_{:04}", plan.snapshot) : std::string();
+      one ? fmt::format("_{:04}", kind == "profiles" ? plan.profiles.front() : plan.snapshot)
+          : std::string();
   return fmt::format("{}/{}{}.{}", plan.into, kind, number, format_word(plan.style.format));
 }
 

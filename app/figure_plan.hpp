@@ -17,8 +17,9 @@ struct FigurePlan {
   std::vector<std::string> kinds;
   FigureStyle style;
   Overlays overlays;
-  std::size_t snapshot = 0;  ///< meaningless in a run without
-  std::string taken;         ///< which snapshot is nearest to the time asked for; empty: not asked
+  std::size_t snapshot = 0;           ///< meaningless in a run without
+  std::vector<std::size_t> profiles;  ///< snapshots of the profiles: that one, or several asked for
+  std::string taken;  ///< which snapshot is nearest to the time asked for; empty: not asked
   std::string into;
 };
 

@@ -10,6 +10,10 @@
 #include "app/figure_plan.hpp"
 #include "io/atomic_file.hpp"
 #include "io/collective.hpp"
+#include "io/figure_branch.hpp"
+#include "io/figure_history.hpp"
+#include "io/figure_onset.hpp"
+#include "io/figure_profiles.hpp"
 
 namespace lidwright {
 namespace {
@@ -38,7 +42,10 @@ std::string Drawer::bytes(const std::string& kind) {
   const std::vector<std::string>& words = field_words();
   const auto word = std::find(words.begin(), words.end(), kind);
   if (word != words.end()) return field(field_kind(static_cast<std::size_t>(word - words.begin())));
-  throw InputError(fmt::format("figure {}: not built yet", kind));
+  if (kind == "profiles") return profiles_figure(plan_.run, plan_.profiles, plan_.style);
+  if (kind == "branch") return branch_figure(plan_.run, plan_.style);
+  if (kind == "onset") return onset_figure(plan_.run, plan_.style);
+  return history_figure(plan_.run, {request_.columns, request_.logarithmic}, plan_.style);
 }
 
 std::vector<std::string> files_of(const FigurePlan& plan, bool film) {
