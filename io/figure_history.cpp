@@ -255,7 +255,7 @@ Chart fitted(const Chart& chart, const Frame& f, bool x_labels) {
   c.x = linear_axis(time, ticks_across(f));
   c.x_labels = x_labels;
   c.y_label = {};
-  c.overhang = 14;
+  c.overhang = 6;
   for (Curve& curve : c.curves) curve = thinned(curve, static_cast<std::size_t>(2 * f.width));
   return c;
 }

@@ -10,7 +10,6 @@
 #include "io/atomic_file.hpp"
 #include "io/figure_page.hpp"
 #include "io/figure_words.hpp"
-#include "io/page_words.hpp"
 #include "io/picture_layout.hpp"
 #include "io/plot_marks.hpp"
 #include "io/thinning.hpp"
@@ -180,7 +179,7 @@ class PanelMaker {
   }
   std::string moment(std::size_t n, const Shown& time, bool first) const {
     if (run_.kind != RunKind::March) return fmt::format("{}{}", first ? "state " : "", n);
-    const std::string digits = page::digits(time(run_.snapshots[n].time), 3);
+    const std::string digits = four_digits(time(run_.snapshots[n].time));
     return first ? fmt::format("time {} {}", digits, time.unit) : digits;
   }
 

@@ -184,13 +184,14 @@ TEST_P(AwkwardHistory, IsDrawnAtEverySizeAndNothingIsCut) {
   for (int k = 0; k < GetParam().rows; ++k) values.push_back(GetParam().value(k));
   add_column(run, "a_column_with_a_name_that_is_longer_than_any_other_column_has_it",
              "eta kappa^2 d^(n-4)", values);
-  for (const bool logarithmic : {false, true})
-    for (const FigureStyle& style : all_sizes()) {
-      const PngImage image(
-          history_figure(run, {{run.history->names.back(), "nusselt_outer"}, logarithmic}, style));
-      ASSERT_TRUE(image.sound());
-      EXPECT_TRUE(white_margins(image, 3)) << logarithmic << ' ' << image.width();
-    }
+  const std::vector<std::string> columns{run.history->names.back(), "nusselt_outer"};
+  const auto expect_whole = [&](const FigureStyle& style, bool logarithmic) {
+    const PngImage image(history_figure(run, {columns, logarithmic}, style));
+    ASSERT_TRUE(image.sound());
+    EXPECT_TRUE(white_margins(image, 3)) << logarithmic << ' ' << image.width();
+  };
+  for (const FigureStyle& style : all_sizes()) expect_whole(style, false);
+  expect_whole({FigureSize::OneColumn}, true);
 }
 
 const std::vector<Awkward> awkward{

@@ -88,7 +88,7 @@ TEST_F(FigureProfiles, MarkTheLayersAtTheTimeOfTheSnapshot) {
 
 /// From wall to wall without sources: logarithmic in the radius of an annulus.
 TEST_F(FigureProfiles, CompareWithConductionAlone) {
-  const plot::Curve& c = profile_panels(run(1), {0}, 4, 5)[0].curves[0];
+  const plot::Curve c = profile_panels(run(1), {0}, 4, 5)[0].curves[0];
   const SavedRun r = run(1);
   const Geometry g(r.settings.model.shell, r.settings.model.grid);
   for (int i = 0; i < 8; ++i)
