@@ -7,8 +7,11 @@
 
 #include <cmath>
 #include <cstdint>
+#include <functional>
+#include <map>
 #include <new>
 #include <stdexcept>
+#include <string_view>
 
 #include "io/seal.hpp"
 
@@ -160,6 +163,32 @@ std::string pixel_size_chunk(double pixels_per_metre) {
   return four_bytes(9) + body + four_bytes(crc32(body));
 }
 
+/// The part of a name before its number, at a place after a quote or a hash; empty: another name.
+std::string_view numbered_name(std::string_view text) {
+  for (const std::string_view name : {"surface", "image"})
+    if (text.starts_with(name) && text.size() > name.size() && text[name.size()] >= '0' &&
+        text[name.size()] <= '9')
+      return name;
+  return {};
+}
+
+/// Cairo counts surfaces and images over the whole life of the program, and names them by that
+/// number in an SVG: counted anew here, in the order in which they come.
+std::string with_names_of_its_own(std::string_view rest) {
+  std::map<std::string, std::size_t, std::less<>> numbers;
+  std::string text;
+  for (std::size_t at; (at = rest.find_first_of("\"#")) != std::string_view::npos;) {
+    const std::string_view name = numbered_name(rest.substr(at + 1));
+    text.append(rest.substr(0, at + 1)).append(name);
+    rest.remove_prefix(at + 1 + name.size());
+    if (name.empty()) continue;
+    const std::string number(rest.substr(0, rest.find_first_not_of("0123456789")));
+    text += std::to_string(numbers.try_emplace(number, numbers.size()).first->second);
+    rest.remove_prefix(number.size());
+  }
+  return text.append(rest);
+}
+
 }  // namespace
 
 Canvas::Canvas(const Sheet& sheet)
@@ -254,7 +283,7 @@ std::string Canvas::bytes() {
   if (sheet_.format == Format::Png) return png();
   cairo_surface_finish(surface_.get());
   check(cairo_surface_status(surface_.get()));
-  return *written_;
+  return sheet_.format == Format::Svg ? with_names_of_its_own(*written_) : *written_;
 }
 
 std::string as_markup(const std::string& plain) {

@@ -2,7 +2,10 @@
 
 #include <algorithm>
 #include <cmath>
+#include <cstdint>
+#include <vector>
 
+#include "io/pixels.hpp"
 #include "io/plot_chart.hpp"
 
 namespace lidwright::plot {
@@ -30,20 +33,32 @@ void trace(Canvas& canvas, const ColourBar& bar, const Strip& s) {
   cairo_close_path(cr);
 }
 
-/// Step by step, so that no file format has to mix colours; each runs under the next, so that no
-/// ground shows between them.
-void fill(Canvas& canvas, const ColourBar& bar, const Strip& s) {
+/// The colours as an image one pixel wide, which no file format has to mix.
+std::vector<std::uint32_t> pixels_of(ColourMap map, int steps) {
+  std::vector<std::uint32_t> pixels;
+  for (int k = 0; k < steps; ++k) pixels.push_back(packed(colour_at((k + 0.5) / steps, map)));
+  return pixels;
+}
+
+void fill_ends(Canvas& canvas, const ColourBar& bar, const Strip& s) {
   cairo_t* cr = canvas.context();
-  const int steps =
-      static_cast<int>(std::lround(s.length * std::max(1.0, canvas.pixels_per_unit())));
-  const double before = bar.values_below ? point_length(s) : 0;
-  for (int k = 0; k < steps; ++k) {
-    const Colour c = colour_at((k + 0.5) / steps, bar.colours);
-    const double from = k == 0 ? -before : s.length * k / steps;
-    cairo_rectangle(cr, from, 0, s.length + point_length(s) - from, s.width);
+  for (const double end : {0.0, 1.0}) {
+    const Colour c = colour_at(end, bar.colours);
+    cairo_rectangle(cr, end > 0 ? s.length : -point_length(s), 0, point_length(s), s.width);
     cairo_set_source_rgb(cr, c.red, c.green, c.blue);
     cairo_fill(cr);
   }
+}
+
+void fill(Canvas& canvas, const ColourBar& bar, const Strip& s) {
+  const int steps =
+      static_cast<int>(std::lround(s.length * std::max(1.0, canvas.pixels_per_unit())));
+  std::vector<std::uint32_t> pixels = pixels_of(bar.colours, steps);
+  fill_ends(canvas, bar, s);
+  cairo_rectangle(canvas.context(), 0, 0, s.length, s.width);
+  cairo_clip(canvas.context());
+  cairo_scale(canvas.context(), s.length / steps, s.width);
+  paint_pixels(canvas, pixels, steps, {0, 0});
 }
 
 /// In coordinates where the bar runs along x.

@@ -4,7 +4,8 @@
 #include <array>
 #include <cmath>
 #include <cstdint>
-#include <memory>
+
+#include "io/pixels.hpp"
 
 namespace lidwright::plot {
 namespace {
@@ -19,11 +20,6 @@ std::size_t cell_holding(const std::vector<double>& faces, double x) {
   while (k > 0 && x < faces[k]) --k;
   while (k < last && x >= faces[k + 1]) ++k;
   return k;
-}
-
-std::uint32_t packed(const Colour& c) {
-  const auto byte = [](double x) { return static_cast<std::uint32_t>(std::lround(255 * x)); };
-  return byte(c.red) << 16 | byte(c.green) << 8 | byte(c.blue);
 }
 
 /// The map's colours as pixels, at more shares than a screen can tell apart.
@@ -117,20 +113,6 @@ Raster raster_of_cells(const ShellMap& map, const std::vector<double>& cells, co
   return raster;
 }
 
-/// Pixel by pixel: the page's own in a PNG, sharp squares elsewhere.
-void paint(Canvas& canvas, Raster& raster) {
-  const std::unique_ptr<cairo_surface_t, void (*)(cairo_surface_t*)> image(
-      cairo_image_surface_create_for_data(reinterpret_cast<unsigned char*>(raster.pixels.data()),
-                                          CAIRO_FORMAT_RGB24, raster.width, raster.height,
-                                          4 * raster.width),
-      cairo_surface_destroy);
-  cairo_t* cr = canvas.context();
-  cairo_scale(cr, 1 / canvas.pixels_per_unit(), 1 / canvas.pixels_per_unit());
-  cairo_set_source_surface(cr, image.get(), raster.left, raster.top);
-  cairo_pattern_set_filter(cairo_get_source(cr), CAIRO_FILTER_NEAREST);
-  cairo_paint(cr);
-}
-
 }  // namespace
 
 CellReader::CellReader(const Geometry& g, const std::vector<double>& cells) : cells_(cells) {
@@ -150,7 +132,9 @@ void draw_cells(Canvas& canvas, const ShellMap& map, const std::vector<double>& 
   map.trace_outline(canvas);
   cairo_set_fill_rule(canvas.context(), CAIRO_FILL_RULE_EVEN_ODD);
   cairo_clip(canvas.context());
-  paint(canvas, raster);
+  cairo_scale(canvas.context(), 1 / canvas.pixels_per_unit(), 1 / canvas.pixels_per_unit());
+  paint_pixels(canvas, raster.pixels, raster.width,
+               {static_cast<double>(raster.left), static_cast<double>(raster.top)});
 }
 
 }  // namespace lidwright::plot

@@ -1,6 +1,5 @@
 #include "io/picture.hpp"
 
-#include <cairo.h>
 #include <gmock/gmock.h>
 #include <gtest/gtest.h>
 
@@ -9,11 +8,11 @@
 #include <numbers>
 
 #include "io/colour_map.hpp"
-#include "io/contours.hpp"
 #include "io/history.hpp"
 #include "io/plot_axis.hpp"
 #include "io/run_folder.hpp"
 #include "io/shell_map.hpp"
+#include "tests/io/png_image.hpp"
 #include "tests/io/scratch.hpp"
 #include "tests/support/shells.hpp"
 
@@ -21,45 +20,10 @@ namespace lidwright {
 namespace {
 
 using test::message_of;
+using test::PngImage;
+using test::white_margins;
 using testing::ElementsAre;
 using testing::HasSubstr;
-
-TEST(ColourMap, IsTheInverseOfItself) {
-  const Colour c{0.8, 0.3, 0.1}, back = to_srgb(to_oklab(c));
-  EXPECT_NEAR(back.red, c.red, 1e-6);
-  EXPECT_NEAR(back.green, c.green, 1e-6);
-  EXPECT_NEAR(back.blue, c.blue, 1e-6);
-}
-
-/// Ottosson's definition makes white exactly (1, 0, 0), to the digits of its matrices.
-TEST(ColourMap, WhiteIsFullLightness) {
-  const OkLab white = to_oklab({1, 1, 1});
-  EXPECT_NEAR(white.lightness, 1, 1e-6);
-  EXPECT_NEAR(std::hypot(white.a, white.b), 0, 1e-6);
-}
-
-TEST(ColourMap, LightnessRisesAndStepsAreEven) {
-  constexpr int steps = 64;
-  double least = 1, largest = 0;
-  for (int k = 0; k < steps; ++k) {
-    const OkLab p = to_oklab(colour_at(k / 64.0)), q = to_oklab(colour_at((k + 1) / 64.0));
-    EXPECT_GT(q.lightness, p.lightness) << k;
-    least = std::min(least, distance(p, q));
-    largest = std::max(largest, distance(p, q));
-  }
-  EXPECT_LT(largest, 1.03 * least);
-  EXPECT_GT(least * steps, 0.65) << "the map is long enough to tell values apart";
-}
-
-TEST(ColourMap, EveryColourCanBeShown) {
-  for (int k = -10; k <= 110; ++k) {
-    const Colour c = colour_at(k / 100.0);
-    for (const double x : {c.red, c.green, c.blue}) {
-      EXPECT_GE(x, 0) << k;
-      EXPECT_LE(x, 1) << k;
-    }
-  }
-}
 
 std::vector<std::string> labels(const plot::Axis& axis) {
   std::vector<std::string> all;
@@ -83,14 +47,6 @@ TEST(PlotAxis, SmallNumbersLeaveOutTheirPower) {
 TEST(PlotAxis, DecadesThinOut) {
   EXPECT_THAT(labels(plot::logarithmic_axis({2, 3e6}, 4)),
               ElementsAre("1", "10<sup>2</sup>", "10<sup>4</sup>", "10<sup>6</sup>"));
-}
-
-TEST(Contours, ALineRunsWhereTheLevelLies) {
-  const std::vector<double> rising{0, 1, 2, 0, 1, 2};  // value = i on 3 x 2 places
-  const auto line = plot::contour({3, 2, rising}, 1.25);
-  ASSERT_EQ(line.size(), 1u);
-  EXPECT_DOUBLE_EQ(line[0][0][0], 1.25);
-  EXPECT_DOUBLE_EQ(line[0][1][0], 1.25);
 }
 
 class ShellOnAPage : public testing::TestWithParam<NamedShell> {};
@@ -134,55 +90,21 @@ PictureContents example(const Geometry& g) {
   return c;
 }
 
-using Surface = std::unique_ptr<cairo_surface_t, void (*)(cairo_surface_t*)>;
-
-Surface read_png(const std::string& bytes) {
-  std::string_view rest = bytes;
-  const auto take = [](void* from, unsigned char* to, unsigned int n) {
-    auto& source = *static_cast<std::string_view*>(from);
-    if (source.size() < n) return CAIRO_STATUS_READ_ERROR;
-    std::copy_n(source.begin(), n, to);
-    source.remove_prefix(n);
-    return CAIRO_STATUS_SUCCESS;
-  };
-  return {cairo_image_surface_create_from_png_stream(take, &rest), cairo_surface_destroy};
-}
-
-/// How many pixels have exactly this colour.
-long pixels_of(const Surface& s, const Colour& c) {
-  const auto byte = [](double x) { return static_cast<unsigned>(std::lround(255 * x)); };
-  const unsigned wanted = byte(c.red) << 16 | byte(c.green) << 8 | byte(c.blue);
-  const auto* pixels = reinterpret_cast<const unsigned*>(cairo_image_surface_get_data(s.get()));
-  return std::count_if(pixels, pixels + picture_width * picture_height,
-                       [&](unsigned p) { return (p & 0xffffff) == wanted; });
-}
-
-unsigned pixel(const Surface& s, int x, int y) {
-  const auto* pixels = reinterpret_cast<const unsigned*>(cairo_image_surface_get_data(s.get()));
-  return pixels[y * picture_width + x] & 0xffffff;
-}
-
 class PictureOf : public testing::TestWithParam<NamedShell> {};
 
 TEST_P(PictureOf, HasTheStatedSizeAndTheColoursOfTheTemperatures) {
   const Geometry g(GetParam().shell, GetParam().grid);
-  const Surface s = read_png(picture(example(g)));
-  ASSERT_EQ(cairo_surface_status(s.get()), CAIRO_STATUS_SUCCESS);
-  EXPECT_EQ(cairo_image_surface_get_width(s.get()), picture_width);
-  EXPECT_EQ(cairo_image_surface_get_height(s.get()), picture_height);
-  EXPECT_GT(pixels_of(s, colour_at(0.9)), 10000);
-  EXPECT_GT(pixels_of(s, colour_at(0.2)), 10000);
+  const PngImage image(picture(example(g)));
+  ASSERT_TRUE(image.sound());
+  EXPECT_EQ(image.width(), picture_width);
+  EXPECT_EQ(image.height(), picture_height);
+  EXPECT_GT(image.count(colour_at(0.9)), 10000);
+  EXPECT_GT(image.count(colour_at(0.2)), 10000);
 }
 
 TEST_P(PictureOf, LeavesItsMarginsEmpty) {
   const Geometry g(GetParam().shell, GetParam().grid);
-  const Surface s = read_png(picture(example(g)));
-  for (int x = 0; x < picture_width; ++x)
-    for (const int y : {0, 5, picture_height - 6, picture_height - 1})
-      ASSERT_EQ(pixel(s, x, y), 0xffffffu) << x << ' ' << y;
-  for (int y = 0; y < picture_height; ++y)
-    for (const int x : {0, 10, picture_width - 11, picture_width - 1})
-      ASSERT_EQ(pixel(s, x, y), 0xffffffu) << x << ' ' << y;
+  EXPECT_TRUE(white_margins(PngImage(picture(example(g))), 6));
 }
 
 INSTANTIATE_TEST_SUITE_P(AllShells, PictureOf, testing::ValuesIn(all_shells(6, 10)), shell_name);
@@ -190,11 +112,8 @@ INSTANTIATE_TEST_SUITE_P(AllShells, PictureOf, testing::ValuesIn(all_shells(6, 1
 /// The left half of a box is hot: the pixel in its middle has the map's colour.
 TEST(Picture, ThePixelInTheMiddleOfTheHotRegionHasItsColour) {
   const Geometry g({Shape::Box, 0, 0, 1, Sides::Reflecting}, {6, 10, {}, {}});
-  const Surface s = read_png(picture(example(g)));
-  const Colour hot = colour_at(0.9);
-  const auto byte = [](double x) { return static_cast<unsigned>(std::lround(255 * x)); };
-  EXPECT_EQ(pixel(s, 40 + 180, 100 + 380),
-            byte(hot.red) << 16 | byte(hot.green) << 8 | byte(hot.blue));
+  EXPECT_EQ(PngImage(picture(example(g))).colour(40 + 180, 100 + 380),
+            PngImage::packed(colour_at(0.9)));
 }
 
 TEST(Picture, AnUntitledStillRunOfOneTemperatureIsDrawnToo) {
