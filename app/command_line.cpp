@@ -142,7 +142,8 @@ void add_figure(CLI::App& app, FigureRequest& request) {
       ->type_name("SIZE");
   verb->add_option("--at", request.at,
                    "Snapshot nearest to TIME, in the unit that figures\n"
-                   "show, or snapshot:N [the last]")
+                   "show, or snapshot:N; of profiles also a list with\n"
+                   "commas, or all [the last]")
       ->type_name("TIME");
   verb->add_option("--with", request.with,
                    "Over a field: flow-lines, arrows, lid, isotherms\n"

@@ -11,7 +11,7 @@ namespace {
 constexpr std::array<OkLab, curve_colours> looks{
     {{0.41, -0.035, -0.1}, {0.54, 0.165, 0.095}, {0.28, 0.05, -0.09}, {0.67, 0, 0.13}}};
 /// Of the colour map: what is lighter fades on white.
-constexpr double lightest_share = 0.78;
+constexpr double lightest_share = 0.68;
 
 }  // namespace
 

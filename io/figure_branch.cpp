@@ -53,11 +53,6 @@ double at_place(const std::vector<double>& numbers, double place) {
   return share == 0 ? numbers[k] : numbers[k] + share * (numbers[k + 1] - numbers[k]);
 }
 
-Pattern pattern_of(Stability s, bool any_known) {
-  if (s == Stability::Unstable) return Pattern::Dashed;
-  return s == Stability::Unknown && any_known ? Pattern::Dotted : Pattern::Solid;
-}
-
 struct Drawn {
   Quantity quantity;
   Colour colour;
@@ -197,6 +192,11 @@ void draw_chart(Canvas& canvas, const SavedBranch& b, const std::vector<Drawn>& 
 }
 
 }  // namespace
+
+Pattern pattern_of(Stability s, bool any_known) {
+  if (s == Stability::Unstable) return Pattern::Dashed;
+  return s == Stability::Unknown && any_known ? Pattern::Dotted : Pattern::Solid;
+}
 
 std::vector<BranchPiece> pieces_of(const Rows& rows) {
   std::vector<BranchPiece> pieces;

@@ -22,6 +22,9 @@ struct BranchPiece {
 };
 std::vector<BranchPiece> pieces_of(const std::vector<BranchRow>&);
 
+/// Of the line of a stretch; `any_known`: some of the branch has growth rates.
+plot::Pattern pattern_of(Stability, bool any_known);
+
 /// Rows at which the parameter turns.
 std::vector<std::size_t> folds_of(const std::vector<BranchRow>&);
 

@@ -19,7 +19,7 @@ namespace {
 using namespace plot;
 
 constexpr Colour start_up_ground{0.72, 0.76, 0.83};
-constexpr double start_up_opacity = 0.3, band_opacity = 0.3, least_panel = 52;
+constexpr double start_up_opacity = 0.3, band_opacity = 0.3, least_panel = 44;
 /// Frank-Kamenetskii parameter from which the temperature makes a lid possible.
 constexpr double lid_possible = 2;
 
@@ -98,7 +98,7 @@ class PanelMaker {
     const std::vector<double>& raw = chosen_column(table_, column, run.paths.history());
     const std::vector<double>& time = *table_.find("time");
     units_ = shown_column(column, unit_of(column), run.settings);
-    time_units_ = shown_time(time.back(), run.settings);
+    time_units_ = shown_time(run.settings);
     values_ = units_(raw);
     time_ = time_units_(time);
     if (!is_bookkeeping(column)) summary_ = summary_of(table_, raw, run.settings.march);
@@ -110,7 +110,7 @@ class PanelMaker {
     p.chart.x_label = {"time", time_units_.unit};
     p.chart.y_label = {column_words(column_), units_.unit};
     p.chart.x = {time_range(), Spacing::Linear, {}, ""};
-    p.chart.curves = {{time_, values_, curve_colour(0), "", 1.5}};
+    p.chart.curves = {{time_, values_, curve_colour(0), "", 1.2}};
     set_axis(p.chart, ticks);
     add_bands(p.chart);
     p.mean = words();
@@ -172,7 +172,7 @@ class PanelMaker {
   }
   std::string words() const {
     std::string text;
-    if (is_bookkeeping(column_)) return text;
+    if (is_bookkeeping(column_) || (!defined() && left_out_ == 0)) return text;
     if (summary_.enough())
       text = "mean " + with_error(units_(summary_.mean), units_.scale * summary_.error);
     else
@@ -203,7 +203,7 @@ struct Layout {
 constexpr double gap = 12, panels_gap = 40;
 
 /// Panels are low: marks stand closer than in other charts.
-int ticks_for(double panel) { return std::max(3, static_cast<int>(panel / 28)); }
+int ticks_for(double panel) { return std::max(3, static_cast<int>(panel / 22)); }
 
 Layout layout_for(const FigureStyle& style, int panels, double top) {
   const bool slide = style.size == FigureSize::Slide;
@@ -255,7 +255,7 @@ Chart fitted(const Chart& chart, const Frame& f, bool x_labels) {
   c.x = linear_axis(time, ticks_across(f));
   c.x_labels = x_labels;
   c.y_label = {};
-  c.overhang = 14;
+  c.overhang = 6;
   for (Curve& curve : c.curves) curve = thinned(curve, static_cast<std::size_t>(2 * f.width));
   return c;
 }

@@ -37,12 +37,17 @@ Drawn points_of(const OnsetCurve& curve) {
   return d;
 }
 
-/// Modes are whole numbers: no tick between them.
+/// Modes are whole numbers: ticks at all of them, or at every second, fifth, tenth ...
 Axis mode_axis(const Drawn& d, int most) {
   const double air = 0.5 + 0.01 * (d.x.back() - d.x.front());
-  const Interval range{d.x.front() - air, d.x.back() + air};
-  Axis axis = linear_axis(range, std::min(most, static_cast<int>(range.high - range.low)));
-  std::erase_if(axis.ticks, [](const Tick& t) { return t.value != std::round(t.value); });
+  Axis axis{{d.x.front() - air, d.x.back() + air}, Spacing::Linear, {}, ""};
+  int step = 1;
+  for (int tens = 1; d.x.back() - d.x.front() >= most * step; tens *= 10)
+    for (const int factor : {2, 5, 10})
+      if (d.x.back() - d.x.front() >= most * step) step = factor * tens;
+  for (int mode = static_cast<int>(d.x.front()); mode <= d.x.back(); ++mode)
+    if (mode % step == 0)
+      axis.ticks.push_back({static_cast<double>(mode), fmt::format("{}", mode)});
   return axis;
 }
 

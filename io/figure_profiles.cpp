@@ -10,7 +10,6 @@
 #include "io/atomic_file.hpp"
 #include "io/figure_page.hpp"
 #include "io/figure_words.hpp"
-#include "io/page_words.hpp"
 #include "io/picture_layout.hpp"
 #include "io/plot_marks.hpp"
 #include "io/thinning.hpp"
@@ -174,13 +173,13 @@ class PanelMaker {
   }
 
   void add_times(Panels& p) const {
-    const Shown time = shown_time(run_.snapshots[snapshots_.back()].time, run_.settings);
+    const Shown time = shown_time(run_.settings);
     for (std::size_t k = 0; k < snapshots_.size(); ++k)
       p.key.push_back({moment(snapshots_[k], time, k == 0), curves_[k].colour, 2});
   }
   std::string moment(std::size_t n, const Shown& time, bool first) const {
     if (run_.kind != RunKind::March) return fmt::format("{}{}", first ? "state " : "", n);
-    const std::string digits = page::digits(time(run_.snapshots[n].time), 3);
+    const std::string digits = four_digits(time(run_.snapshots[n].time));
     return first ? fmt::format("time {} {}", digits, time.unit) : digits;
   }
 
@@ -241,7 +240,7 @@ std::string profiles_figure(const SavedRun& run, const std::vector<std::size_t>&
                             const FigureStyle& style) {
   const std::vector<std::size_t> shown = shown_snapshots(run, snapshots);
   const bool narrow = style.size == FigureSize::OneColumn;
-  Panels p = PanelMaker(run, shown, 4, narrow ? 5 : 7).panels();
+  Panels p = PanelMaker(run, shown, 5, narrow ? 5 : 7).panels();
   FigurePage page(style, run.settings.title.empty() ? "Means at each depth" : run.settings.title);
   page.set_key(p.key);
   Layout l = layout_for(style.size, static_cast<int>(p.charts.size()));

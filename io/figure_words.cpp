@@ -4,6 +4,7 @@
 
 #include <algorithm>
 #include <array>
+#include <cmath>
 #include <string_view>
 #include <utility>
 
@@ -49,6 +50,9 @@ std::string replaced(std::string text, std::string_view what, std::string_view b
   return text;
 }
 
+/// Part of a value below which nobody reads its error: a smaller one is given as this.
+constexpr double most_digits = 1e-6;
+
 bool flat(Shape shape) { return shape == Shape::Box || shape == Shape::Annulus; }
 
 /// The powers that depend on the number of dimensions, written out.
@@ -85,14 +89,11 @@ Shown shown_column(const std::string& column, const std::string& unit, const Cas
   return {1, 0, unit_markup(unit, c.model.shell.shape)};
 }
 
-Shown shown_time(double longest, const Case& c) {
-  Shown s = shown_column("time", "d^2/kappa", c);
-  if (c.body && s(longest) >= 2000) s = {s.scale / 1000, 0, "Gyr"};
-  return s;
-}
+Shown shown_time(const Case& c) { return shown_column("time", "d^2/kappa", c); }
 
 std::string with_error(double value, double error) {
-  const page::Stated s = page::stated(value, error);
+  const page::Stated s =
+      page::stated(value, error > 0 ? std::max(error, most_digits * std::abs(value)) : error);
   if (s.error.empty()) return s.value;
   const std::size_t value_power = s.value.find(" \u00d7 "), error_power = s.error.find(" \u00d7 ");
   if (value_power == std::string::npos || error_power == std::string::npos)

@@ -18,10 +18,9 @@ std::string unit_markup(const std::string& of_a_table, Shape);
 /// are in use, else in the program's.
 Shown shown_column(const std::string& column, const std::string& unit, const Case&);
 
-/// How times up to the longest are shown: long ones of a body in Gyr.
-Shown shown_time(double longest, const Case&);
+Shown shown_time(const Case&);
 
-/// "4.81 \u00b1 0.02", to as many digits as the error leaves.
+/// "4.81 \u00b1 0.02", to as many digits as the error leaves, seven at most.
 std::string with_error(double value, double error);
 
 }  // namespace lidwright

@@ -33,7 +33,7 @@ struct Shown {
   std::vector<double> operator()(const std::vector<double>&) const;
 };
 
-/// The program's own units, or those of a body: km, K, Myr or Gyr, mm/yr, Pa s.
+/// The program's own units, or those of a body: km, K, Myr, mm/yr, Pa s.
 struct PictureUnits {
   Shown length, temperature, time, velocity, viscosity;
 };

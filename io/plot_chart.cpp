@@ -79,7 +79,7 @@ void draw_levels(Canvas& canvas, const Chart& chart, const Frame& f) {
 
 /// A single point between breaks is a dot.
 void draw_piece(Canvas& canvas, const std::vector<Place>& places, const Curve& curve) {
-  if (places.size() == 1) canvas.dot(places.front(), 0.9 * curve.width, curve.colour);
+  if (places.size() == 1) canvas.dot(places.front(), 1.4 * curve.width, curve.colour);
   if (places.size() > 1) draw_line(canvas, places, {curve.colour, curve.width}, curve.pattern);
 }
 
@@ -97,11 +97,18 @@ void draw_curve(Canvas& canvas, const Chart& chart, const Curve& curve, const Fr
   draw_piece(canvas, places, curve);
 }
 
+/// On a ground that hides the lines of the axes.
+void draw_note(Canvas& canvas, const std::string& note, const Frame& f) {
+  const double width = canvas.text_width(note, tick_style) + 12;
+  fill(canvas, {f.middle().x - width / 2, f.middle().y - 11, width, 22}, {1, 1, 1}, 1);
+  canvas.text(note, f.middle(), {0.5, 0.5}, tick_style);
+}
+
 void draw_contents(Canvas& canvas, const Chart& chart, const Frame& f) {
   const Saved saved(canvas);
   canvas.clip_to({f.left, f.top - 1, f.width, f.height + 2});
-  draw_levels(canvas, chart, f);
   for (const Curve& curve : chart.curves) draw_curve(canvas, chart, curve, f);
+  draw_levels(canvas, chart, f);
 }
 
 /// Names of curves, from the right end of the line above the frame.
@@ -139,7 +146,7 @@ void draw(Canvas& canvas, const Chart& chart, const Frame& f) {
   if (chart.note.empty())
     draw_contents(canvas, chart, f);
   else
-    canvas.text(chart.note, f.middle(), {0.5, 0.5}, tick_style);
+    draw_note(canvas, chart.note, f);
   canvas.frame({f.left + 0.5, f.top + 0.5, f.width, f.height}, border);
   canvas.text(chart.title, {f.left, f.top - 6}, {0, 1}, {15, ink, Weight::Bold, f.width});
   draw_names(canvas, chart, f);
