@@ -3,10 +3,11 @@
 #include <cstdio>
 #include <exception>
 #include <memory>
-#include <sstream>
 
 #include "app/command_line.hpp"
 #include "app/exit_code.hpp"
+#include "app/help.hpp"
+#include "app/manual.hpp"
 #include "io/atomic_file.hpp"
 #include "io/case_file.hpp"
 #include "io/provenance.hpp"
@@ -18,11 +19,15 @@
 namespace lidwright {
 namespace {
 
-void print_help(const CLI::App& app, const CLI::ParseError& e) {
-  std::ostringstream text;
-  app.exit(e, text, text);
-  const std::string all = text.str();
-  fmt::print("{}\n", all.substr(0, all.find_last_not_of('\n') + 1));
+std::string help_text(CLI::App& app) {
+  const ProgramEntry program = program_entry(app);
+  const std::vector<CLI::App*> named = app.get_subcommands();
+  return named.empty() ? program_help(program) : verb_help(*program.find(named[0]->get_name()));
+}
+
+/// --help and --version come as exceptions too.
+std::string answer(CLI::App& app, const CLI::ParseError& e) {
+  return e.get_name() == "CallForVersion" ? fmt::format("{}\n", e.what()) : help_text(app);
 }
 
 std::string verbs_of(const CLI::App& app) {
@@ -31,18 +36,49 @@ std::string verbs_of(const CLI::App& app) {
   return fmt::format("{}", fmt::join(names, ", "));
 }
 
-/// CLI11 reports a misspelt verb as a missing one.
-std::string command_line_message(const CLI::App& app, const CLI::ParseError& e, int argc,
-                                 char** argv) {
+/// The library reports a misspelt verb as a missing one.
+std::string what_is_wrong(const CLI::App& app, const CLI::ParseError& e, int argc, char** argv) {
   if (argc < 2) return fmt::format("name a verb: {}", verbs_of(app));
   if (e.get_name() == "RequiredError")
     return fmt::format("'{}' is not a verb of this program ({})", argv[1], verbs_of(app));
   return e.what();
 }
 
-ExitCode run_verb(const Session& session, const CLI::App& app, const Requests& asked) {
-  if (app.got_subcommand("keys")) {
-    if (session.first()) fmt::print("{}", asked.markdown ? keys_as_markdown() : keys_as_text());
+std::string command_line_message(CLI::App& app, const CLI::ParseError& e, int argc, char** argv) {
+  const std::vector<CLI::App*> named = app.get_subcommands();
+  return fmt::format("{}; see `lidwright {}--help`", what_is_wrong(app, e, argc, argv),
+                     named.empty() ? "" : named[0]->get_name() + " ");
+}
+
+/// A shell offers the program's own benchmarks too.
+ProgramEntry with_benchmarks(ProgramEntry program) {
+  for (VerbEntry& verb : program.verbs)
+    if (verb.name == "verify") verb.options.front().words = own_benchmarks();
+  return program;
+}
+
+std::string completions_text(CLI::App& app, const std::string& shell) {
+  if (shell.empty())
+    throw InputError("completions: name a shell; see `lidwright completions --help`");
+  return completions(with_benchmarks(program_entry(app)), shell);
+}
+
+std::string manual_text(CLI::App& app, const std::string& verb) {
+  const ProgramEntry program = program_entry(app);
+  return verb.empty() ? program_manual(program) : verb_manual(program, *program.find(verb));
+}
+
+/// What the verbs print that tell of the program itself; empty: another verb is asked for.
+std::string paper(CLI::App& app, const Requests& asked) {
+  if (app.got_subcommand("keys")) return asked.markdown ? keys_as_markdown() : keys_as_text();
+  if (app.got_subcommand("completions")) return completions_text(app, asked.shell);
+  if (app.got_subcommand("manual")) return manual_text(app, asked.manual_of);
+  return "";
+}
+
+ExitCode run_verb(const Session& session, CLI::App& app, const Requests& asked) {
+  if (const std::string text = paper(app, asked); !text.empty()) {
+    if (session.first()) fmt::print("{}", text);
     return ExitCode::Done;
   }
   if (app.got_subcommand("check")) return check(session, asked.check);
@@ -81,13 +117,10 @@ ExitCode run(const Session& session, int argc, char** argv) {
     app.parse(argc, argv);
   } catch (const CLI::ParseError& e) {
     if (e.get_exit_code() == 0) {
-      if (session.first()) print_help(app, e);
+      if (session.first()) fmt::print("{}", answer(app, e));
       return ExitCode::Done;
     }
-    return complain(
-        session,
-        fmt::format("{}; see `lidwright --help`", command_line_message(app, e, argc, argv)),
-        ExitCode::BadInput);
+    return complain(session, command_line_message(app, e, argc, argv), ExitCode::BadInput);
   }
   try {
     return run_verb(session, app, asked);
