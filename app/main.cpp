@@ -8,6 +8,7 @@
 #include "app/exit_code.hpp"
 #include "app/help.hpp"
 #include "app/manual.hpp"
+#include "app/parse_message.hpp"
 #include "io/atomic_file.hpp"
 #include "io/case_file.hpp"
 #include "io/provenance.hpp"
@@ -28,26 +29,6 @@ std::string help_text(CLI::App& app) {
 /// --help and --version come as exceptions too.
 std::string answer(CLI::App& app, const CLI::ParseError& e) {
   return e.get_name() == "CallForVersion" ? fmt::format("{}\n", e.what()) : help_text(app);
-}
-
-std::string verbs_of(const CLI::App& app) {
-  std::vector<std::string> names;
-  for (const CLI::App* verb : app.get_subcommands({})) names.push_back(verb->get_name());
-  return fmt::format("{}", fmt::join(names, ", "));
-}
-
-/// The library reports a misspelt verb as a missing one.
-std::string what_is_wrong(const CLI::App& app, const CLI::ParseError& e, int argc, char** argv) {
-  if (argc < 2) return fmt::format("name a verb: {}", verbs_of(app));
-  if (e.get_name() == "RequiredError")
-    return fmt::format("'{}' is not a verb of this program ({})", argv[1], verbs_of(app));
-  return e.what();
-}
-
-std::string command_line_message(CLI::App& app, const CLI::ParseError& e, int argc, char** argv) {
-  const std::vector<CLI::App*> named = app.get_subcommands();
-  return fmt::format("{}; see `lidwright {}--help`", what_is_wrong(app, e, argc, argv),
-                     named.empty() ? "" : named[0]->get_name() + " ");
 }
 
 /// A shell offers the program's own benchmarks too.
@@ -120,7 +101,7 @@ ExitCode run(const Session& session, int argc, char** argv) {
       if (session.first()) fmt::print("{}", answer(app, e));
       return ExitCode::Done;
     }
-    return complain(session, command_line_message(app, e, argc, argv), ExitCode::BadInput);
+    return complain(session, parse_message(app, e, argc < 2 ? "" : argv[1]), ExitCode::BadInput);
   }
   try {
     return run_verb(session, app, asked);
