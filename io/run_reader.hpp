@@ -30,6 +30,7 @@ SavedRun open_run(const std::string& folder);
 /// index fastest. Float32 precision, as the files have it.
 struct SavedFields {
   double time = 0;
+  Grid grid;  ///< the case's; of an onset's mode with more columns where it needs them
   std::vector<double> temperature, viscosity, strain_rate;  ///< cells
   std::vector<double> velocity_radial, velocity_lateral;    ///< cell middles
   std::vector<double> stream_function;  ///< corners; on a full circle without the repeated column
@@ -37,16 +38,6 @@ struct SavedFields {
 
 /// Snapshot n of run.snapshots, from however many pieces.
 SavedFields read_fields(const SavedRun&, std::size_t n);
-
-/// The numbers of a table with a header line and `#` lines: profiles, statistics' numbers,
-/// branch.csv, onset.csv. Words become nan.
-struct NumberTable {
-  std::vector<std::string> names, units;  ///< "1" where the head says none
-  std::vector<std::vector<double>> columns;
-  std::size_t rows() const { return columns.empty() ? 0 : columns.front().size(); }
-  const std::vector<double>* find(const std::string& name) const;
-};
-NumberTable read_number_table(const std::string& path);
 
 /// profiles_NNNN.csv of snapshot n.
 NumberTable read_profiles(const SavedRun&, std::size_t n);

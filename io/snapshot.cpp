@@ -27,7 +27,6 @@ std::string walls_name(std::size_t n, std::string_view kind) {
   return fmt::format("walls/walls_{:04}.{}", n, kind);
 }
 std::string topography_name(std::size_t n) { return fmt::format("walls/topography_{:04}.csv", n); }
-std::string profiles_name(std::size_t n) { return fmt::format("profiles/profiles_{:04}.csv", n); }
 
 /// The number of the snapshot that one of the run's files belongs to, nothing for other files.
 std::optional<long> snapshot_of(std::string_view file) {
@@ -44,6 +43,17 @@ std::string_view between(std::string_view line, std::string_view before) {
   if (at == std::string_view::npos) return {};
   const std::string_view rest = line.substr(at + before.size());
   return rest.substr(0, rest.find('"'));
+}
+
+/// The elements of that name, each up to its end.
+std::vector<std::string_view> elements(std::string_view text, std::string_view name) {
+  std::vector<std::string_view> found;
+  for (std::size_t at = text.find(name); at != std::string_view::npos; at = text.find(name)) {
+    text.remove_prefix(at);
+    found.push_back(text.substr(0, text.find('>')));
+    text.remove_prefix(name.size());
+  }
+  return found;
 }
 
 /// Ranges of columns of all pieces, known on every rank.
@@ -73,19 +83,23 @@ std::string write_collection(const std::vector<CollectionEntry>& entries) {
 
 std::vector<CollectionEntry> read_collection(const std::string& text) {
   std::vector<CollectionEntry> entries;
-  std::string_view rest = text;
-  for (std::size_t at = rest.find("<DataSet"); at != std::string_view::npos;
-       at = rest.find("<DataSet")) {
-    rest.remove_prefix(at);
-    const std::string_view element = rest.substr(0, rest.find('>'));
+  for (const std::string_view element : elements(text, "<DataSet")) {
     const std::string_view time = between(element, "timestep=\"");
     CollectionEntry entry{0, std::string(between(element, "file=\""))};
     if (std::from_chars(time.data(), time.data() + time.size(), entry.time).ec == std::errc())
       entries.push_back(entry);
-    rest.remove_prefix(element.size());
   }
   return entries;
 }
+
+std::vector<std::string> pieces_listed(const std::string& text) {
+  std::vector<std::string> files;
+  for (const std::string_view element : elements(text, "<Piece"))
+    files.emplace_back(between(element, "Source=\""));
+  return files;
+}
+
+std::string profiles_name(std::size_t n) { return fmt::format("profiles/profiles_{:04}.csv", n); }
 
 std::string profiles_table(const RadialProfiles& p, const std::string& state) {
   static constexpr std::array<Column, 8> columns{{

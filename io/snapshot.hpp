@@ -25,6 +25,12 @@ struct CollectionEntry {
 std::string write_collection(const std::vector<CollectionEntry>&);
 std::vector<CollectionEntry> read_collection(const std::string& text);
 
+/// Files of the pieces that the text of a .pvts file lists, relative to it.
+std::vector<std::string> pieces_listed(const std::string& text);
+
+/// File of the radial profiles of snapshot n, relative to the run folder.
+std::string profiles_name(std::size_t n);
+
 /// Writes the snapshots of one run, numbered from 0. Both members are collective and throw
 /// OutputError on all ranks; after a failure the collections list complete snapshots only.
 class SnapshotWriter {

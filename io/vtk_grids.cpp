@@ -1,6 +1,7 @@
 #include "io/vtk_grids.hpp"
 
 #include <fmt/format.h>
+#include <vtkCallbackCommand.h>
 #include <vtkCellArray.h>
 #include <vtkCellData.h>
 #include <vtkDoubleArray.h>
@@ -15,6 +16,7 @@
 #include <vtkUnsignedCharArray.h>
 #include <vtkVersion.h>
 #include <vtkXMLPolyDataWriter.h>
+#include <vtkXMLStructuredGridReader.h>
 #include <vtkXMLStructuredGridWriter.h>
 
 #include <array>
@@ -103,6 +105,38 @@ std::string as_text(vtkDataObject* data) {
   return writer->GetOutputString();
 }
 
+/// What the library says of a damaged file, instead of on the terminal.
+class Complaints {
+ public:
+  Complaints() {
+    command_->SetClientData(&any_);
+    command_->SetCallback(
+        [](vtkObject*, unsigned long, void* any, void*) { *static_cast<bool*>(any) = true; });
+  }
+  void listen_to(vtkXMLReader* reader) {
+    for (const auto event : {vtkCommand::ErrorEvent, vtkCommand::WarningEvent})
+      reader->AddObserver(event, command_);
+    reader->SetReaderErrorObserver(command_);
+    reader->SetParserErrorObserver(command_);
+  }
+  bool any() const { return any_; }
+
+ private:
+  bool any_ = false;
+  vtkNew<vtkCallbackCommand> command_;
+};
+
+std::map<std::string, std::vector<double>> arrays_of(vtkDataSetAttributes* attributes) {
+  std::map<std::string, std::vector<double>> arrays;
+  for (int k = 0; k < attributes->GetNumberOfArrays(); ++k) {
+    auto* array = vtkFloatArray::SafeDownCast(attributes->GetArray(k));
+    if (!array || !array->GetName()) continue;
+    const float* begin = array->GetPointer(0);
+    arrays[array->GetName()] = std::vector<double>(begin, begin + array->GetNumberOfValues());
+  }
+  return arrays;
+}
+
 /// Name and number of components of every array, for the index of pieces.
 std::vector<std::pair<std::string, int>> cell_arrays(const Snapshot& s) {
   std::vector<std::pair<std::string, int>> names{
@@ -179,6 +213,21 @@ std::string structured_piece(const Snapshot& s, const CornerField& stream_functi
   grid->GetPointData()->AddArray(scalars("stream_function", stream_function, extent));
   add_time(grid, s);
   return as_text<vtkXMLStructuredGridWriter>(grid);
+}
+
+GridPiece read_piece(const std::string& text) {
+  Complaints complaints;
+  vtkNew<vtkXMLStructuredGridReader> reader;
+  complaints.listen_to(reader);
+  reader->ReadFromInputStringOn();
+  reader->SetInputString(text);
+  reader->Update();
+  vtkStructuredGrid* grid = reader->GetOutput();
+  if (complaints.any() || reader->GetErrorCode() != 0 || grid->GetNumberOfCells() < 1)
+    throw DamagedGrid("not a whole structured grid of VTK; the file is damaged");
+  const int* e = grid->GetExtent();
+  return {
+      {e[2], e[3]}, e[1] - e[0], arrays_of(grid->GetCellData()), arrays_of(grid->GetPointData())};
 }
 
 std::string structured_index(const Snapshot& s, const std::vector<PieceExtent>& extents,

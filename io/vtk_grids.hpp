@@ -1,6 +1,9 @@
 #pragma once
 
+#include <map>
+#include <stdexcept>
 #include <string>
+#include <vector>
 
 #include "solver/snapshot.hpp"
 
@@ -18,6 +21,18 @@ struct PieceExtent {
 /// the stream function with its neighbours' columns up to date. Not collective.
 std::string structured_piece(const Snapshot&, const CornerField& stream_function);
 PieceExtent extent_of_piece(const Decomposition&);
+
+/// A piece read back: every array of Float32, components of a vector one after another.
+struct GridPiece {
+  PieceExtent extent;
+  int radial_cells = 0;
+  std::map<std::string, std::vector<double>> cells, points;
+};
+struct DamagedGrid : std::runtime_error {
+  using std::runtime_error::runtime_error;
+};
+/// Of the text of a .vts file. Throws DamagedGrid.
+GridPiece read_piece(const std::string& text);
 
 /// The index (.pvts) of all pieces, given the file names relative to it.
 std::string structured_index(const Snapshot&, const std::vector<PieceExtent>&,
