@@ -139,9 +139,11 @@ void add_figure(CLI::App& app, FigureRequest& request) {
   one_of(verb->add_option("--format", request.format, choice_text(formats) + " [png]"), formats)
       ->type_name("FORMAT");
   const std::vector<std::string> sizes{"one-column", "two-column", "slide"};
-  one_of(verb->add_option("--size", request.size, choice_text(sizes) + " [one-column]"), sizes)
+  one_of(verb->add_option("--size", request.size, choice_text(sizes) + "\n[one-column; a film: slide]"), sizes)
       ->type_name("SIZE");
-  verb->add_option("--at", request.at, "Snapshot nearest to TIME, or snapshot:N [the last]")
+  verb->add_option("--at", request.at,
+                   "Snapshot nearest to TIME, in the unit that figures\n"
+                   "show, or snapshot:N [the last]")
       ->type_name("TIME");
   const std::vector<std::string> overlays{"flow-lines", "arrows", "lid", "isotherms"};
   one_of(verb->add_option("--with", request.with,
