@@ -93,22 +93,10 @@ Size size_of(PangoLayout* layout) {
           static_cast<double>(box.height) / PANGO_SCALE};
 }
 
-void draw_rim(cairo_t* cr, PangoLayout* layout, double width) {
-  double x = 0, y = 0;
-  cairo_get_current_point(cr, &x, &y);
-  pango_cairo_layout_path(cr, layout);
-  set_source(cr, {1, 1, 1}, 0.75);
-  cairo_set_line_width(cr, 2 * width);
-  cairo_set_line_join(cr, CAIRO_LINE_JOIN_ROUND);
-  cairo_stroke(cr);
-  cairo_move_to(cr, x, y);
-}
-
 void show(cairo_t* cr, PangoLayout* layout, Place p, Anchor anchor, const TextStyle& style) {
   const Size size = size_of(layout);
   cairo_new_path(cr);
   cairo_move_to(cr, p.x - anchor.across * size.width, p.y - anchor.down * size.height);
-  if (style.rim > 0) draw_rim(cr, layout, style.rim);
   set_source(cr, style.colour);
   pango_cairo_show_layout(cr, layout);
 }
@@ -197,15 +185,21 @@ void Canvas::text(const std::string& markup, Place p, Anchor anchor, const TextS
   show(context(), layout.get(), p, anchor, style);
 }
 
-void Canvas::turned_text(const std::string& markup, Place p, double angle, const TextStyle& style) {
-  const Saved saved(*this);
-  cairo_translate(context(), p.x, p.y);
-  cairo_rotate(context(), angle);
-  text(markup, {0, 0}, {0.5, 0.5}, style);
+void Canvas::text_on_patch(const std::string& markup, Place middle, const TextStyle& style) {
+  const Size size = size_of(laid_out(context(), markup, style).get());
+  const double width = size.width + 0.3 * style.size, height = 1.1 * style.size;
+  cairo_new_path(context());
+  cairo_rectangle(context(), middle.x - width / 2, middle.y - height / 2, width, height);
+  set_source(context(), {1, 1, 1}, 0.85);
+  cairo_fill(context());
+  text(markup, middle, {0.5, 0.5}, style);
 }
 
 void Canvas::upright_text(const std::string& markup, Place p, const TextStyle& style) {
-  turned_text(markup, p, -1.5707963267948966, style);
+  const Saved saved(*this);
+  cairo_translate(context(), p.x, p.y);
+  cairo_rotate(context(), -1.5707963267948966);
+  text(markup, {0, 0}, {0.5, 0.5}, style);
 }
 
 double Canvas::text_width(const std::string& markup, const TextStyle& style) {

@@ -30,7 +30,6 @@ struct TextStyle {
   Colour colour{0.13, 0.15, 0.19};
   Weight weight = Weight::Normal;
   double widest = 0;  ///< what does not fit is left out with an ellipsis; 0: no limit
-  double rim = 0;     ///< width of a light rim, over a field
 };
 
 /// Which point of the text stands at the place given: 0 left or top, 1 right or bottom.
@@ -70,8 +69,8 @@ class Canvas {
   double pixels_per_unit() const { return sheet_.pixels_per_unit; }
 
   void text(const std::string& markup, Place, Anchor, const TextStyle&);
-  /// Turned clockwise by an angle (radians) about its middle, which is at the place.
-  void turned_text(const std::string& markup, Place, double angle, const TextStyle&);
+  /// In the middle of a light patch, to be read over a field.
+  void text_on_patch(const std::string& markup, Place middle, const TextStyle&);
   /// Read from bottom to top; the place is its middle.
   void upright_text(const std::string& markup, Place, const TextStyle&);
   double text_width(const std::string& markup, const TextStyle&);

@@ -78,7 +78,7 @@ FieldLayout field_layout(FigureSize size, const FieldParts& parts) {
                   top + slack + (least - shell.height) / 2, shell.width, shell.height};
   layout.bar = layout.bar_below ? bar_under(layout.shell, {margin, top, width, taken})
                                 : bar_beside(layout.shell, top, top + taken);
-  const double end = top + 2 * slack + taken + (layout.bar_below ? 0 : 8);
+  const double end = top + slack + taken + (layout.bar_below ? 0 : 8);
   layout.legend = {margin, end + legend_gap, width, parts.legend_height};
   layout.height = end + legend + margin;
   return layout;

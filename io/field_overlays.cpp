@@ -113,6 +113,26 @@ std::size_t row_at(const std::vector<double>& times, double time) {
                                   times.begin());
 }
 
+/// Cut off at the walls. Returns the isotherms' numbers.
+std::vector<PlacedText> draw_lines_over(Canvas& canvas, const ShellMap& map,
+                                        const OverlayData& data,
+                                        const std::vector<double>& shares) {
+  const Saved saved(canvas);
+  map.trace_outline(canvas);
+  cairo_set_fill_rule(canvas.context(), CAIRO_FILL_RULE_EVEN_ODD);
+  cairo_clip(canvas.context());
+  std::vector<PlacedText> labels;
+  if (data.drawn.flow_lines)
+    draw_directed_flow_lines(canvas, map, data.fields.stream_function, flow_of(data), shares,
+                             {0, 1});
+  if (data.drawn.isotherms)
+    labels = draw_isotherms(canvas, map, data.fields.temperature, data.units.temperature);
+  if (data.drawn.lid && std::isfinite(data.lid_temperature))
+    draw_lid(canvas, map, lid_depths(data));
+  if (data.drawn.arrows) draw_arrows(canvas, map, flow_of(data), shares, {0, 1});
+  return labels;
+}
+
 }  // namespace
 
 Overlays overlays_of(const std::vector<std::string>& words) {
@@ -146,18 +166,7 @@ std::vector<double> lid_depths(const OverlayData& data) {
 
 void draw_overlays(Canvas& canvas, const ShellMap& map, const OverlayData& data,
                    const std::vector<double>& shares) {
-  const Saved saved(canvas);
-  map.trace_outline(canvas);
-  cairo_set_fill_rule(canvas.context(), CAIRO_FILL_RULE_EVEN_ODD);
-  cairo_clip(canvas.context());
-  if (data.drawn.flow_lines)
-    draw_directed_flow_lines(canvas, map, data.fields.stream_function, flow_of(data), shares,
-                             {0, 1});
-  if (data.drawn.isotherms)
-    draw_isotherms(canvas, map, data.fields.temperature, data.units.temperature);
-  if (data.drawn.lid && std::isfinite(data.lid_temperature))
-    draw_lid(canvas, map, lid_depths(data));
-  if (data.drawn.arrows) draw_arrows(canvas, map, flow_of(data));
+  draw_labels(canvas, draw_lines_over(canvas, map, data, shares));
 }
 
 double legend_height(Canvas& ruler, const OverlayData& data, double width) {

@@ -11,9 +11,9 @@ namespace lidwright {
 namespace {
 
 constexpr double points_per_mm = 72 / 25.4;
-constexpr double print_points = 0.5, slide_points = 1;  ///< of one design unit
-constexpr double print_resolution = 300;                ///< pixels an inch
-constexpr double slide_width = 960, slide_height = 540, slide_pixels = 2;
+constexpr double print_points = 0.5, slide_points = 1.2;  ///< of one design unit
+constexpr double print_resolution = 300;                  ///< pixels an inch
+constexpr double slide_width = 800, slide_height = 450, slide_pixels = 2.4;
 
 template <class Value>
 struct Word {

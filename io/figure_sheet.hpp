@@ -27,8 +27,8 @@ std::string format_word(plot::Format);
 [[noreturn]] void refuse_word(const std::string& option, const std::string& word,
                               const std::vector<std::string>& allowed);
 
-/// Width in design units, of which text of usual size is 14 or 15 high (7.5 pt in print, 15 pt on a
-/// slide).
+/// Width in design units, of which text of usual size is 14 or 15 high (7 pt in print, 17 pt on a
+/// slide that is 7.5 inches high).
 double sheet_width(FigureSize);
 /// A slide's is its own, whatever is asked for.
 double sheet_height(FigureSize, double wish);

@@ -10,7 +10,7 @@ namespace lidwright::plot {
 namespace {
 
 constexpr double head_length = 6.5, head_every = 190, least_with_head = 26;
-constexpr double arrow_spacing = 30, wall_clearance = 5;
+constexpr double arrow_spacing = 30, wall_clearance = 5, shortest_arrow = 3;
 constexpr double opacity = 0.6;
 
 double share_of(const Interval& range, double value) {
@@ -18,8 +18,7 @@ double share_of(const Interval& range, double value) {
 }
 
 /// Levels between the extremes, none of them 0: walls are lines of flow already.
-std::vector<double> flow_levels(const Interval& psi) {
-  constexpr int lines = 11;
+std::vector<double> flow_levels(const Interval& psi, int lines) {
   const double step = (psi.high - psi.low) / lines;
   std::vector<double> levels;
   const double air = 0.2 * step;  // no specks around an extreme
@@ -28,37 +27,54 @@ std::vector<double> flow_levels(const Interval& psi) {
   return levels;
 }
 
+/// Fewer in a shell that is thin on the page.
+int lines_in(const ShellMap& map) {
+  return std::clamp(static_cast<int>(map.units_per_thickness() / 9), 4, 11);
+}
+
 std::vector<ShellLine> flow_lines(const ShellMap& map, const std::vector<double>& psi) {
   const Interval range = range_of(psi);
   std::vector<ShellLine> all;
   if (range.empty()) return all;
-  for (const double level : flow_levels(range))
+  for (const double level : flow_levels(range, lines_in(map)))
     for (ShellLine& line : contour_lines(map.geometry(), psi, level, stride_for(map)))
       all.push_back(std::move(line));
   return all;
 }
 
-/// Light on dark ground, dark on light.
-class Tone {
+/// The tone that is seen well. Along a line it changes only where the ground does so for certain: a
+/// line over middling ground would look broken.
+class Contrast {
  public:
-  Tone(const Geometry& g, const std::vector<double>& cells, const Interval& range)
+  Contrast(const Geometry& g, const std::vector<double>& cells, const Interval& range)
       : read_(g, cells), range_(range) {}
-  bool light(const ShellPlace& s) const {
-    return share_of(range_, read_(s.radius, s.lateral)) < 0.5;
+  Tone tone(const ShellPlace& s) const { return tone_at(s, middle); }
+  std::vector<Tone> tones(const ShellLine& line) const {
+    std::vector<Tone> all;
+    for (const ShellPlace& s : line) {
+      const double turn = all.empty() ? 0 : all.back() == Tone::White ? sureness : -sureness;
+      all.push_back(tone_at(s, middle + turn));
+    }
+    return all;
   }
-  static Colour colour(bool light) { return light ? Colour{1, 1, 1} : Colour{0.1, 0.1, 0.15}; }
 
  private:
+  static constexpr double middle = 0.5, sureness = 0.12;
+  Tone tone_at(const ShellPlace& s, double limit) const {
+    return share_of(range_, read_(s.radius, s.lateral)) < limit ? Tone::White : Tone::Ink;
+  }
+
   CellReader read_;
   Interval range_;
 };
 
 /// Adds the parts of a line that have one tone to the canvas's path.
-void add_parts(Canvas& canvas, const ShellMap& map, const ShellLine& line, const Tone& tone,
-               bool light) {
+void add_parts(Canvas& canvas, const ShellMap& map, const ShellLine& line, const Contrast& contrast,
+               Tone tone) {
   bool drawing = false;
+  const std::vector<Tone> tones = contrast.tones(line);
   for (std::size_t k = 1; k < line.size(); ++k) {
-    const bool wanted = tone.light(line[k - 1]) == light;
+    const bool wanted = tones[k - 1] == tone;
     const Place p = map.on_page(line[k - 1].radius, line[k - 1].lateral);
     const Place q = map.on_page(line[k].radius, line[k].lateral);
     if (wanted && !drawing) cairo_move_to(canvas.context(), p.x, p.y);
@@ -68,11 +84,11 @@ void add_parts(Canvas& canvas, const ShellMap& map, const ShellLine& line, const
 }
 
 void draw_lines(Canvas& canvas, const ShellMap& map, const std::vector<ShellLine>& lines,
-                const Tone& tone) {
-  for (const bool light : {true, false}) {
+                const Contrast& contrast) {
+  for (const Tone tone : {Tone::White, Tone::Ink}) {
     cairo_new_path(canvas.context());
-    for (const ShellLine& line : lines) add_parts(canvas, map, line, tone, light);
-    canvas.stroke({Tone::colour(light), 0.9, opacity});
+    for (const ShellLine& line : lines) add_parts(canvas, map, line, contrast, tone);
+    canvas.stroke({colour_of(tone), 0.9, opacity});
   }
 }
 
@@ -107,7 +123,7 @@ void head(Canvas& canvas, Place tip, double dx, double dy, double length, Colour
 }
 
 void draw_heads(Canvas& canvas, const ShellMap& map, const ShellLine& line, const FlowReader& flow,
-                const Tone& tone) {
+                const Contrast& contrast) {
   const std::vector<Place> places = on_page(map, line);
   const double length = length_of(places);
   if (length < least_with_head) return;
@@ -118,7 +134,7 @@ void draw_heads(Canvas& canvas, const ShellMap& map, const ShellLine& line, cons
     const double way = u.x * a.dx + u.y * a.dy < 0 ? -1 : 1;
     const double reach = way * head_length / 2;
     head(canvas, {a.place.x + reach * a.dx, a.place.y + reach * a.dy}, way * a.dx, way * a.dy,
-         head_length, Tone::colour(tone.light(map.in_shell(a.place))));
+         head_length, colour_of(contrast.tone(map.in_shell(a.place))));
   }
 }
 
@@ -150,17 +166,17 @@ std::vector<Place> arrow_places(const ShellMap& map) {
 void draw_flow_lines(Canvas& canvas, const ShellMap& map,
                      const std::vector<double>& stream_function, const std::vector<double>& cells,
                      const Interval& range) {
-  draw_lines(canvas, map, flow_lines(map, stream_function), Tone(map.geometry(), cells, range));
+  draw_lines(canvas, map, flow_lines(map, stream_function), Contrast(map.geometry(), cells, range));
 }
 
 void draw_directed_flow_lines(Canvas& canvas, const ShellMap& map,
                               const std::vector<double>& stream_function, const Flow& flow,
                               const std::vector<double>& cells, const Interval& range) {
-  const Tone tone(map.geometry(), cells, range);
+  const Contrast contrast(map.geometry(), cells, range);
   const FlowReader velocity(map, flow);
   const std::vector<ShellLine> lines = flow_lines(map, stream_function);
-  draw_lines(canvas, map, lines, tone);
-  for (const ShellLine& line : lines) draw_heads(canvas, map, line, velocity, tone);
+  draw_lines(canvas, map, lines, contrast);
+  for (const ShellLine& line : lines) draw_heads(canvas, map, line, velocity, contrast);
 }
 
 double arrow_scale(const Flow& flow) {
@@ -173,26 +189,27 @@ double arrow_scale(const Flow& flow) {
   return *fast > 0 ? usual_arrow / *fast : 0;
 }
 
-void draw_arrow(Canvas& canvas, Place from, double dx, double dy) {
+void draw_arrow(Canvas& canvas, Place from, double dx, double dy, Tone tone) {
   const double length = std::hypot(dx, dy);
   if (!(length > 0)) return;
-  const double tip = std::min(head_length, 0.6 * length);
+  const double x = dx / length, y = dy / length, tip = std::min(head_length, 0.6 * length);
   const Place to{from.x + dx, from.y + dy};
-  const Place neck{to.x - 0.8 * tip * dx / length, to.y - 0.8 * tip * dy / length};
-  head(canvas, {to.x + dx / length, to.y + dy / length}, dx / length, dy / length, tip + 2,
-       {1, 1, 1});
-  rimmed_line(canvas, {from, neck}, 1.1);
-  head(canvas, to, dx / length, dy / length, tip, ink);
+  const Place neck{to.x - 0.8 * tip * x, to.y - 0.8 * tip * y};
+  head(canvas, {to.x + 0.8 * x, to.y + 0.8 * y}, x, y, tip + 1.6, colour_of(opposite(tone)));
+  rimmed_line(canvas, {from, neck}, 1.1, tone);
+  head(canvas, to, x, y, tip, colour_of(tone));
 }
 
-void draw_arrows(Canvas& canvas, const ShellMap& map, const Flow& flow) {
+void draw_arrows(Canvas& canvas, const ShellMap& map, const Flow& flow,
+                 const std::vector<double>& cells, const Interval& range) {
   const double scale = arrow_scale(flow);
   const FlowReader velocity(map, flow);
+  const Contrast contrast(map.geometry(), cells, range);
   for (const Place p : arrow_places(map)) {
     const Place u = velocity(p);
     const double dx = scale * u.x, dy = scale * u.y;
-    if (std::hypot(dx, dy) > usual_arrow / 30)
-      draw_arrow(canvas, {p.x - dx / 2, p.y - dy / 2}, dx, dy);
+    if (std::hypot(dx, dy) > shortest_arrow)
+      draw_arrow(canvas, {p.x - dx / 2, p.y - dy / 2}, dx, dy, contrast.tone(map.in_shell(p)));
   }
 }
 

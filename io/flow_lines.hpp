@@ -22,13 +22,14 @@ struct Flow {
 void draw_directed_flow_lines(Canvas&, const ShellMap&, const std::vector<double>& stream_function,
                               const Flow&, const std::vector<double>& cells, const Interval& range);
 
-/// Arrows at even distances on the page, none where the flow is hardly any.
-void draw_arrows(Canvas&, const ShellMap&, const Flow&);
+/// Arrows at even distances on the page, none where there is hardly any flow.
+void draw_arrows(Canvas&, const ShellMap&, const Flow&, const std::vector<double>& cells,
+                 const Interval& range);
 /// Units of the page per speed, of those arrows; 0 where nothing flows. All but the fastest cells
 /// of a hundred have arrows of this length at most.
 inline constexpr double usual_arrow = 38;
 double arrow_scale(const Flow&);
 /// From a place onwards.
-void draw_arrow(Canvas&, Place from, double dx, double dy);
+void draw_arrow(Canvas&, Place from, double dx, double dy, Tone = Tone::Ink);
 
 }  // namespace lidwright::plot

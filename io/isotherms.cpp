@@ -2,7 +2,6 @@
 
 #include <algorithm>
 #include <cmath>
-#include <numbers>
 
 #include "io/plot_chart.hpp"
 
@@ -12,41 +11,31 @@ namespace {
 constexpr double line_width = 0.9, label_size = 12, label_room = 34;
 constexpr int most_isotherms = 6;
 
-struct Labelled {
-  std::string text;
-  Along at;
-};
-
-bool apart(const Along& a, const std::vector<Labelled>& others) {
-  return std::all_of(others.begin(), others.end(), [&](const Labelled& o) {
-    return std::hypot(o.at.place.x - a.place.x, o.at.place.y - a.place.y) > label_room;
+bool apart(Place p, const std::vector<PlacedText>& others) {
+  return std::all_of(others.begin(), others.end(), [&](const PlacedText& o) {
+    return std::hypot(o.middle.x - p.x, o.middle.y - p.y) > label_room;
   });
 }
 
 bool on_frame(const Frame& f, Place p) {
-  const double air = label_room / 3;
-  return p.x > f.left + air && p.x < f.right() - air && p.y > f.top + air / 2 &&
-         p.y < f.bottom() - air / 2;
+  const double air = label_size / 2;
+  return p.x > f.left + label_room / 2 && p.x < f.right() - label_room / 2 && p.y > f.top + air &&
+         p.y < f.bottom() - air;
 }
 
 /// The first of some places along the longest line that is free; none: the label is left out.
-void add_label(std::vector<Labelled>& labels, const std::vector<std::vector<Place>>& lines,
+void add_label(std::vector<PlacedText>& labels, const std::vector<std::vector<Place>>& lines,
                const std::string& text, const Frame& frame) {
   const auto longest =
       std::max_element(lines.begin(), lines.end(),
                        [](const auto& p, const auto& q) { return length_of(p) < length_of(q); });
   if (longest == lines.end() || length_of(*longest) < 1.5 * label_room) return;
   for (const double share : {0.5, 0.35, 0.65, 0.2, 0.8, 0.43, 0.57, 0.27, 0.73}) {
-    const Along a = along(*longest, share * length_of(*longest));
-    if (!apart(a, labels) || !on_frame(frame, a.place)) continue;
-    labels.push_back({text, a});
+    const Place p = along(*longest, share * length_of(*longest)).place;
+    if (!apart(p, labels) || !on_frame(frame, p)) continue;
+    labels.push_back({text, p});
     return;
   }
-}
-
-/// Along the line, not upside down.
-double reading_angle(const Along& a) {
-  return std::atan(a.dx == 0 ? std::copysign(1e9, a.dy) : a.dy / a.dx);
 }
 
 /// Depth where a straight line between two cells' middles reaches the level.
@@ -63,10 +52,10 @@ Axis isotherm_levels(const std::vector<double>& temperature, const Shown& units)
   return linear_axis({units(r.low + air), units(r.high - air)}, most_isotherms);
 }
 
-void draw_isotherms(Canvas& canvas, const ShellMap& map, const std::vector<double>& temperature,
-                    const Shown& units) {
+std::vector<PlacedText> draw_isotherms(Canvas& canvas, const ShellMap& map,
+                                       const std::vector<double>& temperature, const Shown& units) {
   const std::vector<double> corners = corner_means(map.geometry(), temperature);
-  std::vector<Labelled> labels;
+  std::vector<PlacedText> labels;
   for (const Tick& t : isotherm_levels(temperature, units).ticks) {
     const double level = (t.value - units.offset) / units.scale;
     std::vector<std::vector<Place>> lines;
@@ -75,9 +64,11 @@ void draw_isotherms(Canvas& canvas, const ShellMap& map, const std::vector<doubl
     for (const auto& line : lines) rimmed_line(canvas, line, line_width);
     add_label(labels, lines, t.label, map.frame());
   }
-  for (const Labelled& l : labels)
-    canvas.turned_text(l.text, l.at.place, reading_angle(l.at),
-                       {label_size, ink, Weight::Normal, 0, 2.2});
+  return labels;
+}
+
+void draw_labels(Canvas& canvas, const std::vector<PlacedText>& labels) {
+  for (const PlacedText& l : labels) canvas.text_on_patch(l.text, l.middle, {label_size, ink});
 }
 
 std::vector<double> depths_of(const Geometry& g, const std::vector<double>& temperature,

@@ -4,7 +4,6 @@
 #include <cmath>
 
 #include "io/contours.hpp"
-#include "io/plot_chart.hpp"
 
 namespace lidwright::plot {
 namespace {
@@ -77,9 +76,12 @@ std::vector<Place> on_page(const ShellMap& map, const ShellLine& line) {
   return places;
 }
 
-void rimmed_line(Canvas& canvas, const std::vector<Place>& places, double width) {
-  canvas.line(places, {{1, 1, 1}, width + 1.6, 0.6});
-  canvas.line(places, {ink, width});
+Colour colour_of(Tone tone) { return tone == Tone::Ink ? Colour{0.1, 0.1, 0.15} : Colour{1, 1, 1}; }
+Tone opposite(Tone tone) { return tone == Tone::Ink ? Tone::White : Tone::Ink; }
+
+void rimmed_line(Canvas& canvas, const std::vector<Place>& places, double width, Tone tone) {
+  canvas.line(places, {colour_of(opposite(tone)), width + 1.6, 0.6});
+  canvas.line(places, {colour_of(tone), width});
 }
 
 double length_of(const std::vector<Place>& line) {

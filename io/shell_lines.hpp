@@ -23,8 +23,13 @@ std::vector<double> corner_means(const Geometry&, const std::vector<double>& cel
 
 std::vector<Place> on_page(const ShellMap&, const ShellLine&);
 
-/// A line, or a mark, that can be seen on dark and on light ground: with a light rim.
-void rimmed_line(Canvas&, const std::vector<Place>&, double width);
+/// Ink on light ground, white on dark.
+enum class Tone { Ink, White };
+Colour colour_of(Tone);
+Tone opposite(Tone);
+
+/// A line with a rim of the other tone, to be seen on any ground.
+void rimmed_line(Canvas&, const std::vector<Place>&, double width, Tone = Tone::Ink);
 
 /// The place along a line at a distance from its begin, and the direction there (of length 1).
 struct Along {
