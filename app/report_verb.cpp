@@ -58,8 +58,8 @@ void follow(const ReportRequest& request) {
   WorkLine line(request.progress);
   for (bool running = true; running;) {
     running = write_once(request, request.every);
-    line.show_always(fmt::format("{} written, the run {}", target(request),
-                                 running ? "goes on" : "has ended"));
+    line.show_always(
+        fmt::format("{} written, the run {}", target(request), running ? "goes on" : "has ended"));
     if (!running || !rest(request.every)) continue;
     write_once(request, 0);
     return;

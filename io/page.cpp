@@ -67,8 +67,10 @@ Parts march_parts(const SavedRun& run, const PageState& state) {
   for (const CollectionEntry& s : run.snapshots)
     parts.labels.push_back(time_words(s.time, run.settings.body));
   if (!run.history || run.history->rows() < 2) {
-    parts.verdict = {"too short", "The history has fewer than two rows: nothing can be said yet.",
-                     {}, Tone::Doubtful};
+    parts.verdict = {"too short",
+                     "The history has fewer than two rows: nothing can be said yet.",
+                     {},
+                     Tone::Doubtful};
     return parts;
   }
   const RunStatistics s = run_statistics(*run.history, run.paths.history(), run.settings.march);

@@ -2,16 +2,23 @@
 
 // The files become a part of this object as they are: no list of numbers for the compiler to read.
 // CMakeLists.txt names them as this file's dependencies and says where they stand.
-#define LIDWRIGHT_ASSET(name, path)         \
-  asm(".section .rodata\n"                  \
-      ".global lidwright_asset_" name "\n"  \
-      ".hidden lidwright_asset_" name "\n"  \
-      ".global lidwright_end_" name "\n"    \
-      ".hidden lidwright_end_" name "\n"    \
-      "lidwright_asset_" name ":\n"         \
-      ".incbin \"" path "\"\n"              \
-      "lidwright_end_" name ":\n"           \
-      ".byte 0\n"                           \
+#define LIDWRIGHT_ASSET(name, path)   \
+  asm(".section .rodata\n"            \
+      ".global lidwright_asset_" name \
+      "\n"                            \
+      ".hidden lidwright_asset_" name \
+      "\n"                            \
+      ".global lidwright_end_" name   \
+      "\n"                            \
+      ".hidden lidwright_end_" name   \
+      "\n"                            \
+      "lidwright_asset_" name         \
+      ":\n"                           \
+      ".incbin \"" path               \
+      "\"\n"                          \
+      "lidwright_end_" name           \
+      ":\n"                           \
+      ".byte 0\n"                     \
       ".text\n")
 
 LIDWRIGHT_ASSET("html", LIDWRIGHT_PAGE "/page.html");

@@ -87,10 +87,10 @@ std::string marks(const Layers& l, const std::optional<InBody>& in) {
     const double share = k / (count - 1.0);
     const double value = r.low + share * (r.high - r.low);
     const double plain = l.logarithmic ? std::pow(10.0, value) : value;
-    all.push_back(json::object(
-        {{"at", json::number(share)},
-         {"words", json::text(digits(plain, 3))},
-         {"body", json::text(in ? digits(in->scale * plain + in->offset, 4) : "")}}));
+    all.push_back(
+        json::object({{"at", json::number(share)},
+                      {"words", json::text(digits(plain, 3))},
+                      {"body", json::text(in ? digits(in->scale * plain + in->offset, 4) : "")}}));
   }
   return json::list(all);
 }
@@ -198,8 +198,7 @@ std::string colours_json() {
   for (int k = 0; k < 256; ++k) {
     const Colour c = colour_at(k / 255.0);
     const auto byte = [](double x) { return static_cast<int>(std::lround(255 * x)); };
-    all.push_back(
-        fmt::format("{}", byte(c.red) << 16 | byte(c.green) << 8 | byte(c.blue)));
+    all.push_back(fmt::format("{}", byte(c.red) << 16 | byte(c.green) << 8 | byte(c.blue)));
   }
   return json::list(all);
 }

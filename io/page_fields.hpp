@@ -12,9 +12,9 @@ namespace lidwright::page {
 
 /// What the images may cost the page.
 struct ImageBudget {
-  std::size_t frames = 24;       ///< most snapshots
-  std::size_t pixels = 49152;    ///< most of an image: 128 x 384
-  std::size_t bytes = 1400000;   ///< of all images together, as base64
+  std::size_t frames = 24;      ///< most snapshots
+  std::size_t pixels = 49152;   ///< most of an image: 128 x 384
+  std::size_t bytes = 1400000;  ///< of all images together, as base64
 };
 
 /// Cells in blocks of `factor` by `factor`, column by column: their faces and the mean of each.

@@ -114,9 +114,11 @@ const char* word(Tone t) {
 }
 
 std::string json_of(const Verdict& v) {
+  std::vector<std::string> evidence = v.evidence;
+  for (std::string& line : evidence) replace_all(line, "+-", "±");
   return json::object({{"heading", json::text(v.heading)},
                        {"sentence", json::text(v.sentence)},
-                       {"evidence", json::texts(v.evidence)},
+                       {"evidence", json::texts(evidence)},
                        {"tone", json::text(word(v.tone))}});
 }
 
@@ -135,17 +137,18 @@ Verdict march_verdict(const RunStatistics& s, bool running) {
   const RegimeVerdict& v = s.lid;
   const std::string so_far = running ? " so far" : "";
   if (v.regime == Regime::Undecided) {
-    std::string sentence = fmt::format("The regime of the lid is undecided{}: {}.", so_far,
-                                       v.why_undecided.empty() ? "too little is known"
-                                                               : v.why_undecided);
+    std::string sentence =
+        fmt::format("The regime of the lid is undecided{}: {}.", so_far,
+                    v.why_undecided.empty() ? "too little is known" : v.why_undecided);
     if (v.likeliest != Regime::Undecided)
       sentence += fmt::format(" As far as it goes: {}, in {:.2f} of the resamples.",
                               word(v.likeliest), v.probability);
     return {"undecided", sentence, v.evidence, Tone::Doubtful};
   }
-  std::string sentence = fmt::format("Probability {:.2f}{}, by resampling the settled part of the "
-                                     "record.",
-                                     v.probability, so_far);
+  std::string sentence = fmt::format(
+      "Probability {:.2f}{}, by resampling the settled part of the "
+      "record.",
+      v.probability, so_far);
   if (v.shares.size() > 1) sentence += fmt::format(" Shares of the resamples: {}.", shares_text(v));
   return {word(v.regime), sentence, v.evidence, Tone::Good};
 }
@@ -243,14 +246,15 @@ Verdict onset_verdict(const TomlSection& summary) {
   Verdict v;
   v.heading = times > 1 ? "this case convects" : "this case conducts";
   v.sentence = fmt::format(
-      "Its Rayleigh number is {} times the critical one, {}. The mode that sets in first has number "
+      "Its Rayleigh number is {} times the critical one, {}. The mode that sets in first has "
+      "number "
       "{}.",
       digits(times), digits(summary.number("critical_rayleigh"), 6), summary["critical_mode"]);
   const bool bracketed = summary["bracketed"] == "1";
-  v.evidence.push_back(bracketed
-                           ? "Larger Rayleigh numbers were found on both sides of the least."
-                           : "The least stands at the end of the modes that were looked at: shorter "
-                             "or longer waves may set in earlier (onset --modes).");
+  v.evidence.push_back(
+      bracketed ? "Larger Rayleigh numbers were found on both sides of the least."
+                : "The least stands at the end of the modes that were looked at: shorter "
+                  "or longer waves may set in earlier (onset --modes).");
   const double error = summary.number("critical_rayleigh_error") /
                        summary.number("critical_rayleigh") * std::max(times, 1.0);
   const bool near = std::abs(times - 1) <= error;

@@ -79,12 +79,13 @@ double cells_across(const Geometry& g, double layer, bool outer) {
 
 HealthRow layer_row(const Geometry& g, const std::string& name, double layer, bool outer) {
   const double cells = cells_across(g, layer, outer);
-  return {name, std::isfinite(cells) ? fmt::format("{:.1f} cells", cells) : "none",
-          "good from 4, poor below 2",
-          fmt::format("the thermal boundary layer is {} d thick, on the average of the settled part "
-                      "or at the end",
-                      digits(layer, 3)),
-          judged_large(cells, 4, 2)};
+  return {
+      name, std::isfinite(cells) ? fmt::format("{:.1f} cells", cells) : "none",
+      "good from 4, poor below 2",
+      fmt::format("the thermal boundary layer is {} d thick, on the average of the settled part "
+                  "or at the end",
+                  digits(layer, 3)),
+      judged_large(cells, 4, 2)};
 }
 
 double mean_or_last(const SavedRun& run, const RunStatistics& s, const std::string& column) {
@@ -128,8 +129,9 @@ HealthRow step_row(const HistoryTable& t) {
 HealthRow solver_row(const HistoryTable& t) {
   const double steps = last(t.find("step")), uses = last(t.find("applications"));
   return {"Uses of the flow's factor", steps > 0 ? fmt::format("{:.2f} a step", uses / steps) : "-",
-          "", fmt::format("{} factorisations in {} steps", whole(last(t.find("factorisations"))),
-                          whole(steps)),
+          "",
+          fmt::format("{} factorisations in {} steps", whole(last(t.find("factorisations"))),
+                      whole(steps)),
           Judgement::None};
 }
 
@@ -151,7 +153,8 @@ std::string overall(const std::vector<HealthRow>& rows) {
     if (r.judgement == Judgement::Look) look.push_back(r.name);
   }
   if (!poor.empty()) return fmt::format("Poor: {}.", fmt::join(poor, "; "));
-  if (!look.empty()) return fmt::format("Nothing is poor. Look closer at: {}.", fmt::join(look, "; "));
+  if (!look.empty())
+    return fmt::format("Nothing is poor. Look closer at: {}.", fmt::join(look, "; "));
   return "Everything that is judged is good.";
 }
 
@@ -195,15 +198,14 @@ Judgement judged_large(double value, double good, double fair) {
 std::vector<HealthRow> march_health(const SavedRun& run, const RunStatistics& s) {
   const HistoryTable& t = *run.history;
   const Geometry g(run.settings.model.shell, run.settings.model.grid);
-  std::vector<HealthRow> rows{
-      budget_row(largest(t.find("heat_budget_residual"))),
-      work_row(run, largest(t.find("work_mismatch"))),
-      flow_row(run, largest(t.find("flow_error"))),
-      balance_row(run, s),
-      layer_row(g, "Cells across the outer boundary layer",
-                mean_or_last(run, s, "lid_thickness_conduction"), true),
-      layer_row(g, "Cells across the inner boundary layer",
-                mean_or_last(run, s, "boundary_layer_inner"), false)};
+  std::vector<HealthRow> rows{budget_row(largest(t.find("heat_budget_residual"))),
+                              work_row(run, largest(t.find("work_mismatch"))),
+                              flow_row(run, largest(t.find("flow_error"))),
+                              balance_row(run, s),
+                              layer_row(g, "Cells across the outer boundary layer",
+                                        mean_or_last(run, s, "lid_thickness_conduction"), true),
+                              layer_row(g, "Cells across the inner boundary layer",
+                                        mean_or_last(run, s, "boundary_layer_inner"), false)};
   if (run.settings.model.nonlinear()) rows.push_back(newton_row(run));
   rows.push_back(step_row(t));
   rows.push_back(solver_row(t));
@@ -239,8 +241,8 @@ std::vector<HealthRow> onset_health(const NumberTable& onset, const TomlSection&
     rows.push_back(small_row("Relative error of the critical Rayleigh number", error, 0.01, 0.1,
                              "half width of its error bar, from three grids"));
   rows.push_back({"Radial cells", s["radial_cells"], "", "of the finest grid", Judgement::None});
-  rows.push_back({"Modes", whole(static_cast<double>(onset.rows())), "", "looked at",
-                  Judgement::None});
+  rows.push_back(
+      {"Modes", whole(static_cast<double>(onset.rows())), "", "looked at", Judgement::None});
   return rows;
 }
 

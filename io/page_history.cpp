@@ -109,12 +109,11 @@ std::string history_json(const SavedRun& run, const RunStatistics& s) {
   for (std::size_t k = 0; k < t.names.size(); ++k)
     if (t.names[k] != "time") columns.push_back(column_json(t, k, d, s));
   const auto& body = run.settings.body;
-  return json::object(
-      {{"file", json::text("history.csv")},
-       {"rows", json::number(static_cast<double>(t.rows()))},
-       {"times", json::numbers(values_at(*time, d.rows), digits_of_a_time)},
-       {"million", json::number(body ? in_body("d^2/kappa", *body)->scale : 0, 9)},
-       {"columns", json::list(columns)}});
+  return json::object({{"file", json::text("history.csv")},
+                       {"rows", json::number(static_cast<double>(t.rows()))},
+                       {"times", json::numbers(values_at(*time, d.rows), digits_of_a_time)},
+                       {"million", json::number(body ? in_body("d^2/kappa", *body)->scale : 0, 9)},
+                       {"columns", json::list(columns)}});
 }
 
 std::string table_json(const NumberTable& t, const std::string& file, const std::string& title,
@@ -122,9 +121,8 @@ std::string table_json(const NumberTable& t, const std::string& file, const std:
   std::vector<std::string> columns;
   for (std::size_t k = 0; k < t.names.size(); ++k)
     columns.push_back(column_of_numbers(t, k, digits));
-  return json::object({{"file", json::text(file)},
-                       {"title", json::text(title)},
-                       {"columns", json::list(columns)}});
+  return json::object(
+      {{"file", json::text(file)}, {"title", json::text(title)}, {"columns", json::list(columns)}});
 }
 
 std::string text_table_json(const std::string& csv, const std::string& file,
@@ -133,16 +131,15 @@ std::string text_table_json(const std::string& csv, const std::string& file,
   std::istringstream lines(csv);
   for (std::string line; std::getline(lines, line);)
     if (!line.empty() && line.front() != '#') rows.push_back(json::texts(text_fields(line, file)));
-  return json::object({{"file", json::text(file)},
-                       {"title", json::text(title)},
-                       {"rows", json::list(rows)}});
+  return json::object(
+      {{"file", json::text(file)}, {"title", json::text(title)}, {"rows", json::list(rows)}});
 }
 
 std::string profiles_json(const SavedRun& run, const std::vector<std::size_t>& snapshots) {
   std::vector<std::string> all;
   for (const std::size_t n : snapshots)
-    all.push_back(table_json(read_profiles(run, n), fmt::format("profiles/profiles_{:04}.csv", n),
-                             "", 6));
+    all.push_back(
+        table_json(read_profiles(run, n), fmt::format("profiles/profiles_{:04}.csv", n), "", 6));
   return json::list(all);
 }
 

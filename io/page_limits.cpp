@@ -45,7 +45,8 @@ std::vector<std::string> limits_of(const SavedRun& run) {
       "grains or memory. The core is a wall with a temperature or a heat flux."};
   if (m.yielding)
     all.emplace_back(
-        "Rock yields by an effective viscosity: shear zones are a cell or two wide, and their width "
+        "Rock yields by an effective viscosity: shear zones are a cell or two wide, and their "
+        "width "
         "depends on the grid.");
   return all;
 }

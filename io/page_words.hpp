@@ -18,6 +18,8 @@ Stated stated(double value, double error);
 /// Four digits, with a true minus sign and powers of ten: "1.234 × 10⁻⁵".
 std::string digits(double value, int count = 4);
 
+void replace_all(std::string& text, const std::string& what, const std::string& by);
+
 /// "d^2/kappa" as "d²/κ"; "1" as nothing.
 std::string unit(const std::string& of_a_table);
 

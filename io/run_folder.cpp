@@ -45,8 +45,8 @@ bool own_name(std::string_view name) {
     if (name == "provenance.toml") return true;
   }
   static constexpr std::array<std::string_view, 14> plain{
-      "case_as_read.toml", "summary.toml", "history.csv",   "fields.pvd", "walls.pvd",
-      "onset.csv",         "onset.png",    "newton.csv",    "branch.csv", "error_bars.csv",
+      "case_as_read.toml", "summary.toml", "history.csv",    "fields.pvd", "walls.pvd",
+      "onset.csv",         "onset.png",    "newton.csv",     "branch.csv", "error_bars.csv",
       "growth_rates.csv",  "branch.png",   "statistics.csv", "report.html"};
   const auto of_snapshot = [&](std::string_view before, std::string_view after) {
     return numbered(name, before, snapshot_digits, after).has_value();

@@ -151,8 +151,8 @@
         gridLineColor: line, axisLineColor: quiet, gridLineWidth: 0.6, axisLabelFontSize: 12, rightGap: 12,
         xlabel: this.spec.xLabel || this.spec.xName, xLabelHeight: 16, titleHeight: 0, valueRange: this.range(),
         axes: { x: { drawGrid: false, axisLabelFormatter: tick, logscale: Boolean(this.spec.logX), axisLabelWidth: 70,
-                     pixelsPerLabel: 90, ticker: this.spec.whole ? wholeTicks : undefined },
-                y: { axisLabelFormatter: tick, axisLabelWidth: 62, pixelsPerLabel: 34 } },
+                     pixelsPerLabel: 90, ...(this.spec.whole ? { ticker: wholeTicks } : {}) },
+                y: { axisLabelFormatter: tick, axisLabelWidth: 62, pixelsPerLabel: 34, ticker: this.logarithmic ? logTicks : Dygraph.numericTicks } },
         interactionModel: gestures,
         underlayCallback: (canvas, area, g) => this.under(canvas, area, g),
         highlightCallback: (event, x) => this.pointed(x),
@@ -281,6 +281,18 @@
       keep({ window: all ? null : window });
     }
   }
+  /* Powers of ten, with 2 and 5 between them where there is room; some powers left out where there is none. */
+  function logTicks(low, high, pixels) {
+    const decades = Math.log10(high / low), room = Math.max(2, pixels / 34), ticks = [];
+    const parts = 3 * decades <= room ? [1, 2, 5] : [1], step = Math.max(1, Math.ceil(decades / room));
+    for (let d = Math.floor(Math.log10(low)); d <= Math.ceil(Math.log10(high)); ++d)
+      for (const part of parts) {
+        const v = Number((part * 10 ** d).toPrecision(12));
+        if (d % step === 0 && v >= low && v <= high) ticks.push({ v, label: tick(v) });
+      }
+    return ticks.length > 1 ? ticks : Dygraph.numericLinearTicks(low, high, pixels, linearOptions);
+  }
+  const linearOptions = (name) => ({ pixelsPerLabel: 34, labelsKMB: false, labelsKMG2: false, axisLabelFormatter: tick })[name];
   function wholeTicks(low, high, pixels, options) {
     const step = Math.max(1, Math.ceil((high - low) / Math.max(2, pixels / 60)));
     const ticks = [];
