@@ -148,7 +148,7 @@ ExitCode settle_in(const SettleJob& job, const RunPaths& paths, Provenance& prov
     return code;
   } catch (const SolveError&) {
     provenance.end_session(0, "not solved");
-    write_run_report(job.session, job.c, paths);
+    if (holds_steady_states(paths.folder)) write_run_report(job.session, job.c, paths);
     throw;
   }
 }

@@ -60,6 +60,7 @@ struct Parts {
   std::string history = "null";
   std::vector<std::string> tables;
   std::vector<std::string> labels;  ///< of every snapshot
+  std::string parameter;            ///< of a branch
 };
 
 Parts march_parts(const SavedRun& run, const PageState& state) {
@@ -90,14 +91,14 @@ void add_table(Parts& parts, const std::string& path, const std::string& title) 
 }
 
 /// Number of a state and value of the key there.
-void label_states(Parts& parts, const NumberTable& branch, const std::string& key) {
+void label_states(Parts& parts, const NumberTable& branch) {
   const auto *snapshot = branch.find("snapshot"), *parameter = branch.find("parameter");
   if (!snapshot || !parameter) return;
   for (std::size_t k = 0; k < snapshot->size(); ++k) {
     const double n = (*snapshot)[k];
     if (n >= 0 && n < static_cast<double>(parts.labels.size()))
       parts.labels[static_cast<std::size_t>(n)] =
-          fmt::format("{} = {}", key, digits((*parameter)[k], 6));
+          fmt::format("{} = {}", parts.parameter, compact((*parameter)[k]));
   }
 }
 
@@ -110,7 +111,8 @@ Parts settle_parts(const SavedRun& run) {
   if (const auto branch = table_if_there(run.paths.branch())) {
     parts.figures = branch_figures(*branch, summary);
     parts.health = branch_health(run, *branch);
-    label_states(parts, *branch, summary["key"]);
+    parts.parameter = summary["key"];
+    label_states(parts, *branch);
   } else {
     parts.figures = settle_figures(run, summary, text_if_there(run.paths.error_bars()));
     parts.health = settle_health(run, summary);
@@ -186,6 +188,7 @@ std::string data_of(const SavedRun& run, const PageState& state) {
                        {"written", json::text(utc_now())},
                        {"running", json::truth(state.running)},
                        {"reload", json::number(state.running ? state.reload : 0)},
+                       {"parameter", json::text(parts.parameter)},
                        {"verdict", json_of(parts.verdict)},
                        {"soundness", json::text(parts.soundness)},
                        {"figures", json_of(parts.figures, run.settings.body)},

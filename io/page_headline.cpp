@@ -28,9 +28,9 @@ struct Asked {
 constexpr std::array<Asked, 8> asked{{
     {"heat_flow_outer", "Heat flux through the surface", "k DeltaT/d", 1},
     {"heat_flow_inner", "Heat flux out of the core", "k DeltaT/d", -1},
-    {"nusselt_outer", "Nusselt number, surface", "1"},
-    {"nusselt_inner", "Nusselt number, core", "1"},
-    {"velocity_rms", "Velocity, rms", "kappa/d"},
+    {"nusselt_outer", "Surface Nusselt number", "1"},
+    {"nusselt_inner", "Core Nusselt number", "1"},
+    {"velocity_rms", "Rms velocity", "kappa/d"},
     {"temperature_mean", "Mean temperature", "DeltaT", 0, true},
     {"lid_thickness_velocity", "Thickness of the lid", "d"},
     {"mobility", "Mobility", "1"},
@@ -68,6 +68,11 @@ std::string body_json(const Figure& f, const std::optional<Body>& body) {
   const auto in = body ? in_body(f.unit, *body, f.absolute) : std::nullopt;
   if (!in || !std::isfinite(f.value)) return "null";
   return stated_json(in->scale * f.value + in->offset, in->scale * f.error, in->unit);
+}
+
+bool one_reason(const std::vector<Reason>& all) {
+  return std::all_of(all.begin(), all.end(),
+                     [&](const Reason& r) { return r.words == all.front().words; });
 }
 
 std::string shares_text(const RegimeVerdict& v) {
@@ -164,6 +169,8 @@ std::string soundness(const RunStatistics& s) {
   }
   if (missing.empty())
     return fmt::format("All {} means are good for use, within their errors (95 %).", count);
+  if (missing.size() == count && one_reason(missing))
+    return fmt::format("No mean is good for use yet: {}.", missing.front().words);
   if (missing.size() == count)
     return fmt::format("No mean is good for use yet: {}.", joined(missing));
   return fmt::format("{} of {} means are good for use, within their errors (95 %). Not: {}.",
@@ -231,12 +238,12 @@ std::vector<Figure> branch_figures(const NumberTable& branch, const TomlSection&
   if (!parameter || parameter->empty()) return figures;
   for (const bool last : {false, true})
     for (const auto& [name, label, of] :
-         {std::tuple{"nusselt_outer", "Nusselt number, surface", "1"},
-          std::tuple{"velocity_rms", "Velocity, rms", "kappa/d"}})
+         {std::tuple{"nusselt_outer", "Surface Nusselt number", "1"},
+          std::tuple{"velocity_rms", "Rms velocity", "kappa/d"}})
       if (const auto* column = branch.find(name))
         figures.push_back({label, last ? column->back() : column->front(), unknown, of, false,
                            fmt::format("at {} = {}", summary["key"],
-                                       digits(last ? parameter->back() : parameter->front(), 6)),
+                                       compact(last ? parameter->back() : parameter->front())),
                            true});
   return figures;
 }
@@ -249,7 +256,7 @@ Verdict onset_verdict(const TomlSection& summary) {
       "Its Rayleigh number is {} times the critical one, {}. The mode that sets in first has "
       "number "
       "{}.",
-      digits(times), digits(summary.number("critical_rayleigh"), 6), summary["critical_mode"]);
+      digits(times), compact(summary.number("critical_rayleigh")), summary["critical_mode"]);
   const bool bracketed = summary["bracketed"] == "1";
   v.evidence.push_back(
       bracketed ? "Larger Rayleigh numbers were found on both sides of the least."

@@ -40,7 +40,7 @@ std::string whole(double x) { return std::isfinite(x) ? fmt::format("{:.0f}", x)
 HealthRow small_row(const std::string& name, double value, double good, double fair,
                     const std::string& meaning) {
   return {name, digits(value, 2),
-          fmt::format("good to {}, poor from {}", digits(good, 2), digits(fair, 2)), meaning,
+          fmt::format("good to {}, poor from {}", compact(good, 2), compact(fair, 2)), meaning,
           judged_small(value, good, fair)};
 }
 
@@ -102,8 +102,11 @@ HealthRow balance_row(const SavedRun& run, const RunStatistics& s) {
   const double work = of("viscous_heating") - of("adiabatic_cooling");
   const double scale = std::max({std::abs(out), std::abs(in), std::abs(made)});
   const double gained = (in + made + work - out) / scale;
-  HealthRow row = small_row("Heat in less heat out, on the average", std::abs(gained), 0.02, 0.1,
+  HealthRow row = small_row("Heat in less heat out, on the average", std::abs(gained), 0.02, 1,
                             "over the largest of them; what is left warms or cools the mantle");
+  row.threshold = "steady to 0.02";
+  // A mantle that cools is no fault of the computation.
+  if (row.judgement == Judgement::Poor) row.judgement = Judgement::Look;
   if (gained > 0.02) row.meaning += ": it warms";
   if (gained < -0.02) row.meaning += ": it cools";
   return row;

@@ -50,6 +50,19 @@ std::string digits(double value, int count) {
                                 power(exponent)));
 }
 
+std::string compact(double value, int count) {
+  std::string text = digits(value, count);
+  const std::size_t times = std::min(text.find(" ×"), text.size());
+  std::string head = text.substr(0, times);
+  if (head.find('.') != std::string::npos) {
+    head.erase(head.find_last_not_of('0') + 1);
+    if (head.ends_with('.')) head.pop_back();
+  }
+  if (times == text.size()) return head;
+  const std::string power_alone = text.substr(times + std::string_view(" × ").size());
+  return head == "1" ? power_alone : head + text.substr(times);
+}
+
 Stated stated(double value, double error) {
   if (!std::isfinite(value)) return {"not defined", ""};
   if (!(error > 0) || !std::isfinite(error)) return {digits(value), ""};

@@ -75,6 +75,12 @@
             make("td", { class: "error", text: number.error && "± " + number.error }),
             make("td", { class: "unit", text: number.unit })];
   }
+  /* What is the same of all is said once. */
+  const notes = new Set(data.figures.map((f) => f.note));
+  if (data.figures.length > 1 && notes.size === 1 && !notes.has("")) {
+    at("figures").after(make("p", { class: "small", text: "All of them: " + data.figures[0].note + "." }));
+    for (const f of data.figures) f.note = "";
+  }
   for (const f of data.figures) {
     const head = make("th", { scope: "row", rowspan: f.body ? 2 : 1, text: f.label });
     if (f.note) head.append(make("span", { class: "note", text: f.note }));
@@ -151,8 +157,8 @@
         gridLineColor: line, axisLineColor: quiet, gridLineWidth: 0.6, axisLabelFontSize: 12, rightGap: 12,
         xlabel: this.spec.xLabel || this.spec.xName, xLabelHeight: 16, titleHeight: 0, valueRange: this.range(),
         axes: { x: { drawGrid: false, axisLabelFormatter: tick, logscale: Boolean(this.spec.logX), axisLabelWidth: 70,
-                     pixelsPerLabel: 90, ...(this.spec.whole ? { ticker: wholeTicks } : {}) },
-                y: { axisLabelFormatter: tick, axisLabelWidth: 62, pixelsPerLabel: 34, ticker: this.logarithmic ? logTicks : Dygraph.numericTicks } },
+                     pixelsPerLabel: 64, ...(this.spec.whole ? { ticker: wholeTicks } : {}) },
+                y: { axisLabelFormatter: tick, axisLabelWidth: 62, pixelsPerLabel: 26, ticker: this.logarithmic ? logTicks : Dygraph.numericTicks } },
         interactionModel: gestures,
         underlayCallback: (canvas, area, g) => this.under(canvas, area, g),
         highlightCallback: (event, x) => this.pointed(x),
@@ -283,7 +289,7 @@
   }
   /* Powers of ten, with 2 and 5 between them where there is room; some powers left out where there is none. */
   function logTicks(low, high, pixels) {
-    const decades = Math.log10(high / low), room = Math.max(2, pixels / 34), ticks = [];
+    const decades = Math.log10(high / low), room = Math.max(2, pixels / 26), ticks = [];
     const parts = 3 * decades <= room ? [1, 2, 5] : [1], step = Math.max(1, Math.ceil(decades / room));
     for (let d = Math.floor(Math.log10(low)); d <= Math.ceil(Math.log10(high)); ++d)
       for (const part of parts) {
@@ -292,7 +298,7 @@
       }
     return ticks.length > 1 ? ticks : Dygraph.numericLinearTicks(low, high, pixels, linearOptions);
   }
-  const linearOptions = (name) => ({ pixelsPerLabel: 34, labelsKMB: false, labelsKMG2: false, axisLabelFormatter: tick })[name];
+  const linearOptions = (name) => ({ pixelsPerLabel: 26, labelsKMB: false, labelsKMG2: false, axisLabelFormatter: tick })[name];
   function wholeTicks(low, high, pixels, options) {
     const step = Math.max(1, Math.ceil((high - low) / Math.max(2, pixels / 60)));
     const ticks = [];
@@ -311,7 +317,7 @@
 
   /* --- the field --------------------------------------------------------------------------------------- */
   const fields = data.fields;
-  let frame = 0, layer = 0;
+  let frame = 0, layer = 0, goTo = () => {};
   const moment = () => (fields ? fields.times[frame] : NaN);
 
   /* Where each pixel of the canvas lies: the block of the image that it shows, and how much of it is shell. */
@@ -443,7 +449,7 @@
       at("moment").textContent = fields.labels[frame];
       slider.setAttribute("aria-valuetext", fields.labels[frame]);
     };
-    window.lidwrightGoTo = (to) => {
+    goTo = (to) => {
       frame = Math.min(last, Math.max(0, to));
       slider.value = frame;
       describe();
@@ -463,7 +469,7 @@
       at("layers").querySelectorAll("input")[layer].checked = true;
     }
     slider.max = last;
-    slider.addEventListener("input", () => { stop(); window.lidwrightGoTo(Number(slider.value)); });
+    slider.addEventListener("input", () => { stop(); goTo(Number(slider.value)); });
     at("slider").parentElement.hidden = last === 0;
     let playing = null;
     const stop = () => {
@@ -474,10 +480,10 @@
     };
     at("play").addEventListener("click", () => {
       if (playing) return stop();
-      if (frame === last) window.lidwrightGoTo(0);
+      if (frame === last) goTo(0);
       at("play").textContent = "Stop";
       at("moment").setAttribute("aria-live", "off");
-      playing = setInterval(() => { if (frame === last) stop(); else window.lidwrightGoTo(frame + 1); }, 450);
+      playing = setInterval(() => { if (frame === last) stop(); else goTo(frame + 1); }, 450);
     });
     const notes = [];
     if (fields.total > fields.labels.length) notes.push(fields.labels.length + " of " + fields.total + " snapshots, evenly spaced.");
@@ -499,8 +505,8 @@
 
   /* --- history --------------------------------------------------------------------------------------------- */
   const names = {
-    nusselt_outer: "Nusselt number, surface", nusselt_inner: "Nusselt number, core", velocity_rms: "Velocity, rms",
-    velocity_rms_outer: "Velocity along the surface, rms", velocity_rms_inner: "Velocity along the core, rms",
+    nusselt_outer: "Surface Nusselt number", nusselt_inner: "Core Nusselt number", velocity_rms: "Rms velocity",
+    velocity_rms_outer: "Rms velocity along the surface", velocity_rms_inner: "Rms velocity along the core",
     temperature_mean: "Mean temperature", lid_thickness_velocity: "Thickness of the lid", mobility: "Mobility",
     heat_flow_outer: "Heat flow through the surface", heat_flow_inner: "Heat flow out of the core",
     heat_budget_residual: "Heat budget, residual", work_mismatch: "Work against dissipation", flow_error: "Error of the flow",
@@ -524,7 +530,7 @@
         if (!fields) return;
         let best = 0;
         fields.times.forEach((t, k) => { if (Math.abs(t - x) < Math.abs(fields.times[best] - x)) best = k; });
-        window.lidwrightGoTo(best);
+        goTo(best);
       },
     });
     chart.box.dataset.column = c.name;
@@ -606,10 +612,11 @@
 
   /* --- profiles ------------------------------------------------------------------------------------------------ */
   const profilePlan = [["Temperature", ["temperature", "temperature_adiabatic"], ["mean", "adiabat"], false],
-    ["Velocity, rms", ["velocity_radial_rms", "velocity_lateral_rms"], ["radial", "lateral"], false],
+    ["Rms velocity", ["velocity_radial_rms", "velocity_lateral_rms"], ["radial", "lateral"], false],
     ["Viscosity", ["viscosity"], ["viscosity"], true],
     ["Heat flow", ["heat_conducted", "heat_advected"], ["conducted", "advected"], false]];
   const profileCharts = [];
+  const across = fields && fields.geometry.shape === "box" ? "height, d: bottom left, top right" : "radius, d: core left, surface right";
   const columnIn = (set, code) => set.columns.find((c) => c.name === code);
   const changes = (values) => Math.max(...values) > Math.min(...values) * (1 + 1e-9);
   for (const [title, codes, labels, log] of data.profiles.length ? profilePlan : []) {
@@ -619,7 +626,7 @@
     const all = data.profiles.flatMap((set) => there.flatMap(([code]) => columnIn(set, code).values)).filter(isNumber);
     const chart = new Chart(at("profile-panels"), {
       name: title, unit: columnIn(data.profiles[0], codes[0]).unit, xName: "radius",
-      xLabel: "radius, d: core left, surface right", x: [], series: there.map(([code, name]) => ({ name, code, values: [] })),
+      xLabel: across, x: [], series: there.map(([code, name]) => ({ name, code, values: [] })),
       log, group: "profiles", span: [Math.min(...all), Math.max(...all)],
     });
     profileCharts.push(chart);
@@ -664,18 +671,17 @@
   }
   function branchCurve(t, code, title, log) {
     const x = column(t, "parameter"), y = column(t, code);
-    if (!y.some(isNumber)) return;
+    if (!y.some(isNumber) || !changes(y.filter(isNumber))) return;
     const { xs, rows } = pieces(x, y);
-    const key = data.verdict.heading.replace(/^.* along /, "");
-    new Chart(at("curve-panels"), { name: title, code, unit: unitIn(t, code), xName: key, x: xs, connect: true,
+    new Chart(at("curve-panels"), { name: title, code, unit: unitIn(t, code), xName: data.parameter, x: xs, connect: true,
       logX: xs[0] > 0 && xs[xs.length - 1] > 20 * xs[0], log,
       series: rows.map((values, k) => ({ name: k === 0 ? "branch" : "beyond fold " + k, values })) });
   }
   if (tableOf("branch.csv")) {
     const t = tableOf("branch.csv");
-    branchCurve(t, "nusselt_outer", "Nusselt number, surface");
-    branchCurve(t, "nusselt_inner", "Nusselt number, core");
-    branchCurve(t, "velocity_rms", "Velocity, rms");
+    branchCurve(t, "nusselt_outer", "Surface Nusselt number");
+    branchCurve(t, "nusselt_inner", "Core Nusselt number");
+    branchCurve(t, "velocity_rms", "Rms velocity");
     branchCurve(t, "temperature_mean", "Mean temperature");
     branchCurve(t, "growth", "Growth of the fastest disturbance");
   }
