@@ -46,8 +46,8 @@ std::string base64(const std::string& bytes) {
   for (std::size_t at = 0; at < bytes.size(); at += 3) {
     unsigned three = 0;
     for (std::size_t k = 0; k < 3; ++k)
-      three = three << 8U |
-              (at + k < bytes.size() ? static_cast<unsigned char>(bytes[at + k]) : 0U);
+      three =
+          three << 8U | (at + k < bytes.size() ? static_cast<unsigned char>(bytes[at + k]) : 0U);
     for (std::size_t k = 0; k < 4; ++k)
       text += at + k <= bytes.size() ? digits[three >> (18 - 6 * k) & 63U] : '=';
   }
