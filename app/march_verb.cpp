@@ -7,6 +7,7 @@
 #include <optional>
 
 #include "app/known_watch.hpp"
+#include "app/run_report.hpp"
 #include "app/run_start.hpp"
 #include "app/run_statistics.hpp"
 #include "app/run_summary.hpp"
@@ -210,6 +211,7 @@ void Run::finish(End end) {
     for (SummaryEntry& e : statistics_entries(statistics, case_.march))
       entries.push_back(std::move(e));
   write_summary(session_.comm(), folder_.paths().summary(), entries);
+  write_run_report(session_, case_, folder_.paths());
   if (!session_.first()) return;
   const std::string& folder = folder_.paths().folder;
   fmt::print("{}\n", summary_for_people(case_, last, reason(end),

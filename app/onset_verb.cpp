@@ -8,6 +8,7 @@
 #include <new>
 
 #include "app/onset_summary.hpp"
+#include "app/run_report.hpp"
 #include "app/run_start.hpp"
 #include "app/shared_case.hpp"
 #include "app/stop_signals.hpp"
@@ -110,6 +111,7 @@ void write_results(const Session& session, const Case& c, const OnsetCurve& curv
   if (session.first()) entries = onset_entries(c, curve);
   write_summary(session.comm(), paths.summary(), entries);
   provenance.end_session(0, curve.interrupted ? "interrupted" : "complete");
+  write_run_report(session, c, paths);
 }
 
 OnsetSettings settings_of(const OnsetRequest& request) {

@@ -3,6 +3,7 @@
 #include <chrono>
 #include <string>
 
+#include "io/duration.hpp"
 #include "solver/diagnostics.hpp"
 
 /// Progress of a run on standard error: one line that is rewritten at a terminal, a line now and
@@ -48,8 +49,5 @@ class WorkLine {
   Clock::time_point shown_{};
   bool open_line_ = false;
 };
-
-/// "1 h 05 min", "2 min 13 s", "42 s".
-std::string duration_text(double seconds);
 
 }  // namespace lidwright

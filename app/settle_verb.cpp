@@ -2,6 +2,7 @@
 
 #include <fmt/format.h>
 
+#include "app/run_report.hpp"
 #include "app/run_start.hpp"
 #include "app/settle_along.hpp"
 #include "app/settle_files.hpp"
@@ -143,9 +144,11 @@ ExitCode settle_in(const SettleJob& job, const RunPaths& paths, Provenance& prov
     const ExitCode code =
         job.along ? settle_along(job, *job.along, paths, watch) : settle_one(job, paths, watch);
     provenance.end_session(0, code == ExitCode::Done ? "complete" : "interrupted");
+    write_run_report(job.session, job.c, paths);
     return code;
   } catch (const SolveError&) {
     provenance.end_session(0, "not solved");
+    if (holds_steady_states(paths.folder)) write_run_report(job.session, job.c, paths);
     throw;
   }
 }

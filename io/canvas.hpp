@@ -7,6 +7,7 @@
 #include <vector>
 
 #include "io/colour_map.hpp"
+#include "io/sheet.hpp"
 
 /// A page to draw on: Cairo and Pango, with owners. Lengths are design units, y counts downwards: a
 /// drawing is the same whatever file it becomes.
@@ -41,19 +42,6 @@ struct Line {
   Colour colour;
   double width = 1;
   double opacity = 1;
-};
-
-enum class Format { Png, Svg, Pdf };
-enum class Ground { White, Clear };
-
-/// What a page becomes.
-struct Sheet {
-  double width, height;  ///< design units
-  Format format = Format::Png;
-  double pixels_per_unit = 1;  ///< of a PNG, and of the images within the others
-  double points_per_unit = 0;  ///< of print, 1/72 inch; 0: a PNG that says no size
-  Ground ground = Ground::White;
-  std::string title = {};  ///< plain text, in a PDF's properties
 };
 
 class Canvas {

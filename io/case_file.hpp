@@ -18,6 +18,7 @@ struct OutputSettings {
   int checkpoints_kept = 2;     ///< >= 1
   bool normal_stress = true;    ///< pressure and wall normal stress in snapshots
   bool pictures = true;         ///< a picture with every snapshot
+  bool report = true;           ///< a page about the run, at its end
 };
 
 struct Case {

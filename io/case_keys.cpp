@@ -232,6 +232,9 @@ std::vector<Key> output_keys() {
       {.path = "output.pictures",
        .access = at(&O::pictures),
        .help = "a picture of the run with every snapshot"},
+      {.path = "output.report",
+       .access = at(&O::report),
+       .help = "a page about the run at its end, report.html"},
   };
 }
 

@@ -15,24 +15,6 @@ using case_text::nearest;
 using case_text::refuse;
 using Fields = std::vector<std::string>;
 
-Fields fields_of(const std::string& line, const std::string& place) {
-  Fields fields(1);
-  bool quoted = false;
-  for (std::size_t k = 0; k < line.size(); ++k) {
-    const char c = line[k];
-    if (c == '"' && quoted && k + 1 < line.size() && line[k + 1] == '"')
-      fields.back() += line[++k];
-    else if (c == '"')
-      quoted = !quoted;
-    else if (c == ',' && !quoted)
-      fields.emplace_back();
-    else if (c != '\r')
-      fields.back() += c;
-  }
-  if (quoted) refuse(place, "a quote is opened and not closed; write a quote inside as \"\"");
-  return fields;
-}
-
 bool among(const std::string& name, const Fields& names) {
   return std::find(names.begin(), names.end(), name) != names.end();
 }
@@ -64,6 +46,24 @@ TextRow row_of(const Fields& columns, const Fields& fields, const std::string& p
 
 }  // namespace
 
+std::vector<std::string> text_fields(const std::string& line, const std::string& place) {
+  Fields fields(1);
+  bool quoted = false;
+  for (std::size_t k = 0; k < line.size(); ++k) {
+    const char c = line[k];
+    if (c == '"' && quoted && k + 1 < line.size() && line[k + 1] == '"')
+      fields.back() += line[++k];
+    else if (c == '"')
+      quoted = !quoted;
+    else if (c == ',' && !quoted)
+      fields.emplace_back();
+    else if (c != '\r')
+      fields.back() += c;
+  }
+  if (quoted) refuse(place, "a quote is opened and not closed; write a quote inside as \"\"");
+  return fields;
+}
+
 std::vector<TextRow> parse_text_table(const std::string& text, const std::string& name,
                                       const std::vector<std::string>& required,
                                       const std::vector<std::string>& optional) {
@@ -74,7 +74,7 @@ std::vector<TextRow> parse_text_table(const std::string& text, const std::string
   for (std::string line; std::getline(in, line);) {
     const std::string place = fmt::format("{}:{}", name, ++number);
     if (line.empty() || line == "\r" || line.front() == '#') continue;
-    const Fields fields = fields_of(line, place);
+    const Fields fields = text_fields(line, place);
     if (columns.empty())
       check_columns(columns = fields, place, required, optional);
     else

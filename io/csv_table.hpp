@@ -22,6 +22,9 @@ std::vector<TextRow> parse_text_table(const std::string& text, const std::string
                                       const std::vector<std::string>& required,
                                       const std::vector<std::string>& optional);
 
+/// The fields of one line. Throws InputError at `place` for a quote that is not closed.
+std::vector<std::string> text_fields(const std::string& line, const std::string& place);
+
 /// One line; fields that need quotes get them.
 std::string text_line(const std::vector<std::string>& fields);
 

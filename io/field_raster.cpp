@@ -77,10 +77,6 @@ class Sampler {
   double pixel_;
 };
 
-double share_of(const Interval& range, double value) {
-  return range.empty() ? 0.5 : (value - range.low) / (range.high - range.low);
-}
-
 /// Pixels, opaque, of a part of the page whose corner is at whole pixels.
 struct Raster {
   int left, top, width, height;
@@ -107,7 +103,7 @@ Raster raster_of_cells(const ShellMap& map, const std::vector<double>& cells, co
     for (int x = 0; x < raster.width; ++x) {
       const Place middle{(raster.left + x + 0.5) / pixels_per_unit,
                          (raster.top + y + 0.5) / pixels_per_unit};
-      raster.pixels.push_back(sample.needed(middle) ? palette(share_of(range, sample(middle)))
+      raster.pixels.push_back(sample.needed(middle) ? palette(range.share(sample(middle)))
                                                     : palette(0));
     }
   return raster;

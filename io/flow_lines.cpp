@@ -13,10 +13,6 @@ constexpr double head_length = 6.5, head_every = 190, least_with_head = 26;
 constexpr double arrow_spacing = 30, wall_clearance = 5, shortest_arrow = 3;
 constexpr double opacity = 0.6;
 
-double share_of(const Interval& range, double value) {
-  return range.empty() ? 0.5 : (value - range.low) / (range.high - range.low);
-}
-
 /// Levels between the extremes, none of them 0: walls are lines of flow already.
 std::vector<double> flow_levels(const Interval& psi, int lines) {
   const double step = (psi.high - psi.low) / lines;
@@ -61,7 +57,7 @@ class Contrast {
  private:
   static constexpr double middle = 0.5, sureness = 0.12;
   Tone tone_at(const ShellPlace& s, double limit) const {
-    return share_of(range_, read_(s.radius, s.lateral)) < limit ? Tone::White : Tone::Ink;
+    return range_.share(read_(s.radius, s.lateral)) < limit ? Tone::White : Tone::Ink;
   }
 
   CellReader read_;

@@ -32,12 +32,12 @@ bool plain(double value, int decimals) {
          decimals <= 7;
 }
 
+}  // namespace
+
 void replace_all(std::string& text, const std::string& what, const std::string& by) {
   for (std::size_t at = 0; (at = text.find(what, at)) != std::string::npos; at += by.size())
     text.replace(at, what.size(), by);
 }
-
-}  // namespace
 
 std::string digits(double value, int count) {
   if (!std::isfinite(value)) return "not defined";
@@ -48,6 +48,19 @@ std::string digits(double value, int count) {
     return with_minus(fmt::format("{:.{}f}", rounded, std::max(0, count - 1 - exponent)));
   return with_minus(fmt::format("{:.{}f} × 10{}", rounded / std::pow(10.0, exponent), count - 1,
                                 power(exponent)));
+}
+
+std::string compact(double value, int count) {
+  std::string text = digits(value, count);
+  const std::size_t times = std::min(text.find(" ×"), text.size());
+  std::string head = text.substr(0, times);
+  if (head.find('.') != std::string::npos) {
+    head.erase(head.find_last_not_of('0') + 1);
+    if (head.ends_with('.')) head.pop_back();
+  }
+  if (times == text.size()) return head;
+  const std::string power_alone = text.substr(times + std::string_view(" × ").size());
+  return head == "1" ? power_alone : head + text.substr(times);
 }
 
 Stated stated(double value, double error) {

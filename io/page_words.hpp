@@ -18,6 +18,11 @@ Stated stated(double value, double error);
 /// Four digits, with a true minus sign and powers of ten: "1.234 × 10⁻⁵".
 std::string digits(double value, int count = 4);
 
+/// The same to at most `count` digits, without noughts at the end: "10000", "10⁻⁹".
+std::string compact(double value, int count = 6);
+
+void replace_all(std::string& text, const std::string& what, const std::string& by);
+
 /// "d^2/kappa" as "d²/κ"; "1" as nothing.
 std::string unit(const std::string& of_a_table);
 

@@ -16,10 +16,14 @@ void paint_pixels(Canvas& canvas, std::vector<std::uint32_t>& pixels, int width,
       cairo_image_surface_create_for_data(reinterpret_cast<unsigned char*>(pixels.data()),
                                           CAIRO_FORMAT_RGB24, width, height, 4 * width),
       cairo_surface_destroy);
-  cairo_t* cr = canvas.context();
-  cairo_set_source_surface(cr, image.get(), corner.x, corner.y);
-  cairo_pattern_set_filter(cairo_get_source(cr), CAIRO_FILTER_NEAREST);
-  cairo_paint(cr);
+  {
+    const Saved saved(canvas);
+    cairo_t* cr = canvas.context();
+    cairo_set_source_surface(cr, image.get(), corner.x, corner.y);
+    cairo_pattern_set_filter(cairo_get_source(cr), CAIRO_FILTER_NEAREST);
+    cairo_paint(cr);
+  }
+  cairo_surface_finish(image.get());  // a page that is written later takes its copy now
 }
 
 }  // namespace lidwright::plot

@@ -9,6 +9,8 @@ namespace lidwright::plot {
 struct Interval {
   double low = 0, high = 0;
   bool empty() const { return !(high > low); }
+  /// 0 at the low end, 1 at the high one; in the middle of an empty one.
+  double share(double value) const { return empty() ? 0.5 : (value - low) / (high - low); }
   void include(double);
 };
 

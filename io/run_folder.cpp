@@ -44,10 +44,10 @@ bool own_name(std::string_view name) {
     name.remove_suffix(partial_suffix.size());
     if (name == "provenance.toml") return true;
   }
-  static constexpr std::array<std::string_view, 13> plain{
-      "case_as_read.toml", "summary.toml", "history.csv",   "fields.pvd", "walls.pvd",
-      "onset.csv",         "onset.png",    "newton.csv",    "branch.csv", "error_bars.csv",
-      "growth_rates.csv",  "branch.png",   "statistics.csv"};
+  static constexpr std::array<std::string_view, 14> plain{
+      "case_as_read.toml", "summary.toml", "history.csv",    "fields.pvd", "walls.pvd",
+      "onset.csv",         "onset.png",    "newton.csv",     "branch.csv", "error_bars.csv",
+      "growth_rates.csv",  "branch.png",   "statistics.csv", "report.html"};
   const auto of_snapshot = [&](std::string_view before, std::string_view after) {
     return numbered(name, before, snapshot_digits, after).has_value();
   };
@@ -175,6 +175,12 @@ bool holds_run(const std::string& folder) {
 
 bool holds_steady_states(const std::string& folder) {
   return fs::is_regular_file(RunPaths{folder}.newton());
+}
+
+bool run_goes_on(const std::string& folder) {
+  const Descriptor file(::open(folder.c_str(), O_RDONLY | O_DIRECTORY | O_CLOEXEC));
+  // Shared, so that two who look do not take each other for a writer; let go of at once.
+  return file >= 0 && ::flock(file, LOCK_SH | LOCK_NB) != 0 && errno == EWOULDBLOCK;
 }
 
 void RunFolder::lock() {

@@ -20,6 +20,7 @@ struct RunPaths {
   std::string case_file() const { return folder + "/case_as_read.toml"; }
   std::string provenance() const { return folder + "/provenance.toml"; }
   std::string summary() const { return folder + "/summary.toml"; }
+  std::string report() const { return folder + "/report.html"; }
   std::string history() const { return folder + "/history.csv"; }
   std::string statistics() const { return folder + "/statistics.csv"; }
   std::string newton() const { return folder + "/newton.csv"; }
@@ -70,6 +71,10 @@ bool holds_steady_states(const std::string& folder);
 
 /// Does the folder hold a run of this program (a provenance.toml that it wrote)? Not collective.
 bool holds_run(const std::string& folder);
+
+/// Does a process write the run at this moment? Always false on a file system without locks. Not
+/// collective.
+bool run_goes_on(const std::string& folder);
 
 /// The program's own files in a run folder, relative to it, but for provenance.toml. Not
 /// collective.

@@ -55,7 +55,7 @@ def finds_it(scratch):
     for words in ("a plain annulus", "4 waves round the circle", "14.88 times critical: it convects"):
         assert words in result.out, (words, result)
     written = runs.files(scratch.path("found"))
-    for name in ("onset.png", "fields.pvd", "fields/fields_0000.pvts", "case_as_read.toml", "provenance.toml"):
+    for name in ("onset.png", "report.html", "fields.pvd", "fields/fields_0000.pvts", "case_as_read.toml", "provenance.toml"):
         assert name in written, written
 
 

@@ -14,6 +14,7 @@ end_time = 10
 until = "known"
 [output]
 pictures = false
+report = false
 checkpoint_every = 100
 """
 

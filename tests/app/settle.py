@@ -71,7 +71,7 @@ def files(scratch):
     for name in (
         "case_as_read.toml provenance.toml summary.toml newton.csv error_bars.csv growth_rates.csv fields.pvd walls.pvd "
         "fields/fields_0000.pvts walls/walls_0000.csv profiles/profiles_0000.csv pictures/picture_0000.png "
-        "checkpoints/step_000000000.h5"
+        "checkpoints/step_000000000.h5 report.html"
     ).split():
         assert name in written, (name, written)
     runs.expect_no_leftovers(scratch.path("bars"))
@@ -169,7 +169,7 @@ def along(scratch):
 
 
 def along_on_three_ranks(scratch):
-    few = runs.settings(grid__radial=16, grid__lateral=16, output__pictures="false")
+    few = runs.settings(grid__radial=16, grid__lateral=16, output__pictures="false", output__report="false")
     for name, ranks in (("even", 1), ("even_three", 3)):
         settle(scratch, name, *few, "--along", "heat.uniform=0:2:3", ranks=ranks)
     one, three = (table(scratch.path(name), "branch.csv") for name in ("even", "even_three"))

@@ -21,7 +21,7 @@ sys.path.insert(0, os.path.join(HERE, "..", "support", "python"))
 import runs  # noqa: E402
 
 BOX = os.path.join(runs.SOURCE, "benchmarks", "physics", "blankenbach_1989_1a", "case.toml")
-COARSE = runs.settings(grid__radial=16, grid__lateral=16, output__pictures="false")
+COARSE = runs.settings(grid__radial=16, grid__lateral=16, output__pictures="false", output__report="false")
 # Of the unstable layer under a lid: Breuer & Spohn 2006, PSS 54, 153 (from memory). Whole layers between walls have 657.5 to 1707.8; which one
 # holds under a lid depends on what counts as the lid, so that a factor of three must be left.
 LOCAL_CRITICAL = 450
@@ -57,6 +57,7 @@ end_time = 3
 coarsest = 16
 [output]
 pictures = false
+report = false
 """
 
 COOLING = """\
@@ -89,6 +90,7 @@ courant = 1
 end_time = 0.5
 [output]
 pictures = false
+report = false
 """
 
 

@@ -41,6 +41,7 @@ modes = [{ lateral = 3, radial = 1, amplitude = 0.05 }, { lateral = 2, radial = 
 end_time = 1.2
 [output]
 pictures = false
+report = false
 """
 QUANTITIES = ("mobility", "rms velocity", "Nusselt number")
 

@@ -18,7 +18,7 @@ CELLS = (16, 32)
 
 
 def march(cells, folder):
-    settings = [f"grid.radial={cells}", f"grid.lateral={cells}", "output.pictures=false"]
+    settings = [f"grid.radial={cells}", f"grid.lateral={cells}", "output.pictures=false", "output.report=false"]
     command = [PROGRAM, "march", CASE, "--into", folder, *(part for s in settings for part in ("--set", s))]
     done = subprocess.run(command, capture_output=True, text=True)
     assert done.returncode == 0, done.stdout + done.stderr

@@ -49,7 +49,7 @@ inline auto parts(const SettleSettings& s) {
 }
 inline auto parts(const OutputSettings& o) {
   return std::tie(o.history_every, o.snapshot_every, o.checkpoint_every, o.checkpoints_kept,
-                  o.normal_stress);
+                  o.normal_stress, o.pictures, o.report);
 }
 inline auto parts(const Body& b) {
   return std::tie(b.radius, b.core_radius, b.gravity, b.density, b.expansivity, b.conductivity,

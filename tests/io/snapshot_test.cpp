@@ -51,7 +51,7 @@ void write_sample(const Sample& sample, const std::string& folder) {
     write_atomically(run.paths().folder + "/expected.json", expectations(d->geometry()));
 }
 
-/// Also what read_snapshots.py looks at: it names a folder in LIDWRIGHT_SAMPLES.
+/// Also what tests/viewers/vtk_reader.py looks at: it names a folder in LIDWRIGHT_SAMPLES.
 TEST(ParallelSnapshot, EveryGeometryIsWritten) {
   const test::Scratch scratch;
   const char* wanted = std::getenv("LIDWRIGHT_SAMPLES");

@@ -61,6 +61,7 @@ end_time = 1
 most_steps = 200
 [output]
 pictures = false
+report = false
 checkpoint_every = 20
 snapshot_every = 0.002
 """
