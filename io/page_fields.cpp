@@ -89,8 +89,8 @@ std::string marks(const Layers& l, const std::optional<InBody>& in) {
     const double plain = l.logarithmic ? std::pow(10.0, value) : value;
     all.push_back(
         json::object({{"at", json::number(share)},
-                      {"words", json::text(digits(plain, 3))},
-                      {"body", json::text(in ? digits(in->scale * plain + in->offset, 4) : "")}}));
+                      {"words", json::text(compact(plain, 3))},
+                      {"body", json::text(in ? compact(in->scale * plain + in->offset, 4) : "")}}));
   }
   return json::list(all);
 }

@@ -191,8 +191,8 @@ std::vector<Figure> march_figures(const SavedRun& run, const RunStatistics& s) {
 Verdict settle_verdict(const TomlSection& summary) {
   if (!summary["key"].empty())
     return {fmt::format("{} steady states along {}", summary["points"], summary["key"]),
-            fmt::format("The walk along the branch: {}. {} states stand at values that were asked "
-                        "for.",
+            fmt::format("Walk along the branch: {}. {} of the states stand at values that were "
+                        "asked for, the others on the way.",
                         summary["end"], summary["asked_for"]),
             {},
             summary["end"] == "complete" ? Tone::Good : Tone::Doubtful};
@@ -274,12 +274,12 @@ Verdict onset_verdict(const TomlSection& summary) {
 }
 
 std::vector<Figure> onset_figures(const TomlSection& s) {
-  const double error = s.number("critical_rayleigh_error");
+  const double bar = s.number("critical_rayleigh_error"), error = bar > 0 ? bar : unknown;
   return {{"Critical Rayleigh number", s.number("critical_rayleigh"), error, "1", false,
            error > 0 ? "" : "no error bar was asked for", true},
           {"Rayleigh number over the critical one", s.number("times_critical"), unknown, "1", false,
            "", true},
-          {"Critical mode", s.number("critical_mode"), unknown, "1", false,
+          {"Critical mode", s.number("critical_mode"), 0, "1", false,
            "whole waves along a periodic shell, half waves between reflecting sides", true},
           {"Critical wavelength", s.number("critical_wavelength"), unknown, "d", false,
            "at mid-depth", true}};

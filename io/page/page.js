@@ -26,6 +26,11 @@
     return (String(Number(mantissa)) + " × 10" + raised(Number(exponent))).replace(/^-/, "−");
   }
   const tick = (x) => words(x, 4).replace(/^1 × /, "");
+  /* As many digits as tell the marks of an axis apart. */
+  const tickOver = ([low, high]) => (x) => {
+    const largest = Math.max(Math.abs(low), Math.abs(high)), digits = Math.ceil(Math.log10(largest / (high - low))) + 2;
+    return Math.abs(x) < 1e-9 * largest ? "0" : words(x, Math.min(10, Math.max(3, digits || 3))).replace(/^1 × /, "");
+  };
 
   /* --- what a reader has set, kept when the page is read anew ---------------------------------- */
   const place = "lidwright " + location.pathname;
@@ -156,9 +161,9 @@
         highlightCircleSize: 4, connectSeparatedPoints: Boolean(this.spec.connect), logscale: this.logarithmic,
         gridLineColor: line, axisLineColor: quiet, gridLineWidth: 0.6, axisLabelFontSize: 12, rightGap: 12,
         xlabel: this.spec.xLabel || this.spec.xName, xLabelHeight: 16, titleHeight: 0, valueRange: this.range(),
-        axes: { x: { drawGrid: false, axisLabelFormatter: tick, logscale: Boolean(this.spec.logX), axisLabelWidth: 70,
+        axes: { x: { drawGrid: false, axisLabelFormatter: (x, unused, get, g) => tickOver(g.xAxisRange())(x), logscale: Boolean(this.spec.logX), axisLabelWidth: 70,
                      pixelsPerLabel: 64, ...(this.spec.whole ? { ticker: wholeTicks } : {}) },
-                y: { axisLabelFormatter: tick, axisLabelWidth: 62, pixelsPerLabel: 26, ticker: this.logarithmic ? logTicks : Dygraph.numericTicks } },
+                y: { axisLabelFormatter: (y, unused, get, g) => (this.logarithmic ? tick(y) : tickOver(g.yAxisRange())(y)), axisLabelWidth: 62, pixelsPerLabel: 26, ticker: this.logarithmic ? logTicks : Dygraph.numericTicks } },
         interactionModel: gestures,
         underlayCallback: (canvas, area, g) => this.under(canvas, area, g),
         highlightCallback: (event, x) => this.pointed(x),
@@ -403,8 +408,26 @@
         out[4 * n] = c >> 16; out[4 * n + 1] = (c >> 8) & 255; out[4 * n + 2] = c & 255; out[4 * n + 3] = shell.cover[n];
       }
       pen.putImageData(image, 0, 0);
+      outline(pen);
       canvas.dataset.shown = layer + " " + frame;
     };
+    /* Walls and sides, so that the coldest rock stands out from a dark page. */
+    const outline = (pen) => {
+      const r = shell.g.radii, l = shell.g.laterals, ends = [r[0], r[shell.rows]], sides = [l[0], l[shell.columns]];
+      const point = (radius, lateral) => {
+        const [x, y] = shell.plane(radius, lateral);
+        return [1 + (x - shell.x[0]) * shell.scale, 1 + (shell.y[1] - y) * shell.scale];
+      };
+      const across = (radius) => Array.from({ length: 361 }, (unused, k) => point(radius, sides[0] + (k / 360) * (sides[1] - sides[0])));
+      const lines = ends.map(across);
+      if (!shell.g.full) lines.push(...sides.map((lateral) => ends.map((radius) => point(radius, lateral))));
+      pen.strokeStyle = colour("quiet");
+      pen.lineWidth = Math.max(1, shell.width / 600);
+      pen.beginPath();
+      for (const line of lines) line.forEach(([x, y], k) => (k ? pen.lineTo(x, y) : pen.moveTo(x, y)));
+      pen.stroke();
+    };
+    redrawn.push(() => draw());
     const draw = async () => {
       const wanted = [layer, frame], bytes = await bytesOf(...wanted);
       if (wanted[0] === layer && wanted[1] === frame) paint(bytes);
@@ -566,8 +589,8 @@
       for (const c of members("history")) { c.spec.log = at("log").checked; c.draw(); }
     });
     at("whole").addEventListener("click", () => zoom("history", null, null));
-    at("legend-history").append(make("span", { class: "swatch shade" }), "start left out of the means", make("span", { class: "swatch band" }),
-      "mean ± error", make("span", { class: "swatch at" }), "moment of the field");
+    for (const [kind, text] of [["shade", "start left out of the means"], ["band", "mean ± error"], ["at", "moment of the field"]])
+      if (kind !== "at" || fields) at("legend-history").append(make("span", { class: "meaning" }, make("span", { class: "swatch " + kind }), text));
     const thinned = history.columns.some((c) => c.steps);
     at("history-note").textContent = history.rows + " rows. " + (thinned ? "Charts draw fewer points, with every extreme. " : "") +
       "All of them, to the last digit: history.csv. Means with errors: statistics.csv.";
@@ -619,7 +642,9 @@
   const across = fields && fields.geometry.shape === "box" ? "height, d: bottom left, top right" : "radius, d: core left, surface right";
   const columnIn = (set, code) => set.columns.find((c) => c.name === code);
   const changes = (values) => Math.max(...values) > Math.min(...values) * (1 + 1e-9);
-  for (const [title, codes, labels, log] of data.profiles.length ? profilePlan : []) {
+  /* Of a mode of onset only the flow has means that say something. */
+  const planned = profilePlan.filter(([title]) => data.kind !== "onset" || /velocity|Viscosity/.test(title));
+  for (const [title, codes, labels, log] of data.profiles.length ? planned : []) {
     const there = codes.map((code, k) => [code, labels[k]]).filter(([code]) => columnIn(data.profiles[0], code));
     if (!there.length) continue;
     if (log && !data.profiles.some((set) => changes(columnIn(set, codes[0]).values))) continue;
@@ -636,7 +661,8 @@
     if (!set) return;
     for (const chart of profileCharts)
       chart.change({ x: columnIn(set, "radius").values, series: chart.spec.series.map((s) => ({ ...s, values: columnIn(set, s.code).values })) });
-    at("profiles-note").textContent = "Means over surfaces at " + fields.labels[frame] + "; the slider of the field moves them. File: " + set.file + ".";
+    at("profiles-note").textContent = "Means over surfaces. " + (fields.labels.length > 1
+      ? "Now at " + fields.labels[frame] + "; the slider of the field moves them. " : "") + "File: " + set.file + ".";
     fillProfileTable();
   }
   function fillProfileTable() {
@@ -737,20 +763,23 @@
   }
   for (const box of document.querySelectorAll(".scroll"))
     if (!box.hasAttribute("tabindex"))
-      for (const [name, value] of [["tabindex", "0"], ["role", "region"], ["aria-label", "Table, scrolls sideways"]]) box.setAttribute(name, value);
+      for (const [name, value] of [["tabindex", "0"], ["role", "region"], ["aria-label", box.dataset.label]]) box.setAttribute(name, value);
 
-  /* --- print: light, and as wide as the paper --------------------------------------------------------------------------- */
+  /* --- print: light, two charts side by side. What is drawn anew while the browser prints stays blank, so the charts are
+     scaled as they stand, and those drawn for a dark page are turned over. ------------------------------------------------- */
   const paper = matchMedia("print");
+  const chartOnPaper = 345;  // px: 9.1 cm
   const printing = (yes) => {
-    root.dataset.theme = yes ? "light" : theme();
     for (const c of charts) {
-      c.box.style.width = yes ? "17cm" : "";
-      if (c.figure.parentElement.classList.contains("two") && yes) c.box.style.width = "8.2cm";
-      if (c.graph) { c.graph.resize(); c.draw(); }
+      if (!c.graph) continue;
+      const width = c.graph.size().width;  // the box may have the paper's already
+      c.box.style.width = yes ? width + "px" : "";
+      c.box.style.zoom = yes ? Math.min(1, chartOnPaper / width) : "";
     }
+    root.classList.toggle("turned", yes && root.dataset.theme === "dark");
+    root.dataset.theme = yes ? "light" : theme();
   };
   paper.addEventListener("change", (event) => printing(event.matches));
-  if (paper.matches) printing(true);
 
   /* --- a run that goes on ------------------------------------------------------------------------------------------------- */
   if (data.running && data.reload > 0) setTimeout(() => location.reload(), 1000 * data.reload);
