@@ -2,34 +2,32 @@
 
 #include <fmt/format.h>
 
+#include "app/option_words.hpp"
+#include "io/history.hpp"
 #include "io/provenance.hpp"
+#include "study/regime.hpp"
 
 namespace lidwright {
 namespace {
 
-/// Help without the library's notes on types and on which options go together: the line says it.
-class PlainHelp : public CLI::Formatter {
- public:
-  PlainHelp() {
-    column_width(28);
-    label("SUBCOMMAND", "VERB");
-  }
-  std::string make_option_opts(const CLI::Option* option) const override {
-    const std::string type = option->get_type_name();
-    return type.empty() || option->get_positional() ? "" : " " + type;
-  }
-  std::string make_usage(const CLI::App* app, std::string name) const override {
-    if (app->get_name() == "march")
-      return "Usage: lidwright march CASE [OPTIONS]\n"
-             "       lidwright march --resume FOLDER [OPTIONS]\n";
-    if (app->get_name() == "onset" || app->get_name() == "settle" || app->get_name() == "check")
-      return fmt::format("Usage: lidwright {} CASE [OPTIONS]\n", app->get_name());
-    if (app->get_name() == "figure") return "Usage: lidwright figure RUN [KIND...] [OPTIONS]\n";
-    if (app->get_name() == "regime" || app->get_name() == "report")
-      return fmt::format("Usage: lidwright {} RUN [OPTIONS]\n", app->get_name());
-    return CLI::Formatter::make_usage(app, std::move(name));
-  }
-};
+std::vector<std::string> names_of_verbs(const CLI::App& app) {
+  std::vector<std::string> names;
+  for (const CLI::App* verb : app.get_subcommands({})) names.push_back(verb->get_name());
+  return names;
+}
+
+std::vector<std::string> columns_of_history() {
+  std::vector<std::string> names;
+  for (const Column& column : history_columns()) names.emplace_back(column.name);
+  return names;
+}
+
+std::vector<std::string> settable_thresholds() {
+  std::vector<std::string> names;
+  for (const RegimeThreshold& row : regime_thresholds())
+    names.push_back(row.name + std::string("="));
+  return names;
+}
 
 void add_progress(CLI::App* verb, ProgressMode& progress) {
   verb->add_flag_callback(
@@ -122,9 +120,10 @@ void add_verify(CLI::App& app, VerifyRequest& request) {
 void add_regime(CLI::App& app, RegimeRequest& request) {
   CLI::App* verb = app.add_subcommand("regime", "Say how the lid of a run moves")->group("Verbs");
   verb->add_option("RUN", request.run, "Run folder of a march");
-  verb->add_option("--threshold", request.thresholds, "Change a threshold; may be repeated")
-      ->allow_extra_args(false)
-      ->type_name("NAME=VALUE");
+  offer(verb->add_option("--threshold", request.thresholds, "Change a threshold; may be repeated")
+            ->allow_extra_args(false)
+            ->type_name("NAME=VALUE"),
+        settable_thresholds());
   verb->add_flag("--thresholds", request.list, "List the thresholds with their sources");
 }
 
@@ -132,22 +131,30 @@ void add_figure(CLI::App& app, FigureRequest& request) {
   CLI::App* verb =
       app.add_subcommand("figure", "Draw a run for a paper or for slides")->group("Verbs");
   verb->add_option("RUN", request.run, "Run folder");
-  verb->add_option("KIND", request.kinds,
-                   "temperature, viscosity, speed, strain-rate, stress,\n"
-                   "profiles, history, branch, onset [all the run has]");
-  verb->add_option("--format", request.format, "png, svg or pdf [png]")->type_name("FORMAT");
-  verb->add_option("--size", request.size, "one-column, two-column or slide [one-column]")
+  const std::vector<std::string> kinds{"temperature", "viscosity", "speed",
+                                       "strain-rate", "stress",    "profiles",
+                                       "history",     "branch",    "onset"};
+  one_of(verb->add_option("KIND", request.kinds, choice_text(kinds) + " [all the run has]"), kinds);
+  const std::vector<std::string> formats{"png", "svg", "pdf"};
+  one_of(verb->add_option("--format", request.format, choice_text(formats) + " [png]"), formats)
+      ->type_name("FORMAT");
+  const std::vector<std::string> sizes{"one-column", "two-column", "slide"};
+  one_of(verb->add_option("--size", request.size, choice_text(sizes) + "\n[one-column; a film: slide]"), sizes)
       ->type_name("SIZE");
-  verb->add_option("--at", request.at, "Snapshot nearest to TIME, or snapshot:N [the last]")
+  verb->add_option("--at", request.at,
+                   "Snapshot nearest to TIME, in the unit that figures\n"
+                   "show, or snapshot:N [the last]")
       ->type_name("TIME");
-  verb->add_option("--with", request.with,
-                   "Over a field: flow-lines, arrows, lid, isotherms\n"
-                   "(a list with commas)")
+  const std::vector<std::string> overlays{"flow-lines", "arrows", "lid", "isotherms"};
+  one_of(verb->add_option("--with", request.with,
+                          "Over a field: " + choice_text(overlays) + " (a list with commas)"),
+         overlays)
       ->delimiter(',')
       ->allow_extra_args(false)
       ->type_name("LIST");
-  verb->add_option("--columns", request.columns,
-                   "Columns of the history to draw (a list with commas)")
+  offer(verb->add_option("--columns", request.columns,
+                         "Columns of the history to draw (a list with commas)"),
+        columns_of_history())
       ->delimiter(',')
       ->allow_extra_args(false)
       ->type_name("LIST");
@@ -182,6 +189,19 @@ void add_check(CLI::App& app, CheckRequest& request) {
   add_progress(verb, request.progress);
 }
 
+/// What tells of the program itself.
+void add_paper(CLI::App& app, Requests& requests) {
+  app.add_subcommand("keys", "Print the reference of all case keys")
+      ->group("Reference")
+      ->add_flag("--markdown", requests.markdown, "As a Markdown page (docs/case.md)");
+  CLI::App* completions =
+      app.add_subcommand("completions", "Print completions for a shell")->group("Reference");
+  one_of(completions->add_option("SHELL", requests.shell, choice_text(shells())), shells());
+  CLI::App* manual = app.add_subcommand("manual", "Print a manual page")->group("Reference");
+  one_of(manual->add_option("VERB", requests.manual_of, "Of this verb [of the program]"),
+         names_of_verbs(app));
+}
+
 }  // namespace
 
 std::unique_ptr<CLI::App> command_line(Requests& requests) {
@@ -189,12 +209,9 @@ std::unique_ptr<CLI::App> command_line(Requests& requests) {
       "Convection in the mantles of rocky bodies: heat flow, lid and budgets.", "lidwright");
   app->set_version_flag("--version",
                         "lidwright " + program_version() + " (" + program_commit() + ")");
+  app->get_option("--version")->description("Print version and commit");
+  app->set_help_flag("-h,--help", "Print this help");
   app->require_subcommand(1);
-  app->formatter(std::make_shared<PlainHelp>());
-  app->footer(
-      "Exit codes: 0 done, 1 fault of the program, 2 bad input, 3 not solved,\n"
-      "4 not written, 5 interrupted, what was found is written (march goes on with\n"
-      "--resume), 6 a published benchmark disagrees (verify).");
   add_check(*app, requests.check);
   add_march(*app, requests.march);
   add_settle(*app, requests.settle);
@@ -203,9 +220,7 @@ std::unique_ptr<CLI::App> command_line(Requests& requests) {
   add_figure(*app, requests.figure);
   add_report(*app, requests.report);
   add_verify(*app, requests.verify);
-  app->add_subcommand("keys", "Print the reference of all case keys")
-      ->group("Verbs")
-      ->add_flag("--markdown", requests.markdown, "As a Markdown page (docs/case.md)");
+  add_paper(*app, requests);
   return app;
 }
 

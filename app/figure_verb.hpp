@@ -14,9 +14,9 @@ struct FigureRequest {
   std::string run;                 ///< run folder
   std::vector<std::string> kinds;  ///< what to draw; empty: all that the run has
   std::string format = "png";      ///< png, svg or pdf
-  std::string size = "one-column";
-  std::string at;                 ///< time, or a snapshot's number as "snapshot:N"; empty: the last
-  std::vector<std::string> with;  ///< over fields: flow-lines, arrows, lid, isotherms
+  std::string size;                ///< empty: one-column, a film slide
+  std::string at;  ///< time, or "snapshot:N"; of profiles a list, or "all"; empty: the last
+  std::vector<std::string> with;     ///< over fields: flow-lines, arrows, lid, isotherms
   std::vector<std::string> columns;  ///< of the history; empty: heat flow and velocity
   std::string range;                 ///< colours of a field, "LOW:HIGH"; empty: the extremes
   bool logarithmic = false;          ///< value axis of a history

@@ -3,10 +3,12 @@
 #include <cstdio>
 #include <exception>
 #include <memory>
-#include <sstream>
 
 #include "app/command_line.hpp"
 #include "app/exit_code.hpp"
+#include "app/help.hpp"
+#include "app/manual.hpp"
+#include "app/parse_message.hpp"
 #include "io/atomic_file.hpp"
 #include "io/case_file.hpp"
 #include "io/provenance.hpp"
@@ -18,31 +20,46 @@
 namespace lidwright {
 namespace {
 
-void print_help(const CLI::App& app, const CLI::ParseError& e) {
-  std::ostringstream text;
-  app.exit(e, text, text);
-  const std::string all = text.str();
-  fmt::print("{}\n", all.substr(0, all.find_last_not_of('\n') + 1));
+std::string help_text(CLI::App& app) {
+  const ProgramEntry program = program_entry(app);
+  const std::vector<CLI::App*> named = app.get_subcommands();
+  return named.empty() ? program_help(program) : verb_help(*program.find(named[0]->get_name()));
 }
 
-std::string verbs_of(const CLI::App& app) {
-  std::vector<std::string> names;
-  for (const CLI::App* verb : app.get_subcommands({})) names.push_back(verb->get_name());
-  return fmt::format("{}", fmt::join(names, ", "));
+/// --help and --version come as exceptions too.
+std::string answer(CLI::App& app, const CLI::ParseError& e) {
+  return e.get_name() == "CallForVersion" ? fmt::format("{}\n", e.what()) : help_text(app);
 }
 
-/// CLI11 reports a misspelt verb as a missing one.
-std::string command_line_message(const CLI::App& app, const CLI::ParseError& e, int argc,
-                                 char** argv) {
-  if (argc < 2) return fmt::format("name a verb: {}", verbs_of(app));
-  if (e.get_name() == "RequiredError")
-    return fmt::format("'{}' is not a verb of this program ({})", argv[1], verbs_of(app));
-  return e.what();
+/// A shell offers the program's own benchmarks too.
+ProgramEntry with_benchmarks(ProgramEntry program) {
+  for (VerbEntry& verb : program.verbs)
+    if (verb.name == "verify") verb.options.front().words = own_benchmarks();
+  return program;
 }
 
-ExitCode run_verb(const Session& session, const CLI::App& app, const Requests& asked) {
-  if (app.got_subcommand("keys")) {
-    if (session.first()) fmt::print("{}", asked.markdown ? keys_as_markdown() : keys_as_text());
+std::string completions_text(CLI::App& app, const std::string& shell) {
+  if (shell.empty())
+    throw InputError("completions: name a shell; see `lidwright completions --help`");
+  return completions(with_benchmarks(program_entry(app)), shell);
+}
+
+std::string manual_text(CLI::App& app, const std::string& verb) {
+  const ProgramEntry program = program_entry(app);
+  return verb.empty() ? program_manual(program) : verb_manual(program, *program.find(verb));
+}
+
+/// What the verbs print that tell of the program itself; empty: another verb is asked for.
+std::string paper(CLI::App& app, const Requests& asked) {
+  if (app.got_subcommand("keys")) return asked.markdown ? keys_as_markdown() : keys_as_text();
+  if (app.got_subcommand("completions")) return completions_text(app, asked.shell);
+  if (app.got_subcommand("manual")) return manual_text(app, asked.manual_of);
+  return "";
+}
+
+ExitCode run_verb(const Session& session, CLI::App& app, const Requests& asked) {
+  if (const std::string text = paper(app, asked); !text.empty()) {
+    if (session.first()) fmt::print("{}", text);
     return ExitCode::Done;
   }
   if (app.got_subcommand("check")) return check(session, asked.check);
@@ -81,13 +98,10 @@ ExitCode run(const Session& session, int argc, char** argv) {
     app.parse(argc, argv);
   } catch (const CLI::ParseError& e) {
     if (e.get_exit_code() == 0) {
-      if (session.first()) print_help(app, e);
+      if (session.first()) fmt::print("{}", answer(app, e));
       return ExitCode::Done;
     }
-    return complain(
-        session,
-        fmt::format("{}; see `lidwright --help`", command_line_message(app, e, argc, argv)),
-        ExitCode::BadInput);
+    return complain(session, parse_message(app, e, argc < 2 ? "" : argv[1]), ExitCode::BadInput);
   }
   try {
     return run_verb(session, app, asked);

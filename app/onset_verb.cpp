@@ -13,6 +13,7 @@
 #include "app/shared_case.hpp"
 #include "app/stop_signals.hpp"
 #include "io/collective.hpp"
+#include "io/figure_onset.hpp"
 #include "io/linear_rules.hpp"
 #include "io/onset_table.hpp"
 #include "io/provenance.hpp"
@@ -103,7 +104,8 @@ void write_results(const Session& session, const Case& c, const OnsetCurve& curv
   on_first_rank<OutputError>(session.comm(), [&] {
     write_atomically(paths.folder + "/onset.csv", onset_table(curve));
     if (c.output.pictures)
-      write_atomically(paths.folder + "/onset.png", onset_picture(curve, c.title));
+      write_atomically(paths.folder + "/onset.png",
+                       onset_figure(curve, c.title, {FigureSize::Slide}));
   });
   std::vector<SummaryEntry> entries;
   if (session.first()) entries = onset_entries(c, curve);

@@ -2,7 +2,6 @@
 
 #include <fmt/format.h>
 
-#include <algorithm>
 #include <charconv>
 #include <cmath>
 #include <filesystem>
@@ -13,6 +12,7 @@
 #include "io/case_file.hpp"
 #include "io/collective.hpp"
 #include "io/run_folder.hpp"
+#include "io/wrapped.hpp"
 
 namespace lidwright {
 namespace {
@@ -51,28 +51,11 @@ RegimeThresholds thresholds_of(const RegimeRequest& request) {
   return t;
 }
 
-/// A line of at most 80 columns a piece, broken between words, each begun by four blanks.
-std::string broken(const std::string& words) {
-  std::string text, line = "   ";
-  std::size_t at = 0;
-  while (at < words.size()) {
-    const std::size_t end = std::min(words.find(' ', at), words.size());
-    const std::string piece = words.substr(at, end - at);
-    if (line.size() + 1 + piece.size() > 80) {
-      text += line + "\n";
-      line = "   ";
-    }
-    line += " " + piece;
-    at = end + 1;
-  }
-  return text + line + "\n";
-}
-
 std::string thresholds_for_people(const RegimeThresholds& t) {
   std::string text;
   for (const RegimeThreshold& row : regime_thresholds())
-    text += fmt::format("{} = {:g}\n{}{}", row.name, t.*row.value, broken(row.meaning),
-                        broken(fmt::format("[{}]", row.source)));
+    text += fmt::format("{} = {:g}\n{}{}", row.name, t.*row.value, wrapped(row.meaning, 4),
+                        wrapped(fmt::format("[{}]", row.source), 4));
   return text;
 }
 

@@ -7,6 +7,7 @@
 #include "app/stop_signals.hpp"
 #include "io/branch_table.hpp"
 #include "io/collective.hpp"
+#include "io/figure_branch.hpp"
 #include "solver/branch.hpp"
 #include "solver/solve_error.hpp"
 #include "solver/stability.hpp"
@@ -108,7 +109,8 @@ void BranchWalk::write(const Branch& branch) {
   write_text(comm_, paths_.branch(), branch_table(parameter_, rows_));
   if (job_.c.output.pictures)
     on_first_rank<OutputError>(comm_, [&] {
-      write_atomically(paths_.branch_picture(), branch_picture(parameter_, rows_, job_.c.title));
+      write_atomically(paths_.branch_picture(),
+                       branch_figure({parameter_, rows_}, job_.c.title, {FigureSize::Slide}));
     });
 }
 

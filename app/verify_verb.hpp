@@ -19,6 +19,9 @@ struct VerifyRequest {
   ProgressMode progress = ProgressMode::Automatic;
 };
 
+/// Names of the program's own benchmarks. Throws InputError when they are missing.
+std::vector<std::string> own_benchmarks();
+
 /// Throws InputError and OutputError. What fails to solve is shown, and the rest goes on.
 ExitCode verify(const Session&, const VerifyRequest&);
 

@@ -4,12 +4,20 @@
 
 #include <algorithm>
 #include <array>
+#include <cmath>
 
+#include "io/case_file.hpp"
 #include "io/csv.hpp"
 #include "io/history.hpp"
+#include "io/number_table.hpp"
 
 namespace lidwright {
 namespace {
+
+constexpr std::string_view title = "lidwright branch of steady states along ";
+/// Ratio of the values asked for from which they are evenly spaced in the logarithm
+/// (app/along_option.cpp).
+constexpr double far_apart = 10 * (1 - 1e-9);
 
 /// Columns of the history that mean nothing, or something else, in a steady state.
 constexpr std::array<std::string_view, 11> of_marches{"step",
@@ -61,12 +69,64 @@ std::vector<double> numbers_of(const BranchRow& r) {
   return numbers;
 }
 
+/// The columns that a picture shows, one row at a time.
+class Reader {
+ public:
+  Reader(const NumberTable& t, const std::string& path) : table_(t), path_(path) {}
+  double operator()(const char* column, std::size_t row) const {
+    if (const auto* values = table_.find(column)) return (*values)[row];
+    throw InputError(
+        fmt::format("{}: has no column '{}'; follow the branch with this version of the program",
+                    path_, column));
+  }
+  BranchRow row(std::size_t k) const {
+    BranchRow r;
+    r.parameter = (*this)("parameter", k);
+    r.asked_for = (*this)("asked_for", k) != 0;
+    r.backwards = (*this)("backwards", k) != 0;
+    r.snapshot = static_cast<int>((*this)("snapshot", k));
+    r.row.nusselt_outer = (*this)("nusselt_outer", k);
+    r.row.nusselt_inner = (*this)("nusselt_inner", k);
+    r.row.velocity_rms = (*this)("velocity_rms", k);
+    r.leading = {(*this)("growth", k), (*this)("frequency", k)};
+    return r;
+  }
+
+ private:
+  const NumberTable& table_;
+  std::string path_;
+};
+
+bool spans_decades(const std::vector<BranchRow>& rows) {
+  double least = INFINITY, largest = 0;
+  for (const BranchRow& r : rows) {
+    if (!r.asked_for) continue;
+    least = std::min(least, r.parameter);
+    largest = std::max(largest, r.parameter);
+  }
+  return least > 0 && largest >= far_apart * least;
+}
+
 }  // namespace
+
+SavedBranch read_branch(const std::string& text, const std::string& path) {
+  const std::string mark = "# " + std::string(title);
+  if (!text.starts_with(mark))
+    throw InputError(fmt::format("{}: not a branch that settle --along has written", path));
+  const NumberTable t = parse_numbers(text, path);
+  if (t.rows() == 0) throw InputError(fmt::format("{}: holds no steady state", path));
+  SavedBranch b;
+  b.parameter.key = text.substr(mark.size(), text.find('\n') - mark.size());
+  if (t.units.front() != "1") b.parameter.unit = t.units.front();
+  const Reader read(t, path);
+  for (std::size_t k = 0; k < t.rows(); ++k) b.rows.push_back(read.row(k));
+  b.parameter.logarithmic = spans_decades(b.rows);
+  return b;
+}
 
 std::string branch_table(const BranchParameter& p, const std::vector<BranchRow>& rows) {
   const std::string meaning = fmt::format("{} of the case, in the units of its file", p.key);
-  std::string text =
-      table_head("lidwright branch of steady states along " + p.key, columns_for(p, meaning));
+  std::string text = table_head(std::string(title) + p.key, columns_for(p, meaning));
   for (const BranchRow& r : rows) text += table_row(numbers_of(r));
   return text;
 }

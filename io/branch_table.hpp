@@ -7,7 +7,8 @@
 #include "solver/branch.hpp"
 #include "solver/stability.hpp"
 
-/// What `lidwright settle --along` writes beside the fields: a table and a picture of the branch.
+/// The table that `lidwright settle --along` writes beside the fields; io/figure_branch.hpp draws
+/// it.
 namespace lidwright {
 
 /// A point of the branch without its fields.
@@ -32,8 +33,12 @@ struct BranchParameter {
 /// Text of branch.csv: one row a point, in the order of the walk. Pure.
 std::string branch_table(const BranchParameter&, const std::vector<BranchRow>&);
 
-/// Bytes of branch.png: Nusselt numbers and rms velocity along the branch. `title`: plain text.
-std::string branch_picture(const BranchParameter&, const std::vector<BranchRow>&,
-                           const std::string& title);
+struct SavedBranch {
+  BranchParameter parameter;
+  std::vector<BranchRow> rows;
+};
+/// The table's text read back, of the state's numbers what a picture shows: Nusselt numbers and rms
+/// velocity. Throws InputError naming `path` when it is no such table or is damaged.
+SavedBranch read_branch(const std::string& text, const std::string& path);
 
 }  // namespace lidwright

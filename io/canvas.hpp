@@ -8,7 +8,8 @@
 
 #include "io/colour_map.hpp"
 
-/// A page to draw on: Cairo and Pango, with owners. Lengths are pixels, y counts downwards.
+/// A page to draw on: Cairo and Pango, with owners. Lengths are design units, y counts downwards: a
+/// drawing is the same whatever file it becomes.
 namespace lidwright::plot {
 
 struct Place {
@@ -42,15 +43,34 @@ struct Line {
   double opacity = 1;
 };
 
+enum class Format { Png, Svg, Pdf };
+enum class Ground { White, Clear };
+
+/// What a page becomes.
+struct Sheet {
+  double width, height;  ///< design units
+  Format format = Format::Png;
+  double pixels_per_unit = 1;  ///< of a PNG, and of the images within the others
+  double points_per_unit = 0;  ///< of print, 1/72 inch; 0: a PNG that says no size
+  Ground ground = Ground::White;
+  std::string title = {};  ///< plain text, in a PDF's properties
+};
+
 class Canvas {
  public:
-  /// White. Throws std::runtime_error when there is no memory or no font.
+  /// Throws std::runtime_error when there is no memory or no font.
+  explicit Canvas(const Sheet&);
+  /// A PNG of that many pixels, one a unit.
   Canvas(int width, int height);
 
   cairo_t* context() { return context_.get(); }
-  Frame page() const { return {0, 0, width_, height_}; }
+  Frame page() const { return {0, 0, sheet_.width, sheet_.height}; }
+  /// Resolution at which an image put on the page is worth having.
+  double pixels_per_unit() const { return sheet_.pixels_per_unit; }
 
   void text(const std::string& markup, Place, Anchor, const TextStyle&);
+  /// In the middle of a light patch, to be read over a field.
+  void text_on_patch(const std::string& markup, Place middle, const TextStyle&);
   /// Read from bottom to top; the place is its middle.
   void upright_text(const std::string& markup, Place, const TextStyle&);
   double text_width(const std::string& markup, const TextStyle&);
@@ -62,11 +82,15 @@ class Canvas {
   void stroke(const Line&);
   void clip_to(const Frame&);
 
-  /// The page as the bytes of a PNG file. Throws std::runtime_error when Cairo failed anywhere.
-  std::string png();
+  /// Ends the page: the bytes of its file, the same for the same drawing. Throws std::runtime_error
+  /// when Cairo failed anywhere.
+  std::string bytes();
 
  private:
-  double width_, height_;
+  std::string png();
+
+  Sheet sheet_;
+  std::unique_ptr<std::string> written_;  ///< what a vector surface has written; stays in place
   std::unique_ptr<cairo_surface_t, void (*)(cairo_surface_t*)> surface_;
   std::unique_ptr<cairo_t, void (*)(cairo_t*)> context_;
 };

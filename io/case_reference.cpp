@@ -1,9 +1,8 @@
 #include <fmt/format.h>
 
-#include <sstream>
-
 #include "io/case_file.hpp"
 #include "io/case_values.hpp"
+#include "io/wrapped.hpp"
 
 namespace lidwright {
 namespace {
@@ -74,22 +73,6 @@ void for_each_key(const Head& head, const Entry& entry) {
 /// Path below the table: "layers[].below".
 std::string name_in_table(const Key& key) {
   return key.table().empty() ? key.path : key.path.substr(key.table().size() + 1);
-}
-
-std::string wrapped(const std::string& text, std::size_t indent) {
-  constexpr std::size_t columns = 80;
-  const std::string margin(indent, ' ');
-  std::istringstream words(text);
-  std::string out, line = margin;
-  for (std::string word; words >> word;) {
-    if (line.size() > indent && line.size() + 1 + word.size() > columns) {
-      out += line + '\n';
-      line = margin;
-    }
-    if (line.size() > indent) line += ' ';
-    line += word;
-  }
-  return line.size() > indent ? out + line + '\n' : out;
 }
 
 std::string text_of(const Key& key) {

@@ -9,13 +9,13 @@ namespace {
 constexpr int entries = 1025;
 using Path = std::array<OkLab, entries>;
 
-/// Ends and control points of the curve in the plane (a, b); lightness runs evenly between its
-/// ends.
-constexpr std::array<std::array<double, 2>, 4> bends{
-    {{-0.05, -0.01}, {-0.065, -0.18}, {0.27, 0.05}, {-0.035, 0.155}}};
+/// Ends and control points of a curve in the plane (a, b); lightness runs evenly between its ends.
+using Bends = std::array<std::array<double, 2>, 4>;
+constexpr Bends warm{{{-0.05, -0.01}, {-0.065, -0.18}, {0.27, 0.05}, {-0.035, 0.155}}};
+constexpr Bends cool{{{0.06, -0.08}, {0.05, -0.25}, {-0.16, -0.06}, {-0.06, 0.09}}};
 constexpr double darkest = 0.26, lightest = 0.94;
 
-double bezier(double s, std::size_t k) {
+double bezier(const Bends& bends, double s, std::size_t k) {
   const double t = 1 - s;
   return t * t * t * bends[0][k] + 3 * t * t * s * bends[1][k] + 3 * t * s * s * bends[2][k] +
          s * s * s * bends[3][k];
@@ -46,12 +46,12 @@ OkLab between(const OkLab& p, const OkLab& q, double share) {
   return {mix(p.lightness, q.lightness), mix(p.a, q.a), mix(p.b, q.b)};
 }
 
-Path curve() {
+Path curve(const Bends& bends) {
   Path path;
   for (int k = 0; k < entries; ++k) {
     const double s = static_cast<double>(k) / (entries - 1);
     path[static_cast<std::size_t>(k)] =
-        shown({darkest + (lightest - darkest) * s, bezier(s, 0), bezier(s, 1)});
+        shown({darkest + (lightest - darkest) * s, bezier(bends, s, 0), bezier(bends, s, 1)});
   }
   return path;
 }
@@ -71,9 +71,11 @@ Path evenly_spaced(const Path& path) {
   return even;
 }
 
-std::array<Colour, entries> table() {
-  const Path path = evenly_spaced(curve());
-  std::array<Colour, entries> colours;
+using Table = std::array<Colour, entries>;
+
+Table table(const Bends& bends) {
+  const Path path = evenly_spaced(curve(bends));
+  Table colours;
   std::transform(path.begin(), path.end(), colours.begin(), [](const OkLab& c) {
     const Colour s = to_srgb(c);  // outside by no more than round-off and a chord's height
     const auto clamped = [](double x) { return std::clamp(x, 0.0, 1.0); };
@@ -116,8 +118,9 @@ double distance(const OkLab& p, const OkLab& q) {
                    (p.a - q.a) * (p.a - q.a) + (p.b - q.b) * (p.b - q.b));
 }
 
-Colour colour_at(double share) {
-  static const std::array<Colour, entries> colours = table();
+Colour colour_at(double share, ColourMap map) {
+  static const Table warm_table = table(warm), cool_table = table(cool);
+  const Table& colours = map == ColourMap::Warm ? warm_table : cool_table;
   const double place = std::clamp(share, 0.0, 1.0) * (entries - 1);
   return colours[static_cast<std::size_t>(std::lround(place))];
 }

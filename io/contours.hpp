@@ -23,4 +23,9 @@ using Segment = std::array<std::array<double, 2>, 2>;
 /// a saddle. `stride`: only every so many rows and columns are looked at (the last ones always).
 std::vector<Segment> contour(const Lattice&, double level, int stride = 1);
 
+/// The pieces joined end to end, longest possible. `period`: columns after which the lattice comes
+/// back to where it began (a full circle), so that lines go on over the seam; 0: it does not.
+using Polyline = std::vector<std::array<double, 2>>;
+std::vector<Polyline> joined(const std::vector<Segment>&, int period = 0);
+
 }  // namespace lidwright::plot

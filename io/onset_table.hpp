@@ -4,14 +4,14 @@
 
 #include "study/onset_curve.hpp"
 
-/// What `lidwright onset` writes beside the fields: a table and a picture of the neutral Rayleigh
-/// numbers.
+/// The table that `lidwright onset` writes beside the fields; io/figure_onset.hpp draws it.
 namespace lidwright {
 
 /// Text of onset.csv: one row a mode. Pure.
 std::string onset_table(const OnsetCurve&);
 
-/// Bytes of onset.png: the curve with error bars, the least one marked. `title`: plain text.
-std::string onset_picture(const OnsetCurve&, const std::string& title);
+/// The table's text read back: of each point mode, Rayleigh number and error, and which is the
+/// least. Throws InputError naming `path` when it is no such table or is damaged.
+OnsetCurve read_onset(const std::string& text, const std::string& path);
 
 }  // namespace lidwright

@@ -3,15 +3,17 @@
 #include <fmt/format.h>
 
 #include <algorithm>
-#include <charconv>
 #include <cmath>
 #include <numbers>
-#include <stdexcept>
-#include <string_view>
 
 #include "io/collective.hpp"
+#include "io/colour_bar.hpp"
+#include "io/field_raster.hpp"
+#include "io/flow_lines.hpp"
+#include "io/history_table.hpp"
 #include "io/picture_layout.hpp"
 #include "io/plot_chart.hpp"
+#include "io/profile_charts.hpp"
 #include "io/run_folder.hpp"
 #include "io/shell_map.hpp"
 #include "mesh/gather.hpp"
@@ -23,40 +25,6 @@ using namespace plot;
 
 constexpr Colour outer_ink{0.05, 0.38, 0.52}, inner_ink{0.83, 0.27, 0.24},
     profile_ink{0.2, 0.2, 0.28};
-
-/// Cuts the text before the next `end` off `rest`.
-std::string_view next_part(std::string_view& rest, char end) {
-  const std::size_t at = rest.find(end);
-  const std::string_view part = rest.substr(0, at);
-  rest.remove_prefix(at == std::string_view::npos ? rest.size() : at + 1);
-  return part;
-}
-
-std::vector<std::string_view> parts(std::string_view line) {
-  std::vector<std::string_view> all;
-  while (!line.empty()) all.push_back(next_part(line, ','));
-  return all;
-}
-
-std::size_t column_of(const std::vector<std::string_view>& names, std::string_view name) {
-  const auto found = std::find(names.begin(), names.end(), name);
-  if (found == names.end())
-    throw std::runtime_error(fmt::format("the history has no column '{}'", name));
-  return static_cast<std::size_t>(found - names.begin());
-}
-
-double number(std::string_view text) {
-  double value = std::nan("");
-  std::from_chars(text.data(), text.data() + text.size(), value);
-  return value;
-}
-
-/// Four digits, as markup.
-std::string digits_of(double value) {
-  if (value == 0 || std::abs(value) >= 1e-3) return fmt::format("{:.4g}", value);
-  const int exponent = static_cast<int>(std::floor(std::log10(std::abs(value))));
-  return fmt::format("{:.4g} \u00d7 {}", value / std::pow(10.0, exponent), power_of_ten(exponent));
-}
 
 std::string state_heading(const SteadyState& s, const std::string& at, const PictureUnits& units) {
   const std::string where = at.empty() ? "" : " at " + as_markup(at);
@@ -71,8 +39,9 @@ std::string state_heading(const SteadyState& s, const std::string& at, const Pic
 void draw_heading(Canvas& canvas, const PictureContents& c) {
   canvas.text(as_markup(c.title.empty() ? "Convection in time" : c.title), {page_border, 20},
               {0, 0}, {27, ink, Weight::Bold, picture_width - 2 * page_border});
-  const std::string moment = fmt::format(
-      "time {} {}   \u00b7   step {}", digits_of(c.units.time(c.time)), c.units.time.unit, c.step);
+  const std::string moment =
+      fmt::format("time {} {}   \u00b7   step {}", four_digits(c.units.time(c.time)),
+                  c.units.time.unit, c.step);
   canvas.text(c.state.empty() ? moment : c.state, {page_border, 58}, {0, 0},
               {18, faint_ink, Weight::Normal, picture_width - 2 * page_border});
 }
@@ -89,63 +58,16 @@ void draw_shell(Canvas& canvas, const PictureContents& c, const PictureLayout& l
   draw_cells(canvas, map, c.temperature, range);
   draw_flow_lines(canvas, map, c.stream_function, c.temperature, range);
   draw_outline(canvas, map);
-  draw_colour_bar(canvas, linear_axis(shown_span(c), 8),
-                  Label{"temperature", c.units.temperature.unit}, layout.colour_bar);
+  draw_upright_bar(canvas,
+                   {linear_axis(shown_span(c), 8), {"temperature", c.units.temperature.unit}},
+                   layout.colour_bar);
 }
 
-std::vector<double> speed(const RadialProfiles& p) {
-  std::vector<double> all;
-  for (std::size_t k = 0; k < p.radius.size(); ++k)
-    all.push_back(std::hypot(p.velocity_radial_rms[k], p.velocity_lateral_rms[k]));
-  return all;
-}
-
-std::vector<double> depths(const PictureContents& c) {
-  std::vector<double> all;
-  for (const double radius : c.profiles.radius)
-    all.push_back(c.units.length(c.geometry.outer_radius() - radius));
-  return all;
-}
-
-Chart profile_chart(const PictureContents& c, const Label& label, const Axis& axis,
-                    std::vector<double> values, const PictureLayout& layout) {
-  const double thickness = c.geometry.outer_radius() - c.geometry.inner_radius();
-  Chart chart;
-  chart.x_label = label;
-  chart.y_label = Label{"depth", c.units.length.unit};
-  chart.x = axis;
-  chart.y = linear_axis({0, c.units.length(thickness)}, ticks_upright(layout.profiles[0]));
-  chart.curves = {{std::move(values), depths(c), profile_ink, ""}};
-  chart.y_downwards = true;
-  chart.overhang = 6;
-  return chart;
-}
-
-Axis from_zero(const std::vector<double>& values, int most) {
-  const double high = range_of(values).high;
-  return linear_axis({0, high > 0 ? 1.06 * high : 1}, most);
-}
-
-bool viscosity_varies(const PictureContents& c) {
-  const Interval r = range_of(c.profiles.viscosity);
-  return r.low > 0 && r.high > 1.01 * r.low;
-}
-
-std::vector<Chart> profile_charts(const PictureContents& c, const PictureLayout& layout) {
-  const int most = ticks_across(layout.profiles[0]);
-  const std::vector<double> velocity = c.units.velocity(speed(c.profiles));
-  std::vector<Chart> charts{profile_chart(c, Label{"temperature", c.units.temperature.unit},
-                                          linear_axis(with_margin(shown_span(c), 0.03), most),
-                                          c.units.temperature(c.profiles.temperature), layout),
-                            profile_chart(c, Label{"rms velocity", c.units.velocity.unit},
-                                          from_zero(velocity, most), velocity, layout)};
-  if (viscosity_varies(c)) {
-    const std::vector<double> viscosity = c.units.viscosity(c.profiles.viscosity);
-    charts.push_back(profile_chart(c, Label{"viscosity", c.units.viscosity.unit},
-                                   logarithmic_axis(range_of(viscosity), most), viscosity, layout));
-  }
+std::vector<Chart> charts_of_profiles(const PictureContents& c, const PictureLayout& layout) {
+  const ProfileRoom room{c.geometry.inner_radius(), c.geometry.outer_radius(), c.units,
+                         ticks_across(layout.profiles[0]), ticks_upright(layout.profiles[0])};
+  std::vector<Chart> charts = profile_charts({{c.profiles, profile_ink}}, room, shown_span(c));
   charts.front().title = "Means at each depth";
-  for (std::size_t k = 1; k < charts.size(); ++k) charts[k].y_labels = false;
   return charts;
 }
 
@@ -228,7 +150,7 @@ Chart wall_chart(const PictureContents& c, const Frame& f) {
 }
 
 void draw_charts(Canvas& canvas, const PictureContents& c, const PictureLayout& layout) {
-  const std::vector<Chart> charts = profile_charts(c, layout);
+  const std::vector<Chart> charts = charts_of_profiles(c, layout);
   for (std::size_t k = 0; k < charts.size(); ++k) draw(canvas, charts[k], layout.profiles[k]);
   draw(canvas, c.state.empty() ? heat_flow_chart(c, layout.history) : wall_chart(c, layout.history),
        layout.history);
@@ -236,26 +158,11 @@ void draw_charts(Canvas& canvas, const PictureContents& c, const PictureLayout& 
 
 }  // namespace
 
-HeatFlowHistory heat_flow_history(const std::string& text) {
-  std::string_view rest = text;
-  std::string_view head = next_part(rest, '\n');
-  while (head.starts_with('#')) head = next_part(rest, '\n');
-  const std::vector<std::string_view> names = parts(head);
-  HeatFlowHistory h;
-  const auto read = [&](const std::vector<std::string_view>& row, std::string_view name,
-                        std::vector<double>& to) {
-    to.push_back(number(row[column_of(names, name)]));
-  };
-  while (rest.find('\n') != std::string_view::npos) {
-    const std::vector<std::string_view> row = parts(next_part(rest, '\n'));
-    if (row.size() != names.size()) continue;
-    read(row, "time", h.time);
-    read(row, "nusselt_inner", h.nusselt_inner);
-    read(row, "nusselt_outer", h.nusselt_outer);
-    read(row, "temperature_inner", h.temperature_inner);
-    read(row, "temperature_outer", h.temperature_outer);
-  }
-  return h;
+HeatFlowHistory heat_flow_history(const std::string& text, const std::string& path) {
+  const HistoryTable t = parse_history(text, path);
+  const auto column = [&](const char* name) { return column_of(t, name, path); };
+  return {column("time"), column("nusselt_inner"), column("nusselt_outer"),
+          column("temperature_inner"), column("temperature_outer")};
 }
 
 std::vector<double> Shown::operator()(const std::vector<double>& values) const {
@@ -290,11 +197,11 @@ TemperatureSpan temperature_span(const PictureContents& c) {
 std::string picture(const PictureContents& c) {
   Canvas canvas(picture_width, picture_height);
   const PictureLayout layout =
-      layout_for(extent_of(c.geometry), canvas.page(), viscosity_varies(c) ? 3 : 2);
+      layout_for(extent_of(c.geometry), canvas.page(), viscosity_varies(c.profiles) ? 3 : 2);
   draw_heading(canvas, c);
   draw_shell(canvas, c, layout);
   draw_charts(canvas, c, layout);
-  return canvas.png();
+  return canvas.bytes();
 }
 
 void draw_run(const std::string& path, const Snapshot& s, const std::string& history_path,
@@ -310,7 +217,7 @@ void draw_run(const std::string& path, const Snapshot& s, const std::string& his
                                    std::move(temperature),
                                    std::move(stream_function),
                                    s.profiles,
-                                   heat_flow_history(read_whole_file(history_path)),
+                                   heat_flow_history(read_whole_file(history_path), history_path),
                                    units};
     write_atomically(path, picture(contents));
   });

@@ -21,9 +21,9 @@ struct HeatFlowHistory {
   std::vector<double> temperature_inner, temperature_outer;  ///< means over the walls
 };
 
-/// From the text of a history; a torn last row is left out. Throws std::runtime_error when a column
-/// is missing.
-HeatFlowHistory heat_flow_history(const std::string& text);
+/// From the text of a history; a torn last row is left out. Throws InputError naming `path` when it
+/// is damaged or a column is missing.
+HeatFlowHistory heat_flow_history(const std::string& text, const std::string& path);
 
 /// A quantity as a picture shows it: (value of the program) * scale + offset, with its unit.
 struct Shown {

@@ -112,10 +112,38 @@ Interval with_margin(Interval range, double share) {
   return {range.low - air, range.high + air};
 }
 
+Interval with_margin_in_logarithm(Interval range, double share) {
+  if (range.high / range.low < 1 + 1e-6) return {0.9 * range.low, 1.1 * range.high};
+  const double factor = std::pow(range.high / range.low, share);
+  return {range.low / factor, range.high * factor};
+}
+
+Axis axis_of_values(Interval range, Spacing spacing, int most, double air) {
+  if (spacing == Spacing::Logarithmic && range.low > 0) {
+    const Interval wider = with_margin_in_logarithm(range, air);
+    Axis axis = logarithmic_axis_within(wider, most);
+    if (axis.ticks.size() >= 2) return axis;
+    axis = linear_axis(wider, most);
+    axis.spacing = Spacing::Logarithmic;
+    return axis;
+  }
+  const double size = std::max(std::abs(range.low), std::abs(range.high));
+  if (range.high - range.low < 1e-5 * size)
+    return linear_axis(with_margin({range.low, range.low}, 0), most);
+  return linear_axis(with_margin(range, air), most);
+}
+
 std::string written(const Label& l, const Axis& axis) {
   const std::string gap = axis.power.empty() || l.unit.empty() ? "" : " ";
   const std::string unit = axis.power + gap + l.unit;
   return unit.empty() ? l.what : fmt::format("{} ({})", l.what, unit);
+}
+
+std::string four_digits(double value) {
+  const double size = std::abs(value);
+  if (value == 0 || (size >= 1e-3 && size < 1e5)) return fmt::format("{:.4g}", value);
+  const int exponent = static_cast<int>(std::floor(std::log10(size)));
+  return fmt::format("{:.4g} \u00d7 {}", value / power(exponent), power_of_ten(exponent));
 }
 
 std::string power_of_ten(int exponent) {

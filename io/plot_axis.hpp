@@ -42,12 +42,21 @@ Axis logarithmic_axis_within(Interval, int most);
 /// With some air at both ends; an empty range becomes a small one around its value.
 Interval with_margin(Interval, double share);
 
+/// The same in the logarithm, of a range above 0.
+Interval with_margin_in_logarithm(Interval, double share);
+/// An axis of the values in the range with some air; of few decades in a logarithm it has the ticks
+/// of a linear one. A range too narrow for its labels becomes wider.
+Axis axis_of_values(Interval, Spacing, int most, double air = 0.06);
+
 /// What an axis shows, as markup: "what (unit)", with the power of ten that its labels leave out.
 struct Label {
   std::string what;
   std::string unit;  ///< empty for plain numbers
 };
 std::string written(const Label&, const Axis&);
+
+/// A number to four digits, as markup.
+std::string four_digits(double);
 
 /// "10<sup>-3</sup>" with a true minus sign.
 std::string power_of_ten(int exponent);

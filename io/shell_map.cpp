@@ -2,138 +2,14 @@
 
 #include <algorithm>
 #include <cmath>
-#include <cstdint>
-#include <memory>
 #include <numbers>
 
-#include "io/contours.hpp"
 #include "io/plot_chart.hpp"
 
 namespace lidwright::plot {
 namespace {
 
 using std::numbers::pi;
-
-/// The cell that holds a coordinate, given the faces in rising order: a guess for even cells, then
-/// steps.
-std::size_t cell_holding(const std::vector<double>& faces, double x) {
-  const std::size_t last = faces.size() - 2;
-  const double share = (x - faces.front()) / (faces.back() - faces.front());
-  std::size_t k = std::min(
-      static_cast<std::size_t>(std::max(share, 0.0) * static_cast<double>(last + 1)), last);
-  while (k > 0 && x < faces[k]) --k;
-  while (k < last && x >= faces[k + 1]) ++k;
-  return k;
-}
-
-/// The number in the cell at a place of the page.
-class CellReader {
- public:
-  CellReader(const ShellMap& map, const std::vector<double>& cells)
-      : map_(map), cells_(cells), rows_(static_cast<std::size_t>(map.geometry().radial_cells())) {
-    const Geometry& g = map.geometry();
-    for (int i = 0; i <= g.radial_cells(); ++i) radii_.push_back(g.face_radius(i));
-    for (int j = 0; j <= g.lateral_cells(); ++j) laterals_.push_back(g.face_lateral(j));
-  }
-  double operator()(Place p) const { return at(map_.in_shell(p)); }
-  double at(const ShellPlace& s) const {
-    return cells_[cell_holding(laterals_, s.lateral) * rows_ + cell_holding(radii_, s.radius)];
-  }
-
- private:
-  const ShellMap& map_;
-  const std::vector<double>& cells_;
-  std::size_t rows_;
-  std::vector<double> radii_, laterals_;
-};
-
-/// Mean of four samples, so that cells smaller than a pixel do not flicker.
-double pixel_mean(const CellReader& read, double x, double y) {
-  double sum = 0;
-  for (const double dx : {0.25, 0.75})
-    for (const double dy : {0.25, 0.75}) sum += read({x + dx, y + dy});
-  return sum / 4;
-}
-
-std::uint32_t packed(const Colour& c) {
-  const auto byte = [](double x) { return static_cast<std::uint32_t>(std::lround(255 * x)); };
-  return byte(c.red) << 16 | byte(c.green) << 8 | byte(c.blue);
-}
-
-double share_of(const Interval& range, double value) {
-  return range.empty() ? 0.5 : (value - range.low) / (range.high - range.low);
-}
-
-/// Pixels, opaque, of a part of the page whose corner is at whole pixels.
-struct Raster {
-  int width, height;
-  std::vector<std::uint32_t> pixels;
-};
-
-Raster raster_of_cells(const ShellMap& map, const std::vector<double>& cells,
-                       const Interval& range) {
-  const Frame f = map.frame();
-  Raster raster{
-      static_cast<int>(std::ceil(f.width)) + 2, static_cast<int>(std::ceil(f.height)) + 2, {}};
-  const CellReader read(map, cells);
-  raster.pixels.reserve(static_cast<std::size_t>(raster.width) *
-                        static_cast<std::size_t>(raster.height));
-  for (int y = 0; y < raster.height; ++y)
-    for (int x = 0; x < raster.width; ++x)
-      raster.pixels.push_back(packed(colour_at(
-          share_of(range, pixel_mean(read, std::floor(f.left) + x, std::floor(f.top) + y)))));
-  return raster;
-}
-
-void paint(Canvas& canvas, Raster& raster, Place corner) {
-  const std::unique_ptr<cairo_surface_t, void (*)(cairo_surface_t*)> image(
-      cairo_image_surface_create_for_data(reinterpret_cast<unsigned char*>(raster.pixels.data()),
-                                          CAIRO_FORMAT_RGB24, raster.width, raster.height,
-                                          4 * raster.width),
-      cairo_surface_destroy);
-  cairo_set_source_surface(canvas.context(), image.get(), corner.x, corner.y);
-  cairo_paint(canvas.context());
-}
-
-/// Corner radius and lateral coordinate at fractions of an index.
-double radius_at(const Geometry& g, double i) {
-  const int k = std::min(static_cast<int>(i), g.radial_cells() - 1);
-  return g.face_radius(k) + (i - k) * (g.face_radius(k + 1) - g.face_radius(k));
-}
-double lateral_at(const Geometry& g, double j) {
-  const int k = std::min(static_cast<int>(j), g.lateral_cells() - 1);
-  return g.face_lateral(k) + (j - k) * (g.face_lateral(k + 1) - g.face_lateral(k));
-}
-
-/// With the first column once more at the end of a full circle.
-std::vector<double> closed(const Geometry& g, std::vector<double> corners) {
-  const auto rows = static_cast<std::size_t>(g.radial_cells()) + 1;
-  if (g.periodic())
-    for (std::size_t i = 0; i < rows; ++i) corners.push_back(corners[i]);
-  return corners;
-}
-
-/// So that pieces of a line are some pixels long, however fine the grid.
-int stride_for(const ShellMap& map) {
-  const double cell = map.pixels_per_thickness() / map.geometry().radial_cells();
-  return std::clamp(static_cast<int>(3 / cell), 1, 8);
-}
-
-/// Levels between the extremes, none of them 0: walls are lines of flow already.
-std::vector<double> flow_levels(const Interval& psi) {
-  constexpr int lines = 11;
-  const double step = (psi.high - psi.low) / lines;
-  std::vector<double> levels;
-  const double air = 0.2 * step;  // no specks around an extreme
-  for (double k = std::floor(psi.low / step) + 0.5; k * step < psi.high - air; ++k)
-    if (k * step > psi.low + air) levels.push_back(k * step);
-  return levels;
-}
-
-void add(Canvas& canvas, Place p, Place q) {
-  cairo_move_to(canvas.context(), p.x, p.y);
-  cairo_line_to(canvas.context(), q.x, q.y);
-}
 
 }  // namespace
 
@@ -182,14 +58,25 @@ ShellPlace ShellMap::in_shell(Place p) const {
           std::clamp(lateral, s.lateral_begin, s.lateral_end)};
 }
 
+bool ShellMap::near(Place p, double margin) const {
+  if (geometry_.box()) return true;
+  const Place centre = centre_on_page();
+  const double radius = std::hypot(p.x - centre.x, p.y - centre.y);
+  return radius > scale_ * geometry_.inner_radius() - margin &&
+         radius < scale_ * geometry_.outer_radius() + margin;
+}
+
+Place ShellMap::centre_on_page() const {
+  return {frame_.left - scale_ * extent_.x.low, frame_.bottom() + scale_ * extent_.y.low};
+}
+
 /// Cairo's angle: from x towards the bottom of the page.
 double ShellMap::page_angle(double lateral) const {
   return geometry_.shell().shape == Shape::AxisymmetricShell ? lateral - pi / 2 : -lateral;
 }
 
 void ShellMap::trace_arc(Canvas& canvas, double radius, double from, double to) const {
-  const Place centre{frame_.left - scale_ * extent_.x.low,
-                     frame_.bottom() + scale_ * extent_.y.low};
+  const Place centre = centre_on_page();
   const double begin = page_angle(from), end = page_angle(to);
   (end > begin ? cairo_arc : cairo_arc_negative)(canvas.context(), centre.x, centre.y,
                                                  scale_ * radius, begin, end);
@@ -212,53 +99,9 @@ void ShellMap::trace_outline(Canvas& canvas) const {
   cairo_close_path(cr);
 }
 
-void draw_cells(Canvas& canvas, const ShellMap& map, const std::vector<double>& cells,
-                const Interval& range) {
-  Raster raster = raster_of_cells(map, cells, range);
-  const Saved saved(canvas);
-  map.trace_outline(canvas);
-  cairo_set_fill_rule(canvas.context(), CAIRO_FILL_RULE_EVEN_ODD);
-  cairo_clip(canvas.context());
-  paint(canvas, raster, {std::floor(map.frame().left), std::floor(map.frame().top)});
-}
-
-void draw_flow_lines(Canvas& canvas, const ShellMap& map,
-                     const std::vector<double>& stream_function, const std::vector<double>& cells,
-                     const Interval& range) {
-  const Geometry& g = map.geometry();
-  const Interval psi = range_of(stream_function);
-  if (psi.empty()) return;
-  const std::vector<double> corners = closed(g, stream_function);
-  const Lattice lattice{g.radial_cells() + 1, g.lateral_cells() + 1, corners};
-  const CellReader temperature(map, cells);
-  for (const bool on_dark : {false, true}) {
-    for (const double level : flow_levels(psi))
-      for (const Segment& s : contour(lattice, level, stride_for(map))) {
-        const ShellPlace p{radius_at(g, s[0][0]), lateral_at(g, s[0][1])};
-        if ((share_of(range, temperature.at(p)) < 0.5) != on_dark) continue;
-        add(canvas, map.on_page(p.radius, p.lateral),
-            map.on_page(radius_at(g, s[1][0]), lateral_at(g, s[1][1])));
-      }
-    canvas.stroke({on_dark ? Colour{1, 1, 1} : Colour{0.1, 0.1, 0.15}, 0.9, 0.55});
-  }
-}
-
 void draw_outline(Canvas& canvas, const ShellMap& map) {
   map.trace_outline(canvas);
   canvas.stroke({ink, 1.2});
-}
-
-void draw_colour_bar(Canvas& canvas, const Axis& axis, const Label& label, const Frame& f) {
-  for (int y = 0; y < static_cast<int>(f.height); ++y)
-    canvas.line({{f.left, f.bottom() - y - 0.5}, {f.right(), f.bottom() - y - 0.5}},
-                {colour_at((y + 0.5) / f.height), 1});
-  canvas.frame({f.left + 0.5, f.top + 0.5, f.width, f.height}, {faint_ink, 1});
-  for (const Tick& t : axis.ticks) {
-    const double y = std::round(f.bottom() - f.height * axis.place(t.value)) + 0.5;
-    canvas.line({{f.right(), y}, {f.right() + 5, y}}, {faint_ink, 1});
-    canvas.text(t.label, {f.right() + 9, y}, {0, 0.5}, {14, faint_ink});
-  }
-  canvas.upright_text(written(label, axis), {f.left - 16, f.middle().y}, {15, ink});
 }
 
 }  // namespace lidwright::plot

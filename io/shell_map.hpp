@@ -29,15 +29,18 @@ class ShellMap {
   Place on_page(double radius, double lateral) const;
   /// The reverse, moved to the nearest place within the shell.
   ShellPlace in_shell(Place) const;
+  /// Neither in the hole of the shell nor beyond its outer wall by more than the margin.
+  bool near(Place, double margin) const;
   /// The rectangle that the shell fills.
   Frame frame() const { return frame_; }
-  double pixels_per_thickness() const { return scale_; }
+  double units_per_thickness() const { return scale_; }
   const Geometry& geometry() const { return geometry_; }
 
   /// The outline as the canvas's path, to be clipped to (even-odd) or stroked.
   void trace_outline(Canvas&) const;
 
  private:
+  Place centre_on_page() const;
   double page_angle(double lateral) const;
   void trace_arc(Canvas&, double radius, double from, double to) const;
 
@@ -47,18 +50,6 @@ class ShellMap {
   Frame frame_;
 };
 
-/// Numbers in cells, column by column, radial index fastest, as colours over `range`; a cell is
-/// drawn as the region between its faces.
-void draw_cells(Canvas&, const ShellMap&, const std::vector<double>& cells, const Interval& range);
-
-/// A few lines of flow: equal steps of the stream function, dark on light and light on dark ground.
-/// Numbers at corners, column by column.
-void draw_flow_lines(Canvas&, const ShellMap&, const std::vector<double>& stream_function,
-                     const std::vector<double>& cells, const Interval& range);
-
 void draw_outline(Canvas&, const ShellMap&);
-
-/// An upright bar with the colours of the range, its axis to the right and its title above.
-void draw_colour_bar(Canvas&, const Axis&, const Label&, const Frame&);
 
 }  // namespace lidwright::plot

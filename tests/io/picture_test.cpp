@@ -215,7 +215,7 @@ TEST(Picture, ReadsTheHistoryUpToATornRow) {
   row.temperature_outer = -1;
   const std::string whole = history_row(row);
   const HeatFlowHistory h =
-      heat_flow_history(history_head() + whole + whole.substr(0, whole.size() / 2));
+      heat_flow_history(history_head() + whole + whole.substr(0, whole.size() / 2), "h.csv");
   EXPECT_THAT(h.time, ElementsAre(0.25));
   EXPECT_THAT(h.nusselt_inner, ElementsAre(3));
   EXPECT_THAT(h.temperature_outer, ElementsAre(-1));

@@ -60,18 +60,5 @@ TEST(SettleTables, BranchHasTheStatesColumnsOfTheHistory) {
   EXPECT_THAT(text, HasSubstr(",nan,nan\n"));
 }
 
-TEST(SettleTables, APictureOfABranchThatFolds) {
-  std::vector<BranchRow> rows(3);
-  for (std::size_t k = 0; k < rows.size(); ++k) {
-    rows[k].parameter = k == 1 ? 50 : 100;
-    rows[k].asked_for = k != 1;
-    rows[k].row.nusselt_outer = 3 - static_cast<double>(k);
-    rows[k].row.nusselt_inner = std::numeric_limits<double>::quiet_NaN();
-  }
-  for (const bool logarithmic : {false, true})
-    EXPECT_THAT(branch_picture({"numbers.rayleigh", "", logarithmic}, rows, "<a & b>"),
-                testing::StartsWith("\x89PNG"));
-}
-
 }  // namespace
 }  // namespace lidwright
