@@ -402,9 +402,9 @@
       return decoded.get(name);
     };
     const paint = (bytes) => {
-      const pen = canvas.getContext("2d"), image = pen.createImageData(shell.width, shell.height), out = image.data;
+      const colours = fields.layers[layer].colours, pen = canvas.getContext("2d"), image = pen.createImageData(shell.width, shell.height), out = image.data;
       for (let n = 0; n < shell.block.length; ++n) {
-        const c = fields.colours[bytes[shell.block[n]]];
+        const c = colours[bytes[shell.block[n]]];
         out[4 * n] = c >> 16; out[4 * n + 1] = (c >> 8) & 255; out[4 * n + 2] = c & 255; out[4 * n + 3] = shell.cover[n];
       }
       pen.putImageData(image, 0, 0);
@@ -459,7 +459,7 @@
     const showLayer = () => {
       const l = fields.layers[layer];
       at("bar-title").textContent = l.title + (l.unit ? ", " + l.unit : "") + (l.bodyUnit ? " and " + l.bodyUnit : "") + (l.log ? " (logarithmic)" : "");
-      const stops = fields.colours.filter((c, k) => k % 15 === 0).map((c) => "#" + c.toString(16).padStart(6, "0"));
+      const stops = l.colours.filter((c, k) => k % 15 === 0).map((c) => "#" + c.toString(16).padStart(6, "0"));
       at("bar-colours").style.background = "linear-gradient(to right, " + stops.join(", ") + ")";
       at("bar-marks").replaceChildren(...l.marks.map((m) => {
         const item = make("li", { text: m.words });
@@ -527,15 +527,7 @@
   at("field-body").hidden = !fields;
 
   /* --- history --------------------------------------------------------------------------------------------- */
-  const names = {
-    nusselt_outer: "Surface Nusselt number", nusselt_inner: "Core Nusselt number", velocity_rms: "Rms velocity",
-    velocity_rms_outer: "Rms velocity along the surface", velocity_rms_inner: "Rms velocity along the core",
-    temperature_mean: "Mean temperature", lid_thickness_velocity: "Thickness of the lid", mobility: "Mobility",
-    heat_flow_outer: "Heat flow through the surface", heat_flow_inner: "Heat flow out of the core",
-    heat_budget_residual: "Heat budget, residual", work_mismatch: "Work against dissipation", flow_error: "Error of the flow",
-    time_step: "Length of a step", wall_time: "Time by the clock",
-  };
-  const nameOf = (code) => names[code] || (code[0].toUpperCase() + code.slice(1)).replace(/_/g, " ");
+  const nameOf = (c) => c.label[0].toUpperCase() + c.label.slice(1);
   const first = ["nusselt_outer", "nusselt_inner", "velocity_rms", "temperature_mean", "lid_thickness_velocity", "mobility"];
   const history = data.history;
   const columnOf = (code) => history.columns.find((c) => c.name === code);
@@ -546,7 +538,7 @@
   };
   function historyChart(c) {
     const chart = new Chart(at("panels"), {
-      name: nameOf(c.name), code: c.name, unit: c.unit, xName: "time", xLabel: "time, d²/κ", x: pointsOf(c),
+      name: nameOf(c), code: c.name, unit: c.unit, xName: "time", xLabel: "time, d²/κ", x: pointsOf(c),
       series: [{ name: c.name, values: c.values }], band: c.mean, group: "history", moment, log: at("log").checked,
       remark: c.mean && !c.mean.known && c.values.some(isNumber) ? "No mean: " + c.mean.words + "." : "",
       onClick: (x) => {
@@ -580,7 +572,7 @@
     for (const c of history.columns) {
       const box = make("input", { type: "checkbox", value: c.name, checked: start.includes(c.name) });
       box.addEventListener("change", () => { showColumn(c.name, box.checked); keep({ columns: chosen() }); fillHistoryTable(); });
-      at("columns").append(make("label", { title: c.meaning }, box, " " + nameOf(c.name)));
+      at("columns").append(make("label", { title: c.meaning }, box, " " + nameOf(c)));
     }
     for (const code of start) if (columnOf(code)) historyChart(columnOf(code));
     order();
@@ -695,21 +687,18 @@
     });
     return { xs, rows };
   }
-  function branchCurve(t, code, title, log) {
+  function branchCurve(t, code) {
     const x = column(t, "parameter"), y = column(t, code);
     if (!y.some(isNumber) || !changes(y.filter(isNumber))) return;
     const { xs, rows } = pieces(x, y);
-    new Chart(at("curve-panels"), { name: title, code, unit: unitIn(t, code), xName: data.parameter, x: xs, connect: true,
-      logX: xs[0] > 0 && xs[xs.length - 1] > 20 * xs[0], log,
+    new Chart(at("curve-panels"), { name: nameOf(t.columns.find((one) => one.name === code)), code, unit: unitIn(t, code), xName: data.parameter, x: xs, connect: true,
+      logX: xs[0] > 0 && xs[xs.length - 1] > 20 * xs[0],
       series: rows.map((values, k) => ({ name: k === 0 ? "branch" : "beyond fold " + k, values })) });
   }
   if (tableOf("branch.csv")) {
     const t = tableOf("branch.csv");
-    branchCurve(t, "nusselt_outer", "Surface Nusselt number");
-    branchCurve(t, "nusselt_inner", "Core Nusselt number");
-    branchCurve(t, "velocity_rms", "Rms velocity");
-    branchCurve(t, "temperature_mean", "Mean temperature");
-    branchCurve(t, "growth", "Growth of the fastest disturbance");
+    for (const code of ["nusselt_outer", "nusselt_inner", "velocity_rms", "temperature_mean", "growth"])
+      if (column(t, code).length) branchCurve(t, code);
   }
   if (tableOf("newton.csv")) {
     const t = tableOf("newton.csv"), residual = column(t, "residual");
