@@ -70,7 +70,7 @@ def of_states_and_onset(scratch):
     # Blankenbach et al. (1989), case 1a: 4.884409; the bar holds it.
     assert abs(float(nusselt["number"]["value"]) - 4.884409) <= float(nusselt["number"]["error"]), nusselt
     assert page["verdict"]["heading"] == "steady" and page["health"]["worst"] == "good", page["health"]
-    runs.expect(runs.run("onset", box, "--into", scratch.path("onset"), "--modes", "1:3"), runs.DONE)
+    runs.expect(runs.run("onset", box, "--into", scratch.path("onset"), "--modes", "1:3", "--no-error-bars"), runs.DONE)
     page = data(scratch.path("onset", "report.html"))
     assert page["kind"] == "onset" and page["verdict"]["heading"] == "this case convects", page["verdict"]
 
@@ -93,14 +93,14 @@ def long_run(scratch):
     with open(os.path.join(folder, "history.csv"), "w") as file:
         file.writelines(head + made)
     pvd = runs.read(os.path.join(folder, "fields.pvd"))
-    for n in range(50):
+    for n in range(1, 50):
         for name in os.listdir(os.path.join(folder, "fields")):
             if name.startswith("fields_0000_"):
                 shutil.copy(os.path.join(folder, "fields", name), os.path.join(folder, "fields", name.replace("0000", f"{n:04}", 1)))
         index = runs.read(os.path.join(folder, "fields", "fields_0000.pvts")).replace("fields_0000_", f"fields_{n:04}_")
         with open(os.path.join(folder, "fields", f"fields_{n:04}.pvts"), "w") as file:
             file.write(index)
-        shutil.copy(os.path.join(folder, "profiles", "profiles_0001.csv"), os.path.join(folder, "profiles", f"profiles_{n:04}.csv"))
+        shutil.copy(os.path.join(folder, "profiles", "profiles_0000.csv"), os.path.join(folder, "profiles", f"profiles_{n:04}.csv"))
     entry = re.search(r" *<DataSet[^>]*>\n", pvd).group(0)
     entries = "".join(re.sub(r'timestep="[^"]*"', f'timestep="{0.02 * n}"', entry).replace("0000", f"{n:04}") for n in range(50))
     with open(os.path.join(folder, "fields.pvd"), "w") as file:
