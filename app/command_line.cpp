@@ -139,7 +139,9 @@ void add_figure(CLI::App& app, FigureRequest& request) {
   one_of(verb->add_option("--format", request.format, choice_text(formats) + " [png]"), formats)
       ->type_name("FORMAT");
   const std::vector<std::string> sizes{"one-column", "two-column", "slide"};
-  one_of(verb->add_option("--size", request.size, choice_text(sizes) + "\n[one-column; a film: slide]"), sizes)
+  one_of(verb->add_option("--size", request.size,
+                          choice_text(sizes) + "\n[one-column; a film: slide]"),
+         sizes)
       ->type_name("SIZE");
   verb->add_option("--at", request.at,
                    "Snapshot nearest to TIME, in the unit that figures\n"

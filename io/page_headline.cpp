@@ -166,9 +166,10 @@ std::string soundness(const RunStatistics& s) {
     return fmt::format("All {} means are good for use, within their errors (95 %).", count);
   if (why.size() == count && std::count(why.begin(), why.end(), why.front()) == std::ssize(why))
     return fmt::format("No mean is good for use yet: {}.", why.front());
-  return fmt::format("{} of {} means are good for use, within their errors (95 %); the others say "
-                     "what they lack.",
-                     count - why.size(), count);
+  return fmt::format(
+      "{} of {} means are good for use, within their errors (95 %); the others say "
+      "what they lack.",
+      count - why.size(), count);
 }
 
 std::vector<Figure> march_figures(const SavedRun& run, const RunStatistics& s) {

@@ -61,16 +61,16 @@ for (const box of document.querySelectorAll(".scroll"))
   if (!box.hasAttribute("tabindex"))
     for (const [name, value] of [["tabindex", "0"], ["role", "region"], ["aria-label", box.dataset.label]]) box.setAttribute(name, value);
 
-/* --- print: light, two charts side by side. What is drawn anew while the browser prints stays blank, so the charts are
-   scaled as they stand, and those drawn for a dark page are turned over. ------------------------------------------------- */
+/* --- print: light. What is drawn anew while the browser prints stays blank, so the charts stay as they stand, smaller where
+   they are wider than half the page, and those drawn for a dark page are turned over. ----------------------------------- */
 const paper = matchMedia("print");
-const chartOnPaper = 345;  // px: 9.1 cm
+const chartOnPaper = 504;  // px, as page.css has it
 const printing = (yes) => {
   for (const c of charts) {
     if (!c.graph) continue;
-    const width = c.graph.size().width;  // the box may have the paper's already
+    const width = c.graph.size().width;
     c.box.style.width = yes ? width + "px" : "";
-    c.box.style.zoom = yes ? Math.min(1, chartOnPaper / width) : "";
+    c.box.style.zoom = yes && width > chartOnPaper ? chartOnPaper / width : "";
   }
   root.classList.toggle("turned", yes && root.dataset.theme === "dark");
   root.dataset.theme = yes ? "light" : theme();

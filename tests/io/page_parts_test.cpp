@@ -4,6 +4,7 @@
 #include <cmath>
 #include <limits>
 
+#include "io/case_file.hpp"
 #include "io/grey_image.hpp"
 #include "io/json.hpp"
 #include "io/page_fields.hpp"
@@ -31,8 +32,8 @@ TEST(Json, NoTextLeavesTheScriptElement) {
 TEST(Json, WhatIsNoUtf8IsReplaced) {
   EXPECT_EQ(json::text("Ä°κ😀"), "\"Ä°κ😀\"");
   EXPECT_EQ(json::text("a\xFFz"), R"("a\ufffdz")");
-  EXPECT_EQ(json::text("\xC3"), R"("\ufffd")");                  // cut short
-  EXPECT_EQ(json::text("\xC0\xAF"), R"("\ufffd\ufffd")");        // overlong
+  EXPECT_EQ(json::text("\xC3"), R"("\ufffd")");                      // cut short
+  EXPECT_EQ(json::text("\xC0\xAF"), R"("\ufffd\ufffd")");            // overlong
   EXPECT_EQ(json::text("\xED\xA0\x80"), R"("\ufffd\ufffd\ufffd")");  // a surrogate
 }
 
@@ -51,7 +52,8 @@ TEST(Json, PartsArePutTogether) {
 
 TEST(Thinning, KeepsEveryExtremeOfItsStretch) {
   std::vector<double> values(10000);
-  for (std::size_t k = 0; k < values.size(); ++k) values[k] = std::sin(0.01 * static_cast<double>(k));
+  for (std::size_t k = 0; k < values.size(); ++k)
+    values[k] = std::sin(0.01 * static_cast<double>(k));
   values[4321] = 9;
   values[8765] = -9;
   const auto rows = rows_to_draw(values, 400);
@@ -89,10 +91,17 @@ TEST(GreyImage, IsAPngAndBase64IsTheStandards) {
   EXPECT_EQ(png.substr(16, 10), std::string("\0\0\0\3\0\0\0\2\x08\0", 10));  // 3 x 2, 8 bits, grey
 }
 
+Grid grid(int radial, int lateral) {
+  Grid g;
+  g.radial = radial;
+  g.lateral = lateral;
+  return g;
+}
+
 TEST(PageFields, BlocksFitTheBudgetAndKeepTheMean) {
-  EXPECT_EQ(page::block_factor({64, 384}, 49152), 1);
-  EXPECT_EQ(page::block_factor({256, 1536}, 49152), 3);
-  EXPECT_THAT(page::block_means({1, 2, 3, 4, 5, 6}, {3, 2}, 2), ElementsAre(3, 4.5));
+  EXPECT_EQ(page::block_factor(grid(64, 384), 49152), 1);
+  EXPECT_EQ(page::block_factor(grid(256, 1536), 49152), 3);
+  EXPECT_THAT(page::block_means({1, 2, 3, 4, 5, 6}, grid(3, 2), 2), ElementsAre(3, 4.5));
   EXPECT_THAT(page::every_face({0, 1, 2, 3, 4, 5}, 2), ElementsAre(0, 2, 4, 5));
 }
 
@@ -134,14 +143,15 @@ TEST(PageHealth, JudgesAtTheThresholds) {
 
 TEST(TomlSections, ReadRecordsAndSayWhatIsDamaged) {
   const auto all = toml_sections(
-      "end = \"steady\"\nradial = 32\nx = 1.5\n[[session]]\nhost = \"h\"\nlibrary.vtk = \"9\"\n", "f");
+      "end = \"steady\"\nradial = 32\nx = 1.5\n[[session]]\nhost = \"h\"\nlibrary.vtk = \"9\"\n",
+      "f");
   ASSERT_EQ(all.size(), 2u);
   EXPECT_EQ(all[0]["end"], "steady");
   EXPECT_EQ(all[0].number("radial"), 32);
   EXPECT_EQ(all[0].number("x"), 1.5);
   EXPECT_TRUE(std::isnan(all[0].number("end")));
   EXPECT_EQ(all[1]["library.vtk"], "9");
-  EXPECT_THAT(test::message_of([] { toml_sections("a = \n", "summary.toml"); }),
+  EXPECT_THAT(test::message_of<InputError>([] { toml_sections("a = \n", "summary.toml"); }),
               HasSubstr("summary.toml:1"));
 }
 
