@@ -5,9 +5,10 @@ find_file(DYGRAPHS_NOTICE copyright PATHS /usr/share/doc/libjs-dygraphs NO_DEFAU
 
 function(lidwright_page_assets source)
   set(page ${CMAKE_SOURCE_DIR}/io/page)
+  file(GLOB own CONFIGURE_DEPENDS ${page}/*)
   set_source_files_properties(${source} PROPERTIES
     COMPILE_DEFINITIONS
       "LIDWRIGHT_PAGE=\"${page}\";LIDWRIGHT_CHARTS=\"${DYGRAPHS}\";LIDWRIGHT_CHARTS_NOTICE=\"${DYGRAPHS_NOTICE}\""
     OBJECT_DEPENDS
-      "${page}/page.html;${page}/page.css;${page}/page.js;${DYGRAPHS}/dygraph.min.js;${DYGRAPHS}/dygraph.min.css;${DYGRAPHS_NOTICE}")
+      "${own};${DYGRAPHS}/dygraph.min.js;${DYGRAPHS}/dygraph.min.css;${DYGRAPHS_NOTICE}")
 endfunction()

@@ -243,7 +243,7 @@ std::string page_of(const SavedRun& run, const PageState& state) {
     if (name == "style") return charts_style() + std::string(style());
     if (name == "charts") return charts_script();
     if (name == "notice") return std::string(charts_notice());
-    if (name == "script") return std::string(script());
+    if (name == "script") return script();
     return data_of(run, state);
   });
 }

@@ -9,7 +9,7 @@ namespace lidwright::page {
 
 std::string_view skeleton();       ///< io/page/page.html
 std::string_view style();          ///< io/page/page.css
-std::string_view script();         ///< io/page/page.js
+std::string script();              ///< the scripts of io/page/, in the order they need
 std::string charts_style();        ///< without the name of its map, which no page has
 std::string charts_script();       ///< the same
 std::string_view charts_notice();  ///< copyright and licence

@@ -6,7 +6,6 @@
 #include <cmath>
 #include <numeric>
 
-#include "io/colour_map.hpp"
 #include "io/grey_image.hpp"
 #include "io/json.hpp"
 #include "io/page_words.hpp"
@@ -89,8 +88,8 @@ std::string marks(const Layers& l, const std::optional<InBody>& in) {
     const double plain = l.logarithmic ? std::pow(10.0, value) : value;
     all.push_back(
         json::object({{"at", json::number(share)},
-                      {"words", json::text(digits(plain, 3))},
-                      {"body", json::text(in ? digits(in->scale * plain + in->offset, 4) : "")}}));
+                      {"words", json::text(compact(plain, 3))},
+                      {"body", json::text(in ? compact(in->scale * plain + in->offset, 4) : "")}}));
   }
   return json::list(all);
 }
@@ -115,6 +114,7 @@ std::string layer_json(const Layers& l, const SavedRun& run, int rows, int colum
                        {"log", json::truth(l.logarithmic)},
                        {"low", json::number(r.low, 9)},
                        {"high", json::number(r.high, 9)},
+                       {"colours", colours_json(l.logarithmic ? ColourMap::Cool : ColourMap::Warm)},
                        {"marks", marks(l, in)},
                        {"images", images(l, rows, columns)}});
 }
@@ -154,7 +154,6 @@ std::string all_json(const SavedRun& run, const std::vector<std::size_t>& snapsh
                        {"total", json::number(static_cast<double>(run.snapshots.size()))},
                        {"factor", json::number(factor)},
                        {"geometry", geometry_json(run.settings.model.shell, grid, factor)},
-                       {"colours", colours_json()},
                        {"layers", json::list(layer_texts)}});
 }
 
@@ -193,10 +192,10 @@ std::vector<double> every_face(const std::vector<double>& faces, int factor) {
   return kept;
 }
 
-std::string colours_json() {
+std::string colours_json(ColourMap map) {
   std::vector<std::string> all;
   for (int k = 0; k < 256; ++k) {
-    const Colour c = colour_at(k / 255.0);
+    const Colour c = colour_at(k / 255.0, map);
     const auto byte = [](double x) { return static_cast<int>(std::lround(255 * x)); };
     all.push_back(fmt::format("{}", byte(c.red) << 16 | byte(c.green) << 8 | byte(c.blue)));
   }

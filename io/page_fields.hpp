@@ -4,6 +4,7 @@
 #include <string>
 #include <vector>
 
+#include "io/colour_map.hpp"
 #include "io/run_reader.hpp"
 
 /// The fields of a run for a page: a few snapshots, each a grey image with a pixel a cell (or a
@@ -32,7 +33,7 @@ struct Frames {
 /// `label`: what stands under the slider at a snapshot. Throws InputError as read_fields does.
 Frames frames_of(const SavedRun&, const std::vector<std::string>& labels, const ImageBudget&);
 
-/// The colours of the fields as 256 numbers 0xRRGGBB; JSON.
-std::string colours_json();
+/// The colours of a field as 256 numbers 0xRRGGBB; JSON.
+std::string colours_json(ColourMap);
 
 }  // namespace lidwright::page

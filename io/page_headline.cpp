@@ -26,13 +26,13 @@ struct Asked {
 };
 
 constexpr std::array<Asked, 8> asked{{
-    {"heat_flow_outer", "Heat flux through the surface", "k DeltaT/d", 1},
-    {"heat_flow_inner", "Heat flux out of the core", "k DeltaT/d", -1},
-    {"nusselt_outer", "Surface Nusselt number", "1"},
-    {"nusselt_inner", "Core Nusselt number", "1"},
+    {"heat_flow_outer", "Heat flux, outer wall", "k DeltaT/d", 1},
+    {"heat_flow_inner", "Heat flux, inner wall", "k DeltaT/d", -1},
+    {"nusselt_outer", "Nusselt number, outer wall", "1"},
+    {"nusselt_inner", "Nusselt number, inner wall", "1"},
     {"velocity_rms", "Rms velocity", "kappa/d"},
     {"temperature_mean", "Mean temperature", "DeltaT", 0, true},
-    {"lid_thickness_velocity", "Thickness of the lid", "d"},
+    {"lid_thickness_velocity", "Lid thickness, by velocity", "d"},
     {"mobility", "Mobility", "1"},
 }};
 
@@ -68,11 +68,6 @@ std::string body_json(const Figure& f, const std::optional<Body>& body) {
   const auto in = body ? in_body(f.unit, *body, f.absolute) : std::nullopt;
   if (!in || !std::isfinite(f.value)) return "null";
   return stated_json(in->scale * f.value + in->offset, in->scale * f.error, in->unit);
-}
-
-bool one_reason(const std::vector<Reason>& all) {
-  return std::all_of(all.begin(), all.end(),
-                     [&](const Reason& r) { return r.words == all.front().words; });
 }
 
 std::string shares_text(const RegimeVerdict& v) {
@@ -159,22 +154,22 @@ Verdict march_verdict(const RunStatistics& s, bool running) {
 }
 
 std::string soundness(const RunStatistics& s) {
-  std::vector<Reason> missing;
+  std::vector<std::string> why;
   std::size_t count = 0;
   for (const Asked& a : asked) {
     const NamedSummary* r = s.find(a.column);
     if (!r) continue;
     ++count;
-    if (!r->record.enough()) missing.push_back({a.label, r->record.words});
+    if (!r->record.enough()) why.push_back(r->record.words);
   }
-  if (missing.empty())
+  if (why.empty())
     return fmt::format("All {} means are good for use, within their errors (95 %).", count);
-  if (missing.size() == count && one_reason(missing))
-    return fmt::format("No mean is good for use yet: {}.", missing.front().words);
-  if (missing.size() == count)
-    return fmt::format("No mean is good for use yet: {}.", joined(missing));
-  return fmt::format("{} of {} means are good for use, within their errors (95 %). Not: {}.",
-                     count - missing.size(), count, joined(missing));
+  if (why.size() == count && std::count(why.begin(), why.end(), why.front()) == std::ssize(why))
+    return fmt::format("No mean is good for use yet: {}.", why.front());
+  return fmt::format(
+      "{} of {} means are good for use, within their errors (95 %); the others say "
+      "what they lack.",
+      count - why.size(), count);
 }
 
 std::vector<Figure> march_figures(const SavedRun& run, const RunStatistics& s) {
@@ -191,8 +186,8 @@ std::vector<Figure> march_figures(const SavedRun& run, const RunStatistics& s) {
 Verdict settle_verdict(const TomlSection& summary) {
   if (!summary["key"].empty())
     return {fmt::format("{} steady states along {}", summary["points"], summary["key"]),
-            fmt::format("The walk along the branch: {}. {} states stand at values that were asked "
-                        "for.",
+            fmt::format("Walk along the branch: {}. {} of the states stand at values that were "
+                        "asked for, the others on the way.",
                         summary["end"], summary["asked_for"]),
             {},
             summary["end"] == "complete" ? Tone::Good : Tone::Doubtful};
@@ -238,7 +233,7 @@ std::vector<Figure> branch_figures(const NumberTable& branch, const TomlSection&
   if (!parameter || parameter->empty()) return figures;
   for (const bool last : {false, true})
     for (const auto& [name, label, of] :
-         {std::tuple{"nusselt_outer", "Surface Nusselt number", "1"},
+         {std::tuple{"nusselt_outer", "Nusselt number, outer wall", "1"},
           std::tuple{"velocity_rms", "Rms velocity", "kappa/d"}})
       if (const auto* column = branch.find(name))
         figures.push_back({label, last ? column->back() : column->front(), unknown, of, false,
@@ -274,12 +269,12 @@ Verdict onset_verdict(const TomlSection& summary) {
 }
 
 std::vector<Figure> onset_figures(const TomlSection& s) {
-  const double error = s.number("critical_rayleigh_error");
+  const double bar = s.number("critical_rayleigh_error"), error = bar > 0 ? bar : unknown;
   return {{"Critical Rayleigh number", s.number("critical_rayleigh"), error, "1", false,
            error > 0 ? "" : "no error bar was asked for", true},
           {"Rayleigh number over the critical one", s.number("times_critical"), unknown, "1", false,
            "", true},
-          {"Critical mode", s.number("critical_mode"), unknown, "1", false,
+          {"Critical mode", s.number("critical_mode"), 0, "1", false,
            "whole waves along a periodic shell, half waves between reflecting sides", true},
           {"Critical wavelength", s.number("critical_wavelength"), unknown, "d", false,
            "at mid-depth", true}};

@@ -6,6 +6,7 @@
 #include <sstream>
 
 #include "io/csv_table.hpp"
+#include "io/figure_words.hpp"
 #include "io/history.hpp"
 #include "io/json.hpp"
 #include "io/page_words.hpp"
@@ -79,6 +80,7 @@ std::string column_json(const HistoryTable& t, std::size_t k, const Drawn& d,
                                     [&](double v) { return v == t.columns[k].front(); });
   const std::vector<double> values = values_at(t.columns[k], d.of_column[k]);
   return json::object({{"name", json::text(t.names[k])},
+                       {"label", json::text(column_words(t.names[k]))},
                        {"unit", json::text(unit(t.units[k]))},
                        {"meaning", json::text(meaning_of(t.names[k]))},
                        {"steps", steps_among(d.rows, d.of_column[k])},
@@ -89,6 +91,7 @@ std::string column_json(const HistoryTable& t, std::size_t k, const Drawn& d,
 
 std::string column_of_numbers(const NumberTable& t, std::size_t k, int digits) {
   return json::object({{"name", json::text(t.names[k])},
+                       {"label", json::text(column_words(t.names[k]))},
                        {"unit", json::text(unit(t.units[k]))},
                        {"values", json::numbers(t.columns[k], digits)}});
 }

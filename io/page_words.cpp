@@ -65,6 +65,7 @@ std::string compact(double value, int count) {
 
 Stated stated(double value, double error) {
   if (!std::isfinite(value)) return {"not defined", ""};
+  if (error == 0) return {compact(value), ""};
   if (!(error > 0) || !std::isfinite(error)) return {digits(value), ""};
   // One digit more when the first is a 1, where one alone would be coarse.
   const std::string two = fmt::format("{:.1e}", error);
@@ -108,10 +109,10 @@ std::optional<InBody> in_body(const std::string& of_a_table, const Body& body, b
 }
 
 std::string time_words(double time, const std::optional<Body>& body) {
-  const std::string text = fmt::format("time {} d²/κ", digits(time));
+  const std::string text = fmt::format("time {} d²/κ", compact(time, 4));
   if (!body) return text;
   const InBody in = *in_body("d^2/kappa", *body);
-  return fmt::format("{}, {} {}", text, digits(in.scale * time), in.unit);
+  return fmt::format("{}, {} {}", text, compact(in.scale * time, 4), in.unit);
 }
 
 }  // namespace lidwright::page

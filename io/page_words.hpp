@@ -9,7 +9,8 @@
 namespace lidwright::page {
 
 /// A number to as many digits as its error leaves: "12.34" and "0.05"; to four digits and an empty
-/// error when the error is not known (nan). "not defined" for what is not finite.
+/// error when the error is not known (nan); an error of 0 stands for an exact number. "not defined"
+/// for what is not finite.
 struct Stated {
   std::string value, error;
 };

@@ -140,6 +140,23 @@ def comes_back(page, path):
     assert page.evaluate("document.querySelectorAll('#panels .panel').length") == columns
 
 
+def reads_itself_anew(page, path):
+    """While the run goes on; what the reader has set stays."""
+    text, going = runs.read(path), path.replace("report.html", "going.html")
+    assert '"running":false,"reload":0' in text
+    with open(going, "w", encoding="utf-8") as file:
+        file.write(text.replace('"running":false,"reload":0', '"running":true,"reload":1'))
+    page.open(going)
+    assert not page.evaluate("document.getElementById('running').hidden")
+    page.evaluate("document.getElementById('slider').focus()")
+    page.key("Home")
+    page.wait_for_load(page.loads)
+    page.until("document.documentElement.dataset.ready === 'yes'")
+    assert page.evaluate("document.getElementById('slider').value") == "0"
+    page.open(path)
+    page.requests = [url for url in page.requests if not url.endswith("/going.html")]
+
+
 with runs.Scratch() as scratch, Browser() as browser:
     case = runs.LID.replace("a small stagnant lid", json.dumps(TITLE, ensure_ascii=False)[1:-1])
     short = runs.settings(march__most_steps=60, output__snapshot_every=4e-4, output__report="true")
@@ -147,7 +164,7 @@ with runs.Scratch() as scratch, Browser() as browser:
     report = scratch.path("run", "report.html")
     assert os.path.getsize(report) < 3e6
     browser.width(1200)
-    for check in (opens, slider, field_values, cursor, zoom, logarithmic, themes, narrow, comes_back):
+    for check in (opens, slider, field_values, cursor, zoom, logarithmic, themes, narrow, comes_back, reads_itself_anew):
         check(browser, report)
         browser.expect_no_errors()
         print(f"{check.__name__}: fine", flush=True)

@@ -142,7 +142,7 @@ class Browser:
     def width(self, pixels, height=900):
         self.send("Emulation.setDeviceMetricsOverride", width=pixels, height=height, deviceScaleFactor=1, mobile=False)
 
-    def prefers(self, scheme, media="screen"):
+    def prefers(self, scheme, media=""):
         self.send("Emulation.setEmulatedMedia", media=media, features=[{"name": "prefers-color-scheme", "value": scheme}])
 
     def place(self, selector, across=0.5, down=0.5):
