@@ -27,8 +27,8 @@ std::vector<std::string> options_of(const VerbEntry& verb) {
 std::string no_verb(const ProgramEntry& program, const std::string& word) {
   const std::vector<std::string> verbs = verbs_of(program);
   if (word.empty()) return fmt::format("name a verb: {}", fmt::join(verbs, ", "));
-  return fmt::format("'{}' is not a verb of this program ({}){}", word, fmt::join(verbs, ", "),
-                     case_text::nearest(word, verbs));
+  return fmt::format("'{}' is not a verb of this program{}; it has {}", word,
+                     case_text::nearest(word, verbs), fmt::join(verbs, ", "));
 }
 
 /// Words that fit nowhere; the library hands them out last first.
@@ -70,7 +70,7 @@ std::string not_together(const std::string& what, const std::string& verb, const
 
 std::string of_verb(CLI::App& app, const VerbEntry& verb, const CLI::ParseError& e) {
   const std::string kind = e.get_name(), what = e.what();
-  if (kind == "ExtrasError") return too_many(verb, app.remaining(true));
+  if (dynamic_cast<const CLI::ExtrasError*>(&e)) return too_many(verb, app.remaining(true));
   if (kind == "ArgumentMismatch") return wrong_count(verb, what);
   if (kind == "ConversionError") return not_a_number(what);
   if (kind == "ExcludesError") return not_together(what, verb.name, "does not go with");

@@ -7,7 +7,8 @@ function(lidwright_papers program folder)
   set(texts ${CMAKE_SOURCE_DIR}/LICENSE ${CMAKE_SOURCE_DIR}/CHANGELOG.md)
   add_custom_command(OUTPUT ${stamp} DEPENDS ${program} ${texts} ${CMAKE_CURRENT_FUNCTION_LIST_FILE}
     COMMAND ${CMAKE_COMMAND} -D PROGRAM=$<TARGET_FILE:${program}> -D FOLDER=${folder}
-            -D SOURCE=${CMAKE_SOURCE_DIR} -D "NOTICE=${DYGRAPHS_NOTICE}" -P ${CMAKE_CURRENT_FUNCTION_LIST_FILE}
+            -D SOURCE=${CMAKE_SOURCE_DIR} -D VERSION=${PROJECT_VERSION}-${CPACK_DEBIAN_PACKAGE_RELEASE}
+            -D "MAINTAINER=${CPACK_DEBIAN_PACKAGE_MAINTAINER}" -D "NOTICE=${DYGRAPHS_NOTICE}" -P ${CMAKE_CURRENT_FUNCTION_LIST_FILE}
     COMMENT "Printing manual pages and completions" VERBATIM)
   add_custom_target(papers ALL DEPENDS ${stamp})
 endfunction()
@@ -49,4 +50,13 @@ endif()
 file(WRITE ${FOLDER}/copyright "${copyright}")
 configure_file(${SOURCE}/CHANGELOG.md ${FOLDER}/changelog COPYONLY)
 compress(changelog)
+set(date "Thu, 01 Jan 1970 00:00:00 +0000")   # of a source without history
+execute_process(COMMAND git log -1 --format=%cD WORKING_DIRECTORY ${SOURCE} OUTPUT_VARIABLE found RESULT_VARIABLE code
+                OUTPUT_STRIP_TRAILING_WHITESPACE ERROR_QUIET)
+if(code STREQUAL 0 AND found)
+  set(date ${found})
+endif()
+file(WRITE ${FOLDER}/changelog.Debian
+  "lidwright (${VERSION}) bookworm; urgency=medium\n\n  * What is new: changelog.gz.\n\n -- ${MAINTAINER}  ${date}\n")
+compress(changelog.Debian)
 file(TOUCH ${FOLDER}/made)

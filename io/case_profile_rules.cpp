@@ -137,16 +137,16 @@ void check_surface_given(const Draft& draft, const Entries& entries) {
   const auto& of_arrhenius = draft.arrhenius_surface;
   if (draft.compressible() && !of_numbers)
     refuse(entries.place("numbers"),
-           "numbers.surface_temperature is missing and has no default: give number (absolute "
+           "numbers.surface_temperature is missing and has no default; give number (absolute "
            "temperature where T = 0, in units of the temperature drop)");
   if (draft.diffusion.has_arrhenius && !of_numbers && !of_arrhenius)
     refuse(entries.place("viscosity.arrhenius"),
-           "viscosity.arrhenius.surface_temperature is missing and has no default: give number "
+           "viscosity.arrhenius.surface_temperature is missing and has no default; give number "
            "(absolute temperature where T = 0, in units of the temperature drop)");
   if (draft.any_arrhenius() && !of_numbers && !of_arrhenius)
     refuse(entries.place("viscosity.dislocation.arrhenius"),
            "numbers.surface_temperature is missing and has no default, and [viscosity.arrhenius] "
-           "does not say it either: give number (absolute temperature where T = 0, in units of the "
+           "does not say it either; give number (absolute temperature where T = 0, in units of the "
            "temperature drop)");
   if (of_numbers && of_arrhenius && *of_numbers != *of_arrhenius)
     refuse(entries.place("viscosity.arrhenius.surface_temperature"),

@@ -8,25 +8,31 @@ namespace {
 
 void check_bounds(const Draft& draft, const Entries& entries) {
   if (draft.highest_viscosity && *draft.highest_viscosity < draft.made.model.viscosity.lowest)
-    refuse(entries.place("viscosity.highest"),
-           "viscosity.highest is less than viscosity.lowest; the upper cut-off must be the larger");
+    refuse(
+        entries.place("viscosity.highest"),
+        "viscosity.highest: is less than viscosity.lowest; the upper cut-off must be the larger");
 }
 
 void check_unity(const ProductDraft& product, const std::string& table, const Draft& draft,
                  const Entries& entries) {
   const std::string path = table + ".arrhenius.unity_at";
   if (product.has_arrhenius && product.arrhenius.unity_at + draft.absolute_surface() <= 0)
-    refuse(entries.place(path), path + " must be above absolute zero");
+    refuse(
+        entries.place(path),
+        path + ": must be above absolute zero, where an Arrhenius viscosity is infinite; raise it");
 }
 
 void check_walls_warm(const Draft& draft, const Entries& entries) {
   const double offset = draft.absolute_surface();
   for (const WallDraft* wall : {&draft.inner, &draft.outer})
     if (wall->temperature && *wall->temperature + offset <= 0)
-      refuse(entries.place(wall == &draft.inner ? "walls.inner.temperature"
-                                                : "walls.outer.temperature"),
-             "the wall's temperature must be above absolute zero, where an Arrhenius viscosity is "
-             "infinite; raise it or the absolute surface temperature");
+      refuse(
+          entries.place(wall == &draft.inner ? "walls.inner.temperature"
+                                             : "walls.outer.temperature"),
+          fmt::format(
+              "walls.{}.temperature: must be above absolute zero, where an Arrhenius viscosity is "
+              "infinite; raise it or the absolute surface temperature",
+              wall == &draft.inner ? "inner" : "outer"));
 }
 
 /// Its single keys are refused where they are read; an Arrhenius or exponential table is not.

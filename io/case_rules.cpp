@@ -103,7 +103,7 @@ void check_steps(const Draft& draft, const Entries& entries) {
   const HeatSettings& heat = draft.made.heat;
   if (heat.first_step > heat.largest_step)
     refuse(entries.place("transport.first_step"),
-           "transport.first_step is longer than transport.largest_step; make it at most as long");
+           "transport.first_step: is longer than transport.largest_step; make it at most as long");
 }
 
 /// Each name a column whose mean says something.

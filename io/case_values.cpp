@@ -110,7 +110,7 @@ Given given_of(const Key& key, const std::string& path, const Entry& entry, cons
 
 [[noreturn]] void refuse_missing(const Key& key, const std::string& path,
                                  const std::string& place) {
-  refuse(place, fmt::format("{} is missing and has no default: give {} ({})", path, type_text(key),
+  refuse(place, fmt::format("{} is missing and has no default; give {} ({})", path, type_text(key),
                             key.help));
 }
 

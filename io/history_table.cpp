@@ -17,7 +17,8 @@ constexpr std::string_view mark = "# lidwright history\n";
 
 HistoryTable parse_history(const std::string& text, const std::string& path) {
   if (!text.starts_with(mark))
-    throw InputError(fmt::format("{}: not the history of a run of this program", path));
+    throw InputError(fmt::format(
+        "{}: is not the history of a run of this program; name the folder of a march", path));
   HistoryTable t = parse_numbers(text, path);
   column_of(t, "time", path);
   return t;

@@ -29,7 +29,9 @@ class Gathered {
     const PieceExtent e = p.extent;
     if (p.radial_cells != geometry_.radial_cells() || e.first_column != next_column_ ||
         e.last_column > geometry_.lateral_cells())
-      throw InputError(fmt::format("{}: does not fit the grid of case_as_read.toml", path_));
+      throw InputError(fmt::format(
+          "{}: does not fit the grid of case_as_read.toml; files of two runs are mixed, march anew",
+          path_));
     next_column_ = e.last_column;
     copy_cells(p, "temperature", fields_.temperature);
     copy_cells(p, "viscosity", fields_.viscosity);
@@ -47,7 +49,8 @@ class Gathered {
                                    const std::string& name, std::size_t size) const {
     const auto found = arrays.find(name);
     if (found == arrays.end() || found->second.size() != size)
-      throw InputError(fmt::format("{}: a piece has no whole array '{}'", path_, name));
+      throw InputError(fmt::format(
+          "{}: a piece has no whole array '{}'; the file was changed or damaged", path_, name));
     return found->second;
   }
   std::size_t cells_of(const GridPiece& p) const {
@@ -121,7 +124,8 @@ std::vector<GridPiece> pieces_at(const std::string& path) {
   std::vector<GridPiece> pieces;
   for (const std::string& file : pieces_listed(text_of(path)))
     pieces.push_back(piece_at(fs::path(path).parent_path() / file));
-  if (pieces.empty()) throw InputError(fmt::format("{}: lists no pieces", path));
+  if (pieces.empty())
+    throw InputError(fmt::format("{}: lists no pieces; the file was changed or damaged", path));
   return pieces;
 }
 

@@ -75,3 +75,29 @@ help_texts()
 version()
 keys()
 several_ranks_speak_once()
+
+
+def wrong_lines():
+    """Each in the form of all messages: what it is about, what is wrong, what to do; then where to read on."""
+    for line, message in (
+        ("", "name a verb: check, march"),
+        ("marhc", "'marhc' is not a verb of this program (did you mean 'march'?); it has check, march"),
+        ("march --overwirte", "--overwirte: is no option of march (did you mean '--overwrite'?)"),
+        ("march a b", "b: is one argument too many; the usage is: lidwright march CASE [OPTIONS], or --resume"),
+        ("march --set", "--set: a value is missing; give --set TABLE.KEY=VALUE"),
+        ("march --into a --into b c", "--into: is given more than once; give it once"),
+        ("march a --resume b", "march: CASE does not go with --resume"),
+        ("march a --resume-from-previous", "march: --resume-from-previous needs --resume"),
+        ("report a --every soon", "--every soon: must be a number"),
+        ("figure a --format gif", "--format: must be png, svg or pdf, not 'gif'"),
+        ("figure a --with lid,arows", "--with: must be flow-lines, arrows, lid or isotherms, not 'arows' (did you mean 'arrows'?)"),
+        ("completions", "completions: name a shell"),
+        ("manual marhc", "VERB: must be "),
+    ):
+        result = runs.expect(runs.run(*line.split()), runs.BAD_INPUT)
+        assert result.err.startswith("lidwright: " + message), (line, result)
+        verb = line.split()[0] if line and not line.startswith("marhc") else ""
+        assert result.err.endswith(f"; see `lidwright {verb + ' ' if verb else ''}--help`\n"), (line, result)
+
+
+wrong_lines()

@@ -127,7 +127,7 @@ def bad_input(scratch):
         (text[: text.index("\n0,") + 1], ["too short", "0 rows"]),
         (text.replace("velocity_rms_outer,", "something,"), ["no column 'velocity_rms_outer'"]),
         (text.replace("\n7,", "\n7"), ["history.csv:", "row of"]),
-        ("", ["not the history"]),
+        ("", ["is not the history"]),
     ):
         with open(path, "w", encoding="utf-8") as file:
             file.write(spoilt)

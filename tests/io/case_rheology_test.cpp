@@ -312,7 +312,7 @@ TEST(BadRheology, DislocationCreepAgainstTheRest) {
       {creep + energy + "unity_at = -0.5\n",
        {"numbers.surface_temperature=0.5"},
        "c.toml:20:1",
-       "viscosity.dislocation.arrhenius.unity_at must be above absolute zero"},
+       "viscosity.dislocation.arrhenius.unity_at: must be above absolute zero"},
       {creep + energy,
        {"numbers.surface_temperature=0.5", "walls.outer.temperature=-0.5"},
        "--set 2",

@@ -55,7 +55,7 @@ TEST(HistoryTable, RefusesWhatIsNone) {
   const auto complaint = [](const std::string& text) {
     return message_of<InputError>([&] { parse_history(text, "run/history.csv"); });
   };
-  EXPECT_THAT(complaint("time,b\n0,1\n"), HasSubstr("run/history.csv: not the history"));
+  EXPECT_THAT(complaint("time,b\n0,1\n"), HasSubstr("run/history.csv: is not the history"));
   EXPECT_THAT(complaint("# lidwright history\na,b\n0,1\n"), HasSubstr("no column 'time'"));
   EXPECT_THAT(complaint("# lidwright history\ntime,b\n0,1\n0.5\n1,2\n"),
               AllOf(HasSubstr("run/history.csv:4:"), HasSubstr("row of 2 numbers")));
