@@ -30,8 +30,8 @@ SavedRun open_run(const std::string& folder);
 /// index fastest. Float32 precision, as the files have it.
 struct SavedFields {
   double time = 0;
-  std::vector<double> temperature, viscosity, strain_rate;         ///< cells
-  std::vector<double> velocity_radial, velocity_lateral;           ///< cell middles
+  std::vector<double> temperature, viscosity, strain_rate;  ///< cells
+  std::vector<double> velocity_radial, velocity_lateral;    ///< cell middles
   std::vector<double> stream_function;  ///< corners; on a full circle without the repeated column
 };
 

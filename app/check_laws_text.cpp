@@ -1,0 +1,79 @@
+#include <fmt/format.h>
+
+#include "app/check_text.hpp"
+
+namespace lidwright {
+namespace {
+
+std::string law_line(const LawResult& law) {
+  const std::string number =
+      brief(law.low) == brief(law.high) ? brief(law.low) : brief(law.low) + " - " + brief(law.high);
+  std::string text = fmt::format("  {:<13} {}\n", number, law.name);
+  text += fmt::format("  {:<13} for: {}\n", "", law.range);
+  if (!law.outside.empty()) text += fmt::format("  {:<13} here: {}\n", "", law.outside);
+  return text;
+}
+
+const char* name_of(LayerPlace place) {
+  switch (place) {
+    case LayerPlace::Surface:
+      return "below the surface";
+    case LayerPlace::BelowLid:
+      return "below the lid";
+    case LayerPlace::InnerWall:
+      return "at the inner wall";
+  }
+  return "";
+}
+
+std::string in_kilometres(const CheckFindings& f, double length) {
+  return f.c.body ? fmt::format(" ({} km)", brief(length * thickness(*f.c.body) / 1000)) : "";
+}
+
+std::string advice(const CheckFindings& f) {
+  const Grid& now = f.c.model.grid;
+  if (!f.finer)
+    return fmt::format("[grid] radial = {} suffices for {:.0f} cells a layer", now.radial,
+                       enough_cells);
+  const Grid& g = *f.finer;
+  std::string text =
+      fmt::format("{:.0f} cells a layer (common practice) take [grid]", enough_cells);
+  if (g.radial != now.radial)
+    text += fmt::format(" radial = {}, lateral = {},", g.radial, g.lateral);
+  if (g.radial_grading.first != now.radial_grading.first)
+    text += fmt::format(" inner_refinement = {},", g.radial_grading.first);
+  if (g.radial_grading.last != now.radial_grading.last)
+    text += fmt::format(" outer_refinement = {},", g.radial_grading.last);
+  text.back() = '.';
+  return text;
+}
+
+}  // namespace
+
+std::string laws_text(const CheckFindings& f) {
+  if (!f.prediction.foretold()) return "";
+  std::string text = "\nPUBLISHED LAWS, Nusselt number of the outer wall in settled convection\n";
+  for (const LawResult& law : f.prediction.laws) text += law_line(law);
+  const HeatBalance& b = f.prediction.balance;
+  if (b.settling > 0)
+    text += check_line(
+        "middle of the spread",
+        fmt::format("interior at {} DeltaT{}; settles in about {} d^2/kappa", brief(b.interior),
+                    b.lid > 0
+                        ? fmt::format(", lid {} d thick{}", brief(b.lid), in_kilometres(f, b.lid))
+                        : "",
+                    brief(b.settling)));
+  return text;
+}
+
+std::string layers_text(const CheckFindings& f) {
+  if (f.layers.empty()) return "";
+  std::string text = "\nBOUNDARY LAYERS foreseen, on this grid\n";
+  for (const LayerOnGrid& l : f.layers)
+    text +=
+        check_line(name_of(l.place), fmt::format("{} d{}, {:.1f} cells across", brief(l.thickness),
+                                                 in_kilometres(f, l.thickness), l.cells));
+  return text + check_line("advice", advice(f));
+}
+
+}  // namespace lidwright
