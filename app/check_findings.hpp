@@ -28,6 +28,8 @@ struct CheckFindings {
   Pilot pilot;
   Trial trial;
   Forecast forecast;
+  /// Did others take so much of the machine that it matters?
+  bool crowded() const { return trial.crowding > 1.15; }
   double memory = 0, memory_largest = 0;  ///< bytes, of all ranks and of the largest
 };
 

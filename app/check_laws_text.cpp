@@ -6,8 +6,9 @@ namespace lidwright {
 namespace {
 
 std::string law_line(const LawResult& law) {
-  const std::string number =
-      brief(law.low) == brief(law.high) ? brief(law.low) : brief(law.low) + " - " + brief(law.high);
+  const std::string number = short_number(law.low) == short_number(law.high)
+                                 ? short_number(law.low)
+                                 : short_number(law.low) + " - " + short_number(law.high);
   std::string text = fmt::format("  {:<13} {}\n", number, law.name);
   text += fmt::format("  {:<13} for: {}\n", "", law.range);
   if (!law.outside.empty()) text += fmt::format("  {:<13} here: {}\n", "", law.outside);
@@ -27,7 +28,8 @@ const char* name_of(LayerPlace place) {
 }
 
 std::string in_kilometres(const CheckFindings& f, double length) {
-  return f.c.body ? fmt::format(" ({} km)", brief(length * thickness(*f.c.body) / 1000)) : "";
+  return f.c.body ? fmt::format(" ({} km)", short_number(length * thickness(*f.c.body) / 1000))
+                  : "";
 }
 
 std::string advice(const CheckFindings& f) {
@@ -56,13 +58,14 @@ std::string laws_text(const CheckFindings& f) {
   for (const LawResult& law : f.prediction.laws) text += law_line(law);
   const HeatBalance& b = f.prediction.balance;
   if (b.settling > 0)
-    text += check_line(
-        "middle of the spread",
-        fmt::format("interior at {} DeltaT{}; settles in about {} d^2/kappa", brief(b.interior),
-                    b.lid > 0
-                        ? fmt::format(", lid {} d thick{}", brief(b.lid), in_kilometres(f, b.lid))
-                        : "",
-                    brief(b.settling)));
+    text +=
+        check_line("middle of the spread",
+                   fmt::format("interior at {} DeltaT{}; settles in about {} d^2/kappa",
+                               short_number(b.interior),
+                               b.lid > 0 ? fmt::format(", lid {} d thick{}", short_number(b.lid),
+                                                       in_kilometres(f, b.lid))
+                                         : "",
+                               short_number(b.settling)));
   return text;
 }
 
@@ -70,9 +73,9 @@ std::string layers_text(const CheckFindings& f) {
   if (f.layers.empty()) return "";
   std::string text = "\nBOUNDARY LAYERS foreseen, on this grid\n";
   for (const LayerOnGrid& l : f.layers)
-    text +=
-        check_line(name_of(l.place), fmt::format("{} d{}, {:.1f} cells across", brief(l.thickness),
-                                                 in_kilometres(f, l.thickness), l.cells));
+    text += check_line(name_of(l.place),
+                       fmt::format("{} d{}, {:.1f} cells across", short_number(l.thickness),
+                                   in_kilometres(f, l.thickness), l.cells));
   return text + check_line("advice", advice(f));
 }
 

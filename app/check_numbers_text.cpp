@@ -11,38 +11,40 @@ std::string rayleigh_lines(const CheckFindings& f) {
   const DerivedNumbers& n = f.numbers;
   const ReferenceProfiles& r = f.c.model.reference;
   const bool uniform = r.expansivity.constant() && r.gravity.constant() && r.density.constant();
-  std::string text = check_line(
-      "Rayleigh number", fmt::format("{}, viscosity where the law gives 1{}", brief(n.reference),
-                                     uniform ? "" : "; properties where their profiles are 1"));
+  std::string text =
+      check_line("Rayleigh number",
+                 fmt::format("{}, viscosity where the law gives 1{}", short_number(n.reference),
+                             uniform ? "" : "; properties where their profiles are 1"));
   if (n.wall_contrast != 1 || n.depth_contrast != 1) {
     text += check_line("  at the walls", fmt::format("{} outer, {} inner, viscosity of each",
-                                                     brief(n.outer), brief(n.inner)));
+                                                     short_number(n.outer), short_number(n.inner)));
     text += check_line("  half way", fmt::format("{}, viscosity at mid-depth and the mean of the "
                                                  "walls' temperatures",
-                                                 brief(n.half)));
+                                                 short_number(n.half)));
     text += check_line("  at rest", fmt::format("{}, mean of ln(viscosity) over the shell in "
                                                 "conduction",
-                                                brief(n.at_rest)));
+                                                short_number(n.at_rest)));
   }
   if (f.prediction.balance.interior_rayleigh > 0)
     text += check_line("  of the interior",
                        fmt::format("{}, viscosity at {} DeltaT, as the laws below foresee it",
-                                   brief(f.prediction.balance.interior_rayleigh),
-                                   brief(f.prediction.balance.interior)));
+                                   short_number(f.prediction.balance.interior_rayleigh),
+                                   short_number(f.prediction.balance.interior)));
   if (std::isfinite(n.internal))
-    text += check_line("  Ra_Q, sources",
-                       n.internal == n.internal_half
-                           ? fmt::format("{}, rho alpha g H d^5/(kappa k eta)", brief(n.internal))
-                           : fmt::format("{}, rho alpha g H d^5/(kappa k eta), eta where the law "
-                                         "gives 1; {} half way",
-                                         brief(n.internal), brief(n.internal_half)));
+    text += check_line(
+        "  Ra_Q, sources",
+        n.internal == n.internal_half
+            ? fmt::format("{}, rho alpha g H d^5/(kappa k eta)", short_number(n.internal))
+            : fmt::format("{}, rho alpha g H d^5/(kappa k eta), eta where the law "
+                          "gives 1; {} half way",
+                          short_number(n.internal), short_number(n.internal_half)));
   return text;
 }
 
 std::string onset_line(const CheckFindings& f) {
   if (!std::isfinite(f.times_critical)) return check_line("onset", "not known: " + f.no_onset);
-  std::string text = fmt::format("Ra is {} times critical ({})", brief(f.times_critical),
-                                 brief(f.numbers.reference / f.times_critical));
+  std::string text = fmt::format("Ra is {} times critical ({})", short_number(f.times_critical),
+                                 short_number(f.numbers.reference / f.times_critical));
   if (f.c.model.nonlinear()) text += ", of the creep alone";
   return check_line("onset", text);
 }
@@ -54,13 +56,13 @@ std::string contrast_lines(const CheckFindings& f) {
       "viscosity contrast",
       fmt::format("{} by temperature, outer over inner wall at mid-depth; {} from wall to "
                   "wall, depth included",
-                  brief(n.thermal_contrast), brief(n.wall_contrast)));
+                  short_number(n.thermal_contrast), short_number(n.wall_contrast)));
   if (n.depth_contrast > 1.001)
-    text += check_line("  by depth alone", brief(n.depth_contrast) + ", largest over least");
+    text += check_line("  by depth alone", short_number(n.depth_contrast) + ", largest over least");
   return text + check_line("Frank-Kamenetskii",
                            fmt::format("theta = {}, ln of the contrast by temperature; {} by the "
                                        "slope at the inner wall",
-                                       brief(n.theta), brief(n.frank_kamenetskii)));
+                                       short_number(n.theta), short_number(n.frank_kamenetskii)));
 }
 
 /// A heat flow of the program in W or W/m^2 of the wall.
@@ -68,7 +70,8 @@ std::string flux_in_si(const CheckFindings& f, double flow, bool outer) {
   if (!f.c.body) return "";
   const auto g = make_geometry(f.c.model);
   const double area = g->wall_area(outer ? g->radial_cells() : 0);
-  return fmt::format(" ({} mW/m^2)", brief(1e3 * flow / area * scales_of(*f.c.body).heat_flux));
+  return fmt::format(" ({} mW/m^2)",
+                     short_number(1e3 * flow / area * scales_of(*f.c.body).heat_flux));
 }
 
 std::string heat_lines(const CheckFindings& f) {
@@ -76,15 +79,15 @@ std::string heat_lines(const CheckFindings& f) {
   const double unit = n.conductive_flow * (n.t_inner - n.t_outer);
   std::string text = check_line("conducted heat",
                                 fmt::format("{} k DeltaT d^(n-2) without sources{}, where Nu is 1",
-                                            brief(unit), flux_in_si(f, unit, true)));
+                                            short_number(unit), flux_in_si(f, unit, true)));
   if (n.source == 0) return text;
-  return text +
-         check_line(
-             "  with sources",
-             fmt::format("{} out{}, {} in from below, {} from sources; {} DeltaT at "
-                         "the hottest",
-                         brief(f.rest.heat_flow_outer), flux_in_si(f, f.rest.heat_flow_outer, true),
-                         brief(f.rest.heat_flow_inner), brief(n.source), brief(f.rest.hottest)));
+  return text + check_line("  with sources",
+                           fmt::format("{} out{}, {} in from below, {} from sources; {} DeltaT at "
+                                       "the hottest",
+                                       short_number(f.rest.heat_flow_outer),
+                                       flux_in_si(f, f.rest.heat_flow_outer, true),
+                                       short_number(f.rest.heat_flow_inner), short_number(n.source),
+                                       short_number(f.rest.hottest)));
 }
 
 std::string adiabat_line(const CheckFindings& f) {
@@ -93,25 +96,27 @@ std::string adiabat_line(const CheckFindings& f) {
   if (number == 0)
     return check_line("adiabatic rise",
                       fmt::format("left out, Boussinesq; the body's dissipation number is {}",
-                                  brief(dissipation_number(*f.c.body))));
-  return check_line(
-      "adiabatic rise",
-      fmt::format("Di = {}; T + T_surf rises {}-fold to the core, by {} DeltaT from "
-                  "the mean of the walls",
-                  brief(number), brief(f.numbers.adiabatic_rise), brief(f.numbers.adiabatic_drop)));
+                                  short_number(dissipation_number(*f.c.body))));
+  return check_line("adiabatic rise",
+                    fmt::format("Di = {}; T + T_surf rises {}-fold to the core, by {} DeltaT from "
+                                "the mean of the walls",
+                                short_number(number), short_number(f.numbers.adiabatic_rise),
+                                short_number(f.numbers.adiabatic_drop)));
 }
 
 std::string scale_lines(const CheckFindings& f) {
   if (!f.c.body) return "";
   const Scales s = scales_of(*f.c.body);
   const double velocity = s.velocity * year * 1000;
-  return check_line("units", fmt::format("time d^2/kappa = {} Myr, length d = {} km, velocity "
-                                         "kappa/d = {} mm/yr, temperature {} K",
-                                         brief(s.time / million_years), brief(s.length / 1000),
-                                         brief(velocity), brief(s.temperature))) +
-         check_line("the march", fmt::format("{} Myr, {} d^2/kappa",
-                                             brief(f.c.march.end_time * s.time / million_years),
-                                             brief(f.c.march.end_time)));
+  return check_line("units",
+                    fmt::format("time d^2/kappa = {} Myr, length d = {} km, velocity "
+                                "kappa/d = {} mm/yr, temperature {} K",
+                                short_number(s.time / million_years), short_number(s.length / 1000),
+                                short_number(velocity), short_number(s.temperature))) +
+         check_line("the march",
+                    fmt::format("{} Myr, {} d^2/kappa",
+                                short_number(f.c.march.end_time * s.time / million_years),
+                                short_number(f.c.march.end_time)));
 }
 
 }  // namespace

@@ -3,7 +3,7 @@
 #include <fmt/format.h>
 
 #include <algorithm>
-#include <cmath>
+#include <charconv>
 
 #include "app/progress.hpp"
 
@@ -28,7 +28,18 @@ std::vector<std::string> broken(const std::string& text, std::size_t width) {
 }
 
 std::string spread(double low, double high) {
-  return brief(low) == brief(high) ? brief(low) : fmt::format("{} to {}", brief(low), brief(high));
+  return short_number(low) == short_number(high)
+             ? short_number(low)
+             : fmt::format("{} to {}", short_number(low), short_number(high));
+}
+
+/// Numbers of a default in six digits, which tell what it is; the exact one is in
+/// case_as_read.toml.
+std::string tidy(const std::string& value) {
+  double number = 0;
+  const char* const end = value.data() + value.size();
+  const auto read = std::from_chars(value.data(), end, number);
+  return read.ec == std::errc() && read.ptr == end ? short_number(number, 6) : value;
 }
 
 std::string regime_headline(const Prediction& p) {
@@ -39,15 +50,23 @@ std::string regime_headline(const Prediction& p) {
 std::string nusselt_headline(const CheckFindings& f) {
   const Prediction& p = f.prediction;
   if (!p.foretold()) return "not foretold: no published law applies";
-  return fmt::format("{} at the outer wall, by {} law{}", spread(p.low, p.high), p.laws.size(),
-                     p.laws.size() == 1 ? "" : "s");
+  std::string text = fmt::format("{} at the outer wall by {} law{}", spread(p.low, p.high),
+                                 p.laws.size(), p.laws.size() == 1 ? "" : "s");
+  if (f.steps)
+    text += fmt::format("; {} in a coarse pilot's last half",
+                        short_number(late_mean(f.pilot).nusselt_outer));
+  return text;
 }
 
 std::string time_headline(const CheckFindings& f) {
   if (!f.steps) return "not asked for (--no-steps)";
-  return fmt::format("{} for {} steps{}", duration_text(f.forecast.total()),
-                     brief(f.forecast.steps),
-                     f.ranks > 1 ? fmt::format(", {} ranks", f.ranks) : "");
+  std::string text = fmt::format("{} for {} steps", cost_duration(f.forecast.total()),
+                                 short_number(f.forecast.steps));
+  if (f.ranks > 1) text += fmt::format(" on {} ranks", f.ranks);
+  if (f.crowded())
+    text += fmt::format("; {} if the machine stays as busy as now",
+                        cost_duration(f.forecast.total() * f.trial.crowding));
+  return text;
 }
 
 std::string memory_headline(const CheckFindings& f) {
@@ -66,7 +85,7 @@ std::string headline(const CheckFindings& f) {
   return fmt::format("{}\n", f.c.title.empty() ? f.file : f.c.title) +
          check_line("regime", regime_headline(f.prediction)) +
          check_line("Nusselt number", nusselt_headline(f)) +
-         check_line("processor time", time_headline(f)) + check_line("memory", memory_headline(f)) +
+         check_line("time to march", time_headline(f)) + check_line("memory", memory_headline(f)) +
          check_line("beware", gravest);
 }
 
@@ -84,18 +103,12 @@ std::string cautions_text(const CheckFindings& f) {
 
 }  // namespace
 
-std::string brief(double x) {
-  if (x != 0 && (std::abs(x) >= 1e5 || std::abs(x) < 1e-3)) {
-    std::string text = fmt::format("{:.3g}", x);
-    const auto e = text.find('e');
-    if (e == std::string::npos) return text;
-    const int power = std::stoi(text.substr(e + 1));
-    return fmt::format("{}e{}", text.substr(0, e), power);
-  }
-  return std::abs(x) >= 1000 ? fmt::format("{:.0f}", x) : fmt::format("{:.3g}", x);
+std::string cost_duration(double seconds) {
+  return seconds < 100 ? short_number(seconds) + " s" : duration_text(seconds);
 }
 
 std::string check_line(const std::string& name, const std::string& text) {
+  if (name.size() > name_width) return fmt::format("  {}\n", name) + check_line("", text);
   std::string all;
   const auto lines = broken(text, text_width);
   for (std::size_t k = 0; k < lines.size(); ++k)
@@ -112,7 +125,7 @@ std::string defaults_text(const CheckFindings& f) {
     std::string row;
     for (; k < f.defaults.size() && f.defaults[k].table == table; ++k) {
       const DefaultTaken& d = f.defaults[k];
-      row += fmt::format("{}{} = {}{}", row.empty() ? "" : ", ", d.name, d.value,
+      row += fmt::format("{}{} = {}{}", row.empty() ? "" : ", ", d.name, tidy(d.value),
                          d.unit.empty() || d.unit == "1" ? "" : " " + d.unit);
     }
     text += check_line("[" + table + "]", row);

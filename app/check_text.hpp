@@ -3,6 +3,7 @@
 #include <string>
 
 #include "app/check_findings.hpp"
+#include "study/short_number.hpp"
 
 /// The words of `lidwright check`, 80 columns wide.
 namespace lidwright {
@@ -18,8 +19,9 @@ std::string cost_text(const CheckFindings&);
 
 /// A line "  name                  text", what does not fit goes on below.
 std::string check_line(const std::string& name, const std::string& text);
-/// The number with three or four digits.
-std::string brief(double);
+
+/// "4.2 s", "13 min 20 s".
+std::string cost_duration(double seconds);
 
 /// What the run writes, and what that takes on a common machine (docs/check.md says how it was
 /// measured).

@@ -63,7 +63,7 @@ double interior_deschamps_lin(double theta);
 double critical_stagnant(double theta);
 
 /// How a lid moves by the contrast of viscosity across it, heated from below, free-slip walls
-/// (Solomatov 1995: mobile below 1e2, stagnant above 1e4).
+/// (Solomatov 1995: mobile up to 1e2, stagnant above 1e4).
 enum class Lid { Mobile, Sluggish, Stagnant };
 inline constexpr double mobile_below = 1e2, stagnant_above = 1e4;
 Lid lid_by_contrast(double contrast);

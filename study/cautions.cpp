@@ -5,6 +5,8 @@
 #include <algorithm>
 #include <cmath>
 
+#include "study/short_number.hpp"
+
 namespace lidwright {
 namespace {
 
@@ -66,13 +68,13 @@ void Cautions::of_viscosity() {
     if (l.place == LayerPlace::InnerWall) continue;
     const double rise = l.place == LayerPlace::BelowLid ? 2.2 : in_.prediction.balance.theta;
     const double step = std::exp(rise / std::max(l.cells, 1e-3));
-    say(step > steep_viscosity, "viscosity changes {:.2g}-fold from cell to cell {}", step,
-        where(l.place));
+    say(step > steep_viscosity, "viscosity changes {}-fold from cell to cell {}",
+        short_number(step), where(l.place));
   }
   const bool jump = in_.model.viscosity.layered.layers.size() > 0;
   say(jump && in_.numbers.depth_contrast > 100,
-      "viscosity jumps up to {:.2g}-fold between depths: laws take its mean",
-      in_.numbers.depth_contrast);
+      "viscosity jumps up to {}-fold between depths: laws take its mean",
+      short_number(in_.numbers.depth_contrast));
   if (const auto& a = in_.model.creep().arrhenius) {
     const double surface = (a->energy) / std::pow(a->offset + in_.numbers.t_outer, 2);
     const double inside =

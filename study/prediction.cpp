@@ -7,6 +7,7 @@
 #include <cmath>
 
 #include "physics/laws.hpp"
+#include "study/short_number.hpp"
 
 namespace lidwright {
 namespace {
@@ -129,7 +130,7 @@ double Predictor::effective_contrast() const {
 }
 
 void Predictor::tell_regime() {
-  const double contrast = effective_contrast();
+  const double contrast = effective_contrast() * (1 - 1e-9);  // as given, to round-off
   const char* source = "(Solomatov 1995: mobile below 1e2, stagnant above 1e4)";
   if (m_.yielding) {
     p_.regime = Regime::Undecided;
@@ -140,9 +141,8 @@ void Predictor::tell_regime() {
   p_.regime = lid == laws::Lid::Mobile     ? Regime::Mobile
               : lid == laws::Lid::Sluggish ? Regime::Sluggish
                                            : Regime::Stagnant;
-  p_.why = fmt::format("contrast {:.2g} that acts on the lid {}", contrast, source);
-  if (m_.walls.outer.slip == Slip::None)
-    p_.why += "; its no-slip wall holds the surface in any case";
+  p_.why = fmt::format("viscosity contrast {} acts on the lid {}", short_number(contrast), source);
+  if (m_.walls.outer.slip == Slip::None) p_.why += "; but the no-slip wall holds the surface";
 }
 
 std::string Predictor::outside(const WallLaw& law) const {
@@ -232,6 +232,11 @@ void Predictor::span() {
   p_.low = std::max(1.0, p_.low / margin);
   p_.high *= margin;
   if (times_critical_ < 3) p_.low = 1;
+  // Whose interior is the least hot: under lids heated from below the others are hotter than runs.
+  if (p_.regime == Regime::Stagnant) {
+    p_.balance = tried_.front().balance;
+    return;
+  }
   const double middle = std::sqrt(p_.low * p_.high);
   const auto away = [&](const Tried& t) { return std::abs(std::log(t.nusselt / middle)); };
   p_.balance = std::min_element(tried_.begin(), tried_.end(), [&](const Tried& a, const Tried& b) {
@@ -264,7 +269,9 @@ Prediction Predictor::run() {
   const double quiet = laws::wall_coefficient(laws::nusselt_local_stability(1));
   mobile_ = heat_balance(m_, g_, {false, 0, quiet, quiet, LayerViscosity::Interior});
   tell_regime();
-  const bool either = m_.yielding || p_.regime == Regime::Sluggish;
+  // A wall that grips makes a lid of rock that would move along with a free one.
+  const bool held = m_.walls.outer.slip == Slip::None && p_.regime == Regime::Mobile;
+  const bool either = m_.yielding || p_.regime == Regime::Sluggish || held;
   if (p_.regime == Regime::Mobile || either) add_mobile();
   if ((p_.regime == Regime::Stagnant || either) && mobile_.theta > 1) add_stagnant();
   span();

@@ -24,7 +24,7 @@ struct Prediction {
   std::vector<LawResult> laws;
   double low = 1,
          high = 1;      ///< Nusselt number of the outer wall: from the least to the largest law
-  HeatBalance balance;  ///< of the law that is nearest to the middle of the spread
+  HeatBalance balance;  ///< of the law nearest to the middle of the spread; under a lid, of drips
   std::vector<std::string> doubts;  ///< why the run's number may lie outside the spread
   bool foretold() const { return !laws.empty(); }
 };

@@ -118,6 +118,19 @@ Grid pilot_grid(const Grid& grid) {
   return coarse;
 }
 
+PilotRow late_mean(const Pilot& p) {
+  PilotRow sum{p.rows.back().time, 0, 0, 0};
+  double count = 0;
+  for (const PilotRow& r : p.rows) {
+    if (r.time < sum.time / 2) continue;
+    sum.nusselt_outer += r.nusselt_outer;
+    sum.velocity_rms += r.velocity_rms;
+    sum.mobility += r.mobility;
+    ++count;
+  }
+  return {sum.time, sum.nusselt_outer / count, sum.velocity_rms / count, sum.mobility / count};
+}
+
 Pilot run_pilot(const MarchInputs& in, const StoredTemperature& start, double seconds,
                 const TrialWatch& watch) {
   const Watch begin;

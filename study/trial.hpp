@@ -41,6 +41,9 @@ struct Pilot {
   StoredTemperature last;  ///< to start from on a finer grid
 };
 
+/// Means over the last half of a pilot's time; the time is its end.
+PilotRow late_mean(const Pilot&);
+
 /// Radial cells of a pilot, at most.
 inline constexpr int pilot_radial_cells = 24;
 /// The case's grid coarsened in both directions alike.

@@ -71,8 +71,8 @@ TEST(Laws, StagnantOnsetAgreesWithLinearTheory) {
 }
 
 TEST(Laws, LidsByContrast) {
-  EXPECT_EQ(lid_by_contrast(99), Lid::Mobile);
-  EXPECT_EQ(lid_by_contrast(100), Lid::Sluggish);
+  EXPECT_EQ(lid_by_contrast(100), Lid::Mobile);
+  EXPECT_EQ(lid_by_contrast(101), Lid::Sluggish);
   EXPECT_EQ(lid_by_contrast(1e4), Lid::Sluggish);
   EXPECT_EQ(lid_by_contrast(1.01e4), Lid::Stagnant);
 }
