@@ -9,9 +9,10 @@ std::string law_line(const LawResult& law) {
   const std::string number = short_number(law.low) == short_number(law.high)
                                  ? short_number(law.low)
                                  : short_number(law.low) + " - " + short_number(law.high);
-  std::string text = fmt::format("  {:<13} {}\n", number, law.name);
-  text += fmt::format("  {:<13} for: {}\n", "", law.range);
-  if (!law.outside.empty()) text += fmt::format("  {:<13} here: {}\n", "", law.outside);
+  constexpr std::size_t columns = 13;
+  std::string text = check_line(number, law.name, columns);
+  text += check_line("", std::string("for: ") + law.range, columns);
+  if (!law.outside.empty()) text += check_line("", "here: " + law.outside, columns);
   return text;
 }
 
@@ -56,6 +57,7 @@ std::string laws_text(const CheckFindings& f) {
   if (!f.prediction.foretold()) return "";
   std::string text = "\nPUBLISHED LAWS, Nusselt number of the outer wall in settled convection\n";
   for (const LawResult& law : f.prediction.laws) text += law_line(law);
+  if (!f.prediction.unlike.empty()) text += check_line("none was made for", f.prediction.unlike);
   const HeatBalance& b = f.prediction.balance;
   if (b.settling > 0)
     text +=

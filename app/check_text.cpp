@@ -10,7 +10,7 @@
 namespace lidwright {
 namespace {
 
-constexpr std::size_t name_width = 22, text_width = 54;  // 2 + 22 + 1 + 54 = 79 columns
+constexpr std::size_t line_width = 79;
 
 /// Broken at blanks into lines of the text's width.
 std::vector<std::string> broken(const std::string& text, std::size_t width) {
@@ -93,7 +93,7 @@ std::string cautions_text(const CheckFindings& f) {
   if (f.cautions.empty()) return "";
   std::string text = "\nBEWARE\n";
   for (std::size_t k = 0; k < f.cautions.size(); ++k) {
-    const auto lines = broken(f.cautions[k], 74);
+    const auto lines = broken(f.cautions[k], line_width - 5);
     for (std::size_t n = 0; n < lines.size(); ++n)
       text +=
           n == 0 ? fmt::format("{:>3}  {}\n", k + 1, lines[n]) : fmt::format("     {}\n", lines[n]);
@@ -107,12 +107,12 @@ std::string cost_duration(double seconds) {
   return seconds < 100 ? short_number(seconds) + " s" : duration_text(seconds);
 }
 
-std::string check_line(const std::string& name, const std::string& text) {
-  if (name.size() > name_width) return fmt::format("  {}\n", name) + check_line("", text);
+std::string check_line(const std::string& name, const std::string& text, std::size_t columns) {
+  if (name.size() > columns) return fmt::format("  {}\n", name) + check_line("", text, columns);
   std::string all;
-  const auto lines = broken(text, text_width);
+  const auto lines = broken(text, line_width - 3 - columns);
   for (std::size_t k = 0; k < lines.size(); ++k)
-    all += fmt::format("  {:<{}} {}\n", k == 0 ? name : "", name_width, lines[k]);
+    all += fmt::format("  {:<{}} {}\n", k == 0 ? name : "", columns, lines[k]);
   return all;
 }
 

@@ -17,8 +17,8 @@ std::string layers_text(const CheckFindings&);
 std::string laws_text(const CheckFindings&);
 std::string cost_text(const CheckFindings&);
 
-/// A line "  name                  text", what does not fit goes on below.
-std::string check_line(const std::string& name, const std::string& text);
+/// A line "  name                  text", what does not fit goes on below; columns of the name.
+std::string check_line(const std::string& name, const std::string& text, std::size_t columns = 22);
 
 /// "4.2 s", "13 min 20 s".
 std::string cost_duration(double seconds);

@@ -146,7 +146,7 @@ void Predictor::tell_regime() {
 }
 
 std::string Predictor::outside(const WallLaw& law) const {
-  std::vector<std::string> found = unlike_all(m_, n_);
+  std::vector<std::string> found;
   const double ra = mobile_.interior_rayleigh;
   if (ra < law.least) found.push_back("Ra low");
   if (ra > law.most) found.push_back("Ra high");
@@ -179,7 +179,7 @@ void Predictor::add_mobile() {
 }
 
 std::string Predictor::outside_stagnant(double theta) const {
-  std::vector<std::string> found = unlike_all(m_, n_);
+  std::vector<std::string> found;
   if (theta < 8) found.push_back("theta below 8");
   if (m_.dislocation) found.push_back("dislocation creep");
   return join(found);
@@ -274,6 +274,7 @@ Prediction Predictor::run() {
   const bool either = m_.yielding || p_.regime == Regime::Sluggish || held;
   if (p_.regime == Regime::Mobile || either) add_mobile();
   if ((p_.regime == Regime::Stagnant || either) && mobile_.theta > 1) add_stagnant();
+  p_.unlike = join(unlike_all(m_, n_));
   span();
   set_doubts();
   return p_;

@@ -15,12 +15,13 @@ namespace lidwright {
 struct LawResult {
   std::string name, range;   ///< with its source; what it was made for
   double low = 0, high = 0;  ///< Nusselt number of the outer wall, by what the law leaves open
-  std::string outside;       ///< why the case is not what the law was made for; empty: it is
+  std::string outside;       ///< why the case is not what this law was made for; may be empty
 };
 
 struct Prediction {
   Regime regime = Regime::Undecided;
-  std::string why;  ///< how the regime is told, with the source
+  std::string why;     ///< how the regime is told, with the source
+  std::string unlike;  ///< what none of the laws was made for; may be empty
   std::vector<LawResult> laws;
   double low = 1,
          high = 1;      ///< Nusselt number of the outer wall: from the least to the largest law

@@ -106,6 +106,8 @@ TEST(ShortNumber, AsPeopleWriteIt) {
   EXPECT_EQ(short_number(3.2e6), "3.2e6");
   EXPECT_EQ(short_number(1e-6), "1e-6");
   EXPECT_EQ(short_number(1108639.44, 6), "1.10864e6");
+  EXPECT_EQ(short_number(99999.9), "1e5");
+  EXPECT_EQ(short_number(12345), "12300");
   EXPECT_EQ(short_number(0), "0");
 }
 
