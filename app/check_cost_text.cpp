@@ -35,6 +35,13 @@ std::string end_text(const CheckFindings& f) {
 
 std::string share(double part, double whole) { return fmt::format("{:.0f} %", 100 * part / whole); }
 
+std::string late_text(const PilotRow& late) {
+  std::string text = fmt::format("Nu {} at the outer wall, rms velocity {} kappa/d",
+                                 short_number(late.nusselt_outer), short_number(late.velocity_rms));
+  if (late.velocity_rms > 0) text += ", mobility " + short_number(late.mobility);
+  return text;
+}
+
 std::string pilot_lines(const CheckFindings& f) {
   const PilotRow late = late_mean(f.pilot);
   const bool same = f.pilot.grid.radial == f.c.model.grid.radial;
@@ -44,11 +51,7 @@ std::string pilot_lines(const CheckFindings& f) {
                                               : fmt::format("on {} x {} cells", f.pilot.grid.radial,
                                                             f.pilot.grid.lateral),
                                          short_number(late.time), 100 * f.forecast.covered_share)) +
-         check_line("  its last half",
-                    fmt::format("Nu {} at the outer wall, rms velocity {} kappa/d, "
-                                "mobility {}",
-                                short_number(late.nusselt_outer), short_number(late.velocity_rms),
-                                short_number(late.mobility)));
+         check_line("  its last half", late_text(late));
 }
 
 std::string measured_lines(const CheckFindings& f) {

@@ -17,8 +17,9 @@ struct CheckFindings {
   std::vector<DefaultTaken> defaults;
   AtRest rest;
   DerivedNumbers numbers;
+  double critical = std::numeric_limits<double>::quiet_NaN();  ///< Rayleigh number of onset
   double times_critical = std::numeric_limits<double>::quiet_NaN();
-  std::string no_onset;  ///< why times_critical is not known
+  std::string no_onset;  ///< why they are not known
   Prediction prediction;
   std::vector<LayerOnGrid> layers;
   std::optional<Grid> finer;

@@ -44,7 +44,7 @@ std::string rayleigh_lines(const CheckFindings& f) {
 std::string onset_line(const CheckFindings& f) {
   if (!std::isfinite(f.times_critical)) return check_line("onset", "not known: " + f.no_onset);
   std::string text = fmt::format("Ra is {} times critical ({})", short_number(f.times_critical),
-                                 short_number(f.numbers.reference / f.times_critical));
+                                 short_number(f.critical));
   if (f.c.model.nonlinear()) text += ", of the creep alone";
   return check_line("onset", text);
 }

@@ -19,6 +19,7 @@ namespace {
 
 using Clock = std::chrono::steady_clock;
 
+constexpr double nan = std::numeric_limits<double>::quiet_NaN();
 // Seconds that each part may take.
 constexpr double pilot_seconds = 3, trial_seconds = 2.5, onset_seconds = 2;
 /// Radial cells on which onset is sought, at most: good to a few percent.
@@ -37,10 +38,9 @@ std::optional<Model> at_rest_like(const Model& m) {
   return like;
 }
 
-/// The case's Rayleigh number over the critical one; nan and a word when it takes too long or there
-/// is none. On one rank.
-double times_critical(const Model& m, std::string& why_not, WorkLine& shown) {
-  constexpr double nan = std::numeric_limits<double>::quiet_NaN();
+/// The critical Rayleigh number; nan and a word when it takes too long or there is none. On one
+/// rank.
+double critical_rayleigh(const Model& m, std::string& why_not, WorkLine& shown) {
   const std::optional<Model> like = at_rest_like(m);
   if (!like) {
     why_not = "a power law alone does not creep at rest";
@@ -55,7 +55,7 @@ double times_critical(const Model& m, std::string& why_not, WorkLine& shown) {
       shown.show(fmt::format("onset: mode {} done", mode));
       return in_time();
     });
-    if (!curve.interrupted || curve.bracketed) return m.rayleigh / curve.shape.rayleigh;
+    if (!curve.interrupted || curve.bracketed) return curve.shape.rayleigh;
     why_not = "takes longer than a check may; see `lidwright onset`";
   } catch (const SolveError&) {
     why_not = "no small disturbance grows at any Rayleigh number, or it was not found";
@@ -134,9 +134,10 @@ void Check::take_steps() {
 void Check::find_onset() {
   std::vector<double> found{0};
   on_first_rank<SolveError>(session_.comm(),
-                            [&] { found = {times_critical(f_.c.model, f_.no_onset, shown_)}; });
+                            [&] { found = {critical_rayleigh(f_.c.model, f_.no_onset, shown_)}; });
   broadcast(session_.comm(), found);
-  f_.times_critical = found.front();
+  f_.critical = found.front();
+  f_.times_critical = f_.c.model.rayleigh / f_.critical;
 }
 
 void Check::judge() {
@@ -153,10 +154,10 @@ void Check::judge() {
   }
   const auto& body = f_.c.body;
   const MarchInputs in = inputs(f_.c);
-  f_.cautions = cautions(
-      {m, in, f_.numbers, f_.prediction, f_.layers, f_.times_critical,
-       body ? body->expansivity * body->temperature_drop : std::numeric_limits<double>::quiet_NaN(),
-       body ? dissipation_number(*body) : m.reference.dissipation_number});
+  f_.cautions = cautions({m, in, f_.numbers, f_.prediction, f_.layers,
+                          f_.steps ? late_mean(f_.pilot).velocity_rms : nan, f_.times_critical,
+                          body ? body->expansivity * body->temperature_drop : nan,
+                          body ? dissipation_number(*body) : m.reference.dissipation_number});
 }
 
 ExitCode Check::run() {

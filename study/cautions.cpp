@@ -38,6 +38,11 @@ class Cautions {
 void Cautions::of_onset() {
   const double x = in_.times_critical;
   say(x < 1, "Ra is {:.3g} times critical: what is stirred dies away, heat is conducted", x);
+  say(x > 0.95 && x < 1.05,
+      "that is too near to critical for the coarse grid of a check: `lidwright onset` tells");
+  say(x > 0.5 && x < 1 && in_.numbers.thermal_contrast > 1e3,
+      "with a contrast of {} strong disturbances may convect below critical",
+      short_number(in_.numbers.thermal_contrast));
   say(x >= 1 && x < 2, "Ra is only {:.3g} times critical: convection grows slowly and stays weak",
       x);
 }
@@ -71,6 +76,11 @@ void Cautions::of_viscosity() {
     say(step > steep_viscosity, "viscosity changes {}-fold from cell to cell {}",
         short_number(step), where(l.place));
   }
+  const double cell = 1.0 / in_.model.grid.radial, peclet = in_.velocity * cell;
+  say(in_.march.heat.flux == HeatFlux::Central && peclet > 5,
+      "transport.flux = \"central\" with {:.2g} kappa/d through cells of {:.2g} d: temperatures "
+      "will overshoot, take \"limited\" or finer cells",
+      in_.velocity, cell);
   const bool jump = in_.model.viscosity.layered.layers.size() > 0;
   say(jump && in_.numbers.depth_contrast > 100,
       "viscosity jumps up to {}-fold between depths: laws take its mean",
@@ -113,7 +123,17 @@ void Cautions::of_end() {
       "nothing disturbs the start: without [initial] modes or noise the mantle stays at rest");
 }
 
+/// Along mid-depth.
+double breadth(const Shell& s) {
+  const double length = s.lateral_end - s.lateral_begin;
+  return s.shape == Shape::Box ? length : length * (s.inner_radius + 0.5);
+}
+
 void Cautions::of_laws() {
+  say(in_.model.shell.sides == Sides::Reflecting && breadth(in_.model.shell) < 1.5 &&
+          in_.prediction.regime != Regime::NotConvecting,
+      "the region is {:.2g} d wide: one cell, whose Nusselt number goes with its width",
+      breadth(in_.model.shell));
   say(in_.model.yielding.has_value(),
       "the lid may yield: whether it moves, and the Nusselt number, no published law foretells");
   const bool sources = in_.numbers.source != 0;

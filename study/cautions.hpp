@@ -17,6 +17,7 @@ struct CautionInputs {
   const DerivedNumbers& numbers;
   const Prediction& prediction;
   const std::vector<LayerOnGrid>& layers;
+  double velocity;        ///< rms, of a pilot, kappa/d; nan: not known
   double times_critical;  ///< nan: not known
   double expansion;       ///< alpha DeltaT; nan without a body
   double dissipation;     ///< alpha g d/cp of the body or the case; nan: not known

@@ -85,7 +85,7 @@ class Predictor {
   Prediction run();
 
  private:
-  void at_rest();
+  void at_rest(const std::string& why);
   void tell_regime();
   void add_mobile();
   void add_stagnant();
@@ -111,10 +111,18 @@ class Predictor {
   std::vector<Tried> tried_;
 };
 
-void Predictor::at_rest() {
+/// Is rock at rest nowhere hotter below than above?
+bool nothing_drives(const AtRest& rest) {
+  const auto& t = rest.temperature;
+  const auto hotter_below = [](double below, double above) { return below > above + 1e-9; };
+  return std::adjacent_find(t.begin(), t.end(), hotter_below) == t.end();
+}
+
+void Predictor::at_rest(const std::string& why) {
   p_.regime = Regime::NotConvecting;
-  p_.why = fmt::format("Ra is {:.3g} times critical: small disturbances die away", times_critical_);
+  p_.why = why;
   const double unit = n_.conductive_flow * (rest_.t_inner - rest_.t_outer);
+  if (std::abs(unit) < 1e-12) return;
   p_.low = p_.high = rest_.heat_flow_outer / unit;
   p_.balance.hot_wall = rest_.t_inner;
   p_.balance.interior = rest_.mean;
@@ -262,8 +270,14 @@ Prediction Predictor::run() {
     p_.why = "the outer wall's heat flux is given: no law for that here";
     return p_;
   }
+  if (nothing_drives(rest_)) {
+    at_rest(
+        "conduction leaves rock nowhere hotter below: flow, if the start drives any, dies away");
+    return p_;
+  }
   if (times_critical_ < 1 && !m_.nonlinear()) {
-    at_rest();
+    at_rest(
+        fmt::format("Ra is {:.3g} times critical: small disturbances die away", times_critical_));
     return p_;
   }
   const double quiet = laws::wall_coefficient(laws::nusselt_local_stability(1));

@@ -48,8 +48,8 @@ PilotRow late_mean(const Pilot&);
 inline constexpr int pilot_radial_cells = 24;
 /// The case's grid coarsened in both directions alike.
 Grid pilot_grid(const Grid&);
-/// Marches the case on that grid until its end or for some seconds; not collective. Throws
-/// SolveError.
+/// Marches the case on that grid until its end or for some seconds of processor time, half as many
+/// more by the clock at most; not collective. Throws SolveError.
 Pilot run_pilot(const MarchInputs&, const StoredTemperature&, double seconds, const TrialWatch&);
 
 /// Seconds are of processor time, of the slowest rank.

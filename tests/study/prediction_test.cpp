@@ -53,6 +53,16 @@ TEST(Prediction, BelowOnsetHeatIsConducted) {
   EXPECT_NEAR(p.high, 1, 1e-9);
 }
 
+TEST(Prediction, NothingDrivesAShellThatIsColdBelow) {
+  Model m = box_heated_below();
+  m.walls.inner.thermal = FixedTemperature{-1};
+  const Prediction p = predicted(m, std::nan(""));
+  EXPECT_EQ(p.regime, Regime::NotConvecting);
+  EXPECT_NEAR(p.high, 1, 1e-9);
+  m.walls.inner.thermal = FixedHeatFlux{0};  // cools down: there is no Nusselt number in the end
+  EXPECT_FALSE(predicted(m, std::nan("")).foretold());
+}
+
 TEST(Prediction, ContrastTellsTheRegime) {
   Model m = box_heated_below();
   m.rayleigh = 1e6;
@@ -124,17 +134,20 @@ std::vector<std::string> warned(const Model& m, double critical, double expansio
   march.initial.noise = 0.1;
   march.march.end_time = 10;
   const auto layers = layers_on_grid(p.balance, *make_geometry(m));
-  return cautions({m, march, n, p, layers, critical, expansion, dissipation});
+  return cautions({m, march, n, p, layers, 100, critical, expansion, dissipation});
 }
 
 TEST(Cautions, NoneForAPlainCase) {
   Model m = box_heated_below();
+  m.shell.lateral_end = 3;
   m.grid.radial = 64;
   EXPECT_THAT(warned(m, 15, 0.04, 0.01), testing::IsEmpty());
 }
 
 TEST(Cautions, EachSaysItsOwn) {
   Model m = box_heated_below();
+  EXPECT_THAT(warned(m, 15, 0, 0), Contains(HasSubstr("1 d wide")));
+  EXPECT_THAT(warned(m, 0.98, 0, 0), Contains(HasSubstr("too near")));
   EXPECT_THAT(warned(m, 0.5, 0, 0), Contains(HasSubstr("0.5 times critical")));
   EXPECT_THAT(warned(m, 15, 0, 0.3), Contains(HasSubstr("dissipation number of 0.3")));
   EXPECT_THAT(warned(m, 15, 0.2, 0), Contains(HasSubstr("temperature drop is 0.2")));
