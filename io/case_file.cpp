@@ -27,14 +27,13 @@ void settle_path(std::string& path, const std::string& case_file) {
   path = std::filesystem::absolute(folder / from).lexically_normal().string();
 }
 
-}  // namespace
-
-Case parse_case(const std::string& text, const std::string& name,
-                const std::vector<std::string>& settings, const std::string& along) {
-  Entries entries(text, name);
+void apply_settings(Entries& entries, const std::vector<std::string>& settings) {
   for (std::size_t n = 0; n < settings.size(); ++n)
     entries.set(settings[n], fmt::format("--set {}", n + 1));
-  if (!along.empty()) entries.set(along, along_place);
+}
+
+/// Everything that the file and the command line say, checked.
+Draft read_draft(Entries& entries, const std::string& name) {
   Draft draft;
   choose_tables(draft, entries);
   read_body_keys(draft, entries);
@@ -42,9 +41,47 @@ Case parse_case(const std::string& text, const std::string& name,
   read_other_keys(draft, entries);
   read_profile_table(draft, entries, name);
   check_together(draft, entries);
-  Case made = assemble(std::move(draft));
+  return draft;
+}
+
+/// A title is for people, and what one of several keys must say is no default of the others.
+bool worth_naming(const Key& key, const Draft& draft, const Entries& entries) {
+  const bool one_of_several = key.default_text.find("required") != std::string_view::npos ||
+                              key.default_text.find("must be given") != std::string_view::npos;
+  return !key.in_list() && !key.table().empty() && key.need == Need::Default && !one_of_several &&
+         key.only.holds(draft) && !entries.find(key.path);
+}
+
+DefaultTaken default_taken(const Key& key, Draft& draft) {
+  const std::string written = written_value(key, draft);
+  const bool value = !written.empty() && written != R"("")";
+  const std::string_view in_words = key.default_text.empty() ? "none" : key.default_text;
+  return {key.table(), key.name(), value ? written : std::string(in_words),
+          value ? std::string(unit_in_file(key, draft)) : ""};
+}
+
+}  // namespace
+
+Case parse_case(const std::string& text, const std::string& name,
+                const std::vector<std::string>& settings, const std::string& along) {
+  Entries entries(text, name);
+  apply_settings(entries, settings);
+  if (!along.empty()) entries.set(along, along_place);
+  Case made = assemble(read_draft(entries, name));
   settle_path(made.initial.from, name);
   return made;
+}
+
+std::vector<DefaultTaken> defaults_taken(const std::string& path,
+                                         const std::vector<std::string>& settings) {
+  Entries entries(read_case_text(path), path);
+  apply_settings(entries, settings);
+  Draft draft = read_draft(entries, path);
+  if (!draft.box()) draft.extent = draft.extent_or_default();
+  std::vector<DefaultTaken> taken;
+  for (const Key& key : all_keys())
+    if (worth_naming(key, draft, entries)) taken.push_back(default_taken(key, draft));
+  return taken;
 }
 
 std::string read_case_text(const std::string& path) {

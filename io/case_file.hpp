@@ -48,6 +48,14 @@ Case read_case(const std::string& path, const std::vector<std::string>& settings
 /// `along`: one more setting, which messages place at "--along"; empty: none.
 Case parse_case(const std::string& text, const std::string& name,
                 const std::vector<std::string>& settings = {}, const std::string& along = {});
+/// A key that a case leaves to its default, and what it then is, as the file would say it.
+struct DefaultTaken {
+  std::string table, name, value, unit;  ///< unit: empty for none
+};
+/// All of them that apply, in the order of the reference page; keys in lists are left out. Reads
+/// the case as read_case does and throws what it throws.
+std::vector<DefaultTaken> defaults_taken(const std::string& path,
+                                         const std::vector<std::string>& settings = {});
 /// The file as it is; throws InputError.
 std::string read_case_text(const std::string& path);
 

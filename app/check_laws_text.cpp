@@ -1,0 +1,84 @@
+#include <fmt/format.h>
+
+#include "app/check_text.hpp"
+
+namespace lidwright {
+namespace {
+
+std::string law_line(const LawResult& law) {
+  const std::string number = short_number(law.low) == short_number(law.high)
+                                 ? short_number(law.low)
+                                 : short_number(law.low) + " - " + short_number(law.high);
+  constexpr std::size_t columns = 13;
+  std::string text = check_line(number, law.name, columns);
+  text += check_line("", std::string("for: ") + law.range, columns);
+  if (!law.outside.empty()) text += check_line("", "here: " + law.outside, columns);
+  return text;
+}
+
+const char* name_of(LayerPlace place) {
+  switch (place) {
+    case LayerPlace::Surface:
+      return "below the surface";
+    case LayerPlace::BelowLid:
+      return "below the lid";
+    case LayerPlace::InnerWall:
+      return "at the inner wall";
+  }
+  return "";
+}
+
+std::string in_kilometres(const CheckFindings& f, double length) {
+  return f.c.body ? fmt::format(" ({} km)", short_number(length * thickness(*f.c.body) / 1000))
+                  : "";
+}
+
+std::string advice(const CheckFindings& f) {
+  const Grid& now = f.c.model.grid;
+  if (!f.finer)
+    return fmt::format("[grid] radial = {} suffices for {:.0f} cells a layer", now.radial,
+                       enough_cells);
+  const Grid& g = *f.finer;
+  std::string text =
+      fmt::format("{:.0f} cells a layer (common practice) take [grid]", enough_cells);
+  if (g.radial != now.radial)
+    text += fmt::format(" radial = {}, lateral = {},", g.radial, g.lateral);
+  if (g.radial_grading.first != now.radial_grading.first)
+    text += fmt::format(" inner_refinement = {},", g.radial_grading.first);
+  if (g.radial_grading.last != now.radial_grading.last)
+    text += fmt::format(" outer_refinement = {},", g.radial_grading.last);
+  text.back() = '.';
+  return text;
+}
+
+}  // namespace
+
+std::string laws_text(const CheckFindings& f) {
+  if (!f.prediction.foretold()) return "";
+  std::string text = "\nPUBLISHED LAWS, Nusselt number of the outer wall in settled convection\n";
+  for (const LawResult& law : f.prediction.laws) text += law_line(law);
+  if (!f.prediction.unlike.empty()) text += check_line("none was made for", f.prediction.unlike);
+  const HeatBalance& b = f.prediction.balance;
+  if (b.settling > 0)
+    text +=
+        check_line("middle of the spread",
+                   fmt::format("interior at {} DeltaT{}; settles in about {} d^2/kappa",
+                               short_number(b.interior),
+                               b.lid > 0 ? fmt::format(", lid {} d thick{}", short_number(b.lid),
+                                                       in_kilometres(f, b.lid))
+                                         : "",
+                               short_number(b.settling)));
+  return text;
+}
+
+std::string layers_text(const CheckFindings& f) {
+  if (f.layers.empty()) return "";
+  std::string text = "\nBOUNDARY LAYERS foreseen, on this grid\n";
+  for (const LayerOnGrid& l : f.layers)
+    text += check_line(name_of(l.place),
+                       fmt::format("{} d{}, {:.1f} cells across", short_number(l.thickness),
+                                   in_kilometres(f, l.thickness), l.cells));
+  return text + check_line("advice", advice(f));
+}
+
+}  // namespace lidwright

@@ -1,0 +1,28 @@
+#pragma once
+
+#include <optional>
+#include <vector>
+
+#include "study/prediction.hpp"
+
+/// Do thermal boundary layers that are foreseen fit the grid? Pure.
+namespace lidwright {
+
+/// Cells across a thermal boundary layer that heat flow to a few percent takes (common practice, no
+/// source).
+inline constexpr double enough_cells = 5;
+
+enum class LayerPlace { Surface, BelowLid, InnerWall };
+struct LayerOnGrid {
+  LayerPlace place;
+  double thickness;  ///< d
+  double cells;      ///< across it, in parts of cells
+};
+std::vector<LayerOnGrid> layers_on_grid(const HeatBalance&, const Geometry&);
+
+/// The cheapest grid of some tried ones on which all layers have enough cells: first the walls'
+/// refinement is raised, then the number of radial cells, and the lateral ones with it. None when
+/// the grid has enough, or none of those tried has.
+std::optional<Grid> finer_grid(const HeatBalance&, const Model&);
+
+}  // namespace lidwright

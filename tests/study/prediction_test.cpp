@@ -1,0 +1,161 @@
+#include "study/prediction.hpp"
+
+#include <gmock/gmock.h>
+
+#include <cmath>
+
+#include "physics/laws.hpp"
+#include "study/cautions.hpp"
+#include "study/resolution.hpp"
+#include "tests/support/mantles.hpp"
+
+namespace lidwright {
+namespace {
+
+using testing::Contains;
+using testing::HasSubstr;
+
+Prediction predicted(const Model& m, double times_critical) {
+  const AtRest rest = at_rest(m, MPI_COMM_SELF);
+  return predict(m, *make_geometry(m), rest, derived_numbers(m, rest), times_critical);
+}
+
+TEST(Prediction, SpreadHoldsTheIsoviscousBenchmark) {
+  // Blankenbach et al. 1989 (GJI 98, 23), cases 1a to 1c.
+  for (const auto& [rayleigh, nusselt] :
+       {std::pair(1e4, 4.884409), {1e5, 10.534095}, {1e6, 21.972465}}) {
+    Model m = box_heated_below();
+    m.rayleigh = rayleigh;
+    const Prediction p = predicted(m, rayleigh / laws::critical_free);
+    EXPECT_EQ(p.regime, Regime::Mobile);
+    EXPECT_LT(p.low, nusselt);
+    EXPECT_GT(p.high, nusselt);
+    EXPECT_LT(p.high / p.low, 4);
+  }
+}
+
+TEST(Prediction, SpreadHoldsTheStagnantBenchmark) {
+  // Tosi et al. 2015 (Geochem. Geophys. Geosyst. 16, 2175), case 1: Nu 3.39 to 3.43.
+  Model m = box_heated_below();
+  m.viscosity.exponential = ExponentialViscosity{1e5, 1, 1};
+  m.rayleigh = 1e7;
+  const Prediction p = predicted(m, 27);
+  EXPECT_EQ(p.regime, Regime::Stagnant);
+  EXPECT_LT(p.low, 3.39);
+  EXPECT_GT(p.high, 3.43);
+  EXPECT_GT(p.balance.lid, 0);
+}
+
+TEST(Prediction, BelowOnsetHeatIsConducted) {
+  const Prediction p = predicted(box_heated_below(), 0.9);
+  EXPECT_EQ(p.regime, Regime::NotConvecting);
+  EXPECT_NEAR(p.low, 1, 1e-9);
+  EXPECT_NEAR(p.high, 1, 1e-9);
+}
+
+TEST(Prediction, NothingDrivesAShellThatIsColdBelow) {
+  Model m = box_heated_below();
+  m.walls.inner.thermal = FixedTemperature{-1};
+  const Prediction p = predicted(m, std::nan(""));
+  EXPECT_EQ(p.regime, Regime::NotConvecting);
+  EXPECT_NEAR(p.high, 1, 1e-9);
+  m.walls.inner.thermal = FixedHeatFlux{0};  // cools down: there is no Nusselt number in the end
+  EXPECT_FALSE(predicted(m, std::nan("")).foretold());
+}
+
+TEST(Prediction, ContrastTellsTheRegime) {
+  Model m = box_heated_below();
+  m.rayleigh = 1e6;
+  for (const auto& [contrast, regime] :
+       {std::pair(100.0, Regime::Mobile), {1e3, Regime::Sluggish}, {1e6, Regime::Stagnant}}) {
+    m.viscosity.exponential = ExponentialViscosity{contrast, 1, 0.5};
+    EXPECT_EQ(predicted(m, 100).regime, regime) << contrast;
+  }
+}
+
+TEST(Prediction, NoRegimeForALidThatMayYield) {
+  Model m = box_heated_below();
+  m.rayleigh = 1e6;
+  m.viscosity.exponential = ExponentialViscosity{1e5, 1, 1};
+  const double held = predicted(m, 100).high;
+  m.yielding = Yielding{};
+  const Prediction p = predicted(m, 100);
+  EXPECT_EQ(p.regime, Regime::Undecided);
+  EXPECT_GT(p.high, held);
+}
+
+TEST(Resolution, LayersAndAGridThatHoldsThem) {
+  Model m = box_heated_below();
+  m.grid.radial = 20;
+  HeatBalance b;
+  b.outer_layer = b.inner_layer = 0.1;
+  const auto layers = layers_on_grid(b, *make_geometry(m));
+  ASSERT_EQ(layers.size(), 2U);
+  EXPECT_NEAR(layers[0].cells, 2, 1e-9);
+  EXPECT_EQ(layers[0].place, LayerPlace::Surface);
+  const auto finer = finer_grid(b, m);
+  ASSERT_TRUE(finer);
+  const Geometry g(m.shell, *finer);
+  for (const LayerOnGrid& l : layers_on_grid(b, g)) EXPECT_GE(l.cells, enough_cells);
+  m.grid.radial = 100;
+  EXPECT_FALSE(finer_grid(b, m));
+}
+
+TEST(Resolution, RefinesOneWallIfOneIsCoarse) {
+  Model m = box_heated_below();
+  m.grid.radial = 40;
+  HeatBalance b;
+  b.outer_layer = 0.07;
+  b.inner_layer = 0.5;
+  const auto finer = finer_grid(b, m);
+  ASSERT_TRUE(finer);
+  EXPECT_EQ(finer->radial, 40);
+  EXPECT_EQ(finer->radial_grading.first, 1);
+  EXPECT_GT(finer->radial_grading.last, 1);
+}
+
+TEST(Resolution, ALayerUnderALidIsCountedThere) {
+  HeatBalance b;
+  b.lid = 0.4;
+  b.outer_layer = 0.1;
+  const Geometry g(Shell{Shape::Box, 0, 0, 1, Sides::Reflecting}, Grid{20, 4, {}, {}});
+  const auto layers = layers_on_grid(b, g);
+  ASSERT_EQ(layers.size(), 1U);
+  EXPECT_EQ(layers[0].place, LayerPlace::BelowLid);
+  EXPECT_NEAR(layers[0].cells, 2, 1e-9);
+}
+
+std::vector<std::string> warned(const Model& m, double critical, double expansion,
+                                double dissipation) {
+  const AtRest rest = at_rest(m, MPI_COMM_SELF);
+  const DerivedNumbers n = derived_numbers(m, rest);
+  const Prediction p = predict(m, *make_geometry(m), rest, n, critical);
+  MarchInputs march{m, {}, {}, {}, {}};
+  march.initial.noise = 0.1;
+  march.march.end_time = 10;
+  const auto layers = layers_on_grid(p.balance, *make_geometry(m));
+  return cautions({m, march, n, p, layers, 100, critical, expansion, dissipation});
+}
+
+TEST(Cautions, NoneForAPlainCase) {
+  Model m = box_heated_below();
+  m.shell.lateral_end = 3;
+  m.grid.radial = 64;
+  EXPECT_THAT(warned(m, 15, 0.04, 0.01), testing::IsEmpty());
+}
+
+TEST(Cautions, EachSaysItsOwn) {
+  Model m = box_heated_below();
+  EXPECT_THAT(warned(m, 15, 0, 0), Contains(HasSubstr("1 d wide")));
+  EXPECT_THAT(warned(m, 0.98, 0, 0), Contains(HasSubstr("too near")));
+  EXPECT_THAT(warned(m, 0.5, 0, 0), Contains(HasSubstr("0.5 times critical")));
+  EXPECT_THAT(warned(m, 15, 0, 0.3), Contains(HasSubstr("dissipation number of 0.3")));
+  EXPECT_THAT(warned(m, 15, 0.2, 0), Contains(HasSubstr("temperature drop is 0.2")));
+  m.grid.radial = 8;
+  EXPECT_THAT(warned(m, 15, 0, 0), Contains(HasSubstr("cells across")));
+  m.yielding = Yielding{};
+  EXPECT_THAT(warned(m, 15, 0, 0), Contains(HasSubstr("yield")));
+}
+
+}  // namespace
+}  // namespace lidwright
