@@ -6,6 +6,8 @@
 #include <cmath>
 #include <string>
 
+#include "tests/support/colour_sight.hpp"
+
 namespace lidwright {
 namespace {
 
