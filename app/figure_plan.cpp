@@ -84,6 +84,7 @@ void check_options(const FigureRequest& r, const std::vector<std::string>& kinds
   if (!r.range.empty() && fields != 1)
     refuse("--range",
            "the values of one field; name one, as in `lidwright figure RUN temperature`");
+  if (!r.range.empty()) colour_range_asked(r.range, {});
   if (!r.with.empty() && fields == 0) refuse("--with", "draws over a field; name one");
   if (!r.columns.empty() && !history) refuse("--columns", "is for the kind history; name it");
   if (r.logarithmic && !history) refuse("--log", "is for the kind history; name it");

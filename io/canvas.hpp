@@ -9,8 +9,8 @@
 #include "io/colour_map.hpp"
 #include "io/sheet.hpp"
 
-/// A page to draw on: Cairo and Pango, with owners. Lengths are design units, y counts downwards: a
-/// drawing is the same whatever file it becomes.
+/// A page to draw on. Lengths are design units, y counts downwards; any file shows the same
+/// drawing.
 namespace lidwright::plot {
 
 struct Place {
