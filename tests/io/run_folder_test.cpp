@@ -118,6 +118,25 @@ TEST(RunFolder, TwoProcessesDoNotWriteOneRun) {
               HasSubstr("another process"));
 }
 
+TEST(RunFolder, IsKnownToGoOnWhileItIsHeld) {
+  const test::Scratch scratch;
+  make_run(scratch / "run");
+  EXPECT_FALSE(run_goes_on(scratch / "run"));
+  {
+    const RunFolder held = RunFolder::resume(MPI_COMM_WORLD, scratch / "run");
+    EXPECT_TRUE(run_goes_on(scratch / "run"));
+  }
+  EXPECT_FALSE(run_goes_on(scratch / "run"));
+  EXPECT_FALSE(run_goes_on(scratch / "no such folder"));
+}
+
+TEST(RunFolder, TheReportIsTheRunsOwn) {
+  const test::Scratch scratch;
+  make_run(scratch / "run");
+  test::write_text(scratch / "run/report.html", "x");
+  EXPECT_THAT(own_files(RunPaths{scratch / "run"}), testing::Contains("report.html"));
+}
+
 TEST(ParallelRunFolder, ResumingClearsWhatWasNeverCompleted) {
   const test::Scratch scratch;
   make_run(scratch / "run");
