@@ -1,5 +1,7 @@
 #include <fmt/format.h>
 
+#include <cmath>
+
 #include "app/check_text.hpp"
 
 namespace lidwright {
@@ -35,9 +37,11 @@ std::string end_text(const CheckFindings& f) {
 
 std::string share(double part, double whole) { return fmt::format("{:.0f} %", 100 * part / whole); }
 
+/// What is not defined, as the Nusselt number between walls of one temperature, is left out.
 std::string late_text(const PilotRow& late) {
-  std::string text = fmt::format("Nu {} at the outer wall, rms velocity {} kappa/d",
-                                 short_number(late.nusselt_outer), short_number(late.velocity_rms));
+  std::string text = fmt::format("rms velocity {} kappa/d", short_number(late.velocity_rms));
+  if (std::isfinite(late.nusselt_outer))
+    text = fmt::format("Nu {} at the outer wall, {}", short_number(late.nusselt_outer), text);
   if (late.velocity_rms > 0) text += ", mobility " + short_number(late.mobility);
   return text;
 }

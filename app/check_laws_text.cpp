@@ -16,18 +16,6 @@ std::string law_line(const LawResult& law) {
   return text;
 }
 
-const char* name_of(LayerPlace place) {
-  switch (place) {
-    case LayerPlace::Surface:
-      return "below the surface";
-    case LayerPlace::BelowLid:
-      return "below the lid";
-    case LayerPlace::InnerWall:
-      return "at the inner wall";
-  }
-  return "";
-}
-
 std::string in_kilometres(const CheckFindings& f, double length) {
   return f.c.body ? fmt::format(" ({} km)", short_number(length * thickness(*f.c.body) / 1000))
                   : "";
@@ -75,7 +63,7 @@ std::string layers_text(const CheckFindings& f) {
   if (f.layers.empty()) return "";
   std::string text = "\nBOUNDARY LAYERS foreseen, on this grid\n";
   for (const LayerOnGrid& l : f.layers)
-    text += check_line(name_of(l.place),
+    text += check_line(word(l.place),
                        fmt::format("{} d{}, {:.1f} cells across", short_number(l.thickness),
                                    in_kilometres(f, l.thickness), l.cells));
   return text + check_line("advice", advice(f));

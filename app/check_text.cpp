@@ -4,6 +4,7 @@
 
 #include <algorithm>
 #include <charconv>
+#include <cmath>
 
 #include "app/progress.hpp"
 
@@ -49,12 +50,13 @@ std::string regime_headline(const Prediction& p) {
 
 std::string nusselt_headline(const CheckFindings& f) {
   const Prediction& p = f.prediction;
-  if (!p.foretold()) return "not foretold: no published law applies";
-  std::string text = fmt::format("{} at the outer wall by {} law{}", spread(p.low, p.high),
-                                 p.laws.size(), p.laws.size() == 1 ? "" : "s");
-  if (f.steps)
-    text += fmt::format("; {} in a coarse pilot's last half",
-                        short_number(late_mean(f.pilot).nusselt_outer));
+  std::string text = p.foretold()
+                         ? fmt::format("{} at the outer wall by {} law{}", spread(p.low, p.high),
+                                       p.laws.size(), p.laws.size() == 1 ? "" : "s")
+                         : "not foretold: no published law applies";
+  const double piloted = f.steps ? late_mean(f.pilot).nusselt_outer : std::nan("");
+  if (std::isfinite(piloted))
+    text += fmt::format("; {} in a coarse pilot's last half", short_number(piloted));
   return text;
 }
 

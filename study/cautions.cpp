@@ -47,24 +47,12 @@ void Cautions::of_onset() {
       x);
 }
 
-const char* where(LayerPlace place) {
-  switch (place) {
-    case LayerPlace::Surface:
-      return "below the surface";
-    case LayerPlace::BelowLid:
-      return "below the lid";
-    case LayerPlace::InnerWall:
-      return "at the inner wall";
-  }
-  return "";
-}
-
 void Cautions::of_grid() {
   for (const LayerOnGrid& l : in_.layers)
     say(l.cells < enough_cells,
         "the boundary layer {} has {:.1f} cells across {:.3g} d; {:.0f} or more are common "
         "practice",
-        where(l.place), l.cells, l.thickness, enough_cells);
+        word(l.place), l.cells, l.thickness, enough_cells);
 }
 
 /// ln(eta) from cell to cell in the steepest layer.
@@ -74,7 +62,7 @@ void Cautions::of_viscosity() {
     const double rise = l.place == LayerPlace::BelowLid ? 2.2 : in_.prediction.balance.theta;
     const double step = std::exp(rise / std::max(l.cells, 1e-3));
     say(step > steep_viscosity, "viscosity changes {}-fold from cell to cell {}",
-        short_number(step), where(l.place));
+        short_number(step), word(l.place));
   }
   const double cell = 1.0 / in_.model.grid.radial, peclet = in_.velocity * cell;
   say(in_.march.heat.flux == HeatFlux::Central && peclet > 5,

@@ -37,6 +37,18 @@ void relax(const HeatBalance& b, const Model& m, Grid& grid) {
 
 }  // namespace
 
+const char* word(LayerPlace place) {
+  switch (place) {
+    case LayerPlace::Surface:
+      return "below the surface";
+    case LayerPlace::BelowLid:
+      return "below the lid";
+    case LayerPlace::InnerWall:
+      return "at the inner wall";
+  }
+  return "";
+}
+
 std::vector<LayerOnGrid> layers_on_grid(const HeatBalance& b, const Geometry& g) {
   std::vector<LayerOnGrid> layers;
   if (b.outer_layer > 0)

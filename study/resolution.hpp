@@ -13,6 +13,8 @@ namespace lidwright {
 inline constexpr double enough_cells = 5;
 
 enum class LayerPlace { Surface, BelowLid, InnerWall };
+const char* word(LayerPlace);  ///< "below the surface", ...
+
 struct LayerOnGrid {
   LayerPlace place;
   double thickness;  ///< d

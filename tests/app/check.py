@@ -135,6 +135,9 @@ def warns(scratch):
     assert "not convecting" in quiet.out and "dies away" in quiet.out, quiet.out
     still = check(scratch.write("still.toml", BOX.replace("[initial]\nmodes = [{}]\n", "")), "--no-steps")
     assert "nothing disturbs the start" in still.out, still.out
+    rest = BOX.replace("[walls.inner]\ntemperature = 1", "[walls.inner]\ninsulating = true")
+    cools = check(scratch.write("rest.toml", rest), "--set", "heat.uniform=0")
+    assert "dies away" in cools.out and not re.search(r"\b(nan|inf)\b", cools.out), cools.out
     body = os.path.join(runs.SOURCE, "cases", "rocky_body_si.toml")
     said = check(body, "--no-steps")
     # alpha g d/cp = 3e-5 * 4.1 * 1225e3/1200
