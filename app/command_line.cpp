@@ -2,6 +2,7 @@
 
 #include <fmt/format.h>
 
+#include "app/figure_plan.hpp"
 #include "app/option_words.hpp"
 #include "io/history.hpp"
 #include "io/provenance.hpp"
@@ -131,14 +132,12 @@ void add_figure(CLI::App& app, FigureRequest& request) {
   CLI::App* verb =
       app.add_subcommand("figure", "Draw a run for a paper or for slides")->group("Verbs");
   verb->add_option("RUN", request.run, "Run folder");
-  const std::vector<std::string> kinds{"temperature", "viscosity", "speed",
-                                       "strain-rate", "stress",    "profiles",
-                                       "history",     "branch",    "onset"};
+  const std::vector<std::string> kinds = figure_kinds();
   one_of(verb->add_option("KIND", request.kinds, choice_text(kinds) + " [all the run has]"), kinds);
-  const std::vector<std::string> formats{"png", "svg", "pdf"};
+  const std::vector<std::string> formats = format_words();
   one_of(verb->add_option("--format", request.format, choice_text(formats) + " [png]"), formats)
       ->type_name("FORMAT");
-  const std::vector<std::string> sizes{"one-column", "two-column", "slide"};
+  const std::vector<std::string> sizes = size_words();
   one_of(verb->add_option("--size", request.size,
                           choice_text(sizes) + "\n[one-column; a film: slide]"),
          sizes)
@@ -148,7 +147,7 @@ void add_figure(CLI::App& app, FigureRequest& request) {
                    "show, or snapshot:N; of profiles also a list with\n"
                    "commas, or all [the last]")
       ->type_name("TIME");
-  const std::vector<std::string> overlays{"flow-lines", "arrows", "lid", "isotherms"};
+  const std::vector<std::string> overlays = overlay_words();
   one_of(verb->add_option("--with", request.with,
                           "Over a field: " + choice_text(overlays) + " (a list with commas)"),
          overlays)

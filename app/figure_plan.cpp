@@ -31,15 +31,9 @@ std::string lacking(const SavedRun& run, const std::string& kind) {
   return {};
 }
 
-std::vector<std::string> all_kinds() {
-  std::vector<std::string> all = field_words();
-  all.insert(all.end(), {"profiles", "history", "branch", "onset"});
-  return all;
-}
-
 std::vector<std::string> kinds_of(const SavedRun& run) {
   std::vector<std::string> has;
-  for (const std::string& kind : all_kinds())
+  for (const std::string& kind : figure_kinds())
     if (lacking(run, kind).empty()) has.push_back(kind);
   if (has.empty())
     throw InputError(fmt::format("{}: there is nothing to draw yet; wait for its first snapshot",
@@ -55,7 +49,7 @@ std::vector<std::string> without_repetition(const std::vector<std::string>& word
 }
 
 void check_known(const std::vector<std::string>& kinds) {
-  const std::vector<std::string> known = all_kinds();
+  const std::vector<std::string> known = figure_kinds();
   for (const std::string& kind : kinds)
     if (std::find(known.begin(), known.end(), kind) == known.end())
       refuse_word("figure", kind, known);
@@ -187,6 +181,12 @@ std::string snapshot_words(const SavedRun& run, std::size_t snapshot) {
   if (run.kind == RunKind::Settle) return fmt::format("steady state {:g}", time);
   return fmt::format("time {:.4g} {}", time_units(run)(time),
                      run.settings.body ? "Myr" : "d^2/kappa");
+}
+
+std::vector<std::string> figure_kinds() {
+  std::vector<std::string> all = field_words();
+  all.insert(all.end(), {"profiles", "history", "branch", "onset"});
+  return all;
 }
 
 FigurePlan figure_plan(const FigureRequest& r) {

@@ -23,6 +23,9 @@ struct FigurePlan {
   std::string into;
 };
 
+/// All words for KIND.
+std::vector<std::string> figure_kinds();
+
 /// Opens the run. Throws InputError.
 FigurePlan figure_plan(const FigureRequest&);
 

@@ -21,7 +21,7 @@ CLI::Option* remember(CLI::Option* option, const std::vector<std::string>& words
 CLI::Option* one_of(CLI::Option* option, const std::vector<std::string>& words) {
   return remember(option, words, [words](std::string& word) -> std::string {
     if (std::find(words.begin(), words.end(), word) != words.end()) return "";
-    return fmt::format("must be {}, not '{}'{}", choice_text(words), word,
+    return fmt::format("must be one of {}, not '{}'{}", fmt::join(words, ", "), word,
                        case_text::nearest(word, words));
   });
 }

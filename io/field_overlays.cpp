@@ -135,6 +135,8 @@ std::vector<PlacedText> draw_lines_over(Canvas& canvas, const ShellMap& map,
 
 }  // namespace
 
+std::vector<std::string> overlay_words() { return {"flow-lines", "arrows", "lid", "isotherms"}; }
+
 Overlays overlays_of(const std::vector<std::string>& words) {
   Overlays o;
   for (const std::string& word : words) {
@@ -147,7 +149,7 @@ Overlays overlays_of(const std::vector<std::string>& words) {
     else if (word == "isotherms")
       o.isotherms = true;
     else
-      refuse_word("--with", word, {"flow-lines", "arrows", "lid", "isotherms"});
+      refuse_word("--with", word, overlay_words());
   }
   return o;
 }

@@ -16,7 +16,9 @@ struct Overlays {
   bool flow_lines = false, arrows = false, lid = false, isotherms = false;
 };
 
-/// "flow-lines", "arrows", "lid", "isotherms". Throws InputError for any other word.
+/// "flow-lines", "arrows", "lid", "isotherms".
+std::vector<std::string> overlay_words();
+/// Of some of these. Throws InputError for any other word.
 Overlays overlays_of(const std::vector<std::string>& words);
 
 /// Base of the lid: where the temperature, down from the outer wall, first reaches T_i - 2.2 DT_rh

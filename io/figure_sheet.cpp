@@ -27,13 +27,17 @@ constexpr Word<plot::Format> formats[] = {
     {"png", plot::Format::Png}, {"svg", plot::Format::Svg}, {"pdf", plot::Format::Pdf}};
 
 template <class Table>
+std::vector<std::string> words_of(const Table& table) {
+  std::vector<std::string> words;
+  for (const auto& entry : table) words.emplace_back(entry.word);
+  return words;
+}
+
+template <class Table>
 auto value_of(const Table& table, const std::string& option, const std::string& word) {
-  std::vector<std::string> allowed;
-  for (const auto& entry : table) {
+  for (const auto& entry : table)
     if (word == entry.word) return entry.value;
-    allowed.emplace_back(entry.word);
-  }
-  refuse_word(option, word, allowed);
+  refuse_word(option, word, words_of(table));
 }
 
 }  // namespace
@@ -43,6 +47,10 @@ void refuse_word(const std::string& option, const std::string& word,
   throw InputError(fmt::format("{} '{}': must be one of {}{}", option, word,
                                fmt::join(allowed, ", "), case_text::nearest(word, allowed)));
 }
+
+std::vector<std::string> size_words() { return words_of(sizes); }
+
+std::vector<std::string> format_words() { return words_of(formats); }
 
 FigureSize figure_size(const std::string& word) { return value_of(sizes, "--size", word); }
 

@@ -17,7 +17,10 @@ struct FigureStyle {
   plot::Format format = plot::Format::Png;
 };
 
-/// The words of the command line. Throw InputError with what is allowed.
+/// The words of the command line.
+std::vector<std::string> size_words();
+std::vector<std::string> format_words();
+/// Throw InputError with what is allowed.
 FigureSize figure_size(const std::string& word);
 plot::Format figure_format(const std::string& word);
 /// "png", "svg", "pdf": the end of a file's name too.

@@ -35,9 +35,10 @@ def check(scratch, verb):
     if not verb:
         assert all(f"lidwright-{v}(1)" in text for v in completing.VERBS), text
         return
-    for option in re.findall(r"^  (?:-h, )?(--[a-z-]+)", help_of(verb), re.MULTILINE):
+    said = help_of(verb)
+    for option in re.findall(r"^  (?:-h, )?(--[a-z-]+)", said, re.MULTILINE):
         assert f"{option} " in text, (name, option)
-    for code, words in re.findall(r"^  (\d)  (.+)$", help_of(verb), re.MULTILINE):
+    for code, words in re.findall(r"^  (\d)  (.+)$", said, re.MULTILINE):
         assert f" {code} {words}" in text, (name, code, words)
 
 

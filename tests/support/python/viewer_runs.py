@@ -42,6 +42,7 @@ end_time = 1
 most_steps = 3
 [output]
 pictures = false
+report = false
 snapshot_every = 1e-9
 """
 
