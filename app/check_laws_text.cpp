@@ -23,6 +23,11 @@ std::string in_kilometres(const CheckFindings& f, double length) {
 
 std::string advice(const CheckFindings& f) {
   const Grid& now = f.c.model.grid;
+  if (!f.finer && !enough(f.layers))
+    return fmt::format(
+        "none of the grids tried (to {:.0f} times the cells, refinement {:.0f}) has {:.0f} cells a "
+        "layer",
+        most_cells, most_refinement, enough_cells);
   if (!f.finer)
     return fmt::format("[grid] radial = {} suffices for {:.0f} cells a layer", now.radial,
                        enough_cells);

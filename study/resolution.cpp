@@ -6,21 +6,14 @@
 namespace lidwright {
 namespace {
 
-bool enough(const std::vector<LayerOnGrid>& layers) {
-  return std::all_of(layers.begin(), layers.end(),
-                     [](const LayerOnGrid& l) { return l.cells >= enough_cells; });
-}
-
 bool enough_on(const HeatBalance& b, const Shell& shell, const Grid& grid) {
   return enough(layers_on_grid(b, Geometry(shell, grid)));
 }
 
-/// Refinements that are tried before cells are added; more of it leaves mid-shell coarse.
-constexpr double most_refinement = 4;
-
 Grid refined(Grid grid, double at_walls, double cells) {
   grid.radial_grading.first = std::max(grid.radial_grading.first, at_walls);
   grid.radial_grading.last = std::max(grid.radial_grading.last, at_walls);
+  if (cells == 1) return grid;
   grid.radial = static_cast<int>(std::lround(grid.radial * cells / 4)) * 4;
   grid.lateral = static_cast<int>(std::lround(grid.lateral * cells / 4)) * 4;
   return grid;
@@ -49,6 +42,11 @@ const char* word(LayerPlace place) {
   return "";
 }
 
+bool enough(const std::vector<LayerOnGrid>& layers) {
+  return std::all_of(layers.begin(), layers.end(),
+                     [](const LayerOnGrid& l) { return l.cells >= enough_cells; });
+}
+
 std::vector<LayerOnGrid> layers_on_grid(const HeatBalance& b, const Geometry& g) {
   std::vector<LayerOnGrid> layers;
   if (b.outer_layer > 0)
@@ -61,7 +59,7 @@ std::vector<LayerOnGrid> layers_on_grid(const HeatBalance& b, const Geometry& g)
 
 std::optional<Grid> finer_grid(const HeatBalance& b, const Model& m) {
   if (enough_on(b, m.shell, m.grid)) return std::nullopt;
-  for (const double cells : {1.0, 1.25, 1.5, 2.0, 3.0, 4.0, 6.0, 8.0})
+  for (const double cells : {1.0, 1.25, 1.5, 2.0, 3.0, 4.0, 6.0, most_cells})
     for (double at_walls = 1; at_walls <= most_refinement; at_walls += 0.5) {
       Grid grid = refined(m.grid, at_walls, cells);
       if (!enough_on(b, m.shell, grid)) continue;

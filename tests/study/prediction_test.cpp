@@ -101,15 +101,26 @@ TEST(Resolution, LayersAndAGridThatHoldsThem) {
   EXPECT_FALSE(finer_grid(b, m));
 }
 
+TEST(Resolution, NoGridForALayerThatIsTooThin) {
+  Model m = box_heated_below();
+  HeatBalance b;
+  b.outer_layer = 1e-4;
+  EXPECT_FALSE(finer_grid(b, m));
+  EXPECT_FALSE(enough(layers_on_grid(b, *make_geometry(m))));
+  b.outer_layer = 0.5;
+  EXPECT_FALSE(finer_grid(b, m));
+  EXPECT_TRUE(enough(layers_on_grid(b, *make_geometry(m))));
+}
+
 TEST(Resolution, RefinesOneWallIfOneIsCoarse) {
   Model m = box_heated_below();
-  m.grid.radial = 40;
+  m.grid.radial = 42;  // no multiple of 4: refinement alone changes no number of cells
   HeatBalance b;
   b.outer_layer = 0.07;
   b.inner_layer = 0.5;
   const auto finer = finer_grid(b, m);
   ASSERT_TRUE(finer);
-  EXPECT_EQ(finer->radial, 40);
+  EXPECT_EQ(finer->radial, 42);
   EXPECT_EQ(finer->radial_grading.first, 1);
   EXPECT_GT(finer->radial_grading.last, 1);
 }
