@@ -5,6 +5,7 @@
 #include <algorithm>
 #include <cmath>
 
+#include "physics/laws.hpp"
 #include "study/short_number.hpp"
 
 namespace lidwright {
@@ -26,6 +27,7 @@ class Cautions {
   }
   void of_onset();
   void of_grid();
+  double rise_across(LayerPlace) const;
   void of_viscosity();
   void of_approximation();
   void of_end();
@@ -55,12 +57,18 @@ void Cautions::of_grid() {
         word(l.place), l.cells, l.thickness, enough_cells);
 }
 
+/// Change of ln(eta) across a layer, of temperature alone.
+double Cautions::rise_across(LayerPlace place) const {
+  if (place == LayerPlace::BelowLid) return laws::lid_base_drop;
+  const ViscosityLaw& law = in_.model.creep();
+  return std::log(law({in_.numbers.t_outer, 0.5}) / law({in_.prediction.balance.interior, 0.5}));
+}
+
 /// ln(eta) from cell to cell in the steepest layer.
 void Cautions::of_viscosity() {
   for (const LayerOnGrid& l : in_.layers) {
     if (l.place == LayerPlace::InnerWall) continue;
-    const double rise = l.place == LayerPlace::BelowLid ? 2.2 : in_.prediction.balance.theta;
-    const double step = std::exp(rise / std::max(l.cells, 1e-3));
+    const double step = std::exp(rise_across(l.place) / std::max(l.cells, 1e-3));
     say(step > steep_viscosity, "viscosity changes {}-fold from cell to cell {}",
         short_number(step), word(l.place));
   }

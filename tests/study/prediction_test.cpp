@@ -155,6 +155,27 @@ TEST(Cautions, NoneForAPlainCase) {
   EXPECT_THAT(warned(m, 15, 0.04, 0.01), testing::IsEmpty());
 }
 
+TEST(Cautions, ViscosityFromCellToCellIsThatOfTheLayer) {
+  // Between equal layers the interior is half way: the outer one spans 100^(1/2) of a contrast of
+  // 100, in n cells 10^(1/n) from each to the next.
+  Model m = box_heated_below();
+  m.viscosity.exponential = ExponentialViscosity{100, 1, 0.5};
+  DerivedNumbers n{};
+  n.t_inner = 1;
+  Prediction p;
+  p.balance.interior = 0.5;
+  p.balance.hot_wall = 1;
+  p.balance.theta = std::log(100.0);
+  const MarchInputs march{m, {}, {}, {}, {}};
+  const auto said = [&](LayerPlace place, double cells) {
+    return cautions({m, march, n, p, {{place, 0.1, cells}}, 1, 15, 0, 0});
+  };
+  EXPECT_THAT(said(LayerPlace::Surface, 2), Contains(HasSubstr("changes 3.16-fold")));
+  EXPECT_THAT(said(LayerPlace::Surface, 2.2), testing::Not(Contains(HasSubstr("changes"))));
+  // 2.23 scales of ln(eta) below a lid (Grasset & Parmentier 1998): exp(2.23/2).
+  EXPECT_THAT(said(LayerPlace::BelowLid, 2), Contains(HasSubstr("changes 3.05-fold")));
+}
+
 TEST(Cautions, EachSaysItsOwn) {
   Model m = box_heated_below();
   EXPECT_THAT(warned(m, 15, 0, 0), Contains(HasSubstr("1 d wide")));
