@@ -22,7 +22,7 @@ struct WallLaw {
   const char* name;
   const char* range;
   double coefficient;      ///< a between free-slip walls
-  double least, most;      ///< Rayleigh numbers, unit drop, viscosity of the interior
+  double least, most;      ///< Rayleigh numbers, the walls' drop, viscosity of the interior
   bool plane, from_below;  ///< made for a plane layer or a box; for heating from below
 };
 
@@ -94,6 +94,10 @@ class Predictor {
   void span();
   void set_doubts();
   double effective_contrast() const;
+  /// As the laws have it: of the walls' own drop, viscosity of the interior.
+  double rayleigh_of_drop() const {
+    return mobile_.interior_rayleigh * (mobile_.hot_wall - n_.t_outer);
+  }
   std::string outside(const WallLaw&) const;
   std::string outside_stagnant(double theta) const;
 
@@ -150,12 +154,21 @@ void Predictor::tell_regime() {
               : lid == laws::Lid::Sluggish ? Regime::Sluggish
                                            : Regime::Stagnant;
   p_.why = fmt::format("viscosity contrast {} acts on the lid {}", short_number(contrast), source);
-  if (m_.walls.outer.slip == Slip::None) p_.why += "; but the no-slip wall holds the surface";
+  if (m_.walls.outer.slip == Slip::Free || p_.regime == Regime::Stagnant) return;
+  // A wall that grips makes a lid of rock that would move along with a free one.
+  p_.why = fmt::format("held by its no-slip wall; rock below moves as under a {}: {}",
+                       word(p_.regime), p_.why);
+  p_.regime = Regime::Undecided;
+  p_.doubts.push_back(
+      mobile_.theta > 1
+          ? "a no-slip surface: the spread runs from a lid that holds to one that moves"
+          : "a no-slip surface: laws of a free one, weakened as its critical Rayleigh number is "
+            "higher (own scaling)");
 }
 
 std::string Predictor::outside(const WallLaw& law) const {
   std::vector<std::string> found;
-  const double ra = mobile_.interior_rayleigh;
+  const double ra = rayleigh_of_drop();
   if (ra < law.least) found.push_back("Ra low");
   if (ra > law.most) found.push_back("Ra high");
   if (law.from_below && n_.source != 0) found.push_back("sources");
@@ -177,7 +190,7 @@ void Predictor::add(LawResult law, const std::vector<BalanceLaws>& choices) {
 }
 
 void Predictor::add_mobile() {
-  for (const WallLaw& law : wall_laws(m_, mobile_.interior_rayleigh)) {
+  for (const WallLaw& law : wall_laws(m_, rayleigh_of_drop())) {
     std::vector<BalanceLaws> choices;
     for (const LayerViscosity viscosity : {LayerViscosity::Interior, LayerViscosity::Film})
       choices.push_back({false, 0, law.coefficient * grip(m_.walls.outer.slip),
@@ -214,11 +227,11 @@ void Predictor::add_stagnant() {
 /// Laws of the whole layer, which no balance can carry over to other shells.
 void Predictor::add_plane_stagnant() {
   if (given_flux(m_) || n_.source != 0 || m_.reference.dissipation_number > 0) return;
-  const double theta =
-      std::abs((n_.t_inner - n_.t_outer) * m_.creep().log_slope({n_.t_inner, 0.5}));
+  const double drop = n_.t_inner - n_.t_outer, theta = n_.frank_kamenetskii;
   if (!(theta > 1)) return;
-  const double inside = m_.rayleigh / m_.creep()({laws::interior_deschamps_lin(theta), 0.5});
-  const double hot = m_.rayleigh / m_.creep()({n_.t_inner, 0.5});
+  const auto rayleigh = [&](double t) { return m_.rayleigh * drop / m_.creep()({t, 0.5}); };
+  const double inside = rayleigh(n_.t_outer + drop * laws::interior_deschamps_lin(theta));
+  const double hot = rayleigh(n_.t_inner);
   const std::string unlike = outside_stagnant(theta);
   const auto put = [&](const char* name, const char* range, double nusselt) {
     nusselt = std::max(1.0, nusselt);
@@ -281,11 +294,11 @@ Prediction Predictor::run() {
     return p_;
   }
   const double quiet = laws::wall_coefficient(laws::nusselt_local_stability(1));
-  mobile_ = heat_balance(m_, g_, {false, 0, quiet, quiet, LayerViscosity::Interior});
+  mobile_ = heat_balance(m_, g_,
+                         {false, 0, quiet * grip(m_.walls.outer.slip),
+                          quiet * grip(m_.walls.inner.slip), LayerViscosity::Interior});
   tell_regime();
-  // A wall that grips makes a lid of rock that would move along with a free one.
-  const bool held = m_.walls.outer.slip == Slip::None && p_.regime == Regime::Mobile;
-  const bool either = m_.yielding || p_.regime == Regime::Sluggish || held;
+  const bool either = p_.regime == Regime::Sluggish || p_.regime == Regime::Undecided;
   if (p_.regime == Regime::Mobile || either) add_mobile();
   if ((p_.regime == Regime::Stagnant || either) && mobile_.theta > 1) add_stagnant();
   p_.unlike = join(unlike_all(m_, n_));

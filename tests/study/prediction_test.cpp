@@ -73,6 +73,38 @@ TEST(Prediction, ContrastTellsTheRegime) {
   }
 }
 
+/// The same rock told with twice the numbers of temperature, from another zero.
+Model retold(Model m) {
+  const auto anew = [](double t) { return 2 * t - 0.7; };
+  ExponentialViscosity& law = *m.viscosity.exponential;
+  m.walls.outer.thermal = FixedTemperature{anew(0)};
+  m.walls.inner.thermal = FixedTemperature{anew(1)};
+  law.thermal_contrast = std::sqrt(law.thermal_contrast);
+  law.unity_at = anew(law.unity_at);
+  m.rayleigh /= 2;  // of a unit drop, which is half the walls'
+  m.heat.uniform *= 2;
+  return m;
+}
+
+TEST(Prediction, DoesNotDependOnTheScaleOfTemperature) {
+  Model m = box_heated_below();
+  m.rayleigh = 8e5;
+  for (const double sources : {0.0, 1.0})
+    for (const double contrast : {50.0, 1e3, 1e6}) {
+      m.heat.uniform = sources;
+      m.viscosity.exponential = ExponentialViscosity{contrast, 1, 0.5};
+      const Prediction one = predicted(m, 100), two = predicted(retold(m), 100);
+      EXPECT_EQ(one.regime, two.regime);
+      ASSERT_EQ(one.laws.size(), two.laws.size());
+      for (std::size_t k = 0; k < one.laws.size(); ++k) {
+        EXPECT_NEAR(two.laws[k].low / one.laws[k].low, 1, 1e-9) << one.laws[k].name;
+        EXPECT_NEAR(two.laws[k].high / one.laws[k].high, 1, 1e-9) << one.laws[k].name;
+        EXPECT_EQ(two.laws[k].outside, one.laws[k].outside) << one.laws[k].name;
+      }
+      EXPECT_NEAR(two.balance.settling / one.balance.settling, 1, 1e-6);
+    }
+}
+
 TEST(Prediction, NoRegimeForALidThatMayYield) {
   Model m = box_heated_below();
   m.rayleigh = 1e6;
@@ -82,6 +114,21 @@ TEST(Prediction, NoRegimeForALidThatMayYield) {
   const Prediction p = predicted(m, 100);
   EXPECT_EQ(p.regime, Regime::Undecided);
   EXPECT_GT(p.high, held);
+}
+
+TEST(Prediction, ANoSlipWallHoldsTheSurface) {
+  Model m = box_heated_below();
+  m.rayleigh = 1e6;
+  m.walls.outer.slip = Slip::None;
+  m.viscosity.exponential = ExponentialViscosity{50, 1, 0.5};
+  const Prediction p = predicted(m, 100);
+  EXPECT_EQ(p.regime, Regime::Undecided);
+  EXPECT_THAT(p.why, HasSubstr("held by its no-slip wall"));
+  EXPECT_THAT(p.doubts, Contains(HasSubstr("from a lid that holds to one that moves")));
+  m.viscosity.exponential.reset();
+  EXPECT_THAT(predicted(m, 100).doubts, Contains(HasSubstr("laws of a free one")));
+  m.viscosity.exponential = ExponentialViscosity{1e6, 1, 0.5};
+  EXPECT_EQ(predicted(m, 100).regime, Regime::Stagnant);
 }
 
 TEST(Resolution, LayersAndAGridThatHoldsThem) {
