@@ -7,6 +7,18 @@
 namespace lidwright {
 namespace {
 
+bool given_flux(const Wall& wall) { return std::holds_alternative<FixedHeatFlux>(wall.thermal); }
+
+/// Which walls' temperatures are taken from rock at rest, as none are given.
+std::string walls_at_rest(const CheckFindings& f) {
+  std::string text;
+  if (given_flux(f.c.model.walls.outer))
+    text += fmt::format(", outer wall as at rest, {} DeltaT", short_number(f.numbers.t_outer));
+  if (given_flux(f.c.model.walls.inner))
+    text += fmt::format(", inner wall as at rest, {} DeltaT", short_number(f.numbers.t_inner));
+  return text.empty() ? "" : " (" + text.substr(2) + ")";
+}
+
 std::string rayleigh_lines(const CheckFindings& f) {
   const DerivedNumbers& n = f.numbers;
   const ReferenceProfiles& r = f.c.model.reference;
@@ -16,8 +28,9 @@ std::string rayleigh_lines(const CheckFindings& f) {
                  fmt::format("{}, viscosity where the law gives 1{}", short_number(n.reference),
                              uniform ? "" : "; properties where their profiles are 1"));
   if (n.wall_contrast != 1 || n.depth_contrast != 1) {
-    text += check_line("  at the walls", fmt::format("{} outer, {} inner, viscosity of each",
-                                                     short_number(n.outer), short_number(n.inner)));
+    text += check_line("  at the walls",
+                       fmt::format("{} outer, {} inner, viscosity of each{}", short_number(n.outer),
+                                   short_number(n.inner), walls_at_rest(f)));
     text += check_line("  half way", fmt::format("{}, viscosity at mid-depth and the mean of the "
                                                  "walls' temperatures",
                                                  short_number(n.half)));
@@ -55,14 +68,16 @@ std::string contrast_lines(const CheckFindings& f) {
   std::string text = check_line(
       "viscosity contrast",
       fmt::format("{} by temperature, outer over inner wall at mid-depth; {} from wall to "
-                  "wall, depth included",
-                  short_number(n.thermal_contrast), short_number(n.wall_contrast)));
+                  "wall, depth included{}",
+                  short_number(n.thermal_contrast), short_number(n.wall_contrast),
+                  walls_at_rest(f)));
   if (n.depth_contrast > 1.001)
     text += check_line("  by depth alone", short_number(n.depth_contrast) + ", largest over least");
   return text + check_line("Frank-Kamenetskii",
                            fmt::format("theta = {}, ln of the contrast by temperature; {} by the "
-                                       "slope at the inner wall",
-                                       short_number(n.theta), short_number(n.frank_kamenetskii)));
+                                       "slope at the inner wall{}",
+                                       short_number(n.theta), short_number(n.frank_kamenetskii),
+                                       walls_at_rest(f)));
 }
 
 /// A heat flow of the program in W or W/m^2 of the wall.
@@ -74,12 +89,22 @@ std::string flux_in_si(const CheckFindings& f, double flow, bool outer) {
                      short_number(1e3 * flow / area * scales_of(*f.c.body).heat_flux));
 }
 
+/// Without sources. With a given flux the walls' drop, and what Nu is made with, changes in time.
+std::string conduction_line(const CheckFindings& f) {
+  const DerivedNumbers& n = f.numbers;
+  const Walls& walls = f.c.model.walls;
+  const bool changes = given_flux(walls.inner) || given_flux(walls.outer);
+  const double flow = n.conductive_flow * (changes ? 1 : n.t_inner - n.t_outer);
+  const char* what = changes ? "of a unit drop, without sources; Nu is made with the walls' drop "
+                               "of the time"
+                             : "without sources, where Nu is 1";
+  return check_line("conducted heat", fmt::format("{} k DeltaT d^(n-2){} {}", short_number(flow),
+                                                  flux_in_si(f, flow, true), what));
+}
+
 std::string heat_lines(const CheckFindings& f) {
   const DerivedNumbers& n = f.numbers;
-  const double unit = n.conductive_flow * (n.t_inner - n.t_outer);
-  std::string text = check_line("conducted heat",
-                                fmt::format("{} k DeltaT d^(n-2) without sources{}, where Nu is 1",
-                                            short_number(unit), flux_in_si(f, unit, true)));
+  std::string text = conduction_line(f);
   if (n.source == 0) return text;
   return text + check_line("  with sources",
                            fmt::format("{} out{}, {} in from below, {} from sources; {} DeltaT at "

@@ -67,6 +67,15 @@ double writings(double whole, double every) {
   return every > 0 ? 1 + std::ceil(whole / every * (1 - 1e-9)) : 2;
 }
 
+/// Steps more like those there are, since one ends at each snapshot; the first and the last cost
+/// none.
+Stretch cut_short(const Stretch& all, double whole, double snapshot_every) {
+  Stretch more;
+  more.steps = std::max(0.0, writings(whole, snapshot_every) - 2);
+  more.applications = more.steps * all.applications / all.steps;
+  return more;
+}
+
 double outflow_ratio(const Pilot& pilot, const Trial& trial) {
   const double last = pilot.steps.back().outflow;
   return last > 0 && trial.outflow > 0 ? trial.outflow / last : 1;
@@ -94,6 +103,7 @@ Forecast forecast(const Pilot& pilot, const Trial& trial, const HeatSettings& he
   f.bound = static_cast<StepBound>(std::max_element(late.by_bound.begin(), late.by_bound.end()) -
                                    late.by_bound.begin());
   if (!pilot.ended) all.add(late, (march.end_time - seen) / late.time);
+  all.add(cut_short(all, f.end_time, plan.snapshot_every), 1);
   if (march.most_steps > 0 && all.steps > static_cast<double>(march.most_steps)) {
     const double share = static_cast<double>(march.most_steps) / all.steps;
     Stretch part;
@@ -102,7 +112,7 @@ Forecast forecast(const Pilot& pilot, const Trial& trial, const HeatSettings& he
     f.end_time *= share;
   }
   f.snapshots = writings(f.end_time, plan.snapshot_every);
-  f.steps = all.steps + f.snapshots;
+  f.steps = all.steps;
   f.checkpoints = writings(f.steps, static_cast<double>(plan.checkpoint_every));
   // The trial's number of applications belongs to the pilot's late ones; others go with the
   // pilot's.

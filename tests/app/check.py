@@ -78,13 +78,17 @@ def names_each_default(scratch):
         "[viscosity]": ["constant = 1 eta_ref", "layers = none", "lowest = 0 eta_ref", "highest = no cut-off"],
         "[viscosity.exponential]": ["depth_contrast = 1"],
         "[heat]": ["layers = none"],
+        "[reference]": ['approximation = "boussinesq"', "expansivity_rise = 1", "gravity_rise = 1", "conductivity_rise = 1",
+                        "heat_capacity_rise = 1", "table = none", "levels = none"],
         "[initial]": ['base = "conductive"', "noise = 0 DeltaT", "seed = 1", "from = none"],
         "[flow]": ["tolerance = 1e-6", "most_iterations = 200", "memory = 4", "refactor_cost = 20", "most_newton_steps = 60"],
         "[transport]": ['flux = "limited"', "courant = 0.5", "accuracy = 0.0001 DeltaT", "first_step = 1e-6 d^2/kappa",
                         "largest_step = 0.01 d^2/kappa", "growth = 1.3"],
         "[march]": ['until = "time"', "most_steps = 0", "wall_clock = 0 s", "steady = 0 DeltaT kappa/d^2"],
+        "[settle]": ["tolerance = 1e-10", "most_steps = 60", "most_time = 20 d^2/kappa", 'flux = "central"', "coarsest = 16",
+                     'linear = "automatic"'],
         "[output]": ["history_every = 1", "snapshot_every = 0 d^2/kappa", "checkpoint_every = 200", "checkpoints_kept = 2",
-                     "normal_stress = true", "pictures = true"],
+                     "normal_stress = true", "pictures = true", "report = true"],
     }
     for table, keys in expected.items():
         assert said[table] == ", ".join(keys), (table, said[table])
@@ -110,6 +114,16 @@ def numbers_by_hand(scratch):
     # T = (1 - z) + 2 z (1 - z): 3 leaves, 1 goes down, 4 is made. Second order on 20 cells.
     assert said["  with sources"].startswith("3 out, -1 in from below, 4 from sources"), said
     assert said["adiabatic rise"].startswith("none"), said
+
+
+def a_wall_of_given_flux(scratch):
+    """Insulated below, H = 4: 2 DeltaT at the inner wall at rest (H/2), but Nu takes the drop that there is."""
+    insulated = BOX.replace("[walls.inner]\ntemperature = 1", "[walls.inner]\ninsulating = true")
+    said = entries(check(scratch.write("insulated.toml", insulated), "--no-steps").out)
+    assert said["conducted heat"].startswith("1 k DeltaT d^(n-2) of a unit drop"), said["conducted heat"]
+    assert "Nu is made with the walls' drop of the time" in said["conducted heat"], said["conducted heat"]
+    for line in ("  at the walls", "viscosity contrast", "Frank-Kamenetskii"):
+        assert said[line].endswith("(inner wall as at rest, 2 DeltaT)"), said[line]
 
 
 def isoviscous(scratch):
@@ -203,6 +217,7 @@ def main():
         refuses(scratch)
         names_each_default(scratch)
         numbers_by_hand(scratch)
+        a_wall_of_given_flux(scratch)
         isoviscous(scratch)
         finds_no_grid(scratch)
         warns(scratch)
