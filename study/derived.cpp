@@ -93,10 +93,19 @@ DerivedNumbers derived_numbers(const Model& m, const AtRest& rest) {
   n.mean_source = n.source / geometry->total_volume();
   set_rayleigh_numbers(n, m, *geometry, rest);
   set_contrasts(n, m.creep());
-  n.adiabatic_rise = rows.adiabatic_rise.front();
+  n.adiabatic_rise = adiabatic_rise(m, *geometry, rows);
   n.adiabatic_drop =
       (n.adiabatic_rise - 1) * ((n.t_inner + n.t_outer) / 2 + m.reference.surface_temperature);
   return n;
+}
+
+double adiabatic_rise(const Model& m, const Geometry& g, const MantleRows& rows) {
+  const ReferenceProfiles& r = m.reference;
+  const double rest = g.cell_radius(0) - g.face_radius(0), outer = g.outer_radius();
+  const double depth = outer - g.face_radius(0) - rest / 2;
+  const double gradient = r.dissipation_number * r.expansivity(depth, outer) *
+                          r.gravity(depth, outer) / r.heat_capacity(depth, outer);
+  return rows.adiabatic_rise.front() * std::exp(gradient * rest);
 }
 
 double cells_within(const Geometry& g, double distance, bool from_outer) {

@@ -43,6 +43,10 @@ struct DerivedNumbers {
 };
 DerivedNumbers derived_numbers(const Model&, const AtRest&);
 
+/// Of T + T_surf along an adiabat, from the surface to the inner wall itself: the rows' ends at the
+/// middle of the lowest cell.
+double adiabatic_rise(const Model&, const Geometry&, const MantleRows&);
+
 /// Cells between a wall and a distance from it, in parts of cells.
 double cells_within(const Geometry&, double distance, bool from_outer);
 

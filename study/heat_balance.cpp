@@ -5,6 +5,7 @@
 #include <limits>
 
 #include "physics/laws.hpp"
+#include "study/derived.hpp"
 
 namespace lidwright {
 namespace {
@@ -37,7 +38,7 @@ class Balance {
     outer_area_ = g.wall_area(g.radial_cells());
     power_ = std::log(g.wall_area(0) / outer_area_) / std::log(1 - 1 / g.outer_radius());
     t_outer_ = std::get<FixedTemperature>(m.walls.outer.thermal).value;
-    mean_rise_ = std::log(rows_.adiabatic_rise.front());
+    mean_rise_ = std::log(adiabatic_rise(m, g, rows_));
     uncut_.lowest = 0;
     uncut_.highest = std::numeric_limits<double>::infinity();
     sum_sources();
@@ -69,6 +70,7 @@ class Balance {
   double drop_across_lid(const Lid&) const;
   double outer_flow(double t) const;
   double hottest() const;
+  double capacity() const;
 
   const Model& m_;
   const Geometry& g_;
@@ -188,6 +190,16 @@ double Balance::hottest() const {
   return fixed ? std::max(fixed->value, conducted) : conducted;
 }
 
+/// Heat that the shell takes up while the interior, on its adiabat, warms by 1 at the surface.
+double Balance::capacity() const {
+  const ReferenceProfiles& r = m_.reference;
+  return integral(
+      [&](double z) {
+        return at(r.density, z) * at(r.heat_capacity, z) * std::exp(mean_rise_ * z) * area(z);
+      },
+      0, 1);
+}
+
 HeatBalance Balance::solve() {
   HeatBalance b;
   const double produced = source(0, 1);
@@ -216,9 +228,9 @@ HeatBalance Balance::solve() {
   }
   if (in > 0)
     b.inner_layer = (b.hot_wall - adiabat(t, 1)) * at(m_.reference.conductivity, 1) * area(1) / in;
-  const double step = 1e-3 * (high - t_outer_);
+  const double step = 1e-3 * (t - t_outer_);
   const double slope = (excess(t + step) - excess(t - step)) / (2 * step);
-  b.settling = g_.total_volume() / slope + b.lid * b.lid / 2;
+  b.settling = capacity() / slope + b.lid * b.lid / 2;
   b.convects = b.nusselt_outer > 1 && b.lid + b.outer_layer + b.inner_layer < 1;
   return b;
 }

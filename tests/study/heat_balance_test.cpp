@@ -55,6 +55,30 @@ TEST(HeatBalance, InteriorOfAnInsulatedLayerIsThePublishedOne) {
   EXPECT_DOUBLE_EQ(b.inner_layer, 0);
 }
 
+TEST(HeatBalance, SettlingByHand) {
+  // Heated within, insulated below: a Ra^(1/3) T^(4/3) leaves, which grows by 4/3 H/T with T; the
+  // capacity is the integral of cp over depth, of 3^z 2/ln(3).
+  Model m = box_heated_below();
+  m.walls.inner.thermal = FixedHeatFlux{0};
+  m.rayleigh = 1e7;
+  m.heat.uniform = 1e3;
+  const HeatBalance b = balance(m, plain(0.2));
+  EXPECT_NEAR(b.settling / (0.75 * b.interior / 1e3), 1, 1e-5);
+  m.reference.heat_capacity.rise = 3;
+  EXPECT_NEAR(balance(m, plain(0.2)).settling / b.settling, 2 / std::log(3.0), 1e-3);
+}
+
+TEST(HeatBalance, AnAdiabatOfMoreHeat) {
+  // Extended Boussinesq: what warms by 1 at the surface warms by exp(Di) below; (e^Di - 1)/Di.
+  Model m = box_heated_below();
+  m.walls.inner.thermal = FixedHeatFlux{0};
+  m.rayleigh = 1e7;
+  m.heat.uniform = 1e3;
+  const double without = balance(m, plain(0.2)).settling;
+  m.reference.dissipation_number = 0.5;
+  EXPECT_NEAR(balance(m, plain(0.2)).settling / without, (std::exp(0.5) - 1) / 0.5, 1e-3);
+}
+
 TEST(HeatBalance, LidConductsWhatDripsBring) {
   // Heated within, insulated below: T = H z (1 - z/2) in the lid, H (1 - L) passes its base.
   Model m = box_heated_below();
