@@ -43,9 +43,14 @@ std::string tidy(const std::string& value) {
   return read.ec == std::errc() && read.ptr == end ? short_number(number, 6) : value;
 }
 
-std::string regime_headline(const Prediction& p) {
-  const std::string what = p.regime == Regime::Undecided ? "not foretold" : word(p.regime);
-  return p.why.empty() ? what : what + ": " + p.why;
+/// That rock moves at all is taken for granted when onset is not known.
+std::string regime_headline(const CheckFindings& f) {
+  const Prediction& p = f.prediction;
+  std::string text = p.regime == Regime::Undecided ? "not foretold" : word(p.regime);
+  if (!p.why.empty()) text += ": " + p.why;
+  if (p.regime != Regime::NotConvecting && !std::isfinite(f.times_critical))
+    text += "; onset not known";
+  return text;
 }
 
 std::string nusselt_headline(const CheckFindings& f) {
@@ -85,7 +90,7 @@ std::string headline(const CheckFindings& f) {
                          : fmt::format("{} point{} below; first: {}", f.cautions.size(),
                                        f.cautions.size() == 1 ? "" : "s", f.cautions.front());
   return fmt::format("{}\n", f.c.title.empty() ? f.file : f.c.title) +
-         check_line("regime", regime_headline(f.prediction)) +
+         check_line("regime", regime_headline(f)) +
          check_line("Nusselt number", nusselt_headline(f)) +
          check_line("time to march", time_headline(f)) + check_line("memory", memory_headline(f)) +
          check_line("beware", gravest);

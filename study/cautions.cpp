@@ -29,6 +29,7 @@ class Cautions {
   void of_grid();
   double rise_across(LayerPlace) const;
   void of_viscosity();
+  double interior() const;
   void of_approximation();
   void of_end();
   void of_laws();
@@ -92,12 +93,18 @@ void Cautions::of_viscosity() {
   }
 }
 
+/// Temperature that the laws foresee; without laws half way between the walls'.
+double Cautions::interior() const {
+  return in_.prediction.foretold() ? in_.prediction.balance.interior
+                                   : (in_.numbers.t_inner + in_.numbers.t_outer) / 2;
+}
+
 void Cautions::of_approximation() {
   const bool boussinesq = in_.model.reference.dissipation_number == 0;
   say(boussinesq && in_.dissipation > small_dissipation,
       "Boussinesq with a dissipation number of {:.2g}: compression heats by {:.2g} DeltaT, take "
       "reference.approximation = \"extended-boussinesq\" or \"anelastic-liquid\"",
-      in_.dissipation, in_.dissipation * 0.5);
+      in_.dissipation, std::expm1(in_.dissipation) * (interior() + in_.surface));
   const bool extended = !boussinesq && in_.model.reference.density.constant();
   say(extended && in_.dissipation > 0.3,
       "extended Boussinesq with a dissipation number of {:.2g}: density should vary, take "
@@ -110,10 +117,10 @@ void Cautions::of_approximation() {
 void Cautions::of_end() {
   const double settling = in_.prediction.balance.settling, end = in_.march.march.end_time;
   say(settling > 0 && end < settled_after * settling,
-      "march.end_time is {:.2g} d^2/kappa, and heat needs about {:.2g} to settle: numbers at the "
-      "end "
-      "depend on the start, and laws of settled convection do not hold yet",
-      end, settling);
+      "march.end_time is {:.2g} d^2/kappa, less than {:.0f} times the {:.2g} in which heat "
+      "settles: "
+      "numbers at the end depend on the start, and laws of settled convection may not hold yet",
+      end, settled_after, settling);
   const InitialSettings& start = in_.march.initial;
   say(start.modes.empty() && start.noise == 0 && start.from.empty(),
       "nothing disturbs the start: without [initial] modes or noise the mantle stays at rest");

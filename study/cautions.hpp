@@ -21,6 +21,7 @@ struct CautionInputs {
   double times_critical;  ///< nan: not known
   double expansion;       ///< alpha DeltaT; nan without a body
   double dissipation;     ///< alpha g d/cp of the body or the case; nan: not known
+  double surface;         ///< absolute temperature at T = 0 of the body or the case, DeltaT
 };
 
 /// A sentence each, the gravest first.

@@ -17,14 +17,33 @@ constexpr double margin = 1.1;
 /// Below this many times critical, power laws of Ra do not hold (common practice, no source).
 constexpr double high_enough = 10;
 
+/// Ra above which cells are seldom steady, and Ra_Q from which it is called high: own choice, no
+/// source.
+constexpr double steady_to = 1e7, high_rayleigh_q = 1e4;
+
 /// A law of a wall's layer.
 struct WallLaw {
   const char* name;
   const char* range;
-  double coefficient;      ///< a between free-slip walls
-  double least, most;      ///< Rayleigh numbers, the walls' drop, viscosity of the interior
-  bool plane, from_below;  ///< made for a plane layer or a box; for heating from below
+  double coefficient;   ///< a between free-slip walls
+  double least, most;   ///< Rayleigh numbers, the walls' drop, viscosity of the interior
+  const char* sources;  ///< what is said where there are some; null: made for them
+  bool within = false;  ///< made for sources alone: the range is that of Ra_Q
 };
+
+/// What a law of a stagnant lid was made for.
+struct LidRange {
+  double least_theta = 8;  ///< where lids are stagnant: ours, for a law whose source gives none
+  double most_theta = 1e99;
+  double least_contrast = 0, most_contrast = 1e99;  ///< exp(theta)
+  double most_hot = 1e99;  ///< Rayleigh number, the walls' drop, viscosity of the inner wall
+  bool box = false;        ///< of the whole layer: no balance carries it over to other shells
+};
+constexpr LidRange of_solomatov_moresi{};
+constexpr LidRange of_davaille_jaupart{.most_contrast = 1e6};
+constexpr LidRange of_moresi_solomatov{.most_theta = 30, .most_hot = 1e9, .box = true};
+constexpr LidRange of_deschamps_lin{
+    .least_theta = 0, .least_contrast = 1e5, .most_contrast = 1e8, .box = true};
 
 bool insulated(const Model& m) {
   const auto* flux = std::get_if<FixedHeatFlux>(&m.walls.inner.thermal);
@@ -42,16 +61,18 @@ std::vector<WallLaw> wall_laws(const Model& m, double interior_rayleigh) {
   const double moore = wall_coefficient(per_cube_root(nusselt_moore(ra), ra));
   std::vector<WallLaw> all = {
       {"local stability (Turcotte & Schubert, ch. 6)", "Ra >> critical",
-       wall_coefficient(nusselt_local_stability(1)), high_enough * critical_free, 1e99, true, true},
+       wall_coefficient(nusselt_local_stability(1)), high_enough * critical_free, 1e99, "sources"},
       {"steady cells (Turcotte & Oxburgh 1967)", "steady, free-slip, from above",
-       wall_coefficient(nusselt_steady_cells(1)), high_enough * critical_free, 1e7, true, true}};
+       wall_coefficient(nusselt_steady_cells(1)), high_enough * critical_free, steady_to,
+       "sources"}};
   if (insulated(m))
     all.push_back({"heated within (Turcotte & Schubert, ch. 6)", "insulated below, high Ra_Q",
-                   internal_heating_coefficient(), 1e4, 1e99, true, false});
+                   internal_heating_coefficient(), high_rayleigh_q, 1e99, nullptr, true});
   else
-    all.push_back({"Moore 2008", "2-D, Ra 1e5 to 1e9", moore, 1e5, 1e9, true, true});
+    all.push_back({"Moore 2008", "2-D, Ra 1e5 to 1e9", moore, 1e5, 1e9,
+                   "sources, its H/2 for them left out"});
   all.push_back(
-      {"Sotin & Labrosse 1999", "3-D box, Ra 1e5 to 1e7", sotin_labrosse, 1e5, 1e7, true, false});
+      {"Sotin & Labrosse 1999", "3-D box, Ra 1e5 to 1e7", sotin_labrosse, 1e5, 1e7, nullptr});
   return all;
 }
 
@@ -99,7 +120,7 @@ class Predictor {
     return mobile_.interior_rayleigh * (mobile_.hot_wall - n_.t_outer);
   }
   std::string outside(const WallLaw&) const;
-  std::string outside_stagnant(double theta) const;
+  std::string outside_stagnant(const LidRange&, double theta, double hot) const;
 
   const Model& m_;
   const Geometry& g_;
@@ -168,11 +189,10 @@ void Predictor::tell_regime() {
 
 std::string Predictor::outside(const WallLaw& law) const {
   std::vector<std::string> found;
-  const double ra = rayleigh_of_drop();
-  if (ra < law.least) found.push_back("Ra low");
+  const double ra = law.within ? mobile_.interior_rayleigh * n_.mean_source : rayleigh_of_drop();
+  if (ra < law.least) found.push_back(law.within ? "Ra_Q low" : "Ra low");
   if (ra > law.most) found.push_back("Ra high");
-  if (law.from_below && n_.source != 0) found.push_back("sources");
-  if (!law.from_below && !insulated(m_) && law.least < 1e5) found.push_back("heated below");
+  if (law.sources && n_.source != 0) found.push_back(law.sources);
   if (mobile_.theta > std::log(10.0)) found.push_back("variable viscosity");
   return join(found);
 }
@@ -199,9 +219,18 @@ void Predictor::add_mobile() {
   }
 }
 
-std::string Predictor::outside_stagnant(double theta) const {
+std::string Predictor::outside_stagnant(const LidRange& range, double theta, double hot) const {
+  const double contrast = std::exp(theta), above = 1 + 1e-9, below = 1 - 1e-9;  // to round-off
   std::vector<std::string> found;
-  if (theta < 8) found.push_back("theta below 8");
+  const auto tell = [&](bool when, const char* what, double bound) {
+    if (when) found.push_back(what + short_number(bound));
+  };
+  tell(theta < range.least_theta * below, "theta below ", range.least_theta);
+  tell(theta > range.most_theta * above, "theta above ", range.most_theta);
+  tell(contrast < range.least_contrast * below, "contrast below ", range.least_contrast);
+  tell(contrast > range.most_contrast * above, "contrast above ", range.most_contrast);
+  tell(hot > range.most_hot * above, "Ra_1 above ", range.most_hot);
+  if (range.box && m_.shell.shape != Shape::Box) found.push_back("curved");
   if (m_.dislocation) found.push_back("dislocation creep");
   return join(found);
 }
@@ -215,16 +244,19 @@ void Predictor::add_stagnant() {
                                     {true, high, 0, steady, LayerViscosity::Interior}};
   };
   const HeatBalance b = heat_balance(m_, g_, choices(solomatov_moresi, 0).front());
-  const std::string unlike = outside_stagnant(b.theta);
-  add({"drips (Solomatov & Moresi 2000)", "2-D, time-dependent, theta >= 8", 0, 0, unlike},
+  const auto unlike = [&](const LidRange& range) { return outside_stagnant(range, b.theta, 0); };
+  add({"drips (Solomatov & Moresi 2000)", "2-D, time-dependent, theta >= 8", 0, 0,
+       unlike(of_solomatov_moresi)},
       choices(solomatov_moresi, solomatov_moresi));
-  add({"drips (Davaille & Jaupart 1993)", "laboratory, contrast to 1e6", 0, 0, unlike},
+  add({"drips (Davaille & Jaupart 1993)", "laboratory, contrast to 1e6", 0, 0,
+       unlike(of_davaille_jaupart)},
       choices(davaille_jaupart - davaille_jaupart_spread,
               davaille_jaupart + davaille_jaupart_spread));
   add_plane_stagnant();
 }
 
-/// Laws of the whole layer, which no balance can carry over to other shells.
+/// Laws of the whole layer, which no balance can carry over to other shells: taken there as they
+/// stand, and said so.
 void Predictor::add_plane_stagnant() {
   if (given_flux(m_) || n_.source != 0 || m_.reference.dissipation_number > 0) return;
   const double drop = n_.t_inner - n_.t_outer, theta = n_.frank_kamenetskii;
@@ -232,15 +264,14 @@ void Predictor::add_plane_stagnant() {
   const auto rayleigh = [&](double t) { return m_.rayleigh * drop / m_.creep()({t, 0.5}); };
   const double inside = rayleigh(n_.t_outer + drop * laws::interior_deschamps_lin(theta));
   const double hot = rayleigh(n_.t_inner);
-  const std::string unlike = outside_stagnant(theta);
-  const auto put = [&](const char* name, const char* range, double nusselt) {
+  const auto put = [&](const char* name, const char* range, double nusselt, const LidRange& lids) {
     nusselt = std::max(1.0, nusselt);
-    p_.laws.push_back({name, range, nusselt, nusselt, unlike});
+    p_.laws.push_back({name, range, nusselt, nusselt, outside_stagnant(lids, theta, hot)});
   };
-  put("Moresi & Solomatov 1995", "unit box, steady, theta 8 to 30",
-      laws::nusselt_moresi_solomatov(hot, theta));
+  put("Moresi & Solomatov 1995", "unit box, steady, theta 8 to 30, Ra_1 to 1e9",
+      laws::nusselt_moresi_solomatov(hot, theta), of_moresi_solomatov);
   put("Deschamps & Lin 2014", "3-D box, contrast 1e5 to 1e8",
-      laws::nusselt_deschamps_lin(inside, theta));
+      laws::nusselt_deschamps_lin(inside, theta), of_deschamps_lin);
 }
 
 void Predictor::span() {

@@ -11,6 +11,9 @@
 /// grid from where the pilot ended, with a watch in hand. Nothing is written.
 namespace lidwright {
 
+/// Processor time of this process so far, s.
+double processor_time();
+
 /// What a march is told, without its output.
 struct MarchInputs {
   Model model;

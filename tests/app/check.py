@@ -143,6 +143,16 @@ def isoviscous(scratch):
     assert said["viscosity"] == "uniform", said
 
 
+def onset_not_known(scratch):
+    """A power law alone does not creep at rest: the regime's line says that onset is not known."""
+    power = "[viscosity.dislocation]\nalone = true\nreference_stress = 100\n[viscosity.dislocation.exponential]"
+    said = entries(check(scratch.write("power.toml", BOX.replace("[viscosity.exponential]", power)), "--no-steps", "--set",
+                         "viscosity.highest=1e6").out)
+    assert said["onset"].startswith("not known: a power law alone"), said["onset"]
+    assert said["regime"].endswith("; onset not known"), said["regime"]
+    assert "onset" not in entries(check(scratch.write("box.toml", BOX), "--no-steps").out)["regime"]
+
+
 def finds_no_grid(scratch):
     """Layers too thin for any grid that is tried are not said to be held by the case's own."""
     plain = ["--set", "viscosity.exponential.thermal_contrast=1", "--set", "heat.uniform=0"]
@@ -219,6 +229,7 @@ def main():
         numbers_by_hand(scratch)
         a_wall_of_given_flux(scratch)
         isoviscous(scratch)
+        onset_not_known(scratch)
         finds_no_grid(scratch)
         warns(scratch)
         on_three_ranks(scratch, with_steps(scratch))

@@ -116,6 +116,48 @@ TEST(Prediction, NoRegimeForALidThatMayYield) {
   EXPECT_GT(p.high, held);
 }
 
+std::string outside(const Prediction& p, const std::string& name) {
+  for (const LawResult& law : p.laws)
+    if (law.name.find(name) != std::string::npos) return law.outside;
+  return "no such law";
+}
+
+TEST(Prediction, EachLidsLawKnowsItsRange) {
+  Model m = box_heated_below();
+  m.rayleigh = 1e6;
+  const auto with = [&](double contrast) {
+    m.viscosity.exponential = ExponentialViscosity{contrast, 1, 1};
+    return predicted(m, 100);
+  };
+  const Prediction low = with(5e4), middle = with(1e6), high = with(1e9), huge = with(1e14);
+  EXPECT_EQ(outside(low, "Deschamps"), "contrast below 1e5");
+  EXPECT_EQ(outside(low, "Moresi & Solomatov"), "");
+  EXPECT_EQ(outside(middle, "Deschamps"), "");
+  EXPECT_EQ(outside(middle, "Davaille"), "");
+  EXPECT_EQ(outside(high, "Deschamps"), "contrast above 1e8");
+  EXPECT_EQ(outside(high, "Davaille"), "contrast above 1e6");
+  EXPECT_EQ(outside(high, "Solomatov & Moresi"), "");
+  EXPECT_EQ(outside(huge, "Moresi & Solomatov"), "theta above 30");
+  m.rayleigh = 2e9;
+  EXPECT_EQ(outside(with(1e6), "Moresi & Solomatov"), "Ra_1 above 1e9");
+  m.rayleigh = 1e6;
+  m.shell = {Shape::Annulus, 1, 0, 6, Sides::Reflecting};
+  EXPECT_EQ(outside(with(1e6), "Moresi & Solomatov"), "curved");
+  EXPECT_EQ(outside(with(1e6), "Solomatov & Moresi"), "");
+}
+
+TEST(Prediction, AWallsLawKnowsItsSourcesAndRange) {
+  Model m = box_heated_below();
+  m.rayleigh = 1e6;
+  m.heat.uniform = 1;
+  EXPECT_THAT(outside(predicted(m, 1e3), "Moore"), HasSubstr("its H/2 for them left out"));
+  EXPECT_EQ(outside(predicted(m, 1e3), "Sotin"), "");
+  m.walls.inner.thermal = FixedHeatFlux{0};
+  EXPECT_EQ(outside(predicted(m, 1e3), "heated within"), "");
+  m.heat.uniform = 1e-3;  // Ra_Q = 1e3
+  EXPECT_EQ(outside(predicted(m, 1e3), "heated within"), "Ra_Q low");
+}
+
 TEST(Prediction, ANoSlipWallHoldsTheSurface) {
   Model m = box_heated_below();
   m.rayleigh = 1e6;
@@ -192,7 +234,7 @@ std::vector<std::string> warned(const Model& m, double critical, double expansio
   march.initial.noise = 0.1;
   march.march.end_time = 10;
   const auto layers = layers_on_grid(p.balance, *make_geometry(m));
-  return cautions({m, march, n, p, layers, 100, critical, expansion, dissipation});
+  return cautions({m, march, n, p, layers, 100, critical, expansion, dissipation, 0.25});
 }
 
 TEST(Cautions, NoneForAPlainCase) {
@@ -215,12 +257,27 @@ TEST(Cautions, ViscosityFromCellToCellIsThatOfTheLayer) {
   p.balance.theta = std::log(100.0);
   const MarchInputs march{m, {}, {}, {}, {}};
   const auto said = [&](LayerPlace place, double cells) {
-    return cautions({m, march, n, p, {{place, 0.1, cells}}, 1, 15, 0, 0});
+    return cautions({m, march, n, p, {{place, 0.1, cells}}, 1, 15, 0, 0, 0});
   };
   EXPECT_THAT(said(LayerPlace::Surface, 2), Contains(HasSubstr("changes 3.16-fold")));
   EXPECT_THAT(said(LayerPlace::Surface, 2.2), testing::Not(Contains(HasSubstr("changes"))));
   // 2.23 scales of ln(eta) below a lid (Grasset & Parmentier 1998): exp(2.23/2).
   EXPECT_THAT(said(LayerPlace::BelowLid, 2), Contains(HasSubstr("changes 3.05-fold")));
+}
+
+TEST(Cautions, AMarchTooShortToSettle) {
+  const Model m = box_heated_below();
+  DerivedNumbers n{};
+  n.t_inner = 1;
+  Prediction p;
+  p.balance.settling = 0.01;
+  MarchInputs march{m, {}, {}, {}, {}};
+  const auto said = [&](double end) {
+    march.march.end_time = end;
+    return cautions({m, march, n, p, {}, 1, 15, 0, 0, 0});
+  };
+  EXPECT_THAT(said(0.02), Contains(HasSubstr("less than 3 times the 0.01 in which heat settles")));
+  EXPECT_THAT(said(0.031), testing::Not(Contains(HasSubstr("settles"))));
 }
 
 TEST(Cautions, EachSaysItsOwn) {
@@ -229,6 +286,8 @@ TEST(Cautions, EachSaysItsOwn) {
   EXPECT_THAT(warned(m, 0.98, 0, 0), Contains(HasSubstr("too near")));
   EXPECT_THAT(warned(m, 0.5, 0, 0), Contains(HasSubstr("0.5 times critical")));
   EXPECT_THAT(warned(m, 15, 0, 0.3), Contains(HasSubstr("dissipation number of 0.3")));
+  // (e^0.3 - 1) (0.5 + 0.25), along an adiabat from the interior's temperature.
+  EXPECT_THAT(warned(m, 15, 0, 0.3), Contains(HasSubstr("compression heats by 0.26 DeltaT")));
   EXPECT_THAT(warned(m, 15, 0.2, 0), Contains(HasSubstr("temperature drop is 0.2")));
   m.grid.radial = 8;
   EXPECT_THAT(warned(m, 15, 0, 0), Contains(HasSubstr("cells across")));
