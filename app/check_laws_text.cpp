@@ -1,5 +1,7 @@
 #include <fmt/format.h>
 
+#include <algorithm>
+
 #include "app/check_text.hpp"
 
 namespace lidwright {
@@ -14,6 +16,20 @@ std::string law_line(const LawResult& law) {
   text += check_line("", std::string("for: ") + law.range, columns);
   if (!law.outside.empty()) text += check_line("", "here: " + law.outside, columns);
   return text;
+}
+
+/// How the headline's numbers come from the list.
+std::string spread_line(const Prediction& p) {
+  const auto low = [](const LawResult& a, const LawResult& b) { return a.low < b.low; };
+  const auto high = [](const LawResult& a, const LawResult& b) { return a.high < b.high; };
+  const double least = std::min_element(p.laws.begin(), p.laws.end(), low)->low;
+  const double largest = std::max_element(p.laws.begin(), p.laws.end(), high)->high;
+  if (p.low == least && p.high == largest) return "";
+  const bool from_one = p.low == 1 && least > 1.1;
+  return check_line("the spread",
+                    fmt::format("{} to {}: {} to the largest, a tenth wider", short_number(p.low),
+                                short_number(p.high),
+                                from_one ? "from conduction, near onset," : "from the least"));
 }
 
 std::string in_kilometres(const CheckFindings& f, double length) {
@@ -50,11 +66,14 @@ std::string laws_text(const CheckFindings& f) {
   if (!f.prediction.foretold()) return "";
   std::string text = "\nPUBLISHED LAWS, Nusselt number of the outer wall in settled convection\n";
   for (const LawResult& law : f.prediction.laws) text += law_line(law);
+  text += spread_line(f.prediction);
   if (!f.prediction.unlike.empty()) text += check_line("none was made for", f.prediction.unlike);
   const HeatBalance& b = f.prediction.balance;
   if (b.settling > 0)
     text +=
-        check_line("middle of the spread",
+        check_line(f.prediction.regime == Regime::Stagnant ? "drips, quieter end"
+                   : f.prediction.laws.size() > 1          ? "middle of the spread"
+                                                           : "this law",
                    fmt::format("interior at {} DeltaT{}; settles in about {} d^2/kappa",
                                short_number(b.interior),
                                b.lid > 0 ? fmt::format(", lid {} d thick{}", short_number(b.lid),

@@ -163,7 +163,7 @@ ExitCode Check::run() {
   derive();
   if (!request_.no_steps) take_steps();
   find_onset();
-  if (session_.first()) judge();
+  on_first_rank<SolveError>(session_.comm(), [&] { judge(); });
   shown_.clear();
   if (session_.first()) fmt::print("{}", check_for_people(f_));
   return ExitCode::Done;

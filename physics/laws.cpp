@@ -34,8 +34,6 @@ double nusselt_deschamps_lin(double interior_rayleigh, double theta) {
 
 double interior_deschamps_lin(double theta) { return 1 - 1.23 / theta; }
 
-double critical_stagnant(double theta) { return 20.9 * std::pow(theta, 4); }
-
 Lid lid_by_contrast(double contrast) {
   if (contrast <= mobile_below) return Lid::Mobile;
   return contrast <= stagnant_above ? Lid::Sluggish : Lid::Stagnant;

@@ -57,11 +57,6 @@ double nusselt_deschamps_lin(double interior_rayleigh, double theta);
 /// Temperature of the interior there, 1 - 1.23/theta.
 double interior_deschamps_lin(double theta);
 
-/// Rayleigh number, with the viscosity of the hot wall, at which a layer under a stagnant lid
-/// begins to convect, 20.9 theta^4 (Solomatov 1995, Phys. Fluids 7, 266; agrees with linear theory
-/// computed for tests/reference/onset_expvisc.csv). theta > 8.
-double critical_stagnant(double theta);
-
 /// How a lid moves by the contrast of viscosity across it, heated from below, free-slip walls
 /// (Solomatov 1995: mobile up to 1e2, stagnant above 1e4).
 enum class Lid { Mobile, Sluggish, Stagnant };

@@ -78,10 +78,6 @@ void Cautions::of_viscosity() {
       "transport.flux = \"central\" with {:.2g} kappa/d through cells of {:.2g} d: temperatures "
       "will overshoot, take \"limited\" or finer cells",
       in_.velocity, cell);
-  const bool jump = in_.model.viscosity.layered.layers.size() > 0;
-  say(jump && in_.numbers.depth_contrast > 100,
-      "viscosity jumps up to {}-fold between depths: laws take its mean",
-      short_number(in_.numbers.depth_contrast));
   if (const auto& a = in_.model.creep().arrhenius) {
     const double surface = (a->energy) / std::pow(a->offset + in_.numbers.t_outer, 2);
     const double inside =
@@ -137,8 +133,6 @@ void Cautions::of_laws() {
           in_.prediction.regime != Regime::NotConvecting,
       "the region is {:.2g} d wide: one cell, whose Nusselt number goes with its width",
       breadth(in_.model.shell));
-  say(in_.model.yielding.has_value(),
-      "the lid may yield: whether it moves, and the Nusselt number, no published law foretells");
   const bool sources = in_.numbers.source != 0;
   say(sources && in_.prediction.regime == Regime::Sluggish,
       "heated within under a sluggish lid: no law is known for that");

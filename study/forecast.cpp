@@ -117,7 +117,6 @@ Forecast forecast(const Pilot& pilot, const Trial& trial, const HeatSettings& he
   // The trial's number of applications belongs to the pilot's late ones; others go with the
   // pilot's.
   const double late_mean = late.applications / late.steps, mean = all.applications / all.steps;
-  f.pilot_applications = late_mean;
   const double busier = late_mean > 0 ? mean / late_mean : 1;
   f.setup = trial.setup;
   f.stepping = f.steps * trial.step * (nonlinear ? busier : 1) +

@@ -27,8 +27,7 @@ struct Forecast {
   double snapshots = 0, checkpoints = 0;
   // Seconds of processor time.
   double setup = 0, stepping = 0, substitution = 0, factorising = 0, writing = 0;
-  double factorisations = 0;      ///< their number
-  double pilot_applications = 0;  ///< a step, in the pilot's last half
+  double factorisations = 0;  ///< their number
   double total() const { return setup + stepping + substitution + factorising + writing; }
 };
 

@@ -214,7 +214,6 @@ HeatBalance Balance::solve() {
   const double out = outer_flow(t), in = inner_flow(t);
   const double unit = rows_.conductive_heat_flow * (b.hot_wall - t_outer_);
   b.nusselt_outer = out / unit;
-  b.nusselt_inner = in / unit;
   b.interior_rayleigh = m_.rayleigh / interior_viscosity(t);
   b.theta = (b.hot_wall - t_outer_) / scale(t);
   const double k0 = at(m_.reference.conductivity, 0);
@@ -231,7 +230,6 @@ HeatBalance Balance::solve() {
   const double step = 1e-3 * (t - t_outer_);
   const double slope = (excess(t + step) - excess(t - step)) / (2 * step);
   b.settling = capacity() / slope + b.lid * b.lid / 2;
-  b.convects = b.nusselt_outer > 1 && b.lid + b.outer_layer + b.inner_layer < 1;
   return b;
 }
 

@@ -25,11 +25,9 @@ struct BalanceLaws {
 };
 
 struct HeatBalance {
-  bool convects = false;     ///< do the layers leave an interior, and carry more than conduction?
-  double interior = 0;       ///< temperature below the outer layer or lid
-  double hot_wall = 0;       ///< temperature of the inner wall
-  double nusselt_outer = 1;  ///< as the history has it; > 0 leaves
-  double nusselt_inner = 1;
+  double interior = 0;           ///< temperature below the outer layer or lid
+  double hot_wall = 0;           ///< temperature of the inner wall
+  double nusselt_outer = 1;      ///< as the history has it; > 0 leaves
   double lid = 0;                ///< thickness of the stagnant lid; 0: none
   double outer_layer = 0;        ///< thermal boundary layer below the surface or the lid
   double inner_layer = 0;        ///< at the inner wall; 0: none
@@ -38,7 +36,7 @@ struct HeatBalance {
   double settling = 0;           ///< time in which an excess of heat leaves, d^2/kappa
 };
 
-/// Solves it; needs an outer wall of fixed temperature (else nothing convects in the result).
+/// Solves it; needs an outer wall of fixed temperature (else the result is that of no convection).
 HeatBalance heat_balance(const Model&, const Geometry&, const BalanceLaws&);
 
 }  // namespace lidwright

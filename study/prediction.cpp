@@ -17,6 +17,8 @@ constexpr double margin = 1.1;
 /// Below this many times critical, power laws of Ra do not hold (common practice, no source).
 constexpr double high_enough = 10;
 
+/// Contrast of viscosity by depth alone that laws of uniform layers do not know (own choice).
+constexpr double uneven_depth = 3;
 /// Ra above which cells are seldom steady, and Ra_Q from which it is called high: own choice, no
 /// source.
 constexpr double steady_to = 1e7, high_rayleigh_q = 1e4;
@@ -92,7 +94,7 @@ std::vector<std::string> unlike_all(const Model& m, const DerivedNumbers& n) {
   std::vector<std::string> found;
   if (m.shell.shape != Shape::Box) found.push_back("curved");
   if (m.reference.dissipation_number > 0) found.push_back("compressible");
-  if (n.depth_contrast > 3) found.push_back("viscosity by depth");
+  if (n.depth_contrast > uneven_depth) found.push_back("viscosity by depth");
   if (m.walls.outer.slip == Slip::None || m.walls.inner.slip == Slip::None)
     found.push_back("no-slip");
   return found;
@@ -106,7 +108,7 @@ class Predictor {
   Prediction run();
 
  private:
-  void at_rest(const std::string& why);
+  void at_rest(const std::string& why, const char* range);
   void tell_regime();
   void add_mobile();
   void add_stagnant();
@@ -143,7 +145,7 @@ bool nothing_drives(const AtRest& rest) {
   return std::adjacent_find(t.begin(), t.end(), hotter_below) == t.end();
 }
 
-void Predictor::at_rest(const std::string& why) {
+void Predictor::at_rest(const std::string& why, const char* range) {
   p_.regime = Regime::NotConvecting;
   p_.why = why;
   const double unit = n_.conductive_flow * (rest_.t_inner - rest_.t_outer);
@@ -151,7 +153,7 @@ void Predictor::at_rest(const std::string& why) {
   p_.low = p_.high = rest_.heat_flow_outer / unit;
   p_.balance.hot_wall = rest_.t_inner;
   p_.balance.interior = rest_.mean;
-  p_.laws.push_back({"conduction", "below onset", p_.low, p_.high, ""});
+  p_.laws.push_back({"conduction", range, p_.low, p_.high, ""});
 }
 
 /// Between the outer wall and the hottest rock; no more than the slope at the interior makes of it,
@@ -164,7 +166,7 @@ double Predictor::effective_contrast() const {
 
 void Predictor::tell_regime() {
   const double contrast = effective_contrast() * (1 - 1e-9);  // as given, to round-off
-  const char* source = "(Solomatov 1995: mobile below 1e2, stagnant above 1e4)";
+  const char* source = "(Solomatov 1995: mobile to 1e2, stagnant above 1e4)";
   if (m_.yielding) {
     p_.regime = Regime::Undecided;
     p_.why = "the lid may yield; no published law tells from a yield stress which regime follows";
@@ -301,12 +303,15 @@ void Predictor::set_doubts() {
     p_.doubts.push_back("dislocation creep: the laws are for viscosity that no stress changes");
   if (m_.yielding)
     p_.doubts.push_back(
-        "a lid that yields: the spread runs from a lid that holds to one that moves");
+        "the lid may yield: whether it moves no published law foretells; the spread runs from a "
+        "lid "
+        "that holds to one that moves");
   if (times_critical_ < high_enough)
     p_.doubts.push_back(
         fmt::format("Ra is {:.3g} times critical: power laws hold from about 10", times_critical_));
-  if (n_.depth_contrast > 3)
-    p_.doubts.push_back("viscosity varies by depth: the laws take its mean");
+  if (n_.depth_contrast > uneven_depth)
+    p_.doubts.push_back(fmt::format("viscosity varies {}-fold by depth: the laws take its mean",
+                                    short_number(n_.depth_contrast)));
 }
 
 Prediction Predictor::run() {
@@ -315,13 +320,14 @@ Prediction Predictor::run() {
     return p_;
   }
   if (nothing_drives(rest_)) {
-    at_rest(
-        "conduction leaves rock nowhere hotter below: flow, if the start drives any, dies away");
+    at_rest("conduction leaves rock nowhere hotter below: flow, if the start drives any, dies away",
+            "rock at rest");
     return p_;
   }
   if (times_critical_ < 1 && !m_.nonlinear()) {
     at_rest(
-        fmt::format("Ra is {:.3g} times critical: small disturbances die away", times_critical_));
+        fmt::format("Ra is {:.3g} times critical: small disturbances die away", times_critical_),
+        "below onset");
     return p_;
   }
   const double quiet = laws::wall_coefficient(laws::nusselt_local_stability(1));

@@ -292,7 +292,15 @@ TEST(Cautions, EachSaysItsOwn) {
   m.grid.radial = 8;
   EXPECT_THAT(warned(m, 15, 0, 0), Contains(HasSubstr("cells across")));
   m.yielding = Yielding{};
-  EXPECT_THAT(warned(m, 15, 0, 0), Contains(HasSubstr("yield")));
+  m.viscosity.exponential = ExponentialViscosity{1, 200, 0};
+  const auto said = warned(m, 15, 0, 0);
+  const auto times = [&](const char* words) {
+    return std::count_if(said.begin(), said.end(),
+                         [&](const std::string& s) { return s.find(words) != std::string::npos; });
+  };
+  EXPECT_EQ(times("yield"), 1);
+  EXPECT_EQ(times("by depth"), 1);
+  EXPECT_THAT(said, Contains(HasSubstr("viscosity varies 200-fold by depth")));
 }
 
 }  // namespace
