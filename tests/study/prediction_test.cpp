@@ -7,6 +7,7 @@
 #include "physics/laws.hpp"
 #include "study/cautions.hpp"
 #include "study/resolution.hpp"
+#include "study/short_number.hpp"
 #include "tests/support/mantles.hpp"
 
 namespace lidwright {
@@ -171,6 +172,26 @@ TEST(Prediction, ANoSlipWallHoldsTheSurface) {
   EXPECT_THAT(predicted(m, 100).doubts, Contains(HasSubstr("laws of a free one")));
   m.viscosity.exponential = ExponentialViscosity{1e6, 1, 0.5};
   EXPECT_EQ(predicted(m, 100).regime, Regime::Stagnant);
+}
+
+TEST(Prediction, AWallThatGripsKeepsTheInteriorHot) {
+  // Insulated below, eta = 20^-T: g a (Ra 20^T)^(1/3) T^(4/3) = H, g by the critical numbers.
+  Model m = box_heated_below();
+  m.rayleigh = 1e6;
+  m.heat.uniform = 5;
+  m.walls.inner.thermal = FixedHeatFlux{0};
+  m.walls.outer.slip = Slip::None;
+  m.viscosity.exponential = ExponentialViscosity{20, 1, 0};
+  const double a = laws::wall_coefficient(laws::nusselt_local_stability(1)) *
+                   std::cbrt(laws::critical_free / laws::critical_rigid);
+  double low = 0, high = 5;
+  while (high - low > 1e-12) {
+    const double t = (low + high) / 2;
+    const double flow = a * std::cbrt(1e6 * std::pow(20, t)) * std::pow(t, 4.0 / 3);
+    (flow > 5 ? high : low) = t;
+  }
+  EXPECT_THAT(predicted(m, 100).why,
+              HasSubstr("viscosity contrast " + short_number(std::pow(20, low)) + " acts"));
 }
 
 TEST(Resolution, LayersAndAGridThatHoldsThem) {
