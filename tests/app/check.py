@@ -84,7 +84,7 @@ def names_each_default(scratch):
                         "largest_step = 0.01 d^2/kappa", "growth = 1.3"],
         "[march]": ['until = "time"', "most_steps = 0", "wall_clock = 0 s", "steady = 0 DeltaT kappa/d^2"],
         "[output]": ["history_every = 1", "snapshot_every = 0 d^2/kappa", "checkpoint_every = 200", "checkpoints_kept = 2",
-                     "normal_stress = true", "pictures = true"],
+                     "normal_stress = true", "pictures = true", "report = true"],
     }
     for table, keys in expected.items():
         assert said[table] == ", ".join(keys), (table, said[table])
