@@ -63,11 +63,18 @@ void draw_frames(const FigurePlan& plan, const ColourRange& colours, const std::
   }
 }
 
+/// The frames as ffmpeg counts them: a percent sign that does not count is written twice.
+std::string counted_frames(const std::string& folder) {
+  std::string name;
+  for (const char c : folder) name += c == '%' ? "%%" : std::string(1, c);
+  return name + "/frame_%04d.png";
+}
+
 std::string video_of(const FigurePlan& plan, WorkLine& line) {
   const std::string program = program_on_path("ffmpeg");
   if (program.empty()) return {};
   line.show_always("joining the pictures");
-  return write_video({program, film_base(plan) + "/frame_%04d.png",
+  return write_video({program, counted_frames(film_base(plan)),
                       frame_rate(plan.run.snapshots.size()), film_base(plan)});
 }
 

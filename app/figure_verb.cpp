@@ -103,6 +103,8 @@ Outcome draw_on_first(const Session& session, const FigureRequest& request) {
     outcome.bad_input = e.what();
   } catch (const OutputError& e) {
     outcome.not_written = e.what();
+  } catch (const std::runtime_error& e) {  // a file that cannot be read; the message names it
+    outcome.bad_input = e.what();
   }
   return outcome;
 }

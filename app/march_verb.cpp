@@ -211,7 +211,6 @@ void Run::finish(End end) {
     for (SummaryEntry& e : statistics_entries(statistics, case_.march))
       entries.push_back(std::move(e));
   write_summary(session_.comm(), folder_.paths().summary(), entries);
-  write_run_report(session_, case_, folder_.paths());
   if (!session_.first()) return;
   const std::string& folder = folder_.paths().folder;
   fmt::print("{}\n", summary_for_people(case_, last, reason(end),
@@ -248,7 +247,8 @@ ExitCode Run::go_on() {
     checkpoint_if_due();
   }
   finish(end);
-  return complete(end) ? ExitCode::Done : ExitCode::Interrupted;
+  return write_run_report(session_, case_, folder_.paths(),
+                          complete(end) ? ExitCode::Done : ExitCode::Interrupted);
 }
 
 ExitCode start_new(const Session& session, const MarchRequest& request, Clock::time_point start) {

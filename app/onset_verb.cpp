@@ -111,7 +111,6 @@ void write_results(const Session& session, const Case& c, const OnsetCurve& curv
   if (session.first()) entries = onset_entries(c, curve);
   write_summary(session.comm(), paths.summary(), entries);
   provenance.end_session(0, curve.interrupted ? "interrupted" : "complete");
-  write_run_report(session, c, paths);
 }
 
 OnsetSettings settings_of(const OnsetRequest& request) {
@@ -141,7 +140,8 @@ ExitCode onset(const Session& session, const OnsetRequest& request) {
   write_results(session, c, curve, folder.paths());
   const double seconds = std::chrono::duration<double>(Clock::now() - start).count();
   if (session.first()) fmt::print("{}", onset_for_people(c, curve, seconds, folder.paths().folder));
-  return curve.interrupted ? ExitCode::Interrupted : ExitCode::Done;
+  return write_run_report(session, c, folder.paths(),
+                          curve.interrupted ? ExitCode::Interrupted : ExitCode::Done);
 }
 
 }  // namespace lidwright

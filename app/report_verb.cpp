@@ -20,7 +20,8 @@ constexpr std::chrono::milliseconds nap{100};
 constexpr double shortest_pause = 1, longest_pause = 86400;
 
 std::string target(const ReportRequest& request) {
-  return request.onto.empty() ? RunPaths{request.run}.report() : request.onto;
+  return request.onto.empty() ? RunPaths{without_trailing_slash(request.run)}.report()
+                              : request.onto;
 }
 
 ForeignFile foreign(const ReportRequest& request) {

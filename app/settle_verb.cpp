@@ -144,11 +144,11 @@ ExitCode settle_in(const SettleJob& job, const RunPaths& paths, Provenance& prov
     const ExitCode code =
         job.along ? settle_along(job, *job.along, paths, watch) : settle_one(job, paths, watch);
     provenance.end_session(0, code == ExitCode::Done ? "complete" : "interrupted");
-    write_run_report(job.session, job.c, paths);
-    return code;
+    return write_run_report(job.session, job.c, paths, code);
   } catch (const SolveError&) {
     provenance.end_session(0, "not solved");
-    if (holds_steady_states(paths.folder)) write_run_report(job.session, job.c, paths);
+    if (holds_steady_states(paths.folder))
+      write_run_report(job.session, job.c, paths, ExitCode::NotSolved);
     throw;
   }
 }

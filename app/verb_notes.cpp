@@ -100,7 +100,7 @@ VerbNotes figure_notes() {
           "Draws what a run folder holds, for a paper or for slides, without a display.",
           {"lidwright figure runs/first temperature --format pdf --with lid"},
           drawing(),
-          {"run_folder.md"}};
+          {"figures.md", "run_folder.md"}};
 }
 
 VerbNotes report_notes() {
@@ -109,7 +109,7 @@ VerbNotes report_notes() {
           "without a network.",
           {"lidwright report runs/first", "lidwright report runs/first --follow"},
           drawing(),
-          {"run_folder.md"}};
+          {"report.md", "run_folder.md"}};
 }
 
 VerbNotes verify_notes() {

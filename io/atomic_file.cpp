@@ -86,8 +86,9 @@ void sync_folder(const std::string& folder) {
   if (::fsync(descriptor) != 0 && errno != EINVAL) throw OutputError(output_failure(folder, errno));
 }
 
-void write_atomically(const std::string& path, std::string_view contents) {
-  const std::string partial = path + std::string(partial_suffix);
+void write_atomically(const std::string& path, std::string_view contents,
+                      const std::string& writer) {
+  const std::string partial = path + writer + std::string(partial_suffix);
   int error = write_and_flush(partial, contents);
   if (error == 0 && ::rename(partial.c_str(), path.c_str()) != 0) error = errno;
   if (error != 0) {

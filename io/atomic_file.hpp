@@ -14,8 +14,10 @@ struct OutputError : std::runtime_error {
 };
 
 /// Replaces the file at `path`. When this returns, contents and name are on the disk; when it
-/// throws OutputError, the file is as it was before and no partial file is left. Not collective.
-void write_atomically(const std::string& path, std::string_view contents);
+/// throws OutputError, the file is as it was before and no partial file is left. `writer` tells
+/// processes apart that may write the same file at the same time. Not collective.
+void write_atomically(const std::string& path, std::string_view contents,
+                      const std::string& writer = {});
 
 /// Flushes a folder, so that new names in it survive a power cut. Throws OutputError.
 void sync_folder(const std::string& folder);

@@ -1,6 +1,7 @@
 #include "io/page.hpp"
 
 #include <fmt/format.h>
+#include <unistd.h>
 
 #include <cmath>
 #include <filesystem>
@@ -173,7 +174,7 @@ Shown shown_of(const SavedRun& run, const std::vector<std::string>& labels) {
 }
 
 std::string title_of(const SavedRun& run) {
-  return run.settings.title.empty() ? fs::path(run.paths.folder).filename().string()
+  return run.settings.title.empty() ? fs::canonical(run.paths.folder).filename().string()
                                     : run.settings.title;
 }
 
@@ -259,7 +260,8 @@ void refuse_foreign_page(const std::string& path) {
 
 void write_page(const std::string& path, const std::string& page, ForeignFile foreign) {
   if (foreign == ForeignFile::Refuse || fs::is_directory(path)) refuse_foreign_page(path);
-  write_atomically(path, page);
+  // A run that ends and a session that follows it may write the page at the same moment.
+  write_atomically(path, page, fmt::format(".{}", ::getpid()));
 }
 
 }  // namespace lidwright

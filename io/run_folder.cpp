@@ -42,7 +42,7 @@ bool piece_name(std::string_view name) {
 bool own_name(std::string_view name) {
   if (name.ends_with(partial_suffix)) {
     name.remove_suffix(partial_suffix.size());
-    if (name == "provenance.toml") return true;
+    if (name == "provenance.toml" || numbered(name, "report.html.", 1, "")) return true;
   }
   static constexpr std::array<std::string_view, 14> plain{
       "case_as_read.toml", "summary.toml", "history.csv",    "fields.pvd", "walls.pvd",
@@ -133,12 +133,12 @@ void make_folders(const RunPaths& paths) {
   }
 }
 
+}  // namespace
+
 std::string without_trailing_slash(std::string path) {
   while (path.size() > 1 && path.back() == '/') path.pop_back();
   return path.empty() ? "." : path;
 }
-
-}  // namespace
 
 std::vector<std::string> own_files(const RunPaths& paths) {
   std::vector<std::string> names;

@@ -66,6 +66,9 @@ class RunFolder {
   Descriptor lock_;  ///< first rank only
 };
 
+/// A folder's name as it is joined with others: completions of shells end it with a slash.
+std::string without_trailing_slash(std::string path);
+
 /// Does the folder hold steady states, which do not go on in time? Not collective.
 bool holds_steady_states(const std::string& folder);
 

@@ -144,7 +144,7 @@ SavedRun open_run(const std::string& folder) {
   if (!holds_run(folder))
     throw InputError(fmt::format(
         "{}: holds no run; name a folder that march, settle or onset has written", folder));
-  SavedRun run{{folder}, kind_of(folder), {}, {}, {}};
+  SavedRun run{{without_trailing_slash(folder)}, kind_of(folder), {}, {}, {}};
   run.settings = read_case(run.paths.case_file());
   if (fs::exists(run.paths.fields_collection()))
     run.snapshots = read_collection(text_of(run.paths.fields_collection()));

@@ -199,7 +199,7 @@ def bad_input(scratch):
     refuse(scratch.path("nowhere"), says=["nowhere", "no folder"])
     refuse(scratch.name, says=[scratch.name])
     refuse(folder, "temprature", says=["'temprature'", "did you mean 'temperature'"])
-    refuse(folder, "--format", "jpg", says=["--format", "'jpg'", "png, svg or pdf"])
+    refuse(folder, "--format", "jpg", says=["--format", "'jpg'", "png, svg, pdf"])
     refuse(folder, "--size", "one-colum", says=["did you mean 'one-column'"])
     refuse(folder, "speed", "--with", "arrow", says=["--with", "'arrow'", "did you mean 'arrows'"])
     refuse(folder, "branch", says=["no branch", "settle --along", "it has temperature"])

@@ -146,11 +146,12 @@ class Browser:
         self.send("Emulation.setEmulatedMedia", media=media, features=[{"name": "prefers-color-scheme", "value": scheme}])
 
     def place(self, selector, across=0.5, down=0.5):
-        """A point of an element, scrolled into view."""
+        """A point of an element, scrolled into view and drawn there: until then the mouse finds what stood there before."""
         return self.evaluate(
-            f"(() => {{ const e = document.querySelector({json.dumps(selector)});"
-            "e.scrollIntoView({ block: 'center', behavior: 'instant' }); const b = e.getBoundingClientRect();"
-            f"return [b.left + {across} * b.width, b.top + {down} * b.height]; }})()"
+            f"(async () => {{ const e = document.querySelector({json.dumps(selector)});"
+            "e.scrollIntoView({ block: 'center', behavior: 'instant' });"
+            "for (let k = 0; k < 2; ++k) await new Promise(requestAnimationFrame);"
+            f"const b = e.getBoundingClientRect(); return [b.left + {across} * b.width, b.top + {down} * b.height]; }})()"
         )
 
     def mouse(self, kind, point, buttons=0, clicks=0):
