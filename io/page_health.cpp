@@ -189,15 +189,6 @@ std::string overall(const std::vector<HealthRow>& rows) {
   return judged ? "Everything that is judged is good." : "There is nothing to judge.";
 }
 
-Judgement worst(const std::vector<HealthRow>& rows) {
-  const auto any = [&](Judgement j) {
-    return std::any_of(rows.begin(), rows.end(),
-                       [&](const HealthRow& r) { return r.judgement == j; });
-  };
-  if (any(Judgement::Poor)) return Judgement::Poor;
-  return any(Judgement::Look) ? Judgement::Look : Judgement::Good;
-}
-
 }  // namespace
 
 const char* word(Judgement j) {
@@ -285,9 +276,7 @@ std::string json_of(const std::vector<HealthRow>& rows) {
                                 {"threshold", json::text(r.threshold)},
                                 {"meaning", json::text(r.meaning)},
                                 {"judgement", json::text(word(r.judgement))}}));
-  return json::object({{"overall", json::text(overall(rows))},
-                       {"worst", json::text(word(worst(rows)))},
-                       {"rows", json::list(all)}});
+  return json::object({{"overall", json::text(overall(rows))}, {"rows", json::list(all)}});
 }
 
 }  // namespace lidwright::page

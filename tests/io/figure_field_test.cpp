@@ -285,27 +285,6 @@ TEST(FieldFigure, ARunAtRestIsDrawnToo) {
   EXPECT_TRUE(PngImage(draw_field(figure, {})).sound());
 }
 
-/// Clear around the shell and in its hole, opaque in it.
-TEST(FieldImage, IsTheBareShell) {
-  const NamedShell ring{"Ring", {Shape::Annulus, 1, 0, 2 * pi, Sides::Periodic}, {6, 24, {}, {}}};
-  const Drawing d(ring);
-  const PngImage image(field_image(d.geometry, d.view, d.colours, 300));
-  ASSERT_EQ(image.width(), 300);
-  ASSERT_EQ(image.height(), 300);
-  for (const auto& [x, y] : {std::pair{0, 0}, {299, 299}, {150, 150}, {150, 100}})
-    EXPECT_EQ(image.opacity(x, y), 0u) << x << ' ' << y;
-  EXPECT_EQ(image.pixel(150, 40), 0xff000000U | PngImage::packed(colour_at(0.9))) << "upper half";
-  EXPECT_EQ(image.pixel(150, 260), 0xff000000U | PngImage::packed(colour_at(0.2)));
-}
-
-TEST(FieldImage, OfAWideShellIsAsWideAsAskedFor) {
-  const NamedShell wide{"Wide", {Shape::Box, 0, 0, 4, Sides::Periodic}, {6, 24, {}, {}}};
-  const Drawing d(wide);
-  const PngImage image(field_image(d.geometry, d.view, d.colours, 400));
-  EXPECT_EQ(image.width(), 400);
-  EXPECT_EQ(image.height(), 100);
-}
-
 TEST(FieldOverlays, WordsOfTheCommandLine) {
   EXPECT_TRUE(overlays_of({"lid", "arrows"}).lid);
   EXPECT_FALSE(overlays_of({"lid"}).isotherms);
