@@ -8,8 +8,9 @@ namespace lidwright {
 namespace {
 
 /// An onset's mode may stand on more columns than the case has.
-Model on_grid(Model model, const Grid& grid) {
-  model.grid = grid;
+Model model_of(const SavedFields& fields) {
+  Model model = fields.settings.model;
+  model.grid = fields.grid;
   return model;
 }
 
@@ -26,15 +27,17 @@ FieldSource::FieldSource(const FigurePlan& plan, std::size_t snapshot)
     : plan_(plan),
       snapshot_(snapshot),
       fields_(read_fields(plan.run, snapshot)),
-      geometry_(make_geometry(on_grid(plan.run.settings.model, fields_.grid))) {}
+      geometry_(make_geometry(model_of(fields_))) {}
 
 std::string FieldSource::draw(const FieldView& view, const ColourRange& colours,
                               bool stacked) const {
-  OverlayData overlays{plan_.overlays, *geometry_, fields_, picture_units(plan_.run.settings.body)};
+  OverlayData overlays{plan_.overlays, *geometry_, fields_, field_units(fields_, plan_.run.kind)};
   overlays.stacked = stacked;
-  if (plan_.overlays.lid)
-    overlays.lid_temperature =
-        lid_base_temperature(*plan_.run.history, fields_.time, plan_.run.paths.history());
+  if (plan_.overlays.lid) {
+    const std::string path = plan_.run.paths.history();
+    overlays.lid_temperature = lid_base_temperature(*plan_.run.history, fields_.time, path);
+    overlays.lid_undefined_by_law = lid_undefined_by_law(*plan_.run.history, fields_.time, path);
+  }
   return draw_field(
       {plan_.run.settings.title, moment(plan_.run, snapshot_), view, colours, overlays},
       plan_.style);

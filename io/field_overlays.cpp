@@ -57,7 +57,9 @@ Entry line_entry(const OverlayData&) {
 
 Entry lid_entry(const OverlayData& data) {
   if (std::isnan(data.lid_temperature))
-    return {"no lid: viscosity does not depend on temperature", 0, [](Canvas&, Place) {}};
+    return {data.lid_undefined_by_law ? "no lid: viscosity does not depend on temperature"
+                                      : "base of the lid not defined at this time",
+            0, [](Canvas&, Place) {}};
   const std::string base = fmt::format("where {} {} is reached",
                                        four_digits(data.units.temperature(data.lid_temperature)),
                                        data.units.temperature.unit);
@@ -160,6 +162,14 @@ double lid_base_temperature(const HistoryTable& history, double time, const std:
   const std::size_t row = row_at(times, time);
   return column_of(history, "temperature_internal", path)[row] -
          lid_base_drop * column_of(history, "rheological_temperature", path)[row];
+}
+
+bool lid_undefined_by_law(const HistoryTable& history, double time, const std::string& path) {
+  const std::vector<double>& times = column_of(history, "time", path);
+  if (times.empty()) return false;
+  const std::size_t row = row_at(times, time);
+  return std::isfinite(column_of(history, "temperature_internal", path)[row]) &&
+         std::isnan(column_of(history, "rheological_temperature", path)[row]);
 }
 
 std::vector<double> lid_depths(const OverlayData& data) {

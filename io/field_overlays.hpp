@@ -23,16 +23,20 @@ Overlays overlays_of(const std::vector<std::string>& words);
 
 /// Base of the lid: where the temperature, down from the outer wall, first reaches T_i - 2.2 DT_rh
 /// (lid_thickness_isotherm in docs/diagnostics.md, column by column), with both from the row of the
-/// history nearest to the snapshot. Not a number where viscosity does not depend on temperature.
+/// history nearest to the snapshot. Not a number where one of them is not, or there is no row.
 double lid_base_temperature(const HistoryTable&, double time, const std::string& path);
+/// Is it not a number since viscosity does not depend on temperature? The row says so: it has the
+/// one temperature and not the other.
+bool lid_undefined_by_law(const HistoryTable&, double time, const std::string& path);
 
 struct OverlayData {
   Overlays drawn;
   const Geometry& geometry;
   const SavedFields& fields;
   PictureUnits units;
-  double lid_temperature = 0;  ///< in the program's units; not a number: there is no lid
-  bool stacked = false;        ///< the legend has one line an item, whatever room there is
+  double lid_temperature = 0;         ///< in the program's units; not a number: there is no lid
+  bool lid_undefined_by_law = false;  ///< why it is not a number
+  bool stacked = false;               ///< the legend has one line an item, whatever room there is
 };
 
 /// Depth of the lid's base in each column of cells; not a number where there is none.

@@ -16,6 +16,9 @@ using plot::Spacing;
 /// Span of values, highest over lowest, from which powers of ten are counted.
 constexpr double wide = 10;
 
+/// Of a disturbance: only its pattern means something.
+const Shown of_no_scale{1, 0, "to no scale"};
+
 Shown strain_rate_units(const std::optional<Body>& body) {
   if (!body) return {1, 0, "<i>\u03ba</i>/<i>d</i>\u00b2"};
   return {1 / scales_of(*body).time, 0, "1/s"};
@@ -47,8 +50,10 @@ struct Quantity {
   Shown units;
 };
 
-Quantity quantity(FieldKind kind, const SavedFields& f, const std::optional<Body>& body) {
-  const PictureUnits units = picture_units(body);
+Quantity quantity(FieldKind kind, const SavedFields& f, RunKind run) {
+  const std::optional<Body>& body = f.settings.body;
+  const bool scaled = run != RunKind::Onset;
+  const PictureUnits units = field_units(f, run);
   switch (kind) {
     case FieldKind::Temperature:
       return {"temperature", f.temperature, units.temperature};
@@ -57,11 +62,11 @@ Quantity quantity(FieldKind kind, const SavedFields& f, const std::optional<Body
     case FieldKind::Speed:
       return {"speed", speeds(f), units.velocity};
     case FieldKind::StrainRate:
-      return {"strain rate", f.strain_rate, strain_rate_units(body)};
+      return {"strain rate", f.strain_rate, scaled ? strain_rate_units(body) : of_no_scale};
     case FieldKind::Stress:
       break;
   }
-  return {"stress", stresses(f), stress_units(body)};
+  return {"stress", stresses(f), scaled ? stress_units(body) : of_no_scale};
 }
 
 double usual_least(std::vector<double> values) {
@@ -104,6 +109,12 @@ const std::vector<std::string>& field_words() {
 
 FieldKind field_kind(std::size_t word) { return static_cast<FieldKind>(word); }
 
+PictureUnits field_units(const SavedFields& fields, RunKind run) {
+  PictureUnits units = picture_units(fields.settings.body);
+  if (run == RunKind::Onset) units.temperature = units.velocity = of_no_scale;
+  return units;
+}
+
 FieldSpan joined(const FieldSpan& p, const FieldSpan& q) {
   return {std::min(p.low, q.low), std::max(p.high, q.high), std::min(p.usual, q.usual)};
 }
@@ -130,7 +141,7 @@ ColourRange colour_range_asked(const std::string& range, const ColourRange& own)
 }
 
 FieldView field_view(FieldKind kind, const SavedFields& fields, const SavedRun& run) {
-  const Quantity q = quantity(kind, fields, run.settings.body);
+  const Quantity q = quantity(kind, fields, run.kind);
   FieldView view{kind,
                  {q.name, q.units.unit},
                  kind == FieldKind::Temperature ? ColourMap::Warm : ColourMap::Cool,
@@ -139,7 +150,7 @@ FieldView field_view(FieldKind kind, const SavedFields& fields, const SavedRun& 
   const Interval all = plot::range_of(view.cells);
   view.span = {all.low, all.high, usual_least(view.cells)};
   if (kind == FieldKind::Temperature && run.kind != RunKind::Onset)
-    include_walls(view.span, run.settings.model.walls, q.units);
+    include_walls(view.span, fields.settings.model.walls, q.units);
   return view;
 }
 

@@ -45,6 +45,10 @@ struct FieldView {
   FieldSpan span;
 };
 
+/// Of the fields and what is drawn over them. Those of an onset are of a disturbance of no scale,
+/// whose temperature is no absolute one; its viscosity is that of the state at rest.
+PictureUnits field_units(const SavedFields&, RunKind);
+
 /// Stress is the second invariant, 2 * viscosity * strain rate. A body: kelvin, Pa s, mm/yr, 1/s,
 /// MPa; none: the program's units.
 FieldView field_view(FieldKind, const SavedFields&, const SavedRun&);

@@ -76,16 +76,4 @@ std::string draw_field(const FieldFigure& figure, const FigureStyle& style) {
   return canvas.bytes();
 }
 
-std::string field_image(const Geometry& g, const FieldView& view, const ColourRange& colours,
-                        int pixels) {
-  const Extent e = extent_of(g);
-  const double longer = std::max(e.width(), e.height());
-  const auto side = [&](double length) {
-    return std::max(1.0, std::round(pixels * length / longer));
-  };
-  Canvas canvas({side(e.width()), side(e.height()), Format::Png, 1, 0, Ground::Clear, ""});
-  draw_cells(canvas, ShellMap(g, canvas.page()), shares(view, colours), {0, 1}, view.colours);
-  return canvas.bytes();
-}
-
 }  // namespace lidwright

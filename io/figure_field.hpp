@@ -20,7 +20,4 @@ struct FieldFigure {
 /// The bytes of a figure's file.
 std::string draw_field(const FieldFigure&, const FigureStyle&);
 
-/// The bare shell as a PNG of that many pixels along its longer side, clear around it: no labels.
-std::string field_image(const Geometry&, const FieldView&, const ColourRange&, int pixels);
-
 }  // namespace lidwright

@@ -35,8 +35,6 @@ class FigurePage {
 
   /// The page, title and key drawn, as high as wished (a slide is as high as it is).
   plot::Canvas& begin(double height);
-  /// To measure texts before.
-  plot::Canvas& measuring() { return measuring_; }
 
  private:
   double title_height() const;

@@ -82,11 +82,11 @@ class PanelMaker {
   PanelMaker(const SavedRun& run, const std::vector<std::size_t>& snapshots, int across,
              int upright)
       : run_(run), snapshots_(snapshots) {
-    const Model& m = run.settings.model;
-    const Geometry g(m.shell, m.grid);
-    room_ = {g.inner_radius(), g.outer_radius(), picture_units(run.settings.body), across, upright};
+    settings_ = settings_of(run, snapshots.front());
+    const Geometry g(settings_.model.shell, settings_.model.grid);
+    room_ = {g.inner_radius(), g.outer_radius(), picture_units(settings_.body), across, upright};
     for (std::size_t k = 0; k < snapshots.size(); ++k)
-      curves_.push_back({radial_profiles(read_profiles(run, snapshots[k]), table_of(snapshots[k])),
+      curves_.push_back({profiles_at(snapshots[k]),
                          several() ? graded_colour(k, snapshots.size()) : curve_colour(2)});
   }
 
@@ -110,6 +110,15 @@ class PanelMaker {
   Colour ink_of_heat() const { return several() ? ink : curves_.front().colour; }
   std::string table_of(std::size_t n) const { return run_.paths.folder + "/" + profiles_name(n); }
 
+  /// States along a branch may have other radii: what they have in common is depth.
+  RadialProfiles profiles_at(std::size_t n) const {
+    RadialProfiles p = radial_profiles(read_profiles(run_, n), table_of(n));
+    const Model m = settings_of(run_, n).model;
+    const double shift = room_.outer_radius - Geometry(m.shell, m.grid).outer_radius();
+    for (double& radius : p.radius) radius += shift;
+    return p;
+  }
+
   Interval temperatures(const std::vector<Curve>& references) const {
     std::vector<double> all;
     for (const ProfileCurve& c : curves_)
@@ -129,7 +138,7 @@ class PanelMaker {
       all.push_back(curve);
       p.key.push_back({name, colour, 1.5, pattern});
     };
-    const std::vector<double> at_rest = conductive(run_.settings.model);
+    const std::vector<double> at_rest = conductive(settings_.model);
     if (at_rest.size() == c.profiles.radius.size())
       add(at_rest, "conduction alone", reference_pattern, curve_colour(0));
     if (rises(c.profiles.temperature_adiabatic))
@@ -138,7 +147,7 @@ class PanelMaker {
   }
 
   Chart heat_chart() const {
-    const Shape shape = run_.settings.model.shell.shape;
+    const Shape shape = settings_.model.shell.shape;
     Chart chart = depth_chart(room_, {"heat flow", unit_markup("k DeltaT d^(n-2)", shape)}, {});
     std::vector<double> ends{0};
     for (const ProfileCurve& c : curves_) {
@@ -185,6 +194,7 @@ class PanelMaker {
 
   const SavedRun& run_;
   std::vector<std::size_t> snapshots_;
+  Case settings_;  ///< of the first of them
   ProfileRoom room_{};
   std::vector<ProfileCurve> curves_;
 };

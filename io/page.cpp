@@ -8,6 +8,7 @@
 #include <functional>
 
 #include "io/atomic_file.hpp"
+#include "io/branch_table.hpp"
 #include "io/json.hpp"
 #include "io/page_assets.hpp"
 #include "io/page_fields.hpp"
@@ -61,7 +62,8 @@ struct Parts {
   std::string history = "null";
   std::vector<std::string> tables;
   std::vector<std::string> labels;  ///< of every snapshot
-  std::string parameter;            ///< of a branch
+  std::string parameter;            ///< key of a branch, and its unit as people write it
+  std::string parameter_unit;
 };
 
 Parts march_parts(const SavedRun& run, const PageState& state) {
@@ -99,7 +101,7 @@ void label_states(Parts& parts, const NumberTable& branch) {
     const double n = (*snapshot)[k];
     if (n >= 0 && n < static_cast<double>(parts.labels.size()))
       parts.labels[static_cast<std::size_t>(n)] =
-          fmt::format("{} = {}", parts.parameter, compact((*parameter)[k]));
+          fmt::format("{} = {}", parts.parameter, with_unit((*parameter)[k], parts.parameter_unit));
   }
 }
 
@@ -108,17 +110,20 @@ Parts settle_parts(const SavedRun& run) {
   const TomlSection summary = summary_of(run);
   for (std::size_t k = 0; k < run.snapshots.size(); ++k)
     parts.labels.push_back(run.snapshots.size() == 1 ? "the state" : fmt::format("state {}", k));
-  parts.verdict = settle_verdict(summary);
-  if (const auto branch = table_if_there(run.paths.branch())) {
-    parts.figures = branch_figures(*branch, summary);
+  const std::string path = run.paths.branch();
+  if (const auto branch = table_if_there(path)) {
+    const BranchParameter along = read_branch(text_if_there(path), path).parameter;
+    parts.parameter = along.key;
+    parts.parameter_unit = unit(along.unit);
+    parts.figures = branch_figures(*branch, along.key);
     parts.health = branch_health(run, *branch);
-    parts.parameter = summary["key"];
     label_states(parts, *branch);
   } else {
     parts.figures = settle_figures(run, summary, text_if_there(run.paths.error_bars()));
     parts.health = settle_health(run, summary);
   }
-  add_table(parts, run.paths.branch(), "The branch, state by state");
+  parts.verdict = settle_verdict(summary, parts.parameter);
+  add_table(parts, path, "The branch, state by state");
   const std::string bars = text_if_there(run.paths.error_bars());
   if (!bars.empty())
     parts.tables.push_back(text_table_json(bars, "error_bars.csv", "Quantities on three grids"));
@@ -190,6 +195,7 @@ std::string data_of(const SavedRun& run, const PageState& state) {
                        {"running", json::truth(state.running)},
                        {"reload", json::number(state.running ? state.reload : 0)},
                        {"parameter", json::text(parts.parameter)},
+                       {"parameterUnit", json::text(parts.parameter_unit)},
                        {"verdict", json_of(parts.verdict)},
                        {"soundness", json::text(parts.soundness)},
                        {"figures", json_of(parts.figures, run.settings.body)},

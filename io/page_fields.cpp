@@ -33,6 +33,13 @@ plot::Interval range_over(const std::vector<std::vector<double>>& frames) {
   return plot::range_of(all);
 }
 
+/// What is no number has the colour of the least.
+std::uint8_t byte_of(double share) {
+  return std::isfinite(share)
+             ? static_cast<std::uint8_t>(std::lround(255 * std::clamp(share, 0.0, 1.0)))
+             : std::uint8_t{0};
+}
+
 /// Rows of the image from the outer wall inwards, so that it looks like the unrolled shell.
 std::vector<std::uint8_t> bytes_of(const std::vector<double>& values, int rows, int columns,
                                    const plot::Interval& range) {
@@ -42,10 +49,26 @@ std::vector<std::uint8_t> bytes_of(const std::vector<double>& values, int rows, 
     for (int j = 0; j < columns; ++j) {
       const double share =
           (values[static_cast<std::size_t>(j * rows + i)] - range.low) / (range.high - range.low);
-      bytes.push_back(static_cast<std::uint8_t>(std::lround(255 * std::clamp(share, 0.0, 1.0))));
+      bytes.push_back(byte_of(share));
     }
   return bytes;
 }
+
+/// Of those numbers that are finite: one that is not leaves its block as it is without it.
+class FiniteMean {
+ public:
+  void add(double x) {
+    if (!std::isfinite(x)) return;
+    sum_ += x;
+    ++count_;
+  }
+  /// nan: there was none.
+  double value() const { return sum_ / count_; }
+
+ private:
+  double sum_ = 0;
+  int count_ = 0;
+};
 
 std::vector<double> logarithms(std::vector<double> values) {
   for (double& v : values) v = std::log10(v);
@@ -57,18 +80,28 @@ void take(std::vector<Layers>& layers, const SavedFields& f, int factor) {
   layers[1].frames.push_back(block_means(logarithms(f.viscosity), f.grid, factor));
 }
 
-std::vector<Layers> read_layers(const SavedRun& run, const std::vector<std::size_t>& snapshots,
-                                const ImageBudget& budget, Grid& grid) {
+/// All frames with their grid, and the shell of each.
+struct Read {
+  std::vector<Layers> layers;
+  std::vector<Shell> shells;
+  Grid grid;
+};
+
+Read read_layers(const SavedRun& run, const std::vector<std::size_t>& snapshots,
+                 const ImageBudget& budget) {
+  Read all;
   std::vector<Layers> layers{{"temperature", "temperature", "DeltaT", false, {}, {}},
                              {"viscosity", "viscosity", "eta", true, {}, {}}};
   for (const std::size_t n : snapshots) {
     const SavedFields f = read_fields(run, n);
-    grid = f.grid;
+    all.grid = f.grid;
+    all.shells.push_back(f.settings.model.shell);
     take(layers, f, block_factor(f.grid, budget.pixels));
   }
   for (Layers& l : layers) l.range = range_over(l.frames);
   std::erase_if(layers, [](const Layers& l) { return l.logarithmic && l.uniform(); });
-  return layers;
+  all.layers = std::move(layers);
+  return all;
 }
 
 /// Temperatures of a mode of onset are those of a disturbance: their range is about 0, and there is
@@ -104,8 +137,9 @@ std::string images(const Layers& l, int rows, int columns) {
 
 std::string layer_json(const Layers& l, const SavedRun& run, int rows, int columns) {
   const auto& body = run.settings.body;
-  const bool absolute = run.kind != RunKind::Onset;
-  const std::optional<InBody> in = body ? in_body(l.unit, *body, absolute) : std::nullopt;
+  // The temperature of a mode of onset is to no scale: it is none in kelvin.
+  const bool scaled = run.kind != RunKind::Onset || l.logarithmic;
+  const std::optional<InBody> in = body && scaled ? in_body(l.unit, *body, true) : std::nullopt;
   const plot::Interval r = shown_range(l);
   return json::object({{"name", json::text(l.name)},
                        {"title", json::text(l.title)},
@@ -135,13 +169,20 @@ std::string geometry_json(const Shell& shell, const Grid& grid, int factor) {
                        {"laterals", json::numbers(every_face(laterals, factor), 8)}});
 }
 
+/// null: one geometry is that of all frames.
+std::string geometries_json(const std::vector<std::string>& geometries) {
+  const bool same = std::all_of(geometries.begin(), geometries.end(),
+                                [&](const std::string& g) { return g == geometries.front(); });
+  return same ? "null" : json::list(geometries);
+}
+
 std::string all_json(const SavedRun& run, const std::vector<std::size_t>& snapshots,
                      const std::vector<std::string>& labels, const ImageBudget& budget) {
-  Grid grid = run.settings.model.grid;
-  const std::vector<Layers> layers = read_layers(run, snapshots, budget, grid);
+  const auto [layers, shells, grid] = read_layers(run, snapshots, budget);
   const int factor = block_factor(grid, budget.pixels);
   const int rows = blocks(grid.radial, factor), columns = blocks(grid.lateral, factor);
-  std::vector<std::string> words, layer_texts;
+  std::vector<std::string> words, layer_texts, geometries;
+  for (const Shell& s : shells) geometries.push_back(geometry_json(s, grid, factor));
   std::vector<double> times;
   for (const std::size_t n : snapshots) {
     words.push_back(labels[n]);
@@ -153,7 +194,8 @@ std::string all_json(const SavedRun& run, const std::vector<std::size_t>& snapsh
                        {"snapshots", json::indices(snapshots)},
                        {"total", json::number(static_cast<double>(run.snapshots.size()))},
                        {"factor", json::number(factor)},
-                       {"geometry", geometry_json(run.settings.model.shell, grid, factor)},
+                       {"geometry", geometries.front()},
+                       {"geometries", geometries_json(geometries)},
                        {"layers", json::list(layer_texts)}});
 }
 
@@ -174,12 +216,11 @@ std::vector<double> block_means(const std::vector<double>& cells, const Grid& g,
   means.reserve(static_cast<std::size_t>(rows) * static_cast<std::size_t>(columns));
   for (int jb = 0; jb < columns; ++jb)
     for (int ib = 0; ib < rows; ++ib) {
-      double sum = 0;
-      int count = 0;
+      FiniteMean mean;
       for (int j = jb * factor; j < std::min((jb + 1) * factor, g.lateral); ++j)
-        for (int i = ib * factor; i < std::min((ib + 1) * factor, g.radial); ++i, ++count)
-          sum += cells[static_cast<std::size_t>(j * g.radial + i)];
-      means.push_back(sum / count);
+        for (int i = ib * factor; i < std::min((ib + 1) * factor, g.radial); ++i)
+          mean.add(cells[static_cast<std::size_t>(j * g.radial + i)]);
+      means.push_back(mean.value());
     }
   return means;
 }

@@ -18,7 +18,8 @@ struct ImageBudget {
   std::size_t bytes = 1400000;  ///< of all images together, as base64
 };
 
-/// Cells in blocks of `factor` by `factor`, column by column: their faces and the mean of each.
+/// Cells in blocks of `factor` by `factor`, column by column: their faces and the mean of each, of
+/// what is finite there; nan: nothing is.
 std::vector<double> block_means(const std::vector<double>& cells, const Grid&, int factor);
 std::vector<double> every_face(const std::vector<double>& faces, int factor);
 /// Least factor for which a grid has at most `pixels` blocks.

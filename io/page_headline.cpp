@@ -106,6 +106,11 @@ NumberTable bars_by_name(const std::string& csv) {
   return t;
 }
 
+/// Of a run that goes on or was killed; the way so far may stand in its tables.
+Verdict not_finished() {
+  return {"not finished", "The run has written no summary yet.", {}, Tone::Doubtful};
+}
+
 }  // namespace
 
 const char* word(Tone t) {
@@ -183,9 +188,10 @@ std::vector<Figure> march_figures(const SavedRun& run, const RunStatistics& s) {
   return figures;
 }
 
-Verdict settle_verdict(const TomlSection& summary) {
-  if (!summary["key"].empty())
-    return {fmt::format("{} steady states along {}", summary["points"], summary["key"]),
+Verdict settle_verdict(const TomlSection& summary, const std::string& key) {
+  if (summary.entries.empty()) return not_finished();
+  if (!key.empty())
+    return {fmt::format("{} steady states along {}", summary["points"], key),
             fmt::format("Walk along the branch: {}. {} of the states stand at values that were "
                         "asked for, the others on the way.",
                         summary["end"], summary["asked_for"]),
@@ -227,7 +233,7 @@ std::vector<Figure> settle_figures(const SavedRun& run, const TomlSection& summa
   return figures;
 }
 
-std::vector<Figure> branch_figures(const NumberTable& branch, const TomlSection& summary) {
+std::vector<Figure> branch_figures(const NumberTable& branch, const std::string& key) {
   std::vector<Figure> figures;
   const auto* parameter = branch.find("parameter");
   if (!parameter || parameter->empty()) return figures;
@@ -237,14 +243,21 @@ std::vector<Figure> branch_figures(const NumberTable& branch, const TomlSection&
           std::tuple{"velocity_rms", "Rms velocity", "kappa/d"}})
       if (const auto* column = branch.find(name))
         figures.push_back({label, last ? column->back() : column->front(), unknown, of, false,
-                           fmt::format("at {} = {}", summary["key"],
-                                       compact(last ? parameter->back() : parameter->front())),
+                           fmt::format("at {} = {}", key,
+                                       with_unit(last ? parameter->back() : parameter->front(),
+                                                 unit(branch.units.front()))),
                            true});
   return figures;
 }
 
 Verdict onset_verdict(const TomlSection& summary) {
   const double times = summary.number("times_critical");
+  if (summary.entries.empty()) return not_finished();
+  if (!std::isfinite(times))
+    return {"not known",
+            "The summary has no Rayleigh number over the critical one.",
+            {},
+            Tone::Doubtful};
   Verdict v;
   v.heading = times > 1 ? "this case convects" : "this case conducts";
   v.sentence = fmt::format(
@@ -269,6 +282,7 @@ Verdict onset_verdict(const TomlSection& summary) {
 }
 
 std::vector<Figure> onset_figures(const TomlSection& s) {
+  if (s.entries.empty()) return {};
   const double bar = s.number("critical_rayleigh_error"), error = bar > 0 ? bar : unknown;
   return {{"Critical Rayleigh number", s.number("critical_rayleigh"), error, "1", false,
            error > 0 ? "" : "no error bar was asked for", true},

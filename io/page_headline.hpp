@@ -41,13 +41,14 @@ std::string soundness(const RunStatistics&);
 std::vector<Figure> march_figures(const SavedRun&, const RunStatistics&);
 
 /// Of steady states and of onset, from summary.toml and the tables beside it.
-Verdict settle_verdict(const TomlSection& summary);
+/// `key`: of a branch; empty: none.
+Verdict settle_verdict(const TomlSection& summary, const std::string& key);
 Verdict onset_verdict(const TomlSection& summary);
 /// `bars`: text of error_bars.csv; empty: there is none.
 std::vector<Figure> settle_figures(const SavedRun&, const TomlSection& summary,
                                    const std::string& bars);
-/// At the ends of a branch.
-std::vector<Figure> branch_figures(const NumberTable& branch, const TomlSection& summary);
+/// At the ends of a branch along `key`.
+std::vector<Figure> branch_figures(const NumberTable& branch, const std::string& key);
 std::vector<Figure> onset_figures(const TomlSection& summary);
 
 }  // namespace lidwright::page

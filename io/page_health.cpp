@@ -44,10 +44,36 @@ HealthRow small_row(const std::string& name, double value, double good, double f
           judged_small(value, good, fair)};
 }
 
-HealthRow budget_row(double value) {
+HealthRow step_budget_row(double value) {
   return small_row("Heat budget, largest residual of a step", value, 1e-9, 1e-6,
                    "change of heat content less what crossed the walls and was produced, over the "
                    "largest of these: round-off when the equations are solved");
+}
+
+/// `of`: " of the state".
+HealthRow state_budget_row(double value, const std::string& of) {
+  return small_row("Heat budget, residual" + of, value, 1e-9, 1e-6,
+                   "what flows in and is produced less what flows out, over the largest of these");
+}
+
+/// Largest mismatch of the rows with a flow: where nothing flows both works are round-off, and
+/// their ratio says nothing. nan: nothing flows in any row. Velocities below 1e-8 kappa/d carry no
+/// heat that a digit would show.
+double work_mismatch(const NumberTable& t) {
+  const auto *mismatch = t.find("work_mismatch"), *speed = t.find("velocity_rms");
+  if (!mismatch || !speed) return largest(mismatch);
+  const double still = std::fmax(1e-8, 1e-6 * largest(speed));
+  std::vector<double> flowing;
+  for (std::size_t k = 0; k < speed->size(); ++k)
+    if (!((*speed)[k] < still)) flowing.push_back((*mismatch)[k]);
+  return largest(&flowing);
+}
+
+/// Of the one state of a summary, by the same rule.
+double work_mismatch(const TomlSection& s) {
+  return work_mismatch(NumberTable{{"work_mismatch", "velocity_rms"},
+                                   {},
+                                   {{s.number("work_mismatch")}, {s.number("velocity_rms")}}});
 }
 
 /// Where viscosity depends on the flow the two agree as well as the flow is solved.
@@ -151,23 +177,16 @@ std::string time_per_step(const HistoryTable& t) {
 
 std::string overall(const std::vector<HealthRow>& rows) {
   std::vector<std::string> poor, look;
+  bool judged = false;
   for (const HealthRow& r : rows) {
+    judged = judged || r.judgement != Judgement::None;
     if (r.judgement == Judgement::Poor) poor.push_back(r.name);
     if (r.judgement == Judgement::Look) look.push_back(r.name);
   }
   if (!poor.empty()) return fmt::format("Poor: {}.", fmt::join(poor, "; "));
   if (!look.empty())
     return fmt::format("Nothing is poor. Look closer at: {}.", fmt::join(look, "; "));
-  return "Everything that is judged is good.";
-}
-
-Judgement worst(const std::vector<HealthRow>& rows) {
-  const auto any = [&](Judgement j) {
-    return std::any_of(rows.begin(), rows.end(),
-                       [&](const HealthRow& r) { return r.judgement == j; });
-  };
-  if (any(Judgement::Poor)) return Judgement::Poor;
-  return any(Judgement::Look) ? Judgement::Look : Judgement::Good;
+  return judged ? "Everything that is judged is good." : "There is nothing to judge.";
 }
 
 }  // namespace
@@ -201,8 +220,8 @@ Judgement judged_large(double value, double good, double fair) {
 std::vector<HealthRow> march_health(const SavedRun& run, const RunStatistics& s) {
   const HistoryTable& t = *run.history;
   const Geometry g(run.settings.model.shell, run.settings.model.grid);
-  std::vector<HealthRow> rows{budget_row(largest(t.find("heat_budget_residual"))),
-                              work_row(run, largest(t.find("work_mismatch"))),
+  std::vector<HealthRow> rows{step_budget_row(largest(t.find("heat_budget_residual"))),
+                              work_row(run, work_mismatch(t)),
                               flow_row(run, largest(t.find("flow_error"))),
                               balance_row(run, s),
                               layer_row(g, "Cells across the outer boundary layer",
@@ -221,8 +240,8 @@ std::vector<HealthRow> settle_health(const SavedRun& run, const TomlSection& s) 
   return {small_row("Residual of the steady equations", s.number("residual"), asked, 1e4 * asked,
                     "rms of dT/dt over heat flow through heat capacity; the case asks for "
                     "settle.tolerance"),
-          budget_row(std::abs(s.number("heat_budget_residual"))),
-          work_row(run, std::abs(s.number("work_mismatch"))),
+          state_budget_row(std::abs(s.number("heat_budget_residual")), " of the state"),
+          work_row(run, work_mismatch(s)),
           {"Newton steps", s["newton_steps"], "", "on all grids", Judgement::None},
           time_row(s.number("wall_time"), "of the whole search")};
 }
@@ -231,8 +250,8 @@ std::vector<HealthRow> branch_health(const SavedRun& run, const NumberTable& bra
   const double asked = run.settings.settle.tolerance;
   return {small_row("Residual of the steady equations", largest(branch.find("residual")), asked,
                     1e4 * asked, "largest of all states; the case asks for settle.tolerance"),
-          budget_row(largest(branch.find("heat_budget_residual"))),
-          work_row(run, largest(branch.find("work_mismatch"))),
+          state_budget_row(largest(branch.find("heat_budget_residual")), ", largest of a state"),
+          work_row(run, work_mismatch(branch)),
           {"Newton steps", whole(largest(branch.find("newton_steps"))), "",
            "most that one state took", Judgement::None}};
 }
@@ -257,9 +276,7 @@ std::string json_of(const std::vector<HealthRow>& rows) {
                                 {"threshold", json::text(r.threshold)},
                                 {"meaning", json::text(r.meaning)},
                                 {"judgement", json::text(word(r.judgement))}}));
-  return json::object({{"overall", json::text(overall(rows))},
-                       {"worst", json::text(word(worst(rows)))},
-                       {"rows", json::list(all)}});
+  return json::object({{"overall", json::text(overall(rows))}, {"rows", json::list(all)}});
 }
 
 }  // namespace lidwright::page

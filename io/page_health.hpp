@@ -32,7 +32,7 @@ std::vector<HealthRow> settle_health(const SavedRun&, const TomlSection& summary
 std::vector<HealthRow> branch_health(const SavedRun&, const NumberTable& branch);
 std::vector<HealthRow> onset_health(const NumberTable& onset, const TomlSection& summary);
 
-/// The rows and the worst judgement in words; JSON.
+/// The rows and what they come to in words; JSON.
 std::string json_of(const std::vector<HealthRow>&);
 
 }  // namespace lidwright::page

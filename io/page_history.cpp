@@ -3,6 +3,8 @@
 #include <fmt/format.h>
 
 #include <algorithm>
+#include <iterator>
+#include <numeric>
 #include <sstream>
 
 #include "io/csv_table.hpp"
@@ -24,21 +26,31 @@ std::string meaning_of(const std::string& column) {
   return "";
 }
 
-/// Rows of all columns that are drawn, and for each column which of them are its.
+/// Rows of the table beside the charts.
+constexpr std::size_t rows_of_the_table = 60;
+
+/// Rows of all columns that are drawn, and for each column which of them are its. Those of the
+/// table are in all, so that each of its lines has the values of one time.
 struct Drawn {
-  std::vector<std::size_t> rows;
+  std::vector<std::size_t> rows, table;
   std::vector<std::vector<std::size_t>> of_column;
 };
 
+std::vector<std::size_t> merged(const std::vector<std::size_t>& p,
+                                const std::vector<std::size_t>& q) {
+  std::vector<std::size_t> both;
+  std::set_union(p.begin(), p.end(), q.begin(), q.end(), std::back_inserter(both));
+  return both;
+}
+
 Drawn rows_drawn(const HistoryTable& t) {
   Drawn d;
+  d.table = evenly_chosen(t.rows(), rows_of_the_table);
   const std::size_t most = points_to_draw(t.rows());
   for (const auto& column : t.columns) {
-    d.of_column.push_back(rows_to_draw(column, most));
-    d.rows.insert(d.rows.end(), d.of_column.back().begin(), d.of_column.back().end());
+    d.of_column.push_back(merged(rows_to_draw(column, most), d.table));
+    d.rows = merged(d.rows, d.of_column.back());
   }
-  std::sort(d.rows.begin(), d.rows.end());
-  d.rows.erase(std::unique(d.rows.begin(), d.rows.end()), d.rows.end());
   return d;
 }
 
@@ -49,18 +61,22 @@ std::vector<double> values_at(const std::vector<double>& column,
   return values;
 }
 
-/// Places of a column's rows among all that are drawn, as steps from one to the next: small numbers
-/// make a small page. null: all of them.
+/// Places of some rows among all that are drawn.
+std::vector<std::size_t> places_among(const std::vector<std::size_t>& all,
+                                      const std::vector<std::size_t>& rows) {
+  std::vector<std::size_t> places;
+  for (const std::size_t row : rows)
+    places.push_back(
+        static_cast<std::size_t>(std::lower_bound(all.begin(), all.end(), row) - all.begin()));
+  return places;
+}
+
+/// The places of a column's rows as steps from one to the next: small numbers make a small page.
+/// null: all of them.
 std::string steps_among(const std::vector<std::size_t>& all, const std::vector<std::size_t>& rows) {
   if (rows.size() == all.size()) return "null";
-  std::vector<std::size_t> steps;
-  std::size_t before = 0;
-  for (const std::size_t row : rows) {
-    const auto place =
-        static_cast<std::size_t>(std::lower_bound(all.begin(), all.end(), row) - all.begin());
-    steps.push_back(place - before);
-    before = place;
-  }
+  std::vector<std::size_t> steps = places_among(all, rows);
+  std::adjacent_difference(steps.begin(), steps.end(), steps.begin());
   return json::indices(steps);
 }
 
@@ -111,11 +127,10 @@ std::string history_json(const SavedRun& run, const RunStatistics& s) {
   std::vector<std::string> columns;
   for (std::size_t k = 0; k < t.names.size(); ++k)
     if (t.names[k] != "time") columns.push_back(column_json(t, k, d, s));
-  const auto& body = run.settings.body;
   return json::object({{"file", json::text("history.csv")},
                        {"rows", json::number(static_cast<double>(t.rows()))},
                        {"times", json::numbers(values_at(*time, d.rows), digits_of_a_time)},
-                       {"million", json::number(body ? in_body("d^2/kappa", *body)->scale : 0, 9)},
+                       {"table", json::indices(places_among(d.rows, d.table))},
                        {"columns", json::list(columns)}});
 }
 

@@ -63,6 +63,10 @@ std::string compact(double value, int count) {
   return head == "1" ? power_alone : head + text.substr(times);
 }
 
+std::string with_unit(double value, const std::string& written) {
+  return compact(value) + (written.empty() ? "" : " " + written);
+}
+
 Stated stated(double value, double error) {
   if (!std::isfinite(value)) return {"not defined", ""};
   if (error == 0) return {compact(value), ""};

@@ -22,6 +22,9 @@ std::string digits(double value, int count = 4);
 /// The same to at most `count` digits, without noughts at the end: "10000", "10⁻⁹".
 std::string compact(double value, int count = 6);
 
+/// The same with a unit as `unit` gives it, which may be none.
+std::string with_unit(double value, const std::string& written);
+
 void replace_all(std::string& text, const std::string& what, const std::string& by);
 
 /// "d^2/kappa" as "d²/κ"; "1" as nothing.

@@ -6,6 +6,8 @@
 #include <filesystem>
 #include <stdexcept>
 
+#include "io/branch_case.hpp"
+#include "io/branch_table.hpp"
 #include "io/vtk_grids.hpp"
 #include "mesh/geometry.hpp"
 
@@ -153,15 +155,30 @@ SavedRun open_run(const std::string& folder) {
   return run;
 }
 
+Case settings_of(const SavedRun& run, std::size_t n) {
+  const std::string path = run.paths.branch();
+  if (run.kind != RunKind::Settle || !fs::exists(path)) return run.settings;
+  const SavedBranch branch = as_input([&] { return read_branch(text_of(path), path); });
+  const auto& rows = branch.rows;
+  const auto row = std::find_if(rows.begin(), rows.end(), [&](const BranchRow& r) {
+    return r.snapshot == static_cast<int>(n);
+  });
+  if (row == rows.end() || row->parameter == rows.front().parameter) return run.settings;
+  return case_along(text_of(run.paths.case_file()), run.paths.case_file(), branch.parameter.key,
+                    row->parameter);
+}
+
 SavedFields read_fields(const SavedRun& run, std::size_t n) {
   const std::string path = snapshot_path(run, n);
   const std::vector<GridPiece> pieces = pieces_at(path);
-  Grid grid = run.settings.model.grid;
+  Case settings = settings_of(run, n);
+  Grid grid = settings.model.grid;
   grid.lateral = pieces.back().extent.last_column;
-  const Geometry geometry(run.settings.model.shell, grid);
+  const Geometry geometry(settings.model.shell, grid);
   Gathered gathered(geometry, path);
   for (const GridPiece& piece : pieces) gathered.add(piece);
   SavedFields fields = std::move(gathered).whole();
+  fields.settings = std::move(settings);
   fields.grid = grid;
   fields.time = run.snapshots[n].time;
   return fields;

@@ -19,18 +19,23 @@ enum class RunKind { March, Settle, Onset };
 struct SavedRun {
   RunPaths paths;
   RunKind kind = RunKind::March;
-  Case settings;                           ///< of case_as_read.toml
+  Case settings;                           ///< of case_as_read.toml; of a branch its first state's
   std::vector<CollectionEntry> snapshots;  ///< of fields.pvd; times are numbers 0, 1, ... of states
   /// Of a march only; empty columns when no row is written yet.
   std::optional<HistoryTable> history;
 };
 SavedRun open_run(const std::string& folder);
 
+/// The case of snapshot n: along a branch with the value that branch.csv has of that state. Throws
+/// InputError as case_along does.
+Case settings_of(const SavedRun&, std::size_t n);
+
 /// Fields of one snapshot, in the program's units: cells and corners column by column, the radial
 /// index fastest. Float32 precision, as the files have it.
 struct SavedFields {
   double time = 0;
-  Grid grid;  ///< the case's; of an onset's mode with more columns where it needs them
+  Case settings;  ///< of this snapshot
+  Grid grid;      ///< the case's; of an onset's mode with more columns where it needs them
   std::vector<double> temperature, viscosity, strain_rate;  ///< cells
   std::vector<double> velocity_radial, velocity_lateral;    ///< cell middles
   std::vector<double> stream_function;  ///< corners; on a full circle without the repeated column

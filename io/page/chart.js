@@ -2,6 +2,7 @@
 const charts = [];
 const dashes = [null, [6, 4], [2, 3], [10, 4, 2, 4]];
 const inks = ["accent", "second", "third", "quiet"];
+const inkOf = (k) => inks[k % inks.length], dashOf = (k) => dashes[k % dashes.length];
 const say = (text) => { at("said").textContent = text; };
 
 /* One chart: series over a common x. `spec`: name, code, unit, xName, series [{name, values}], x, log, logX, remark,
@@ -30,8 +31,8 @@ class Chart {
     line.setAttribute("aria-hidden", "true");
     const stroke = document.createElementNS("http://www.w3.org/2000/svg", "path");
     stroke.setAttribute("d", "M0 5H30");
-    stroke.setAttribute("style", "stroke: var(--" + inks[k] + "); stroke-width: 2.5; stroke-dasharray: " +
-      (dashes[k] ? dashes[k].join(" ") : "none"));
+    stroke.setAttribute("style", "stroke: var(--" + inkOf(k) + "); stroke-width: 2.5; stroke-dasharray: " +
+      (dashOf(k) ? dashOf(k).join(" ") : "none"));
     line.append(stroke);
     return make("span", { class: "key" }, line, make("span", { text: series.name }));
   }
@@ -59,7 +60,7 @@ class Chart {
     const quiet = colour("quiet"), line = colour("line");
     const labels = [this.spec.xName, ...this.spec.series.map((s) => s.name)];
     const series = {};
-    this.spec.series.forEach((s, k) => { series[s.name] = { strokePattern: dashes[k], color: colour(inks[k]) }; });
+    this.spec.series.forEach((s, k) => { series[s.name] = { strokePattern: dashOf(k), color: colour(inkOf(k)) }; });
     return {
       labels, series, legend: "never", strokeWidth: 1.6, drawPoints: this.spec.x.length <= 80, pointSize: 2.2,
       highlightCircleSize: 4, connectSeparatedPoints: Boolean(this.spec.connect), logscale: this.logarithmic,

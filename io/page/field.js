@@ -62,7 +62,10 @@ function holding(faces, x) {
 }
 
 if (fields) {
-  const shell = new Shell(fields.geometry), canvas = at("shell"), decoded = new Map();
+  /* States along a branch may each have a shell of their own. */
+  const geometryAt = (k) => (fields.geometries ? fields.geometries[k] : fields.geometry);
+  let shell = new Shell(geometryAt(0));
+  const canvas = at("shell"), decoded = new Map();
   const slider = at("slider"), last = fields.labels.length - 1;
   const bytesOf = (l, f) => {
     const name = l + " " + f;
@@ -120,6 +123,11 @@ if (fields) {
     canvas.style.width = Math.round(room) + "px";
     draw();
   };
+  const reshape = () => {
+    if (shell.g === geometryAt(frame)) return;
+    shell = new Shell(geometryAt(frame));
+    size();
+  };
   const value = (l, byte) => {
     const x = l.low + (byte / 255) * (l.high - l.low);
     return l.log ? Math.pow(10, x) : x;
@@ -154,6 +162,7 @@ if (fields) {
     frame = Math.min(last, Math.max(0, to));
     slider.value = frame;
     describe();
+    reshape();
     draw();
     showProfiles();
     for (const c of charts) if (c.spec.moment && c.graph) c.graph.updateOptions({});
@@ -195,6 +204,7 @@ if (fields) {
   new ResizeObserver(size).observe(canvas.parentElement);
   frame = isNumber(kept.frame) ? Math.min(kept.frame, last) : last;
   slider.value = frame;
+  reshape();
   size();
   describe();
 }

@@ -63,21 +63,18 @@ if (history) {
 function fillHistoryTable() {
   const details = at("history-table");
   if (!details.open) return;
-  const columns = chosen().map(columnOf), rows = Math.min(60, history.times.length), head = [["time", "d²/κ"]];
+  const columns = chosen().map(columnOf), rows = history.table, head = [["time", "d²/κ"]];
   for (const c of columns) head.push([c.name, c.unit]);
-  const lines = [];
-  for (let k = 0; k < rows; ++k) {
-    const row = Math.round((k * (history.times.length - 1)) / Math.max(1, rows - 1));
-    lines.push([history.times[row], ...columns.map((c) => valueAt(c, row))]);
-  }
-  details.querySelector(".scroll").replaceChildren(table("History, " + rows + " rows of history.csv", head, lines));
+  const values = columns.map((c) => valuesAt(c, rows));
+  const lines = rows.map((row, k) => [history.times[row], ...values.map((v) => v[k])]);
+  details.querySelector(".scroll").replaceChildren(table("History, " + rows.length + " rows of history.csv", head, lines));
 }
-/* A column that was thinned may have no value at a row: the one before it stands for it. */
-function valueAt(c, row) {
-  if (!c.steps) return c.values[row];
-  let place = 0, k = -1;
-  for (const step of c.steps) { place += step; if (place > row) break; ++k; }
-  return c.values[Math.max(0, k)];
+/* Every column has the rows of the table; one that had not would show none, never that of another time. */
+function valuesAt(c, rows) {
+  if (!c.steps) return rows.map((row) => c.values[row]);
+  let place = 0;
+  const at = new Map(c.steps.map((step, k) => [(place += step), c.values[k]]));
+  return rows.map((row) => at.get(row));
 }
 
 function table(caption, head, lines) {
@@ -163,7 +160,8 @@ function branchCurve(t, code) {
   const x = column(t, "parameter"), y = column(t, code);
   if (!y.some(isNumber) || !changes(y.filter(isNumber))) return;
   const { xs, rows } = pieces(x, y);
-  new Chart(at("curve-panels"), { name: nameOf(t.columns.find((one) => one.name === code)), code, unit: unitIn(t, code), xName: data.parameter, x: xs, connect: true,
+  new Chart(at("curve-panels"), { name: nameOf(t.columns.find((one) => one.name === code)), code, unit: unitIn(t, code), xName: data.parameter,
+    xLabel: data.parameter + (data.parameterUnit ? ", " + data.parameterUnit : ""), x: xs, connect: true,
     logX: xs[0] > 0 && xs[xs.length - 1] > 20 * xs[0],
     series: rows.map((values, k) => ({ name: k === 0 ? "branch" : "beyond fold " + k, values })) });
 }

@@ -86,11 +86,13 @@ TEST(FieldView, QuantitiesByHand) {
   EXPECT_THAT(stress.label.unit, HasSubstr("ref"));
 }
 
+const Body a_body{2450e3, 1225e3, 4.1, 3400, 3e-5, 3.5, 1200, 230, 1400, 1e20};
+
 TEST(FieldView, UnitsOfABody) {
-  const Drawing d(unit_box);
-  SavedRun run = run_on(d.geometry);
-  run.settings.body = Body{2450e3, 1225e3, 4.1, 3400, 3e-5, 3.5, 1200, 230, 1400, 1e20};
-  const Scales s = scales_of(*run.settings.body);
+  Drawing d(unit_box);
+  const SavedRun run = run_on(d.geometry);
+  d.fields.settings.body = a_body;
+  const Scales s = scales_of(a_body);
   const FieldView rate = field_view(FieldKind::StrainRate, d.fields, run);
   EXPECT_DOUBLE_EQ(rate.cells[0], 3 / s.time);
   EXPECT_EQ(rate.label.unit, "1/s");
@@ -98,6 +100,24 @@ TEST(FieldView, UnitsOfABody) {
   EXPECT_DOUBLE_EQ(stress.cells[0], 6 * d.fields.viscosity[0] * s.stress / 1e6);
   EXPECT_EQ(stress.label.unit, "MPa");
   EXPECT_DOUBLE_EQ(field_view(FieldKind::Temperature, d.fields, run).cells[0], 230 + 0.9 * 1400);
+}
+
+/// No kelvin, no mm/yr, no wall: but the viscosity is that of the state at rest.
+TEST(FieldView, ADisturbanceHasNoScale) {
+  Drawing d(unit_box);
+  SavedRun run = run_on(d.geometry);
+  run.kind = RunKind::Onset;
+  d.fields.settings.body = a_body;
+  for (const FieldKind kind :
+       {FieldKind::Temperature, FieldKind::Speed, FieldKind::StrainRate, FieldKind::Stress})
+    EXPECT_EQ(field_view(kind, d.fields, run).label.unit, "to no scale");
+  const FieldView temperature = field_view(FieldKind::Temperature, d.fields, run);
+  EXPECT_EQ(temperature.cells, d.fields.temperature);
+  EXPECT_EQ(temperature.span.high, 0.9);
+  EXPECT_EQ(field_view(FieldKind::Viscosity, d.fields, run).label.unit, "Pa s");
+  const PictureUnits over = field_units(d.fields, run.kind);
+  EXPECT_EQ(over.temperature(0.5), 0.5) << "isotherms";
+  EXPECT_EQ(over.velocity(5), 5) << "arrows";
 }
 
 TEST(FieldView, TemperaturesSpanTheWallsToo) {
@@ -265,33 +285,25 @@ TEST(FieldFigure, ARunAtRestIsDrawnToo) {
   EXPECT_TRUE(PngImage(draw_field(figure, {})).sound());
 }
 
-/// Clear around the shell and in its hole, opaque in it.
-TEST(FieldImage, IsTheBareShell) {
-  const NamedShell ring{"Ring", {Shape::Annulus, 1, 0, 2 * pi, Sides::Periodic}, {6, 24, {}, {}}};
-  const Drawing d(ring);
-  const PngImage image(field_image(d.geometry, d.view, d.colours, 300));
-  ASSERT_EQ(image.width(), 300);
-  ASSERT_EQ(image.height(), 300);
-  for (const auto& [x, y] : {std::pair{0, 0}, {299, 299}, {150, 150}, {150, 100}})
-    EXPECT_EQ(image.opacity(x, y), 0u) << x << ' ' << y;
-  EXPECT_EQ(image.pixel(150, 40), 0xff000000U | PngImage::packed(colour_at(0.9))) << "upper half";
-  EXPECT_EQ(image.pixel(150, 260), 0xff000000U | PngImage::packed(colour_at(0.2)));
-}
-
-TEST(FieldImage, OfAWideShellIsAsWideAsAskedFor) {
-  const NamedShell wide{"Wide", {Shape::Box, 0, 0, 4, Sides::Periodic}, {6, 24, {}, {}}};
-  const Drawing d(wide);
-  const PngImage image(field_image(d.geometry, d.view, d.colours, 400));
-  EXPECT_EQ(image.width(), 400);
-  EXPECT_EQ(image.height(), 100);
-}
-
 TEST(FieldOverlays, WordsOfTheCommandLine) {
   EXPECT_TRUE(overlays_of({"lid", "arrows"}).lid);
   EXPECT_FALSE(overlays_of({"lid"}).isotherms);
   EXPECT_EQ(message_of<InputError>([] { overlays_of({"arows"}); }),
             "--with 'arows': must be one of flow-lines, arrows, lid, isotherms (did you mean "
             "'arrows'?)");
+}
+
+/// Only a row with an internal temperature and without a rheological one says so.
+TEST(FieldOverlays, TheLawLeavesNoLidWhereTheRowSaysSo) {
+  const double none = std::nan("");
+  const HistoryTable h{{"time", "temperature_internal", "rheological_temperature"},
+                       {"1", "1", "1"},
+                       {{0, 1}, {0.8, none}, {none, none}}};
+  EXPECT_TRUE(lid_undefined_by_law(h, 0, "h"));
+  EXPECT_FALSE(lid_undefined_by_law(h, 1, "h"));
+  HistoryTable empty = h;
+  for (auto& column : empty.columns) column.clear();
+  EXPECT_FALSE(lid_undefined_by_law(empty, 0, "h"));
 }
 
 /// T_i - 2.2 DT_rh of the nearer row.
@@ -301,6 +313,7 @@ TEST(FieldOverlays, TheLidsBaseIsFromTheNearestRow) {
                        {{0, 1}, {0.8, 0.9}, {0.1, 0.05}}};
   EXPECT_DOUBLE_EQ(lid_base_temperature(h, 0.4, "h"), 0.8 - 0.22);
   EXPECT_DOUBLE_EQ(lid_base_temperature(h, 0.6, "h"), 0.9 - 0.11);
+  EXPECT_FALSE(lid_undefined_by_law(h, 0.4, "h"));
   EXPECT_THAT(message_of<InputError>([] {
                 lid_base_temperature({{"time"}, {"1"}, {{0}}}, 0, "h");
               }),

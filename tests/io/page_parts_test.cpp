@@ -8,6 +8,7 @@
 #include "io/grey_image.hpp"
 #include "io/json.hpp"
 #include "io/page_fields.hpp"
+#include "io/page_headline.hpp"
 #include "io/page_health.hpp"
 #include "io/page_words.hpp"
 #include "io/thinning.hpp"
@@ -102,6 +103,9 @@ TEST(PageFields, BlocksFitTheBudgetAndKeepTheMean) {
   EXPECT_EQ(page::block_factor(grid(64, 384), 49152), 1);
   EXPECT_EQ(page::block_factor(grid(256, 1536), 49152), 3);
   EXPECT_THAT(page::block_means({1, 2, 3, 4, 5, 6}, grid(3, 2), 2), ElementsAre(3, 4.5));
+  EXPECT_THAT(page::block_means({1, -INFINITY, 3, 4, 5, nan}, grid(3, 2), 2),
+              ElementsAre(10.0 / 3, 3))
+      << "what is finite";
   EXPECT_THAT(page::every_face({0, 1, 2, 3, 4, 5}, 2), ElementsAre(0, 2, 4, 5));
 }
 
@@ -139,6 +143,46 @@ TEST(PageHealth, JudgesAtTheThresholds) {
   EXPECT_EQ(page::judged_large(4, 4, 2), Judgement::Good);
   EXPECT_EQ(page::judged_large(2, 4, 2), Judgement::Look);
   EXPECT_EQ(page::judged_large(1.9, 4, 2), Judgement::Poor);
+}
+
+/// A branch of two states: speeds and mismatches of work.
+std::string health_of(const std::vector<double>& speeds, const std::vector<double>& mismatches) {
+  return page::json_of(page::branch_health(
+      {}, {{"residual", "heat_budget_residual", "velocity_rms", "work_mismatch"},
+           {"1", "1", "kappa/d", "1"},
+           {{nan, nan}, {nan, nan}, speeds, mismatches}}));
+}
+
+TEST(PageHealth, LeavesOutWorkWhereNothingFlows) {
+  EXPECT_THAT(health_of({10, 1e-7}, {1e-10, 0.5}), HasSubstr("that is judged is good"));
+  EXPECT_THAT(health_of({10, 1e-4}, {1e-10, 0.5}), HasSubstr("Poor: Work of buoyancy"));
+  EXPECT_THAT(health_of({1e-9, 1e-10}, {0.5, 0.5}), HasSubstr("There is nothing to judge."));
+}
+
+TEST(PageHealth, SpeaksOfStatesWhereThereAreNoSteps) {
+  const std::string words = health_of({1, 1}, {0, 0});
+  EXPECT_THAT(words, HasSubstr("Heat budget, residual, largest of a state"));
+  EXPECT_THAT(words, testing::Not(HasSubstr("of a step")));
+}
+
+TEST(PageVerdicts, SayThatARunHasNotEnded) {
+  for (const page::Verdict& v :
+       {page::settle_verdict({}, ""), page::settle_verdict({}, "heat.uniform"),
+        page::onset_verdict({})}) {
+    EXPECT_EQ(v.heading, "not finished");
+    EXPECT_EQ(v.tone, page::Tone::Doubtful);
+    EXPECT_TRUE(v.evidence.empty());
+  }
+  EXPECT_TRUE(page::onset_figures({}).empty());
+  EXPECT_EQ(page::onset_verdict({"", {{"end", "interrupted"}}}).heading, "not known");
+}
+
+TEST(PageWords, ABranchHasTheUnitOfItsKey) {
+  const NumberTable branch{{"parameter", "velocity_rms"}, {"K", "kappa/d"}, {{1750, 2200}, {1, 2}}};
+  const auto figures = page::branch_figures(branch, "walls.inner.temperature");
+  ASSERT_EQ(figures.size(), 2u);
+  EXPECT_EQ(figures[0].note, "at walls.inner.temperature = 1750 K");
+  EXPECT_EQ(page::with_unit(0.5, ""), "0.5");
 }
 
 TEST(TomlSections, ReadRecordsAndSayWhatIsDamaged) {

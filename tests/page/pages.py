@@ -64,15 +64,42 @@ def of_states_and_onset(scratch):
     assert page["kind"] == "settle" and page["parameter"] == "numbers.rayleigh"
     assert page["fields"]["labels"] == ["numbers.rayleigh = 10000", "numbers.rayleigh = 20000"]
     assert {table["file"] for table in page["tables"]} == {"branch.csv", "newton.csv"}
+    shells(scratch)
     runs.expect(runs.run("settle", box, "--into", scratch.path("state"), "--error-bars", *runs.settings(grid__radial=32, grid__lateral=32)), runs.DONE)
     page = data(scratch.path("state", "report.html"))
     nusselt = next(f for f in page["figures"] if f["label"] == "Nusselt number, outer wall")
     # Blankenbach et al. (1989), case 1a: 4.884409; the bar holds it.
     assert abs(float(nusselt["number"]["value"]) - 4.884409) <= float(nusselt["number"]["error"]), nusselt
-    assert page["verdict"]["heading"] == "steady" and page["health"]["worst"] == "good", page["health"]
+    assert page["verdict"]["heading"] == "steady" and page["health"]["overall"] == "Everything that is judged is good.", page["health"]
     runs.expect(runs.run("onset", box, "--into", scratch.path("onset"), "--modes", "1:3", "--no-error-bars"), runs.DONE)
     page = data(scratch.path("onset", "report.html"))
     assert page["kind"] == "onset" and page["verdict"]["heading"] == "this case convects", page["verdict"]
+
+
+def shells(scratch):
+    """Each state along a key of the shell is shown in a shell of its own."""
+    annulus = BOX.replace('"box"', '"annulus"\nradius_ratio = 0.5')
+    case, folder = scratch.write("annulus.toml", annulus), scratch.path("ratios")
+    runs.expect(runs.run("settle", case, "--into", folder, "--along", "shell.radius_ratio=0.5:0.8:2"), runs.DONE)
+    fields = data(scratch.path("ratios", "report.html"))["fields"]
+    ends = [(g["radii"][0], g["radii"][-1]) for g in fields["geometries"]]
+    assert ends == [(1, 2), (4, 5)], ends
+    runs.expect(runs.run("figure", folder, "temperature", "profiles", "--at", "snapshot:1"), runs.DONE)
+
+
+def the_table(history, path):
+    """Its lines have the values of their times."""
+    lines = [line.split(",") for line in runs.read(path).splitlines() if not line.startswith("#")]
+    names, rows = lines[0], [[float(x) for x in line] for line in lines[1:]]
+    by_time = {round(row[names.index("time")], 9): row for row in rows}
+    times = [history["times"][place] for place in history["table"]]
+    assert len(times) == 60 and times[0] == 0 and times[-1] == rows[-1][names.index("time")], times
+    for column in history["columns"]:
+        places = [sum(column["steps"][: k + 1]) for k in range(len(column["steps"]))] if column["steps"] else range(len(history["times"]))
+        values = dict(zip(places, column["values"]))
+        for place, time_there in zip(history["table"], times):
+            expected = by_time[round(time_there, 9)][names.index(column["name"])]
+            assert abs(values[place] - expected) <= 1e-6 * abs(expected), (column["name"], time_there, values[place], expected)
 
 
 def long_run(scratch):
@@ -112,7 +139,8 @@ def long_run(scratch):
     page = data(path)
     assert seconds < 10 and os.path.getsize(path) < 3e6, (seconds, os.path.getsize(path))
     nusselt = next(c for c in page["history"]["columns"] if c["name"] == "nusselt_outer")
-    assert page["history"]["rows"] == 10000 and max(nusselt["values"]) == 77.125 and len(nusselt["values"]) <= 1000
+    assert page["history"]["rows"] == 10000 and max(nusselt["values"]) == 77.125 and len(nusselt["values"]) <= 1060
+    the_table(page["history"], os.path.join(folder, "history.csv"))
     rows = [sum(nusselt["steps"][: k + 1]) for k in range(len(nusselt["steps"]))]
     assert abs(page["history"]["times"][rows[nusselt["values"].index(77.125)]] - 0.7777) < 1e-12
     assert page["fields"]["total"] == 50 and len(page["fields"]["labels"]) <= 24
