@@ -2,7 +2,6 @@
 
 #include <fmt/format.h>
 
-#include <algorithm>
 #include <filesystem>
 
 #include "app/field_source.hpp"
@@ -19,11 +18,8 @@ std::string film_base(const FigurePlan& plan) {
   return fmt::format("{}/film_{}", plan.into, plan.kinds.front());
 }
 
-FieldKind kind_of(const FigurePlan& plan) {
-  const std::vector<std::string>& words = field_words();
-  return field_kind(static_cast<std::size_t>(
-      std::find(words.begin(), words.end(), plan.kinds.front()) - words.begin()));
-}
+/// figure_plan lets nothing but a field be filmed.
+FieldKind kind_of(const FigurePlan& plan) { return field_kind(plan.kinds.front()).value(); }
 
 /// What all snapshots together span.
 FieldSpan whole_span(const FigurePlan& plan, WorkLine& line) {

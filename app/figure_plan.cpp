@@ -3,7 +3,6 @@
 #include <fmt/format.h>
 
 #include <algorithm>
-#include <charconv>
 #include <cmath>
 #include <filesystem>
 #include <optional>
@@ -11,6 +10,7 @@
 #include "io/atomic_file.hpp"
 #include "io/field_view.hpp"
 #include "io/picture.hpp"
+#include "io/plain_text.hpp"
 
 namespace lidwright {
 namespace {
@@ -89,11 +89,9 @@ void check_options(const FigureRequest& r, const std::vector<std::string>& kinds
   if (r.format != "png") refuse("--film", "is made of PNG pictures; leave out --format");
 }
 
-std::optional<double> number_in(std::string_view text) {
-  double value = 0;
-  const auto [end, error] = std::from_chars(text.data(), text.data() + text.size(), value);
-  if (error != std::errc() || end != text.data() + text.size() || !std::isfinite(value)) return {};
-  return value;
+std::optional<double> finite_number(std::string_view text) {
+  const std::optional<double> value = number_of(text);
+  return value && std::isfinite(*value) ? value : std::nullopt;
 }
 
 /// Times of states count them, and have no unit.
@@ -103,7 +101,7 @@ Shown time_units(const SavedRun& run) {
 }
 
 std::size_t numbered_snapshot(const SavedRun& run, const std::string& at) {
-  const std::optional<double> n = number_in(std::string_view(at).substr(at.find(':') + 1));
+  const std::optional<double> n = finite_number(std::string_view(at).substr(at.find(':') + 1));
   if (!n || *n < 0 || *n != std::floor(*n) || *n >= static_cast<double>(run.snapshots.size()))
     throw InputError(
         fmt::format("--at {}: there is no such snapshot; {} has snapshot:0 to "
@@ -123,7 +121,7 @@ std::size_t nearest_snapshot(const SavedRun& run, double time) {
 /// The snapshot that one time or number means; adds what was taken to `taken`.
 std::size_t snapshot_at(const SavedRun& run, const std::string& at, std::string& taken) {
   if (at.starts_with("snapshot:")) return numbered_snapshot(run, at);
-  const std::optional<double> time = number_in(at);
+  const std::optional<double> time = finite_number(at);
   if (!time)
     throw InputError(
         fmt::format("--at {}: must be a time, or a snapshot's number as snapshot:12", at));
@@ -168,10 +166,7 @@ void check_lid(const FigurePlan& plan) {
 
 }  // namespace
 
-bool is_field(const std::string& kind) {
-  const std::vector<std::string>& words = field_words();
-  return std::find(words.begin(), words.end(), kind) != words.end();
-}
+bool is_field(const std::string& kind) { return field_kind(kind).has_value(); }
 
 bool shows_snapshot(const std::string& kind) { return is_field(kind) || kind == "profiles"; }
 

@@ -2,7 +2,6 @@
 
 #include <fmt/format.h>
 
-#include <algorithm>
 #include <optional>
 
 #include "app/field_source.hpp"
@@ -39,9 +38,7 @@ std::string Drawer::field(FieldKind kind) {
 }
 
 std::string Drawer::bytes(const std::string& kind) {
-  const std::vector<std::string>& words = field_words();
-  const auto word = std::find(words.begin(), words.end(), kind);
-  if (word != words.end()) return field(field_kind(static_cast<std::size_t>(word - words.begin())));
+  if (const auto of_field = field_kind(kind)) return field(*of_field);
   if (kind == "profiles") return profiles_figure(plan_.run, plan_.profiles, plan_.style);
   if (kind == "branch") return branch_figure(plan_.run, plan_.style);
   if (kind == "onset") return onset_figure(plan_.run, plan_.style);

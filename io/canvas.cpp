@@ -13,6 +13,7 @@
 #include <stdexcept>
 #include <string_view>
 
+#include "io/plain_text.hpp"
 #include "io/seal.hpp"
 
 namespace lidwright::plot {
@@ -55,11 +56,6 @@ void require_font(cairo_t* cr) {
   g_object_unref(font);
 }
 
-void replace_all(std::string& text, const std::string& what, const std::string& by) {
-  for (std::size_t at = 0; (at = text.find(what, at)) != std::string::npos; at += by.size())
-    text.replace(at, what.size(), by);
-}
-
 /// Pango (1.50) makes <sup> and <sub> too large on a scaled page: their size and place are said
 /// here.
 std::string with_plain_scripts(std::string markup, double size) {
@@ -67,9 +63,9 @@ std::string with_plain_scripts(std::string markup, double size) {
     return fmt::format("<span size=\"70%\" rise=\"{}\">",
                        static_cast<int>(rise * size * PANGO_SCALE));
   };
-  replace_all(markup, "<sup>", script(0.36));
-  replace_all(markup, "<sub>", script(-0.16));
-  for (const char* end : {"</sup>", "</sub>"}) replace_all(markup, end, "</span>");
+  markup = replaced(markup, "<sup>", script(0.36));
+  markup = replaced(markup, "<sub>", script(-0.16));
+  for (const char* end : {"</sup>", "</sub>"}) markup = replaced(markup, end, "</span>");
   return markup;
 }
 

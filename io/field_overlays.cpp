@@ -108,13 +108,6 @@ int set_in_lines(Canvas& canvas, const OverlayData& data, double width, Action&&
   return all.empty() ? 0 : line + 1;
 }
 
-/// Row of the history nearest to a time.
-std::size_t row_at(const std::vector<double>& times, double time) {
-  const auto nearer = [&](double p, double q) { return std::abs(p - time) < std::abs(q - time); };
-  return static_cast<std::size_t>(std::min_element(times.begin(), times.end(), nearer) -
-                                  times.begin());
-}
-
 /// Cut off at the walls. Returns the isotherms' numbers.
 std::vector<PlacedText> draw_lines_over(Canvas& canvas, const ShellMap& map,
                                         const OverlayData& data,
@@ -159,7 +152,7 @@ Overlays overlays_of(const std::vector<std::string>& words) {
 double lid_base_temperature(const HistoryTable& history, double time, const std::string& path) {
   const std::vector<double>& times = column_of(history, "time", path);
   if (times.empty()) return std::nan("");
-  const std::size_t row = row_at(times, time);
+  const std::size_t row = nearest_row(times, time);
   return column_of(history, "temperature_internal", path)[row] -
          lid_base_drop * column_of(history, "rheological_temperature", path)[row];
 }
@@ -167,7 +160,7 @@ double lid_base_temperature(const HistoryTable& history, double time, const std:
 bool lid_undefined_by_law(const HistoryTable& history, double time, const std::string& path) {
   const std::vector<double>& times = column_of(history, "time", path);
   if (times.empty()) return false;
-  const std::size_t row = row_at(times, time);
+  const std::size_t row = nearest_row(times, time);
   return std::isfinite(column_of(history, "temperature_internal", path)[row]) &&
          std::isnan(column_of(history, "rheological_temperature", path)[row]);
 }

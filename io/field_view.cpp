@@ -3,18 +3,16 @@
 #include <fmt/format.h>
 
 #include <algorithm>
-#include <charconv>
 #include <cmath>
 #include <variant>
+
+#include "io/plain_text.hpp"
 
 namespace lidwright {
 namespace {
 
 using plot::Interval;
 using plot::Spacing;
-
-/// Span of values, highest over lowest, from which powers of ten are counted.
-constexpr double wide = 10;
 
 /// Of a disturbance: only its pattern means something.
 const Shown of_no_scale{1, 0, "to no scale"};
@@ -86,7 +84,7 @@ void include_walls(FieldSpan& span, const Walls& walls, const Shown& units) {
 bool counts_powers(FieldKind kind, const Interval& r) {
   const bool may =
       kind == FieldKind::Viscosity || kind == FieldKind::StrainRate || kind == FieldKind::Stress;
-  return may && r.low > 0 && r.high > wide * r.low;
+  return may && plot::spans_decades(r);
 }
 
 Interval not_empty(Interval r) {
@@ -95,8 +93,8 @@ Interval not_empty(Interval r) {
 }
 
 bool read_number(std::string_view text, double& value) {
-  const auto [end, error] = std::from_chars(text.data(), text.data() + text.size(), value);
-  return error == std::errc() && end == text.data() + text.size() && std::isfinite(value);
+  value = number_of(text).value_or(std::nan(""));
+  return std::isfinite(value);
 }
 
 }  // namespace
@@ -107,7 +105,12 @@ const std::vector<std::string>& field_words() {
   return words;
 }
 
-FieldKind field_kind(std::size_t word) { return static_cast<FieldKind>(word); }
+std::optional<FieldKind> field_kind(const std::string& word) {
+  const auto& words = field_words();
+  const auto found = std::find(words.begin(), words.end(), word);
+  if (found == words.end()) return std::nullopt;
+  return static_cast<FieldKind>(found - words.begin());
+}
 
 PictureUnits field_units(const SavedFields& fields, RunKind run) {
   PictureUnits units = picture_units(fields.settings.body);

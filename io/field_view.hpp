@@ -16,7 +16,8 @@ enum class FieldKind { Temperature, Viscosity, Speed, StrainRate, Stress };
 
 /// "temperature", "viscosity", "speed", "strain-rate", "stress".
 const std::vector<std::string>& field_words();
-FieldKind field_kind(std::size_t word);
+/// Of such a word; none for any other.
+std::optional<FieldKind> field_kind(const std::string& word);
 
 /// What the values of fields span. Several snapshots' spans may be joined.
 struct FieldSpan {

@@ -17,8 +17,6 @@ namespace {
 
 using namespace plot;
 
-/// Ratio of the largest value to the least from which an axis counts decades.
-constexpr double wide = 8;
 constexpr double outer_width = 3.5, inner_width = 1.8;
 
 using Rows = std::vector<BranchRow>;
@@ -95,7 +93,7 @@ Chart chart_of(const SavedBranch& b, const std::vector<Drawn>& drawn, const Labe
   for (const Drawn& d : drawn)
     for (const double v : values(b.rows, d.quantity)) all.push_back(v);
   const Interval range = range_of(all);
-  const bool decades = range.low > 0 && range.high > wide * range.low;
+  const bool decades = spans_decades(range);
   c.y = axis_of_values(range, decades ? Spacing::Logarithmic : Spacing::Linear, ticks_upright(f),
                        0.08);
   if (std::none_of(all.begin(), all.end(), [](double v) { return std::isfinite(v); }))

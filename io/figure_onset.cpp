@@ -19,9 +19,6 @@ namespace {
 
 using namespace plot;
 
-/// Ratio of the largest Rayleigh number to the least from which the axis counts decades.
-constexpr double wide = 8;
-
 struct Drawn {
   std::vector<double> x, y, low, high;
 };
@@ -53,7 +50,7 @@ Axis mode_axis(const Drawn& d, int most) {
 
 Axis rayleigh_axis(const Drawn& d, int most) {
   const Interval range{range_of(d.low).low, range_of(d.high).high};
-  const bool decades = range.low > 0 && range.high > wide * range.low;
+  const bool decades = spans_decades(range);
   return axis_of_values(range, decades ? Spacing::Logarithmic : Spacing::Linear, most, 0.08);
 }
 

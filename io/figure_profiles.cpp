@@ -40,10 +40,7 @@ class RowNearest {
   RowNearest(const NumberTable& t, const std::string& key, double value) : table_(t) {
     const auto* keys = t.find(key);
     if (!keys || keys->empty()) return;
-    const auto nearest = std::min_element(keys->begin(), keys->end(), [&](double p, double q) {
-      return std::abs(p - value) < std::abs(q - value);
-    });
-    row_ = nearest - keys->begin();
+    row_ = static_cast<long>(nearest_row(*keys, value));
   }
   double operator[](const char* column) const {
     const auto* values = table_.find(column);

@@ -10,6 +10,7 @@
 
 #include "io/canvas.hpp"
 #include "io/page_words.hpp"
+#include "io/plain_text.hpp"
 
 namespace lidwright {
 namespace {
@@ -43,12 +44,6 @@ constexpr std::array<Replacement, 25> words{{
     {"stress_rms_outer", "rms stress, outer wall"},
     {"topography_rms_outer", "rms topography, outer wall"},
 }};
-
-std::string replaced(std::string text, std::string_view what, std::string_view by) {
-  for (std::size_t at = 0; (at = text.find(what, at)) != std::string::npos; at += by.size())
-    text.replace(at, what.size(), by);
-  return text;
-}
 
 /// Part of a value below which nobody reads its error: a smaller one is given as this.
 constexpr double most_digits = 1e-6;

@@ -1,6 +1,7 @@
 #include "io/number_table.hpp"
 
 #include <fmt/format.h>
+#include <cmath>
 
 #include <algorithm>
 #include <charconv>
@@ -58,6 +59,14 @@ const std::vector<double>* NumberTable::find(const std::string& name) const {
   const auto found = std::find(names.begin(), names.end(), name);
   if (found == names.end()) return nullptr;
   return &columns[static_cast<std::size_t>(found - names.begin())];
+}
+
+std::size_t nearest_row(const std::vector<double>& values, double number) {
+  const auto nearer = [&](double p, double q) {
+    return std::abs(p - number) < std::abs(q - number);
+  };
+  return static_cast<std::size_t>(std::min_element(values.begin(), values.end(), nearer) -
+                                  values.begin());
 }
 
 NumberTable parse_numbers(std::string_view text, const std::string& path) {

@@ -18,6 +18,9 @@ struct NumberTable {
   const std::vector<double>* find(const std::string& name) const;
 };
 
+/// Row whose value is nearest to a number, the first of several; of one or more.
+std::size_t nearest_row(const std::vector<double>& values, double number);
+
 /// Of the file's text. A last line without its end, as a killed run leaves it, is dropped. Throws
 /// InputError naming `path` when a row is damaged.
 NumberTable parse_numbers(std::string_view text, const std::string& path);

@@ -9,6 +9,7 @@
 
 #include "io/json.hpp"
 #include "io/page_words.hpp"
+#include "io/plain_text.hpp"
 
 namespace lidwright::page {
 namespace {
@@ -120,7 +121,7 @@ const char* word(Tone t) {
 
 std::string json_of(const Verdict& v) {
   std::vector<std::string> evidence = v.evidence;
-  for (std::string& line : evidence) replace_all(line, "+-", "±");
+  for (std::string& line : evidence) line = replaced(line, "+-", "±");
   return json::object({{"heading", json::text(v.heading)},
                        {"sentence", json::text(v.sentence)},
                        {"evidence", json::texts(evidence)},

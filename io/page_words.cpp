@@ -7,6 +7,8 @@
 #include <cmath>
 #include <utility>
 
+#include "io/plain_text.hpp"
+
 namespace lidwright::page {
 namespace {
 
@@ -33,11 +35,6 @@ bool plain(double value, int decimals) {
 }
 
 }  // namespace
-
-void replace_all(std::string& text, const std::string& what, const std::string& by) {
-  for (std::size_t at = 0; (at = text.find(what, at)) != std::string::npos; at += by.size())
-    text.replace(at, what.size(), by);
-}
 
 std::string digits(double value, int count) {
   if (!std::isfinite(value)) return "not defined";
@@ -95,7 +92,7 @@ std::string unit(const std::string& of_a_table) {
                                  {"kappa", "κ"},
                                  {"DeltaT", "ΔT"},
                                  {"eta", "η"}})
-    replace_all(text, what, by);
+    text = replaced(text, what, by);
   return text;
 }
 

@@ -25,8 +25,6 @@ std::string compact(double value, int count = 6);
 /// The same with a unit as `unit` gives it, which may be none.
 std::string with_unit(double value, const std::string& written);
 
-void replace_all(std::string& text, const std::string& what, const std::string& by);
-
 /// "d^2/kappa" as "d²/κ"; "1" as nothing.
 std::string unit(const std::string& of_a_table);
 

@@ -57,6 +57,8 @@ Interval range_of(const std::vector<double>& numbers) {
   return range;
 }
 
+bool spans_decades(const Interval& r) { return r.low > 0 && r.high > 10 * r.low; }
+
 double Axis::place(double value) const {
   if (spacing == Spacing::Linear) return (value - range.low) / (range.high - range.low);
   return std::log(value / range.low) / std::log(range.high / range.low);

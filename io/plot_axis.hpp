@@ -44,6 +44,8 @@ Axis logarithmic_axis_within(Interval, int most);
 /// With some air at both ends; an empty range becomes a small one around its value.
 Interval with_margin(Interval, double share);
 
+/// Is the range above 0 and so wide, highest over lowest more than 10, that powers are counted?
+bool spans_decades(const Interval&);
 /// The same in the logarithm, of a range above 0.
 Interval with_margin_in_logarithm(Interval, double share);
 /// An axis of the values in the range with some air; of few decades in a logarithm it has the ticks

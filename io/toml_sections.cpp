@@ -4,10 +4,10 @@
 #include <toml++/toml.h>
 
 #include <algorithm>
-#include <charconv>
 #include <limits>
 
 #include "io/case_file.hpp"
+#include "io/plain_text.hpp"
 
 namespace lidwright {
 namespace {
@@ -49,11 +49,7 @@ std::string TomlSection::operator[](const std::string& key) const {
 }
 
 double TomlSection::number(const std::string& key) const {
-  const std::string text = (*this)[key];
-  double value = 0;
-  const auto [end, error] = std::from_chars(text.data(), text.data() + text.size(), value);
-  const bool whole = error == std::errc() && end == text.data() + text.size();
-  return whole ? value : std::numeric_limits<double>::quiet_NaN();
+  return number_of((*this)[key]).value_or(std::numeric_limits<double>::quiet_NaN());
 }
 
 std::vector<TomlSection> toml_sections(const std::string& text, const std::string& path) {

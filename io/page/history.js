@@ -162,7 +162,7 @@ function branchCurve(t, code) {
   const { xs, rows } = pieces(x, y);
   new Chart(at("curve-panels"), { name: nameOf(t.columns.find((one) => one.name === code)), code, unit: unitIn(t, code), xName: data.parameter,
     xLabel: data.parameter + (data.parameterUnit ? ", " + data.parameterUnit : ""), x: xs, connect: true,
-    logX: xs[0] > 0 && xs[xs.length - 1] > 20 * xs[0],
+    logX: xs[0] > 0 && xs[xs.length - 1] >= 10 * (1 - 1e-9) * xs[0],
     series: rows.map((values, k) => ({ name: k === 0 ? "branch" : "beyond fold " + k, values })) });
 }
 if (tableOf("branch.csv")) {
