@@ -19,6 +19,8 @@ endif()
 cmake_policy(VERSION 3.25)
 set(ENV{ASAN_OPTIONS} detect_leaks=0)   # other people's leaks, in a build that looks for ours
 set(ENV{OMPI_MCA_ess_singleton_isolated} 1)
+# Programs that begin and end at the same time remove each other's folder of a session below /tmp.
+set(ENV{OMPI_MCA_orte_tmpdir_base} ${FOLDER}/session)
 find_program(GZIP gzip REQUIRED)
 
 function(print_into file)   # what the program prints when called with the other arguments
@@ -29,7 +31,7 @@ function(compress file)   # without name and time, so that equal files stay equa
 endfunction()
 
 file(REMOVE_RECURSE ${FOLDER})
-file(MAKE_DIRECTORY ${FOLDER}/man1)
+file(MAKE_DIRECTORY ${FOLDER}/man1 ${FOLDER}/session)
 print_into(man1/lidwright.1 manual)
 file(STRINGS ${FOLDER}/man1/lidwright.1 lines REGEX "^\\.BR lidwright")
 foreach(line ${lines})
@@ -41,6 +43,7 @@ compress(man1/lidwright.1)
 print_into(lidwright.bash completions bash)
 print_into(_lidwright completions zsh)
 print_into(lidwright.fish completions fish)
+file(REMOVE_RECURSE ${FOLDER}/session)
 
 file(READ ${SOURCE}/LICENSE copyright)
 if(NOTICE)
