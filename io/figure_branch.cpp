@@ -72,9 +72,13 @@ std::vector<Drawn> nusselt_numbers(const Rows& rows) {
           {&HistoryRow::nusselt_inner, curve_colour(1), "inner wall", inner_width, 3.5}};
 }
 
-bool any_known(const Rows& rows) {
+bool any(const Rows& rows, Stability s) {
   return std::any_of(rows.begin(), rows.end(),
-                     [](const BranchRow& r) { return stability_of(r) != Stability::Unknown; });
+                     [&](const BranchRow& r) { return stability_of(r) == s; });
+}
+
+bool any_known(const Rows& rows) {
+  return any(rows, Stability::Stable) || any(rows, Stability::Unstable);
 }
 
 bool any_backwards(const Rows& rows) {
@@ -161,10 +165,11 @@ std::vector<KeyEntry> key_of(const Rows& rows) {
   std::vector<KeyEntry> key;
   for (const Drawn& d : nusselt_numbers(rows))
     key.push_back({d.name, d.colour, d.width, Pattern::Solid});
-  if (any_known(rows)) {
-    key.push_back({"stable", ink, 2, Pattern::Solid, Symbol::Dot});
+  if (any(rows, Stability::Stable)) key.push_back({"stable", ink, 2, Pattern::Solid, Symbol::Dot});
+  if (any(rows, Stability::Unstable))
     key.push_back({"unstable", ink, 2, Pattern::Dashed, Symbol::Ring});
-  }
+  if (any_known(rows) && any(rows, Stability::Unknown))
+    key.push_back({"stability not computed", ink, 2, Pattern::Dotted});
   if (!folds_of(rows).empty())
     key.push_back({"fold", curve_colour(2), 0, Pattern::Solid, Symbol::Diamond});
   if (any_backwards(rows))

@@ -31,6 +31,17 @@ void fill_path(Canvas& canvas, const Colour& colour) {
   cairo_fill(canvas.context());
 }
 
+/// Longer than wide, with a notch behind: an even triangle points three ways. `along` and `down`
+/// are a unit vector.
+void dart(Canvas& canvas, Place p, double along, double down, double size) {
+  constexpr double corners[4][2] = {{1.2, 0}, {-0.9, 0.65}, {-0.45, 0}, {-0.9, -0.65}};
+  cairo_new_path(canvas.context());
+  for (const auto& [ahead, aside] : corners)
+    cairo_line_to(canvas.context(), p.x + size * (ahead * along - aside * down),
+                  p.y + size * (ahead * down + aside * along));
+  cairo_close_path(canvas.context());
+}
+
 double entry_width(Canvas& canvas, const KeyEntry& e) {
   return sample + sample_gap + canvas.text_width(e.name, key_style);
 }
@@ -92,7 +103,7 @@ void draw_symbol(Canvas& canvas, Symbol symbol, Place p, double radius, const Co
       polygon(canvas, p, 1.5 * radius, 4, 0);
       break;
     case Symbol::ArrowHead:
-      polygon(canvas, p, 1.4 * radius, 3, -1.5707963267948966);
+      dart(canvas, p, -1, 0, 1.4 * radius);
       break;
   }
   fill_path(canvas, colour);
@@ -105,7 +116,9 @@ void draw_error_bar(Canvas& canvas, Place low, Place high, const Line& line, dou
 
 void draw_arrow_head(Canvas& canvas, Place p, double dx, double dy, double size,
                      const Colour& colour) {
-  polygon(canvas, p, size, 3, std::atan2(dx, -dy));
+  const double length = std::hypot(dx, dy);
+  if (!(length > 0)) return;
+  dart(canvas, p, dx / length, dy / length, size);
   fill_path(canvas, colour);
 }
 
