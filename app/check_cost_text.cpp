@@ -100,7 +100,7 @@ std::string cost_text(const CheckFindings& f) {
 
 // Seconds and bytes of writing, measured on the virtual machine of docs/performance.md.
 namespace {
-constexpr double picture_seconds = 0.25, snapshot_seconds = 0.02, snapshot_seconds_a_cell = 2.5e-6;
+constexpr double picture_seconds = 0.10, snapshot_seconds = 0.02, snapshot_seconds_a_cell = 2.5e-6;
 constexpr double checkpoint_seconds = 0.01, checkpoint_seconds_a_cell = 0.4e-6;
 }  // namespace
 
