@@ -15,6 +15,11 @@
 namespace lidwright {
 namespace {
 
+bool is_field(const std::string& kind) { return field_kind(kind).has_value(); }
+
+/// Does the figure show one snapshot? Then its name has the number.
+bool shows_snapshot(const std::string& kind) { return is_field(kind) || kind == "profiles"; }
+
 namespace fs = std::filesystem;
 
 /// Why the run has no such figure; empty: it has.
@@ -165,10 +170,6 @@ void check_lid(const FigurePlan& plan) {
 }
 
 }  // namespace
-
-bool is_field(const std::string& kind) { return field_kind(kind).has_value(); }
-
-bool shows_snapshot(const std::string& kind) { return is_field(kind) || kind == "profiles"; }
 
 std::string snapshot_words(const SavedRun& run, std::size_t snapshot) {
   const double time = run.snapshots[snapshot].time;

@@ -29,10 +29,6 @@ std::vector<std::string> figure_kinds();
 /// Opens the run. Throws InputError.
 FigurePlan figure_plan(const FigureRequest&);
 
-bool is_field(const std::string& kind);
-/// Does the figure show one snapshot? Then its name has the number.
-bool shows_snapshot(const std::string& kind);
-
 /// Path of a figure: INTO/temperature_0012.png, INTO/history.pdf.
 std::string figure_path(const FigurePlan&, const std::string& kind);
 

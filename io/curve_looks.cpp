@@ -21,12 +21,6 @@ Colour curve_colour(std::size_t k) {
   return {shown(c.red), shown(c.green), shown(c.blue)};
 }
 
-CurveLook curve_look(std::size_t k) {
-  constexpr std::array<Pattern, 4> patterns{Pattern::Solid, Pattern::Dashed, Pattern::DashDotted,
-                                            Pattern::Dotted};
-  return {curve_colour(k), patterns[(k + k / curve_colours) % patterns.size()]};
-}
-
 Colour graded_colour(std::size_t k, std::size_t count) {
   const double share = count < 2 ? 0 : static_cast<double>(k) / static_cast<double>(count - 1);
   return colour_at(lightest_share * share);

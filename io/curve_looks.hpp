@@ -12,19 +12,12 @@ namespace lidwright::plot {
 enum class Pattern { Solid, Dashed, Dotted, DashDotted };
 enum class Symbol { None, Dot, Ring, Square, Diamond, ArrowHead };
 
-struct CurveLook {
-  Colour colour;
-  Pattern pattern = Pattern::Solid;
-};
-
 /// Colours that repeat after so many curves.
 inline constexpr std::size_t curve_colours = 4;
 
 /// Colour of curve k: made in OKLab (io/colour_map.hpp), with steps of lightness between all, and
 /// bluish and yellowish ones in turn, which dichromats tell apart too. All stand out from white.
 Colour curve_colour(std::size_t k);
-/// Colour and pattern of curve k; 16 differ.
-CurveLook curve_look(std::size_t k);
 
 /// Of the k-th of `count` curves that are the same thing at several times: along the colour map,
 /// without its lightest part.

@@ -94,15 +94,11 @@ void add_table(Parts& parts, const std::string& path, const std::string& title) 
 }
 
 /// Number of a state and value of the key there.
-void label_states(Parts& parts, const NumberTable& branch) {
-  const auto *snapshot = branch.find("snapshot"), *parameter = branch.find("parameter");
-  if (!snapshot || !parameter) return;
-  for (std::size_t k = 0; k < snapshot->size(); ++k) {
-    const double n = (*snapshot)[k];
-    if (n >= 0 && n < static_cast<double>(parts.labels.size()))
-      parts.labels[static_cast<std::size_t>(n)] =
-          fmt::format("{} = {}", parts.parameter, with_unit((*parameter)[k], parts.parameter_unit));
-  }
+void label_states(Parts& parts, const std::vector<BranchRow>& rows) {
+  for (const BranchRow& r : rows)
+    if (r.snapshot >= 0 && static_cast<std::size_t>(r.snapshot) < parts.labels.size())
+      parts.labels[static_cast<std::size_t>(r.snapshot)] =
+          fmt::format("{} = {}", parts.parameter, with_unit(r.parameter, parts.parameter_unit));
 }
 
 Parts settle_parts(const SavedRun& run) {
@@ -110,21 +106,21 @@ Parts settle_parts(const SavedRun& run) {
   const TomlSection summary = summary_of(run);
   for (std::size_t k = 0; k < run.snapshots.size(); ++k)
     parts.labels.push_back(run.snapshots.size() == 1 ? "the state" : fmt::format("state {}", k));
-  const std::string path = run.paths.branch();
-  if (const auto branch = table_if_there(path)) {
-    const BranchParameter along = read_branch(text_if_there(path), path).parameter;
-    parts.parameter = along.key;
-    parts.parameter_unit = unit(along.unit);
-    parts.figures = branch_figures(*branch, along.key);
-    parts.health = branch_health(run, *branch);
-    label_states(parts, *branch);
+  const std::string path = run.paths.branch(), bars = text_if_there(run.paths.error_bars());
+  if (const std::string text = text_if_there(path); !text.empty()) {
+    const SavedBranch branch = read_branch(text, path);
+    const NumberTable numbers = parse_numbers(text, path);
+    parts.parameter = branch.parameter.key;
+    parts.parameter_unit = unit(branch.parameter.unit);
+    parts.figures = branch_figures(numbers, parts.parameter);
+    parts.health = branch_health(run, numbers);
+    label_states(parts, branch.rows);
   } else {
-    parts.figures = settle_figures(run, summary, text_if_there(run.paths.error_bars()));
+    parts.figures = settle_figures(run, summary, bars);
     parts.health = settle_health(run, summary);
   }
   parts.verdict = settle_verdict(summary, parts.parameter);
   add_table(parts, path, "The branch, state by state");
-  const std::string bars = text_if_there(run.paths.error_bars());
   if (!bars.empty())
     parts.tables.push_back(text_table_json(bars, "error_bars.csv", "Quantities on three grids"));
   add_table(parts, run.paths.growth_rates(), "Growth of small disturbances");

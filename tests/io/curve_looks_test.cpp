@@ -2,8 +2,6 @@
 
 #include <gtest/gtest.h>
 
-#include <set>
-
 #include "io/plot_chart.hpp"
 #include "tests/support/colour_sight.hpp"
 
@@ -34,12 +32,6 @@ TEST(CurveLooks, EveryColourStandsOutFromWhite) {
         0.2126 * decoded(c.red) + 0.7152 * decoded(c.green) + 0.0722 * decoded(c.blue);
     EXPECT_GE(1.05 / (luminance + 0.05), 3) << k;
   }
-}
-
-TEST(CurveLooks, SixteenCurvesDiffer) {
-  std::set<std::pair<std::size_t, Pattern>> seen_looks;
-  for (std::size_t k = 0; k < 16; ++k)
-    EXPECT_TRUE(seen_looks.insert({k % curve_colours, curve_look(k).pattern}).second) << k;
 }
 
 TEST(CurveLooks, TimesGrowLighter) {
